@@ -25,6 +25,9 @@ const (
 	Unsolved                   // no finite result
 )
 
+// NumOutcomes is the number of outcomes: every outcome is below it.
+const NumOutcomes = Unsolved + 1
+
 var outcomeNames = [...]string{
 	Corrected:   "corrected",
 	Invalid:     "invalid",

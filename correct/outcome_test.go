@@ -72,6 +72,14 @@ func TestPulseOutcomes(t *testing.T) {
 		{"depth overflows", func(s *survey) { s.raw.Z[0], s.planes.Level[0] = -1.7e308, 1e308; s.origin.Z[0] = 1.7e308 }, correct.Unsolved},
 		{"origin 1e308", func(s *survey) { s.origin.Z[0] = 1e308 }, correct.Unsolved},
 		{"plan 1e308", func(s *survey) { s.raw.X[0], s.origin.X[0] = 1.7e308, -1.7e308 }, correct.Unsolved},
+		{"only x of the result overflows", func(s *survey) {
+			s.raw.X[0], s.origin.X[0] = 1.7e308, 1.7e308
+			s.planes.SlopeX[0], s.light.WaterGroup[0] = 0.5, 2.5e-308
+		}, correct.Unsolved},
+		{"only depth overflows", func(s *survey) {
+			s.origin.X[0] = 12.25
+			s.planes.SlopeX[0], s.light.WaterGroup[0] = 1.5, 2.5e-308
+		}, correct.Unsolved},
 		{"slope 1e308", func(s *survey) { s.planes.SlopeX[0] = -1e308 }, correct.Unsolved},
 
 		{"precedence: x, level, origin", func(s *survey) { s.raw.X[0], s.planes.Level[0], s.origin.X[0] = nan, nan, nan }, correct.Invalid},

@@ -88,7 +88,7 @@ func (r *Result) put(i int, point optics.Vec, surface plane, p path, o Outcome) 
 	end := point.Add(p.end)
 	waterLevel, entryLevel := surface.levelAt(p.end), surface.levelAt(p.entry)
 	depth := waterLevel - end.Z
-	if !isFiniteVec(end) || !isFinite(depth) || !isFinite(entryLevel) {
+	if !isFiniteVec(end) || !isFinite(depth) {
 		return Unsolved
 	}
 	r.X[i], r.Y[i], r.Z[i] = end.X, end.Y, end.Z

@@ -25,7 +25,7 @@
 //
 // # Accuracy
 //
-// A refracted direction obeys Snell's law and has unit length within 1e-15, also
+// A refracted direction obeys Snell's law and has unit length within 2e-15, also
 // where the indices are nearly equal and near the critical angle
 // (TestRefractSnell). Equal indices return the direction bit for bit
 // (TestRefractEqualIndices).

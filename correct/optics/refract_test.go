@@ -2,6 +2,7 @@ package optics_test
 
 import (
 	"math"
+	"math/big"
 	"math/rand/v2"
 	"testing"
 
@@ -111,6 +112,25 @@ func TestRefractNearlyEqualIndices(t *testing.T) {
 	}
 }
 
+// Near grazing incidence a small difference of indices turns the ray much; the cosine
+// of refraction, sqrt(1 - (1 - c^2) (nFrom/nTo)^2), comes from 200-bit arithmetic.
+func TestRefractGrazingNearlyEqual(t *testing.T) {
+	for _, row := range []struct{ cos, from, to float64 }{
+		{1e-6, 1, 1 + 1e-13}, {1e-7, 1.34, 1.34 + 1e-12}, {1e-6, 1.34 + 1e-13, 1.34}, {1e-3, 1.00027, 1.00028},
+	} {
+		out, ok := optics.Refract(optics.Vec{X: math.Sqrt(1 - row.cos*row.cos), Z: -row.cos}, up, row.from, row.to)
+		if !ok {
+			t.Fatalf("total reflection at cosine %g from index %.17g to %.17g", row.cos, row.from, row.to)
+		}
+		wide := func(x float64) *big.Float { return new(big.Float).SetPrec(200).SetFloat64(x) }
+		ratio := wide(0).Quo(wide(row.from), wide(row.to))
+		sine := wide(0).Sub(wide(1), wide(0).Mul(wide(row.cos), wide(row.cos)))
+		sine.Mul(sine, ratio).Mul(sine, ratio)
+		want, _ := wide(0).Sqrt(wide(0).Sub(wide(1), sine)).Float64()
+		near(t, "cosine of refraction", -out.Z, want, 4e-16*want)
+	}
+}
+
 func TestRefractLimits(t *testing.T) {
 	const air, water = 1.00027, 1.3400
 	critical := optics.CriticalAngleRad(water, air)
@@ -147,6 +167,9 @@ func TestRefractLimits(t *testing.T) {
 	}
 	if got := optics.CriticalAngleRad(water, water); got != math.Pi/2 {
 		t.Errorf("critical angle between equal media is %g, want pi/2", got)
+	}
+	if out, ok := optics.Refract(optics.Vec{X: 1}, up, air, water); !ok || out.Z >= 0 {
+		t.Errorf("ray exactly along the surface became %v, want it to go down, away from the normal", out)
 	}
 	if out, ok := optics.Refract(optics.Vec{X: math.NaN()}, up, air, water); ok && !math.IsNaN(out.X) {
 		t.Errorf("NaN direction became %v, want NaN", out)
