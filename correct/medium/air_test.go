@@ -81,6 +81,24 @@ func TestAirIndependent(t *testing.T) {
 	}
 }
 
+// TestAirExtremes adds the rows of Stone & Zimmerman, NIST Engineering Metrology
+// Toolbox, Index of Refraction of Air, Table 1 (450 ppm CO2, saturation pressure
+// of IAPWS), where the vapour's own dispersion and the compressibility count most.
+func TestAirExtremes(t *testing.T) {
+	for _, row := range []struct{ tc, humidity, kPa, nm, want float64 }{
+		{20, 0, 101.325, 633, 1.000271800},
+		{5, 0, 100, 633, 1.000282756},
+		{50, 100, 120, 633, 1.000287924},
+		{40, 100, 110, 300, 1.000289000},
+	} {
+		vapour := row.humidity / 100 * saturationPressureIF97(row.tc)
+		fraction := vapourFraction(row.tc, 1000*row.kPa, vapour)
+		if got, _ := moistAir(row.tc, 1000*row.kPa, fraction, 450, row.nm); math.Abs(got-row.want) > 1e-9 {
+			t.Errorf("StoneZimmerman/%+v: got %.10f", row, got)
+		}
+	}
+}
+
 // TestStandardAir is an identity: in the standard state the index is the
 // dispersion formula itself (Ciddor 1996).
 func TestStandardAir(t *testing.T) {

@@ -3,9 +3,9 @@ package medium
 import "math"
 
 // The refractivities below hold at two standard states: dry air at 15 degrees
-// C and 101325 Pa, and pure vapour at 20 degrees C and 1333 Pa (Ciddor
-// 1996). The molar masses and the gas constant of the printed densities
-// cancel in the ratio of a density to its standard, so molar densities serve.
+// C and 101325 Pa, and pure vapour at 20 degrees C and 1333 Pa (Ciddor 1996).
+// The molar masses and the gas constant of the printed densities cancel in the
+// ratio of a density to its standard, so molar densities serve.
 var (
 	standardDry    = molarDensity(15, 101325, 0)
 	standardVapour = molarDensity(20, 1333, 1)

@@ -4,8 +4,8 @@ package medium
 // lambda dn/dlambda, at a vacuum wavelength in nm.
 //
 // The 27 terms of Millard & Seaver 1990 (Deep-Sea Research 37(12), 1909-1926)
-// are gathered by their power of the wavelength l in
-// micrometres; each power's slope is the term times the power.
+// are gathered by their power of the wavelength l in micrometres; each power's
+// slope is the term times the power.
 //
 // The last digits of the coefficients of p (1.5868383e-6) and t^4
 // (-2.0883178e-10) are not certain; the variants in print differ by less than

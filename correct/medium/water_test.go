@@ -130,6 +130,25 @@ func TestTelescopeTable(t *testing.T) {
 	}
 }
 
+// TestMillardSeaverWarmAndDeep adds the warm rows under pressure of Millard &
+// Seaver 1990, Table 2 (589.26 nm), where the terms in p^2 t^2, p S t and p S t^2
+// count. One unit of the last digit is allowed.
+func TestMillardSeaverWarmAndDeep(t *testing.T) {
+	for _, row := range []struct {
+		water Water
+		want  float64
+	}{
+		{Water{20, 0, 4000}, 1.338647},
+		{Water{20, 35, 0}, 1.339386},
+		{Water{20, 35, 2000}, 1.342228},
+		{Water{25, 35, 10000}, 1.351836},
+	} {
+		if got, _ := millardSeaver(row.water, 589.26); math.Abs(got-row.want) > 1e-6 {
+			t.Errorf("MillardSeaver1990/%+v: got %.7f, want %.6f", row.water, got, row.want)
+		}
+	}
+}
+
 // TestPressureLeftOut measures, by the formula that has it, the pressure term
 // that the others leave out: 1.3e-6 to 1.7e-6 per dbar.
 func TestPressureLeftOut(t *testing.T) {
