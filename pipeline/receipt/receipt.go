@@ -6,6 +6,7 @@
 package receipt
 
 import (
+	"context"
 	"crypto/sha256"
 	"encoding/hex"
 	"encoding/json"
@@ -90,16 +91,30 @@ func Fingerprint(settings []byte, auxiliary []Input, calculation int) (string, e
 	return hex.EncodeToString(sum[:]), nil
 }
 
-// Hash reads a file to its end and returns its size and SHA-256.
-func Hash(path string) (bytes int64, sum string, err error) {
+// Hash reads a file to its end, unless the context ends before, and returns its
+// size and SHA-256.
+func Hash(ctx context.Context, path string) (bytes int64, sum string, err error) {
 	f, err := os.Open(path)
 	if err != nil {
 		return 0, "", err
 	}
 	defer f.Close()
 	h := sha256.New()
-	bytes, err = io.CopyBuffer(struct{ io.Writer }{h}, struct{ io.Reader }{f}, make([]byte, 1<<18))
-	return bytes, hex.EncodeToString(h.Sum(nil)), err
+	buffer := make([]byte, 1<<18)
+	for {
+		n, err := f.Read(buffer)
+		h.Write(buffer[:n])
+		bytes += int64(n)
+		if err == io.EOF {
+			return bytes, hex.EncodeToString(h.Sum(nil)), nil
+		}
+		if err == nil {
+			err = ctx.Err()
+		}
+		if err != nil {
+			return bytes, "", err
+		}
+	}
 }
 
 func writeJSON(path string, v any) error {

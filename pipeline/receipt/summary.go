@@ -1,6 +1,10 @@
 package receipt
 
-import "time"
+import (
+	"cmp"
+	"slices"
+	"time"
+)
 
 // Summary says what one run did to all its files. Unlike a receipt it holds
 // times and the machine's name.
@@ -47,7 +51,6 @@ type FileSummary struct {
 	Output   string   `json:"output"`
 	Status   Status   `json:"status"`
 	Error    string   `json:"error,omitempty"`
-	Advice   string   `json:"advice,omitempty"`
 	Rows     Rows     `json:"rows"`
 	Cautions []string `json:"cautions,omitempty"`
 	Seconds  float64  `json:"seconds"`
@@ -73,6 +76,13 @@ func (s *Summary) Add(f FileSummary, outcomes map[string]int64) {
 	for name, n := range outcomes {
 		s.Outcomes[name] += n
 	}
+}
+
+// Close sets the end of the run and brings the files into order.
+func (s *Summary) Close() {
+	s.Finished = time.Now().UTC().Truncate(time.Millisecond)
+	s.Seconds = s.Finished.Sub(s.Started).Seconds()
+	slices.SortFunc(s.Files, func(a, b FileSummary) int { return cmp.Compare(a.Output, b.Output) })
 }
 
 // Write puts the summary at the path, whole or not at all.

@@ -1,0 +1,210 @@
+package pipeline
+
+import (
+	"cmp"
+	"errors"
+	"fmt"
+	"hash/fnv"
+	"io/fs"
+	"os"
+	"path/filepath"
+	"slices"
+	"strings"
+
+	"github.com/bmatcuk/doublestar/v4"
+
+	"bentray/io/csvfile"
+	"bentray/pipeline/job"
+	"bentray/pipeline/receipt"
+)
+
+// rejectsSuffix is what the name of a file of rejected rows adds to its output's.
+const rejectsSuffix = ".rejects.csv"
+
+// input is one file of a job and where its output goes.
+type input struct {
+	path   string // as opened
+	name   string // relative to the job file, with slashes
+	output string // as written
+	target string // relative to the output folder, with slashes
+	bytes  int64
+}
+
+// findInputs returns the files that the job's patterns name, ordered by their
+// outputs. A file keeps the sub-folders below the fixed part of the first
+// pattern that names it. Outputs of earlier runs are left out and counted.
+func findInputs(j *job.Job) (inputs []input, leftOut int, err error) {
+	folder := j.Resolve(j.Output.Folder)
+	seen := map[string]bool{}
+	for _, pattern := range j.Input.Files {
+		fixed, rest := doublestar.SplitPattern(filepath.ToSlash(pattern))
+		matches, err := match(j.Resolve(fixed), rest)
+		if err != nil {
+			return nil, 0, callErrorf("%s: [input] files: %q %w", j.Path, pattern, err)
+		}
+		for _, target := range matches {
+			path := filepath.Join(j.Resolve(fixed), target)
+			if seen[path] {
+				continue
+			}
+			seen[path] = true
+			if isOutput(path) {
+				leftOut++
+				continue
+			}
+			in, err := newInput(j, path, filepath.Join(folder, target), target)
+			if err != nil {
+				return nil, 0, err
+			}
+			inputs = append(inputs, in)
+		}
+	}
+	if len(inputs) == 0 {
+		return nil, 0, callErrorf("%s: [input] files names only outputs of earlier runs, want raw clouds", j.Path)
+	}
+	slices.SortFunc(inputs, func(a, b input) int { return cmp.Compare(a.target, b.target) })
+	return inputs, leftOut, checkOutputs(j, inputs)
+}
+
+// match returns the files below the folder that a pattern names, as names
+// relative to the folder.
+func match(folder, pattern string) ([]string, error) {
+	matches, err := doublestar.Glob(os.DirFS(folder), pattern, doublestar.WithFilesOnly())
+	switch {
+	case errors.Is(err, doublestar.ErrBadPattern):
+		return nil, errors.New("is not a pattern; * ? [abc] {a,b} and ** are understood")
+	case err != nil:
+		return nil, err
+	case len(matches) == 0 && strings.ContainsAny(pattern, "*?[{"):
+		return nil, errors.New("matches no file")
+	case len(matches) == 0:
+		return nil, errors.New("is not there")
+	}
+	return matches, nil
+}
+
+// isOutput tells a file that an earlier run wrote, by the receipt beside it.
+func isOutput(path string) bool {
+	_, err := os.Stat(strings.TrimSuffix(path, rejectsSuffix) + receipt.Suffix)
+	return err == nil
+}
+
+func newInput(j *job.Job, path, output, target string) (input, error) {
+	name, err := filepath.Rel(j.Resolve("."), path)
+	if err != nil {
+		name = path
+	}
+	info, err := os.Stat(path)
+	if err != nil {
+		return input{}, callErrorf("%s: [input] files: %w", j.Path, err)
+	}
+	return input{path: path, name: filepath.ToSlash(name), output: output, target: target, bytes: info.Size()}, nil
+}
+
+// checkOutputs refuses two inputs with one output, and an output that is an
+// input. Inputs are ordered by their targets.
+func checkOutputs(j *job.Job, inputs []input) error {
+	for i := 1; i < len(inputs); i++ {
+		a, b := inputs[i-1], inputs[i]
+		if a.target == b.target {
+			return callErrorf("%s: %s and %s would both be written to %s; give them different names, or run them as two jobs", j.Path, a.name, b.name, a.output)
+		}
+	}
+	byPath := map[string]bool{}
+	for _, in := range inputs {
+		byPath[in.path] = true
+	}
+	for _, in := range inputs {
+		if byPath[in.output] || sameFile(in.path, in.output) {
+			return callErrorf("%s: the output %s would overwrite an input; set [output] folder to another folder", j.Path, in.output)
+		}
+	}
+	return nil
+}
+
+func sameFile(a, b string) bool {
+	infoA, errA := os.Stat(a)
+	infoB, errB := os.Stat(b)
+	return errA == nil && errB == nil && os.SameFile(infoA, infoB)
+}
+
+// Shard is one of several processes that share a job: it does the files whose
+// name hashes to Index. The zero Shard does all.
+type Shard struct {
+	Index, Count int // 0 <= Index < Count
+}
+
+// ParseShard reads "I/N", I from 0.
+func ParseShard(s string) (Shard, error) {
+	var shard Shard
+	var rest string
+	n, _ := fmt.Sscanf(s+" .", "%d/%d %s", &shard.Index, &shard.Count, &rest)
+	if n != 3 || rest != "." || shard.Index < 0 || shard.Index >= shard.Count {
+		return Shard{}, callErrorf("--shard is %q, want I/N with I from 0 to N-1, such as 0/4", s)
+	}
+	return shard, nil
+}
+
+func (s Shard) String() string {
+	if s.Count == 0 {
+		return ""
+	}
+	return fmt.Sprintf("%d/%d", s.Index, s.Count)
+}
+
+// fileName is the shard as a part of a file name.
+func (s Shard) fileName() string { return fmt.Sprintf("%d-of-%d", s.Index, s.Count) }
+
+func (s Shard) has(target string) bool {
+	if s.Count == 0 {
+		return true
+	}
+	h := fnv.New32a()
+	h.Write([]byte(target))
+	return int(h.Sum32()%uint32(s.Count)) == s.Index
+}
+
+// pick keeps the inputs that a shard and a pattern (empty: all) name.
+func pick(inputs []input, shard Shard, only string) ([]input, error) {
+	if only != "" && !doublestar.ValidatePattern(only) {
+		return nil, callErrorf("--only %q is not a pattern; * ? [abc] {a,b} and ** are understood", only)
+	}
+	picked := slices.DeleteFunc(slices.Clone(inputs), func(in input) bool {
+		return !shard.has(in.target) || only != "" && !doublestar.MatchUnvalidated(only, in.target)
+	})
+	if len(picked) == 0 && only != "" {
+		return nil, callErrorf("--only %q names none of the job's %d files (names are as below the output folder, such as %s)", only, len(inputs), inputs[0].target)
+	}
+	return picked, nil
+}
+
+// checkFormat refuses a name that no format reads.
+func checkFormat(path string) error {
+	if csvfile.IsName(path) {
+		return nil
+	}
+	return fmt.Errorf("%s: unknown kind of file %q, want .csv .tsv .txt .xyz or .asc (also with .gz or .zst)", path, filepath.Ext(path))
+}
+
+// makeFolders makes the output folder and that of each output.
+func makeFolders(root string, inputs []input) error {
+	made := map[string]bool{}
+	folders := []string{root}
+	for _, in := range inputs {
+		folders = append(folders, filepath.Dir(in.output))
+	}
+	for _, folder := range folders {
+		if made[folder] {
+			continue
+		}
+		if err := os.MkdirAll(folder, 0o777); err != nil {
+			var p *fs.PathError
+			if errors.As(err, &p) {
+				err = p.Err
+			}
+			return callErrorf("%s: cannot make the output folder: %w", folder, err)
+		}
+		made[folder] = true
+	}
+	return nil
+}

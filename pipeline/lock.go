@@ -1,0 +1,143 @@
+package pipeline
+
+import (
+	"crypto/rand"
+	"encoding/json"
+	"os"
+	"path/filepath"
+
+	"github.com/gofrs/flock"
+)
+
+// A run keeps others off its outputs by a lock file in the output folder that
+// lists them and that it holds by an advisory file lock until it ends. The
+// operating system lets go of that lock when the process dies, so the lock of
+// a dead run is known by being free, and is swept by the next run.
+//
+// Runs whose outputs differ (shards of one job, or several jobs) share a folder.
+const (
+	gateName    = "bentray.lock" // held only while lock files are looked at and made
+	lockPattern = "bentray-*.lock"
+)
+
+// holder is what a lock file holds.
+type holder struct {
+	Host    string   `json:"host"`
+	Process int      `json:"process"`
+	Outputs []string `json:"outputs"` // relative to the folder
+}
+
+// lock is a held lock file.
+type lock struct{ file *flock.Flock }
+
+// acquire takes the outputs for this process, or says who has one of them.
+func acquire(folder string, inputs []input) (*lock, error) {
+	gate := newLock(filepath.Join(folder, gateName))
+	if err := gate.Lock(); err != nil {
+		return nil, callErrorf("%s: cannot lock the output folder: %w", folder, err)
+	}
+	defer gate.Unlock()
+
+	mine := make(map[string]bool, len(inputs))
+	for _, in := range inputs {
+		mine[in.target] = true
+	}
+	if err := checkOthers(folder, mine); err != nil {
+		return nil, err
+	}
+	return hold(folder, inputs)
+}
+
+// checkOthers looks at every lock file: a dead one is removed, a live one must
+// not list any of the outputs in mine.
+func checkOthers(folder string, mine map[string]bool) error {
+	paths, err := filepath.Glob(filepath.Join(escapeGlob(folder), lockPattern))
+	if err != nil {
+		return err
+	}
+	for _, path := range paths {
+		other := newLock(path)
+		free, err := other.TryLock()
+		if err != nil {
+			return callErrorf("%s: cannot look at the lock: %w", path, err)
+		}
+		if free {
+			err := os.Remove(path)
+			other.Unlock()
+			if err != nil {
+				return err
+			}
+			continue
+		}
+		if err := checkHolder(path, mine); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+func checkHolder(path string, mine map[string]bool) error {
+	data, err := os.ReadFile(path)
+	if err != nil {
+		return err
+	}
+	var h holder
+	if err := json.Unmarshal(data, &h); err != nil {
+		return callErrorf("%s: a lock that is held but cannot be read: %w", path, err)
+	}
+	for _, output := range h.Outputs {
+		if mine[output] {
+			return callErrorf("%s is being written by another run (host %s, process %d); wait for it to end, or stop it", filepath.Join(filepath.Dir(path), output), h.Host, h.Process)
+		}
+	}
+	return nil
+}
+
+// hold makes this process's lock file. The gate is held.
+func hold(folder string, inputs []input) (*lock, error) {
+	host, err := os.Hostname()
+	if err != nil {
+		return nil, err
+	}
+	h := holder{Host: host, Process: os.Getpid()}
+	for _, in := range inputs {
+		h.Outputs = append(h.Outputs, in.target)
+	}
+	data, err := json.Marshal(h)
+	if err != nil {
+		return nil, err
+	}
+	l := &lock{newLock(filepath.Join(folder, "bentray-"+rand.Text()[:12]+".lock"))}
+	if err := l.file.Lock(); err != nil {
+		return nil, callErrorf("%s: cannot lock the output folder: %w", folder, err)
+	}
+	if err := os.WriteFile(l.file.Path(), data, 0o666); err != nil {
+		l.release()
+		return nil, callErrorf("%s: cannot lock the output folder: %w", folder, err)
+	}
+	return l, nil
+}
+
+// newLock is a lock file that others, too, may lock.
+func newLock(path string) *flock.Flock {
+	return flock.New(path, flock.SetPermissions(0o666))
+}
+
+// release gives the outputs free.
+func (l *lock) release() {
+	_ = os.Remove(l.file.Path()) // a lock that stays is free all the same
+	_ = l.file.Unlock()
+}
+
+// escapeGlob keeps a folder's name from being read as a pattern.
+func escapeGlob(folder string) string {
+	var out []rune
+	for _, r := range folder {
+		switch r {
+		case '*', '?', '[', '\\':
+			out = append(out, '\\')
+		}
+		out = append(out, r)
+	}
+	return string(out)
+}
