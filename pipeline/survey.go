@@ -4,8 +4,10 @@ import (
 	"context"
 	"errors"
 	"fmt"
+	"io/fs"
 	"os"
 	"path/filepath"
+	"strings"
 
 	"bentray/correct"
 	"bentray/correct/medium"
@@ -160,11 +162,14 @@ func (s *survey) note(ctx context.Context, use, name string) error {
 	return nil
 }
 
-// inFile puts the file's name before an error that does not name it itself.
+// inFile puts the file's name before an error that does not begin with it.
 func inFile(path string, err error) error {
-	var row *cloud.RowError
-	if err == nil || errors.As(err, &row) {
+	if err == nil || strings.HasPrefix(err.Error(), path) {
 		return err
+	}
+	var system *fs.PathError
+	if errors.As(err, &system) && system.Path == path {
+		err = system.Err
 	}
 	return fmt.Errorf("%s: %w", path, err)
 }
