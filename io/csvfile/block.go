@@ -19,21 +19,22 @@ const (
 // block is what a chunk keeps between the steps: whole rows as they stand in
 // the file, and where their parts are.
 type block struct {
-	text   []byte
-	line   int64  // line number at the beginning
-	most   int    // rows at most
-	quoted bool   // has quotes
-	fields []span // of one row
-	rows   []row
-	tail   uint32 // begin of what stands behind the last row
-	out    []byte
+	text    []byte
+	counted int    // position that line belongs to
+	line    int64  // line number there
+	most    int    // rows at most
+	quoted  bool   // has quotes
+	fields  []span // of one row
+	rows    []row
+	tail    uint32 // begin of what stands behind the last row
+	out     []byte
 }
 
-// row is where a row stands in a block: from `from` to begin are empty lines
-// before it, from end to next is its line end.
+// row is where a row stands in a block: it begins with the empty lines before
+// it, its text ends at end, and its line end at next.
 type row struct {
-	from, begin, end, next uint32
-	xyz                    [3]span
+	from, end, next uint32
+	xyz             [3]span
 }
 
 // Next takes whole rows for a block of about a mebibyte. It fails where a quote
@@ -59,7 +60,7 @@ func (f *File) Next(c *cloud.Chunk) error {
 			return err
 		}
 	}
-	b.line, b.most = f.line, blockRows
+	b.line, b.counted, b.most = f.line, 0, blockRows
 	if lines := bytes.Count(text[:cut], lineFeed); lines < blockRows {
 		b.most = lines + 1
 		f.line += int64(lines)

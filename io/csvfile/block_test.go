@@ -6,6 +6,7 @@ import (
 	"io"
 	"slices"
 	"strings"
+	"sync"
 	"testing"
 
 	"bentray/io/cloud"
@@ -82,6 +83,73 @@ func TestChunksOfSlowInput(t *testing.T) {
 	if !slices.Equal(chunks[0], chunks[1]) || len(chunks[0]) < 10 {
 		t.Errorf("got %v and %v", chunks[0], chunks[1])
 	}
+}
+
+// The output does not depend on how many chunks are in work at once.
+func TestWorkers(t *testing.T) {
+	m := makeFile(",", "\n", true, true, 2000, 4)
+	for _, workers := range []int{1, 2, 7} {
+		f, err := openText("a.csv", m.in.String(), Options{}, 1000)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if got := rewriteParallel(t, f, workers); got != m.out.String() {
+			t.Errorf("%d workers: got\n%s\nwant\n%s", workers, got, m.out.String())
+		}
+	}
+}
+
+// rewriteParallel does what rewrite does, a batch of chunks at a time.
+func rewriteParallel(t *testing.T, f *File, workers int) string {
+	t.Helper()
+	layout := testLayout(madeXYZ)
+	var out bytes.Buffer
+	if err := f.Begin(cloud.Request{Numbers: madeXYZ[:]}, layout, &out); err != nil {
+		t.Fatal(err)
+	}
+	chunks := make([]cloud.Chunk, workers)
+	row := 0
+	for more := true; more; {
+		var group sync.WaitGroup
+		taken := 0
+		for ; taken < workers && more; taken++ {
+			c := &chunks[taken]
+			if err := f.Next(c); err == io.EOF {
+				more = false
+				break
+			} else if err != nil {
+				t.Fatal(err)
+			}
+			group.Go(func() {
+				if err := f.Decode(c); err != nil {
+					t.Error(err)
+				}
+			})
+		}
+		group.Wait()
+		for i := range taken {
+			c := &chunks[i]
+			first := row
+			row += c.Rows
+			group.Go(func() {
+				c.Resize(c.Rows, layout)
+				fillTest(c, first, c.Numbers)
+				if err := f.Encode(c); err != nil {
+					t.Error(err)
+				}
+			})
+		}
+		group.Wait()
+		for i := range taken {
+			if err := f.Put(&chunks[i]); err != nil {
+				t.Fatal(err)
+			}
+		}
+	}
+	if err := f.Finish(); err != nil {
+		t.Fatal(err)
+	}
+	return out.String()
 }
 
 // Reading without writing gives the same numbers, and Consumed adds up to the

@@ -14,37 +14,29 @@ import (
 func (f *File) Decode(c *cloud.Chunk) error {
 	b := c.Format.(*block)
 	f.clear(c, b)
-	line, counted := b.line, 0 // line number at a position
 	loneReturns := hasLoneReturns(b.text)
-	from, begin := 0, 0
-	for begin < len(b.text) {
-		next := rowEnd(b.text, begin, b.quoted)
-		if next < 0 {
+	from := 0
+	for begin, next := 0, 0; begin < len(b.text); begin = next {
+		if next = rowEnd(b.text, begin, b.quoted); next < 0 {
 			next = len(b.text)
 		}
 		text := withoutEnd(b.text[begin:next])
 		if len(text) == 0 || f.sep == blanks && len(trim(text)) == 0 {
-			begin = next
 			continue
 		}
 		if bad := f.decodeRow(c, b, text, begin, loneReturns); bad != nil {
-			line += int64(bytes.Count(b.text[counted:begin], lineFeed))
-			counted = begin
-			bad.Line = line
+			bad.Line = b.lineAt(begin)
 			if !f.divert {
 				return bad
 			}
-			c.Rejects = append(c.Rejects, cloud.Reject{Line: line, Reason: reason(bad), Text: bytes.Clone(text)})
-			line += int64(bytes.Count(b.text[begin:next], lineFeed))
-			counted = next
+			c.Rejects = append(c.Rejects, cloud.Reject{Line: bad.Line, Reason: reason(bad), Text: bytes.Clone(text)})
 			from = b.remove(from, begin, next)
-		} else {
-			r := &b.rows[c.Rows]
-			r.from, r.begin, r.end, r.next = uint32(from), uint32(begin), uint32(begin+len(text)), uint32(next)
-			c.Rows++
-			from = next
+			continue
 		}
-		begin = next
+		r := &b.rows[c.Rows]
+		r.from, r.end, r.next = uint32(from), uint32(begin+len(text)), uint32(next)
+		c.Rows++
+		from = next
 	}
 	b.tail = uint32(from)
 	for k := range c.Numbers {
@@ -106,9 +98,18 @@ func (f *File) decodeRow(c *cloud.Chunk, b *block, text []byte, begin int, loneR
 	return nil
 }
 
-// remove takes a row out of the block, whose bytes from..begin are empty lines
-// before it: they move to its end. It returns where they begin then.
+// lineAt returns the line number at a position, which may not fall from call to
+// call.
+func (b *block) lineAt(position int) int64 {
+	b.line += int64(bytes.Count(b.text[b.counted:position], lineFeed))
+	b.counted = position
+	return b.line
+}
+
+// remove takes a row out of the block: the empty lines before it, from..begin,
+// move to its end. It returns where they begin then.
 func (b *block) remove(from, begin, next int) int {
+	b.lineAt(next) // before bytes move
 	kept := next - (begin - from)
 	copy(b.text[kept:next], b.text[from:begin])
 	return kept

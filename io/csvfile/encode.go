@@ -130,34 +130,38 @@ func (f *File) Encode(c *cloud.Chunk) error {
 	b := c.Format.(*block)
 	out := b.out[:0]
 	for i := range b.rows[:c.Rows] {
-		r := &b.rows[i]
-		class := c.Class[i]
-		at := r.from
-		if f.layout.Moved[class] {
-			for _, k := range f.order {
-				out = append(out, b.text[at:r.xyz[k].begin]...)
-				out = f.appendNumber(out, c.XYZ[k][i], f.layout.Decimals)
-				at = r.xyz[k].end
-			}
-		}
-		out = append(out, b.text[at:r.end]...)
-		for k := range r.xyz {
-			out = append(out, byte(f.sep))
-			out = append(out, r.xyz[k].of(b.text)...)
-		}
-		for k := range f.pieces {
-			p := &f.pieces[k]
-			if p.byClass != nil {
-				out = append(out, p.byClass[class]...)
-				continue
-			}
-			out = append(out, byte(f.sep))
-			out = f.appendNumber(out, c.Added[p.column][i], p.decimals)
-		}
-		out = append(out, b.text[r.end:r.next]...)
+		out = f.appendRow(out, b, c, i)
 	}
 	b.out = append(out, b.text[b.tail:]...)
 	return nil
+}
+
+// appendRow appends row i and the empty lines before it.
+func (f *File) appendRow(out []byte, b *block, c *cloud.Chunk, i int) []byte {
+	r, class := &b.rows[i], c.Class[i]
+	at := r.from
+	if f.layout.Moved[class] {
+		for _, k := range f.order {
+			out = append(out, b.text[at:r.xyz[k].begin]...)
+			out = f.appendNumber(out, c.XYZ[k][i], f.layout.Decimals)
+			at = r.xyz[k].end
+		}
+	}
+	out = append(out, b.text[at:r.end]...)
+	for k := range r.xyz {
+		out = append(out, byte(f.sep))
+		out = append(out, r.xyz[k].of(b.text)...)
+	}
+	for k := range f.pieces {
+		p := &f.pieces[k]
+		if p.byClass != nil {
+			out = append(out, p.byClass[class]...)
+			continue
+		}
+		out = append(out, byte(f.sep))
+		out = f.appendNumber(out, c.Added[p.column][i], p.decimals)
+	}
+	return append(out, b.text[r.end:r.next]...)
 }
 
 // appendNumber appends a field with fixed decimals, or an empty one where v is

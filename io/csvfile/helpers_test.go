@@ -87,23 +87,28 @@ func rewrite(f *File, read cloud.Request, xyz [3]int) (r result, err error) {
 		}
 		r.take(&c)
 		c.Resize(c.Rows, layout)
-		for i := range c.Rows {
-			n := r.rows + i
-			c.Class[i] = uint8(n % 2)
-			for k := range c.XYZ {
-				c.XYZ[k][i] = c.Numbers[len(read.Numbers)+k][i] + 1
-			}
-			c.Added[0][i], c.Added[3][i] = float64(n)/4, float64(n)
-			if n%5 == 4 {
-				c.Added[0][i], c.Added[3][i] = math.NaN(), math.NaN()
-			}
-		}
+		fillTest(&c, r.rows, c.Numbers[len(read.Numbers):])
 		r.rows += c.Rows
 		if err := f.Encode(&c); err != nil {
 			return r, err
 		}
 		if err := f.Put(&c); err != nil {
 			return r, err
+		}
+	}
+}
+
+// fillTest sets the results of a chunk whose first row has this number.
+func fillTest(c *cloud.Chunk, first int, xyz [][]float64) {
+	for i := range c.Rows {
+		n := first + i
+		c.Class[i] = uint8(n % 2)
+		for k := range c.XYZ {
+			c.XYZ[k][i] = xyz[k][i] + 1
+		}
+		c.Added[0][i], c.Added[3][i] = float64(n)/4, float64(n)
+		if n%5 == 4 {
+			c.Added[0][i], c.Added[3][i] = math.NaN(), math.NaN()
 		}
 	}
 }

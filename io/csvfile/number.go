@@ -3,6 +3,7 @@ package csvfile
 import (
 	"bytes"
 	"math"
+	"math/bits"
 	"strconv"
 	"unsafe"
 )
@@ -13,10 +14,20 @@ var exactPowers = [23]float64{
 	1e12, 1e13, 1e14, 1e15, 1e16, 1e17, 1e18, 1e19, 1e20, 1e21, 1e22,
 }
 
+// wholePowers are the powers of ten below 2^64.
+var wholePowers = func() (p [20]uint64) {
+	p[0] = 1
+	for i := 1; i < len(p); i++ {
+		p[i] = 10 * p[i-1]
+	}
+	return p
+}()
+
 // parseNumber reads a field as the nearest double; an empty field is NaN. Plain
-// decimals whose digits make a whole number up to 2^53 are done here: number
-// and power of ten are exact, so that their quotient is rounded once (Clinger
-// 1990, How to read floating point numbers accurately).
+// decimals of up to 19 digits are done here: where they make a whole number up to
+// 2^53, that and the power of ten are exact doubles, so that their quotient is
+// rounded once (Clinger 1990, How to read floating point numbers accurately);
+// else integers are divided. The rest is left to strconv.
 func parseNumber(field []byte) (float64, bool) {
 	var digits uint64
 	begin, point := 0, -1
@@ -38,14 +49,37 @@ func parseNumber(field []byte) (float64, bool) {
 		count--
 		decimals = len(field) - 1 - point
 	}
-	if count == 0 || count > 19 || digits > 1<<53 { // 19 digits never overflow
+	var v float64
+	switch {
+	case count == 0:
 		return parseAny(field)
+	case count > 19: // may have overflowed
+		return parseDecimal(field), true
+	case digits > 1<<53:
+		v = quotient(digits, decimals)
+	default:
+		v = float64(digits) / exactPowers[decimals]
 	}
-	v := float64(digits) / exactPowers[decimals]
 	if begin > 0 {
 		v = -v
 	}
 	return v, true
+}
+
+// quotient returns the double nearest to n/10^decimals, n above 0 and decimals
+// up to 19. The integer quotient has 63 bits or more, ten more than a double; a
+// remainder is told by its last bit, so that the conversion rounds as if it saw
+// all digits.
+func quotient(n uint64, decimals int) float64 {
+	d := wholePowers[decimals]
+	up, down := bits.LeadingZeros64(n), bits.LeadingZeros64(d)
+	n, d = n<<up, d<<down
+	q, rest := bits.Div64(n>>1, n<<63, d) // n 2^63 / d
+	if rest != 0 {
+		q |= 1
+	}
+	power := uint64(1023+down-up-63) << 52
+	return float64(q) * math.Float64frombits(power)
 }
 
 // parseAny reads every number that parseNumber accepts.
@@ -60,8 +94,14 @@ func parseAny(field []byte) (float64, bool) {
 	if !isDecimal(field) {
 		return parseWord(field)
 	}
-	v, _ := strconv.ParseFloat(unsafe.String(&field[0], len(field)), 64) // beyond the range: an infinity
-	return v, true
+	return parseDecimal(field), true
+}
+
+// parseDecimal reads what isDecimal accepts. Beyond the range of doubles it is
+// an infinity.
+func parseDecimal(field []byte) float64 {
+	v, _ := strconv.ParseFloat(unsafe.String(&field[0], len(field)), 64) // only the range can be wrong
+	return v
 }
 
 // isDecimal tells whether a text is a decimal number, with or without sign,

@@ -41,6 +41,22 @@ func TestParseNumberRandom(t *testing.T) {
 	}
 }
 
+// Halfway cases are where a quotient could be rounded the wrong way.
+func TestParseNumberHalfway(t *testing.T) {
+	const seed = 4
+	r := rand.New(rand.NewPCG(seed, 0))
+	for range 50000 {
+		odd := 1<<53 + 2*r.Uint64N(1<<52) + 1 // 54 bits: between two doubles
+		for k := range 4 {
+			part := strconv.FormatFloat(float64(odd%(1<<k))/float64(int(1)<<k), 'f', k, 64)
+			checkParse(t, strconv.FormatUint(odd>>k, 10)+part[1:]) // odd/2^k, all digits
+		}
+	}
+	if t.Failed() {
+		t.Logf("seed %d", seed)
+	}
+}
+
 // checkParse compares with the standard library, bit by bit.
 func checkParse(t *testing.T, text string) {
 	t.Helper()
