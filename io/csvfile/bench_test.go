@@ -98,9 +98,11 @@ var benchTexts = []struct {
 
 func BenchmarkDecode(b *testing.B) {
 	for _, v := range benchTexts {
-		for _, sep := range []string{",", " "} {
-			b.Run(v.name+"/"+map[string]string{",": "comma", " ": "blanks"}[sep], func(b *testing.B) {
-				f, c := warm(b, strings.ReplaceAll(benchText(20000, v.decimals), ",", sep), Options{})
+		for name, change := range map[string]*strings.Replacer{
+			"comma": strings.NewReplacer(), "blanks": strings.NewReplacer(",", " "), "crlf": strings.NewReplacer("\n", "\r\n"), "quoted": strings.NewReplacer(",1,2,", `,"1","2",`),
+		} {
+			b.Run(v.name+"/"+name, func(b *testing.B) {
+				f, c := warm(b, change.Replace(benchText(20000, v.decimals)), Options{})
 				b.SetBytes(int64(len(c.Format.(*block).text)))
 				b.ReportAllocs()
 				for b.Loop() {

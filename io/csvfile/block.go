@@ -13,7 +13,7 @@ import (
 const (
 	blockSize = 1 << 20  // bytes in a block
 	blockRows = 32 << 10 // most rows in a block
-	maxRow    = 16 << 20 // bytes that a row may have at least, and memory a reason to stop at
+	maxRow    = 16 << 20 // bytes read in search of a row's end before it is given up
 )
 
 // block is what a chunk keeps between the steps: whole rows as they stand in

@@ -122,7 +122,7 @@ func TestDamagedCompression(t *testing.T) {
 // 3.1.1.1.2, exponent 18 over 2^10.
 func TestZstdWindowBound(t *testing.T) {
 	frame := "\x28\xb5\x2f\xfd\x00" + string([]byte{18 << 3}) + "\x01\x00\x00"
-	if got, want := errorOf("a.csv.zst", frame, Options{}, 0), "a.csv.zst needs a zstd window above 128 MiB; compress it again with a smaller one"; got != want {
+	if got, want := errorOf("a.csv.zst", frame, Options{}, 0), "a.csv.zst needs a zstd window above 64 MiB; compress it again with a smaller one"; got != want {
 		t.Errorf("got %s, want %s", got, want)
 	}
 }

@@ -5,6 +5,7 @@ import (
 	"errors"
 	"fmt"
 	"strings"
+	"unicode/utf8"
 
 	"bentray/io/cloud"
 )
@@ -135,17 +136,20 @@ func notNumber(field []byte) error {
 	text := string(appendContent(nil, field))
 	if strings.Count(text, ",") == 1 {
 		if _, ok := parseNumber([]byte(strings.Replace(text, ",", ".", 1))); ok {
-			return fmt.Errorf("is %q, want a number with a decimal point, not a comma", text)
+			return fmt.Errorf("is %q, want a number with a decimal point, not a comma", shorten(text))
 		}
 	}
 	return fmt.Errorf("is %q, want a number", shorten(text))
 }
 
-// shorten cuts a long text for a message.
+// shorten cuts a long text for a message, between two characters.
 func shorten(text string) string {
-	const most = 40
+	most := 40
 	if len(text) <= most {
 		return text
+	}
+	for most > 0 && !utf8.RuneStart(text[most]) {
+		most--
 	}
 	return text[:most] + "..."
 }

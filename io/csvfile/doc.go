@@ -41,5 +41,6 @@
 // # Limits
 //
 // Memory goes by blocks of about a mebibyte and of 32768 rows at most. A row of
-// more than 16 MiB is refused: as a rule a quote was never closed.
+// more than 16 MiB is refused: as a rule a quote was never closed. So is a zstd
+// window above 64 MiB.
 package csvfile

@@ -71,7 +71,7 @@ func checkText(path string, text []byte) error {
 // checkSample refuses a file without rows, or with a first row that does not
 // end.
 func (f *File) checkSample(s sample, ended bool) error {
-	if hasLoneReturn(s.preamble) || len(s.rows) > 0 && hasLoneReturn(s.rows[0]) || len(s.rows) == 0 && hasLoneReturn(s.rest) {
+	if hasLoneReturns(s.preamble) || len(s.rows) > 0 && hasLoneReturn(s.rows[0]) || len(s.rows) == 0 && hasLoneReturn(s.rest) {
 		return fmt.Errorf("%s has lines that end in a carriage return alone, want LF or CR LF; convert its line ends first", f.path)
 	}
 	switch {

@@ -13,10 +13,9 @@ import (
 	"github.com/klauspost/compress/zstd"
 )
 
-// maxWindow is the largest zstd window that is decoded: what the format's own
-// reference program writes at most unless told otherwise is 128 MiB, and memory
-// for it is taken only where a file asks for it.
-const maxWindow = 128 << 20
+// maxWindow is the largest zstd window that is decoded. A decoder takes twice
+// its window; common levels have windows up to 8 MiB.
+const maxWindow = 64 << 20
 
 // source is the input's bytes as they stand in the file.
 type source struct {
