@@ -25,7 +25,7 @@
 // TestTrajectoryPrecision). Polygons are tested with the coordinates as they stand;
 // the index gives the answer of the plain test over all edges
 // (TestFindAgainstPlainTest). UTC holds to the rounding of a time near 1.5e9 s,
-// 0.12 microseconds (TestPublishedPairs).
+// 0.12 microseconds (TestPublishedPairs, TestTimeScaleRoundTrip).
 //
 // # Sources
 //
