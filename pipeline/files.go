@@ -117,9 +117,12 @@ func relative(folder, path string) string {
 func within(folder, path string) bool { return filepath.IsLocal(relative(folder, path)) }
 
 // checkOutputs refuses two inputs with one output, and an output that is an
-// input, one of the job's other files or the job file. Inputs are ordered by
-// their targets.
+// input, one of the job's other files or the job file, and a file for a folder.
+// Inputs are ordered by their targets.
 func checkOutputs(j *job.Job, inputs []input) error {
+	if info, err := os.Stat(j.Resolve(j.Output.Folder)); err == nil && !info.IsDir() {
+		return callErrorf("%s: [output] folder %q is a file, want a folder", j.Path, j.Output.Folder)
+	}
 	for i := 1; i < len(inputs); i++ {
 		a, b := inputs[i-1], inputs[i]
 		if a.target == b.target {

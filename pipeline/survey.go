@@ -154,9 +154,10 @@ func (s *survey) readExtent(ctx context.Context) error {
 
 // note hashes an auxiliary file, named as in the job.
 func (s *survey) note(ctx context.Context, use, name string) error {
-	bytes, sum, err := receipt.Hash(ctx, s.job.Resolve(name))
+	path := s.job.Resolve(name)
+	bytes, sum, err := receipt.Hash(ctx, path)
 	if err != nil {
-		return fmt.Errorf("%s: %s: %w", s.job.Path, use, err)
+		return fmt.Errorf("%s: %s: %w", s.job.Path, use, inFile(path, err))
 	}
 	s.auxiliary = append(s.auxiliary, receipt.Input{Use: use, File: receipt.File{Path: filepath.ToSlash(name), Bytes: bytes, SHA256: sum}})
 	return nil
