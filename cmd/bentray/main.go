@@ -79,7 +79,26 @@ func run(ctx context.Context, args []string, stdout, stderr io.Writer) int {
 	if err != nil {
 		return report(stderr, &pipeline.CallError{Err: fmt.Errorf("%w (see bentray --help)", err)})
 	}
-	return report(stderr, call.Run(&streams{ctx: ctx, out: stdout, errors: stderr}))
+	data := &output{to: stdout}
+	err = call.Run(&streams{ctx: ctx, out: data, errors: stderr})
+	if err == nil && data.err != nil {
+		err = fmt.Errorf("cannot write to standard output: %w", data.err)
+	}
+	return report(stderr, err)
+}
+
+// output remembers its first error, which commands leave to run.
+type output struct {
+	to  io.Writer
+	err error
+}
+
+func (o *output) Write(p []byte) (int, error) {
+	n, err := o.to.Write(p)
+	if o.err == nil {
+		o.err = err
+	}
+	return n, err
 }
 
 // report prints an error and turns its kind into an exit code.

@@ -1,7 +1,6 @@
 package main
 
 import (
-	"errors"
 	"fmt"
 	"strings"
 
@@ -56,7 +55,10 @@ func (c *runCommand) Run(s *streams) error {
 		printSummary(s, summary, j)
 	}
 	printFailures(s, summary)
-	return errors.Join(err, verdict(summary))
+	if err != nil {
+		return err
+	}
+	return verdict(summary)
 }
 
 func loadJob(path string) (*job.Job, error) {
