@@ -124,15 +124,17 @@ func (c *cursor) bodyV1(h *parquet.PageHeader, packed, open *[]byte) (body, erro
 }
 
 // bodyV2 opens a data page of version 2: levels lie before the values and are
-// never compressed.
+// never compressed. Some writers store repetition levels, all 0, of flat columns
+// too; they come first.
 func (c *cursor) bodyV2(h *parquet.PageHeader, packed, open *[]byte) (body, error) {
 	d := h.DataPageHeaderV2
 	if d == nil {
 		return body{}, fmt.Errorf("a data page lacks its own header")
 	}
-	n, repeated := int64(d.DefinitionLevelsByteLength), int64(d.RepetitionLevelsByteLength)
-	if n < 0 || repeated != 0 || n > int64(h.CompressedPageSize) {
-		return body{}, fmt.Errorf("a page has %d and %d bytes of levels, want 0 and at most its %d bytes", repeated, n, h.CompressedPageSize)
+	defined, repeated := int64(d.DefinitionLevelsByteLength), int64(d.RepetitionLevelsByteLength)
+	n := repeated + defined
+	if defined < 0 || repeated < 0 || n > int64(h.CompressedPageSize) {
+		return body{}, fmt.Errorf("a page has %d and %d bytes of levels, want at most its %d bytes", repeated, defined, h.CompressedPageSize)
 	}
 	compressed := d.IsCompressed && c.codec != parquet.CompressionCodec_UNCOMPRESSED
 	data, err := c.load(h, int(n), compressed, packed, open)
@@ -141,7 +143,7 @@ func (c *cursor) bodyV2(h *parquet.PageHeader, packed, open *[]byte) (body, erro
 	}
 	b := body{rows: int(d.NumValues), encoding: d.Encoding, values: data[n:]}
 	if c.leaf.optional {
-		b.levels = data[:n]
+		b.levels = data[repeated:n]
 	}
 	if err := c.count(&b); err != nil {
 		return body{}, err

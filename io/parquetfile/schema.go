@@ -100,6 +100,9 @@ func (w *walker) children(count int32, parents []string, depth int) error {
 			}
 			continue
 		}
+		if t := *e.Type; t < parquet.Type_BOOLEAN || t > parquet.Type_FIXED_LEN_BYTE_ARRAY {
+			return fmt.Errorf("column %q is of type %d, which is unknown", clip(e.Name), t)
+		}
 		w.leaves = append(w.leaves, newLeaf(e, w.next-1, path))
 	}
 	return nil
