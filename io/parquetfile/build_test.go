@@ -7,6 +7,7 @@ import (
 	"math"
 	"os"
 	"path/filepath"
+	"sync"
 	"testing"
 
 	"github.com/klauspost/compress/s2"
@@ -212,6 +213,8 @@ func (c *built) pageV2(t testing.TB, h *parquet.PageHeader, values, set []any, l
 	return append(append([]byte(nil), levels...), packed...)
 }
 
+var zstdWriter = sync.OnceValues(func() (*zstd.Encoder, error) { return zstd.NewWriter(nil, zstd.WithEncoderConcurrency(1)) })
+
 func deflate(t testing.TB, data []byte, codec parquet.CompressionCodec) []byte {
 	t.Helper()
 	switch codec {
@@ -219,7 +222,10 @@ func deflate(t testing.TB, data []byte, codec parquet.CompressionCodec) []byte {
 		return s2.EncodeSnappy(nil, data)
 	case parquet.CompressionCodec_GZIP:
 		var b bytes.Buffer
-		w := gzip.NewWriter(&b)
+		w, err := gzip.NewWriterLevel(&b, gzip.BestSpeed)
+		if err != nil {
+			t.Fatal(err)
+		}
 		if _, err := w.Write(data); err != nil {
 			t.Fatal(err)
 		}
@@ -228,11 +234,10 @@ func deflate(t testing.TB, data []byte, codec parquet.CompressionCodec) []byte {
 		}
 		return b.Bytes()
 	case parquet.CompressionCodec_ZSTD:
-		w, err := zstd.NewWriter(nil, zstd.WithEncoderConcurrency(1))
+		w, err := zstdWriter()
 		if err != nil {
 			t.Fatal(err)
 		}
-		defer w.Close()
 		return w.EncodeAll(data, nil)
 	}
 	return data

@@ -79,8 +79,8 @@ var nullPatterns = []struct {
 	{"no nulls", func(int) bool { return false }},
 	{"all null", func(int) bool { return true }},
 	{"every other", func(i int) bool { return i%2 == 1 }},
-	{"first rows", func(i int) bool { return i < 700 }},
-	{"last rows", func(i int) bool { return i >= 1500 }},
+	{"first rows", func(i int) bool { return i < 600 }},
+	{"last rows", func(i int) bool { return i >= 1100 }},
 	{"scattered", func(i int) bool { return i*i%11 == 3 }},
 }
 
@@ -117,7 +117,7 @@ var encodings = map[parquet.Type][]parquet.Encoding{
 // TestRead reads every type, encoding, codec, page version and null pattern that
 // can be read, as encoded by hand.
 func TestRead(t *testing.T) {
-	const seed, rows = 7, 2200
+	const seed, rows = 7, 1300
 	for typ, list := range encodings {
 		for _, encoding := range list {
 			for _, codec := range codecs {
