@@ -4,6 +4,7 @@ import (
 	"math"
 	"os"
 	"path/filepath"
+	"strings"
 	"testing"
 
 	"bentray/io/cloud"
@@ -53,6 +54,10 @@ func TestGiantPages(t *testing.T) {
 	if left, err := os.ReadDir(folder); err != nil || len(left) != 0 {
 		t.Errorf("the scratch folder holds %v (%v), want nothing", left, err)
 	}
+	gone := Options{ScratchDir: filepath.Join(folder, "gone")}
+	if _, _, err := readAll(path, gone, cloud.Request{Numbers: []int{0}}); err == nil || !strings.Contains(err.Error(), `column "x", row group 1: no scratch file: `) {
+		t.Errorf("without a scratch folder: got error %v, want one", err)
+	}
 	made := filepath.Join(t.TempDir(), "out.parquet")
 	if err := os.WriteFile(made, out, 0o600); err != nil {
 		t.Fatal(err)
@@ -72,15 +77,6 @@ func TestGiantPages(t *testing.T) {
 		if got := numbers[2][i]; isSet && got != 2*raw || !isSet && !isMarked(got) {
 			t.Fatalf("z of row %d is %v, want twice %v", i, got, z[i])
 		}
-	}
-}
-
-// TestScratchFails reports a scratch folder that is not there.
-func TestScratchFails(t *testing.T) {
-	path, _ := bigFile(t)
-	_, _, err := readAll(path, Options{ScratchDir: filepath.Join(t.TempDir(), "gone")}, cloud.Request{Numbers: []int{0}})
-	if err == nil {
-		t.Error("no error without a scratch folder")
 	}
 }
 
