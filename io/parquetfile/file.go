@@ -25,7 +25,7 @@ type Options struct {
 type File struct {
 	path     string
 	options  Options
-	input    *os.File
+	input    input
 	size     int64
 	meta     *parquet.FileMetaData
 	footer   int64 // where it begins
@@ -47,6 +47,12 @@ type File struct {
 	out *output
 }
 
+// input is what is read: a file, or in tests bytes.
+type input interface {
+	io.ReaderAt
+	io.Closer
+}
+
 var _ cloud.Rewriter = (*File)(nil)
 
 // IsName tells whether a file of this name is taken for Parquet.
@@ -56,26 +62,30 @@ func IsName(path string) bool {
 
 // Open reads and checks a file's footer. Errors name the file.
 func Open(path string, o Options) (*File, error) {
-	input, err := os.Open(path)
+	file, err := os.Open(path)
 	if err != nil {
 		return nil, err
 	}
-	f := &File{path: path, options: o, input: input}
+	info, err := file.Stat()
+	if err == nil && !info.Mode().IsRegular() {
+		err = fmt.Errorf("%s: is not a regular file", path)
+	}
+	if err != nil {
+		return nil, errors.Join(err, file.Close())
+	}
+	return newFile(path, file, info.Size(), o)
+}
+
+// newFile takes the input over, and closes it where it returns an error.
+func newFile(path string, in input, size int64, o Options) (*File, error) {
+	f := &File{path: path, options: o, input: in, size: size}
 	if err := f.readFooter(); err != nil {
-		return nil, errors.Join(fmt.Errorf("%s: %w", path, err), input.Close())
+		return nil, errors.Join(fmt.Errorf("%s: %w", path, err), in.Close())
 	}
 	return f, nil
 }
 
-func (f *File) readFooter() error {
-	info, err := f.input.Stat()
-	if err != nil {
-		return err
-	}
-	if !info.Mode().IsRegular() {
-		return fmt.Errorf("is not a regular file")
-	}
-	f.size = info.Size()
+func (f *File) readFooter() (err error) {
 	if f.meta, f.footer, err = readFooter(f.input, f.size); err != nil {
 		return err
 	}

@@ -1,6 +1,7 @@
 package parquetfile
 
 import (
+	"bytes"
 	"fmt"
 	"io"
 	"math"
@@ -18,6 +19,25 @@ func readAll(path string, o Options, read cloud.Request) (numbers [][]float64, t
 	if err != nil {
 		return nil, nil, err
 	}
+	return readOpen(f, read)
+}
+
+// memory is a file that is not on disk.
+type memory struct{ *bytes.Reader }
+
+func (memory) Close() error { return nil }
+
+// readBytes is readAll for a file in memory, called "made.parquet".
+func readBytes(b []byte, o Options, read cloud.Request) (numbers [][]float64, texts [][]string, err error) {
+	f, err := newFile("made.parquet", memory{bytes.NewReader(b)}, int64(len(b)), o)
+	if err != nil {
+		return nil, nil, err
+	}
+	return readOpen(f, read)
+}
+
+// readOpen reads and closes a file.
+func readOpen(f *File, read cloud.Request) (numbers [][]float64, texts [][]string, err error) {
 	defer f.Close()
 	if err := f.Begin(read, cloud.Layout{}, nil); err != nil {
 		return nil, nil, err

@@ -25,8 +25,14 @@ func rewrite(path string, o Options, read cloud.Request, layout cloud.Layout, wo
 	}
 	defer f.Close()
 	var out bytes.Buffer
-	if err := f.Begin(read, layout, &out); err != nil {
-		return nil, err
+	err = rewriteTo(&out, f, read, layout, workers, fill)
+	return out.Bytes(), err
+}
+
+// rewriteTo is rewrite for an open file.
+func rewriteTo(out io.Writer, f *File, read cloud.Request, layout cloud.Layout, workers int, fill func(*cloud.Chunk)) error {
+	if err := f.Begin(read, layout, out); err != nil {
+		return err
 	}
 	type job struct {
 		chunk *cloud.Chunk
@@ -72,13 +78,12 @@ func rewrite(path string, o Options, read cloud.Request, layout cloud.Layout, wo
 		free <- j.chunk
 	}
 	if err := <-failed; err != io.EOF {
-		return nil, err
+		return err
 	}
 	if wrong != nil {
-		return nil, wrong
+		return wrong
 	}
-	err = f.Finish()
-	return out.Bytes(), err
+	return f.Finish()
 }
 
 var rawNames = [3]string{"x_raw", "y_raw", "z_raw"}
