@@ -1,0 +1,135 @@
+package parquetfile
+
+import (
+	"math"
+	"os"
+	"path/filepath"
+	"strings"
+	"testing"
+
+	"bentray/io/cloud"
+
+	"github.com/xitongsys/parquet-go/parquet"
+)
+
+// bigRows is enough for pages that go to the scratch file, and for new pages of
+// three columns that do.
+const bigRows = 1_500_000
+
+// bigFile has one row group, and pages of all its rows.
+func bigFile(t testing.TB) (path string, z []any) {
+	x := built{name: "x", typ: parquet.Type_DOUBLE, required: true, codec: parquet.CompressionCodec_SNAPPY}
+	y := built{name: "y", typ: parquet.Type_INT32}
+	last := built{name: "z", typ: parquet.Type_DOUBLE, version: 2, codec: parquet.CompressionCodec_SNAPPY}
+	for i := range bigRows {
+		x.values = append(x.values, float64(i)/4)
+		y.values = append(y.values, int32(-i))
+		if i%1000 == 7 {
+			last.values = append(last.values, nil)
+		} else {
+			last.values = append(last.values, -math.Sqrt(float64(i)))
+		}
+	}
+	return buildFile(t, []built{x, y, last}, []int{bigRows}, nil), last.values
+}
+
+// TestGiantPages reads pages and writes a row group that do not stay in
+// memory, and leaves no scratch file behind.
+func TestGiantPages(t *testing.T) {
+	path, z := bigFile(t)
+	folder := t.TempDir()
+	layout := cloud.Layout{XYZ: [3]int{0, 1, 2}, RawNames: rawNames, Moved: []bool{true}}
+	o := Options{ScratchDir: folder}
+	out, err := rewrite(path, o, cloud.Request{Numbers: []int{0, 1, 2}}, layout, 2, func(c *cloud.Chunk) {
+		clear(c.Class)
+		for k := range c.XYZ {
+			for i, v := range c.Numbers[k] {
+				c.XYZ[k][i] = 2 * v
+			}
+		}
+	})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if left, err := os.ReadDir(folder); err != nil || len(left) != 0 {
+		t.Errorf("the scratch folder holds %v (%v), want nothing", left, err)
+	}
+	gone := Options{ScratchDir: filepath.Join(folder, "gone")}
+	if _, _, err := readAll(path, gone, cloud.Request{Numbers: []int{0}}); err == nil || !strings.Contains(err.Error(), `column "x", row group 1: no scratch file: `) {
+		t.Errorf("without a scratch folder: got error %v, want one", err)
+	}
+	made := filepath.Join(t.TempDir(), "out.parquet")
+	if err := os.WriteFile(made, out, 0o600); err != nil {
+		t.Fatal(err)
+	}
+	numbers, _, err := readAll(made, o, cloud.Request{Numbers: []int{0, 1, 2, 5}})
+	if err != nil {
+		t.Fatal(err)
+	}
+	for i := range bigRows {
+		raw, isSet := z[i].(float64)
+		if numbers[0][i] != float64(i)/2 || numbers[1][i] != float64(-2*i) {
+			t.Fatalf("row %d is at %v, %v, want %v, %v", i, numbers[0][i], numbers[1][i], float64(i)/2, -2*i)
+		}
+		if got := numbers[3][i]; isSet && got != raw || !isSet && !isMarked(got) {
+			t.Fatalf("z_raw of row %d is %v, want %v", i, got, z[i])
+		}
+		if got := numbers[2][i]; isSet && got != 2*raw || !isSet && !isMarked(got) {
+			t.Fatalf("z of row %d is %v, want twice %v", i, got, z[i])
+		}
+	}
+}
+
+// TestAllocations wants no allocation by row: decoding and encoding a piece
+// once more takes those of its page headers alone.
+func TestAllocations(t *testing.T) {
+	const rows = 32 * pieceRows
+	c := built{typ: parquet.Type_DOUBLE, pages: make([]int, 40)}
+	for i := range c.pages {
+		c.pages[i] = pieceRows
+	}
+	c.values = make([]any, rows)
+	for i := range c.values {
+		c.values[i] = float64(i)
+		if i%9 == 0 {
+			c.values[i] = nil
+		}
+	}
+	x, y, z := c, c, c
+	x.name, y.name, z.name = "x", "y", "z"
+	y.encoding, z.codec = parquet.Encoding_BYTE_STREAM_SPLIT, parquet.CompressionCodec_SNAPPY
+	path := buildFile(t, []built{x, y, z}, []int{rows}, nil)
+	f, err := Open(path, Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	defer f.Close()
+	layout := surveyLayout()
+	layout.XYZ = [3]int{0, 1, 2}
+	if err := f.Begin(cloud.Request{Numbers: []int{0, 1, 2}}, layout, discard{}); err != nil {
+		t.Fatal(err)
+	}
+	var chunk cloud.Chunk
+	step := func() {
+		if err := f.Next(&chunk); err != nil {
+			t.Fatal(err)
+		}
+		chunk.Resize(chunk.Rows, layout)
+		for i := range chunk.Rows {
+			chunk.Class[i] = uint8(i % 3)
+			chunk.Added[0][i], chunk.Added[1][i] = math.NaN(), 3
+		}
+		if err := f.Encode(&chunk); err != nil {
+			t.Fatal(err)
+		}
+	}
+	step()
+	if n := testing.AllocsPerRun(20, step); n > 600 {
+		t.Errorf("%v allocations for a piece of %d rows, want at most 600", n, chunk.Rows)
+	}
+}
+
+// discard takes bytes and forgets them.
+type discard struct{}
+
+func (discard) Write(b []byte) (int, error) { return len(b), nil }

@@ -1,0 +1,64 @@
+// Package parquetfile copies a Parquet file while replacing its coordinates and
+// adding columns: the cloud.Rewriter of that format.
+//
+// # What is copied and what is made
+//
+// Column chunks that do not change, and x, y, z on their way to their raw
+// copies, pass through byte for byte, row group by row group, whatever their
+// type, encoding and codec; only the footer's words about them are made anew.
+// Only columns that are asked for are decoded, and only what is added is
+// encoded. Row groups keep their rows; groups without rows are left out.
+//
+// # The way of the rows
+//
+// Next decodes the next piece of a row group, at most 64 Ki rows, page after
+// page; pages of a column follow from one another, so this is work in order, and
+// Decode has nothing left to do. It costs about a fifth of what hashing the
+// output does, which is in order too. Encode makes one page of every new
+// column. Put copies the old chunks at the first piece of a group and holds the
+// new pages until the last one, because the chunks of a group cannot be woven.
+//
+// # Numbers and texts
+//
+// Numbers are read from flat DOUBLE, FLOAT, INT32, INT64 (signed and unsigned),
+// BOOLEAN (0 and 1) and TIMESTAMP columns. A TIMESTAMP becomes seconds since
+// 1970-01-01, UTC; one without a time zone is taken for UTC. Null becomes NaN.
+// INT64 beyond 2^53 is rounded to the nearest float64. Texts are read from flat
+// BYTE_ARRAY columns; null becomes an empty text. Encodings: PLAIN, dictionary,
+// RLE, DELTA_BINARY_PACKED, BYTE_STREAM_SPLIT, DELTA_LENGTH_BYTE_ARRAY and
+// DELTA_BYTE_ARRAY, in data pages of version 1 and 2. Codecs: none, snappy,
+// gzip, zstd. A column in another codec or type can be copied, not read.
+//
+// New columns are OPTIONAL. Numbers by row are PLAIN and not compressed: the low
+// bits of a computed coordinate are noise, and snappy takes the time without
+// taking the bytes. Columns by class are dictionaries with run lengths, a few
+// bytes a page where all rows agree.
+//
+// # Memory and damage
+//
+// The caps below bound every allocation by a file, whatever its headers say.
+// Pages above spillBytes are decoded to a scratch file, one at a time in the
+// whole process, and new pages above heldBytes wait in another. Sizes are
+// checked before anything is decompressed, by the codecs' own functions (the
+// wrappers that come with the format's structures take no limit and fail on
+// damaged gzip data by panic). A checksum is verified where a page has one,
+// but not those of chunks that are merely copied.
+//
+// The format is that of the Apache Parquet specification, version 2.
+package parquetfile
+
+const (
+	pieceRows = 64 << 10 // most rows of a chunk
+
+	maxFooterBytes = 64 << 20  // footer as stored
+	maxListItems   = 1 << 20   // elements of one list in footer or page header
+	maxHeaderBytes = 1 << 20   // header of one page
+	maxPageBytes   = 128 << 20 // one page, compressed or not
+	maxDictBytes   = 32 << 20  // one dictionary page, decompressed
+	maxTextBytes   = 64 << 20  // texts of one column in one piece
+	maxSchemaItems = 1 << 16   // columns and groups of a schema
+	maxDepth       = 32        // levels of a nested schema
+
+	spillBytes = 4 << 20  // decompressed size above which a page of numbers goes to a scratch file
+	heldBytes  = 32 << 20 // new pages of a row group that are kept in memory
+)

@@ -1,0 +1,176 @@
+package parquetfile
+
+import (
+	"fmt"
+	"io"
+	"math"
+	"slices"
+
+	"bentray/io/cloud"
+)
+
+// null is what a null becomes: a NaN with a mark of its own ("null" in ASCII),
+// so that coordinates which are not replaced stay null where they were null and
+// NaN where they were NaN.
+var null = math.Float64frombits(nullBits)
+
+const nullBits = 0x7ff8_6e75_6c6c_0000
+
+// source says where a column of numbers comes from: its own cursor, or, where
+// that is nil, the coordinate at the position raw.
+type source struct {
+	cursor *cursor
+	raw    int
+}
+
+// piece is what a chunk carries through the file.
+type piece struct {
+	group       int
+	first, last bool         // of its group
+	raw         [3][]float64 // x, y, z as read, safe from changes of the chunk's numbers
+	pages       pages
+	work        encoder
+}
+
+func (f *File) beginReading(read cloud.Request, write cloud.Layout, writing bool) error {
+	var xyz []int
+	if writing {
+		xyz = write.XYZ[:]
+	}
+	for _, i := range xyz {
+		c, err := f.newCursor(i, false)
+		if err != nil {
+			return err
+		}
+		f.raw = append(f.raw, c)
+	}
+	for _, i := range read.Numbers {
+		if k := slices.Index(xyz, i); k >= 0 {
+			f.numbers = append(f.numbers, source{raw: k})
+			continue
+		}
+		c, err := f.newCursor(i, false)
+		if err != nil {
+			return err
+		}
+		f.numbers = append(f.numbers, source{cursor: c})
+	}
+	for _, i := range read.Texts {
+		c, err := f.newCursor(i, true)
+		if err != nil {
+			return err
+		}
+		f.texts = append(f.texts, c)
+	}
+	return nil
+}
+
+// newCursor prepares to read a column, after checks that need no data.
+func (f *File) newCursor(i int, text bool) (*cursor, error) {
+	l := &f.leaves[i]
+	switch isText := l.kind == texts; {
+	case l.kind == opaque:
+		return nil, fmt.Errorf("%s: column %q is %s, want a flat column of DOUBLE, FLOAT, INT32, INT64, TIMESTAMP or text; it can only be copied", f.path, l.name, l.typ)
+	case text && !isText:
+		return nil, fmt.Errorf("%s: column %q is %s, want a text (BYTE_ARRAY)", f.path, l.name, l.typ)
+	case !text && isText:
+		return nil, fmt.Errorf("%s: column %q is %s, want a number (DOUBLE, FLOAT, INT32, INT64 or TIMESTAMP)", f.path, l.name, l.typ)
+	}
+	c := &cursor{file: f, leaf: l, index: i, scratch: scratch{folder: f.options.ScratchDir}}
+	for g := range f.groups {
+		if err := c.begin(g); err != nil {
+			return nil, err
+		}
+	}
+	return c, nil
+}
+
+// Next decodes the next rows of a row group, at most 64 Ki and all of one group.
+func (f *File) Next(c *cloud.Chunk) error {
+	if f.group == len(f.groups) {
+		return io.EOF
+	}
+	if f.done == 0 {
+		if err := f.beginGroup(); err != nil {
+			return err
+		}
+	}
+	p := pieceOf(c)
+	total := f.groups[f.group].NumRows
+	rows := f.pieceSize(total)
+	p.group, p.first, p.last = f.group, f.done == 0, f.done+rows == total
+	c.Rows, c.Rejects = int(rows), c.Rejects[:0]
+	c.Consumed = f.share(f.before+f.done+rows) - f.share(f.before+f.done)
+	if err := f.decode(c, p); err != nil {
+		return err
+	}
+	f.done += rows
+	if p.last {
+		f.group, f.done, f.before = f.group+1, 0, f.before+total
+	}
+	return nil
+}
+
+// Decode has nothing left to do: Next has decoded the chunk.
+func (f *File) Decode(*cloud.Chunk) error { return nil }
+
+// pieceOf returns the chunk's own piece, made at its first use.
+func pieceOf(c *cloud.Chunk) *piece {
+	p, ok := c.Format.(*piece)
+	if !ok {
+		p = new(piece)
+		c.Format = p
+	}
+	return p
+}
+
+func (f *File) beginGroup() error {
+	for _, c := range f.cursors() {
+		if err := c.begin(f.group); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+// pieceSize divides what is left of a group evenly.
+func (f *File) pieceSize(total int64) int64 {
+	left := total - f.done
+	pieces := (left + pieceRows - 1) / pieceRows
+	return (left + pieces - 1) / pieces
+}
+
+// share returns how many of the file's bytes its first rows stand for.
+func (f *File) share(rows int64) int64 {
+	return int64(float64(f.size) * (float64(rows) / float64(f.meta.NumRows)))
+}
+
+func (f *File) decode(c *cloud.Chunk, p *piece) error {
+	for k, cursor := range f.raw {
+		p.raw[k] = cloud.Grow(p.raw[k], c.Rows)
+		if err := cursor.readNumbers(p.raw[k]); err != nil {
+			return err
+		}
+		if err := cursor.checkDecodedStep(p.raw[k]); err != nil {
+			return err
+		}
+	}
+	if len(c.Numbers) != len(f.numbers) || len(c.Texts) != len(f.texts) {
+		c.Numbers, c.Texts = make([][]float64, len(f.numbers)), make([]cloud.Texts, len(f.texts))
+	}
+	for k, s := range f.numbers {
+		c.Numbers[k] = cloud.Grow(c.Numbers[k], c.Rows)
+		if s.cursor == nil {
+			copy(c.Numbers[k], p.raw[s.raw])
+		} else if err := s.cursor.readNumbers(c.Numbers[k]); err != nil {
+			return err
+		}
+	}
+	for k, cursor := range f.texts {
+		c.Texts[k].Reset()
+		if err := cursor.readTexts(&c.Texts[k], c.Rows); err != nil {
+			return err
+		}
+	}
+	return nil
+}

@@ -1,0 +1,114 @@
+package parquetfile
+
+import (
+	"fmt"
+
+	"github.com/xitongsys/parquet-go/parquet"
+)
+
+// unknownType is the annotation of a type younger than the structures used
+// here: it is read as a union with nothing in it.
+const unknownType = "of an unknown logical type"
+
+// typeName says how a column is stored, for people: the physical type and what
+// the values stand for, as in "INT64 TIMESTAMP_MICROS".
+func typeName(e *parquet.SchemaElement) string {
+	name := e.GetType().String()
+	if a := annotation(e); a != "" {
+		name += " " + a
+	}
+	return name
+}
+
+// annotation names the logical type by the older converted types, which have a
+// short name each.
+func annotation(e *parquet.SchemaElement) string {
+	l := e.LogicalType
+	switch {
+	case l == nil && e.ConvertedType == nil:
+		return ""
+	case l == nil:
+		return e.ConvertedType.String()
+	case l.STRING != nil:
+		return "UTF8"
+	case l.INTEGER != nil:
+		return integerName(l.INTEGER)
+	case l.TIMESTAMP != nil:
+		return "TIMESTAMP_" + unitName(l.TIMESTAMP.Unit)
+	case l.TIME != nil:
+		return "TIME_" + unitName(l.TIME.Unit)
+	}
+	return otherAnnotation(l)
+}
+
+func otherAnnotation(l *parquet.LogicalType) string {
+	switch {
+	case l.MAP != nil:
+		return "MAP"
+	case l.LIST != nil:
+		return "LIST"
+	case l.ENUM != nil:
+		return "ENUM"
+	case l.DECIMAL != nil:
+		return "DECIMAL"
+	case l.DATE != nil:
+		return "DATE"
+	case l.UNKNOWN != nil:
+		return "NULL"
+	case l.JSON != nil:
+		return "JSON"
+	case l.BSON != nil:
+		return "BSON"
+	case l.UUID != nil:
+		return "UUID"
+	}
+	return unknownType
+}
+
+func integerName(t *parquet.IntType) string {
+	if t.IsSigned {
+		return fmt.Sprintf("INT_%d", t.BitWidth)
+	}
+	return fmt.Sprintf("UINT_%d", t.BitWidth)
+}
+
+func unitName(u *parquet.TimeUnit) string {
+	switch {
+	case u == nil:
+		return "UNKNOWN"
+	case u.MILLIS != nil:
+		return "MILLIS"
+	case u.MICROS != nil:
+		return "MICROS"
+	case u.NANOS != nil:
+		return "NANOS"
+	}
+	return "UNKNOWN"
+}
+
+// dropUnknown takes annotations away that cannot be written again, and says so,
+// one caution a column.
+func dropUnknown(elements []*parquet.SchemaElement) []string {
+	var cautions []string
+	for _, e := range elements {
+		if l := e.LogicalType; l != nil && unwritable(l) {
+			e.LogicalType = nil
+			cautions = append(cautions, fmt.Sprintf("column %q is %s; it is copied without that type's name", e.Name, unknownType))
+		}
+	}
+	return cautions
+}
+
+// unwritable tells whether writing the annotation is an error: a union in it
+// has nothing set.
+func unwritable(l *parquet.LogicalType) bool {
+	switch {
+	case l.CountSetFieldsLogicalType() != 1:
+		return true
+	case l.TIMESTAMP != nil:
+		return l.TIMESTAMP.Unit == nil || l.TIMESTAMP.Unit.CountSetFieldsTimeUnit() != 1
+	case l.TIME != nil:
+		return l.TIME.Unit == nil || l.TIME.Unit.CountSetFieldsTimeUnit() != 1
+	}
+	return false
+}
