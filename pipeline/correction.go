@@ -153,6 +153,9 @@ func (s *survey) bend(w *workspace, c *cloud.Chunk, r *reading) {
 		return
 	}
 	if r.originByTime() {
+		if r.timestamps {
+			s.fromUTC(c.Numbers[r.time])
+		}
 		s.trajectory.At(w.origin.X, w.origin.Y, w.origin.Z, c.Numbers[r.time])
 	} else {
 		copy(w.origin.X, c.Numbers[r.origin[0]])

@@ -16,18 +16,8 @@ import (
 
 	"bentray/io/atomicfile"
 	"bentray/io/cloud"
-	"bentray/io/csvfile"
-	"bentray/pipeline/job"
 	"bentray/pipeline/receipt"
 )
-
-// openCloud opens a cloud in its format.
-func (s *survey) openCloud(path string) (cloud.Rewriter, error) {
-	if err := checkFormat(path); err != nil {
-		return nil, err
-	}
-	return csvfile.Open(path, csvfile.Options{Names: s.job.Input.CSV.Names, Divert: s.job.Input.BadRows == job.Divert})
-}
 
 // rewriting is one file on its way to its output.
 type rewriting struct {
@@ -48,7 +38,7 @@ func (r *runner) rewrite(ctx context.Context, in input) (*receipt.Receipt, error
 	if err != nil {
 		return nil, inFile(in.path, err)
 	}
-	file, err := r.openCloud(in.path)
+	file, err := r.openCloud(in)
 	if err != nil {
 		return nil, err
 	}

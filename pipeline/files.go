@@ -14,7 +14,6 @@ import (
 
 	"github.com/bmatcuk/doublestar/v4"
 
-	"bentray/io/csvfile"
 	"bentray/pipeline/job"
 	"bentray/pipeline/receipt"
 )
@@ -200,14 +199,6 @@ func pick(inputs []input, shard Shard, only string) ([]input, error) {
 		return nil, callErrorf("--only %q names none of the job's %d files (names are as below the output folder, such as %s)", only, len(inputs), inputs[0].target)
 	}
 	return picked, nil
-}
-
-// checkFormat refuses a name that no format reads.
-func checkFormat(path string) error {
-	if csvfile.IsName(path) {
-		return nil
-	}
-	return fmt.Errorf("%s: unknown kind of file %q, want .csv .tsv .txt .xyz or .asc (also with .gz or .zst)", path, filepath.Ext(path))
 }
 
 // makeFolders makes the output folder and that of each output.

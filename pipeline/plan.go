@@ -6,7 +6,6 @@ import (
 	"math"
 	"time"
 
-	"bentray/geo"
 	"bentray/io/cloud"
 	"bentray/pipeline/job"
 )
@@ -60,7 +59,7 @@ func MakePlan(ctx context.Context, j *job.Job) (*Plan, error) {
 	if err != nil {
 		return nil, err
 	}
-	p := &planner{survey: s, tally: newTally(), times: emptySpan()}
+	p := &planner{survey: s, tally: newTally(), clock: emptySpan()}
 	for k := range p.bounds {
 		p.bounds[k] = emptySpan()
 	}
@@ -85,7 +84,7 @@ type planner struct {
 	slot   slot
 	tally  *tally
 	bounds [3]span
-	times  span
+	clock  span // of gps_time
 }
 
 func (p *planner) file(ctx context.Context, in input) {
@@ -99,7 +98,7 @@ func (p *planner) file(ctx context.Context, in input) {
 
 // head corrects a file's first rows as a run would.
 func (p *planner) head(in input, f *PlannedFile) error {
-	file, err := p.openCloud(in.path)
+	file, err := p.openCloud(in)
 	if err != nil {
 		return err
 	}
@@ -128,8 +127,8 @@ func (p *planner) head(in input, f *PlannedFile) error {
 	if err := file.Decode(c); err != nil {
 		return err
 	}
-	p.take(c, r)
 	p.correctChunk(c, r, l, &p.slot.work, p.tally)
+	p.take(c, r)
 	return f.count(c, file, in.bytes)
 }
 
@@ -149,13 +148,13 @@ func (f *PlannedFile) count(c *cloud.Chunk, file cloud.Rewriter, bytes int64) er
 	return err
 }
 
-// take widens the bounds by a chunk.
+// take widens the bounds by a corrected chunk, whose times are on the job's scale.
 func (p *planner) take(c *cloud.Chunk, r *reading) {
 	for k := range p.bounds {
 		p.bounds[k].addFinite(c.Numbers[k])
 	}
 	if r.time >= 0 {
-		p.times.addFinite(c.Numbers[r.time])
+		p.clock.addFinite(c.Numbers[r.time])
 	}
 }
 
@@ -188,14 +187,8 @@ func (p *planner) roles(columns []cloud.Column, r *reading) []RoleColumn {
 func (p *planner) finish() {
 	h := &p.plan.Heads
 	h.Points, h.Outcomes = p.tally.points(), p.tally.counts()
-	if p.times.low <= p.times.high {
-		week := 0
-		if p.job.Input.Week != nil {
-			week = *p.job.Input.Week
-		}
-		if scale, err := geo.ParseTimeScale(p.job.Input.Time, week); err == nil {
-			h.Times = [2]time.Time{scale.Time(p.times.low), scale.Time(p.times.high)}
-		}
+	if p.clock.low <= p.clock.high {
+		h.Times = [2]time.Time{p.times.Time(p.clock.low), p.times.Time(p.clock.high)}
 	}
 	if p.bounds[0].low > p.bounds[0].high {
 		p.plan.Cautions = p.tally.cautions(p.survey)

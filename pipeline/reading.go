@@ -13,12 +13,13 @@ import (
 // reading says which of a file's columns are decoded, and where each stands in
 // a chunk's numbers or texts; -1 where it is not read.
 type reading struct {
-	request cloud.Request
-	xyz     [3]int // positions in the file, not in the chunk; x y z are the chunk's first three numbers
-	time    int
-	origin  [3]int
-	level   int // the surface's column
-	where   []condition
+	request    cloud.Request
+	xyz        [3]int // positions in the file, not in the chunk; x y z are the chunk's first three numbers
+	time       int
+	timestamps bool // gps_time holds dates and times, not numbers on the job's scale
+	origin     [3]int
+	level      int // the surface's column
+	where      []condition
 }
 
 // condition selects the points whose value is one of a list.
@@ -57,6 +58,7 @@ func (r *reading) findOrigins(s *survey, columns []cloud.Column) (err error) {
 		return nil
 	case s.trajectory != nil:
 		r.time, err = r.need(s.job, columns, "gps_time", "the trajectory is looked up by it")
+		r.timestamps = err == nil && isTimestamp(columns[r.request.Numbers[r.time]])
 		return err
 	}
 	for k, role := range []string{"origin_x", "origin_y", "origin_z"} {

@@ -8,17 +8,13 @@ import (
 	"strings"
 
 	"bentray/io/cloud"
-	"bentray/io/csvfile"
 )
-
-// IsCloud tells whether a name is that of a cloud, not of a job.
-func IsCloud(path string) bool { return csvfile.IsName(path) }
 
 // StartJob looks at a cloud and writes a job file to start from: its columns and
 // the roles they play stand in comments, what only the analyst knows is left to
 // fill in.
 func StartJob(w io.Writer, path string) error {
-	f, err := csvfile.Open(path, csvfile.Options{})
+	f, err := openTable(path)
 	if err != nil {
 		return err
 	}

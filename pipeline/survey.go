@@ -13,7 +13,6 @@ import (
 	"bentray/correct/medium"
 	"bentray/geo"
 	"bentray/io/cloud"
-	"bentray/io/csvfile"
 	"bentray/pipeline/job"
 	"bentray/pipeline/receipt"
 )
@@ -29,8 +28,9 @@ type survey struct {
 	job          *job.Job
 	settings     []byte
 	auxiliary    []receipt.Input
-	run          string  // fingerprint
-	plan, height float64 // metres per unit of x, y and of z
+	run          string        // fingerprint
+	plan, height float64       // metres per unit of x, y and of z
+	times        geo.TimeScale // of the numbers in gps_time
 
 	optics     indices
 	trajectory *geo.Trajectory   // nil: origins come from the cloud
@@ -71,8 +71,23 @@ func (s *survey) readUnits() error {
 		return err
 	}
 	height, err := geo.ParseUnit(s.job.Input.VerticalUnit)
+	if err != nil {
+		return err
+	}
 	s.plan, s.height = float64(plan), float64(height)
+	week := 0
+	if s.job.Input.Week != nil {
+		week = *s.job.Input.Week
+	}
+	s.times, err = geo.ParseTimeScale(s.job.Input.Time, week)
 	return err
+}
+
+// fromUTC brings UTC seconds to the scale of the job's times.
+func (s *survey) fromUTC(seconds []float64) {
+	for i, utc := range seconds {
+		seconds[i] = s.times.FromUTC(utc)
+	}
 }
 
 func (s *survey) readIndices() error {
@@ -112,10 +127,7 @@ func (s *survey) readTrajectory(ctx context.Context) error {
 	if err := s.note(ctx, "trajectory", j.Rays.Trajectory); err != nil {
 		return err
 	}
-	if err := checkFormat(path); err != nil {
-		return err
-	}
-	f, err := csvfile.Open(path, csvfile.Options{})
+	f, err := openTable(path)
 	if err != nil {
 		return err
 	}
@@ -123,6 +135,9 @@ func (s *survey) readTrajectory(ctx context.Context) error {
 	columns, err := cloud.ReadNumbers(f, "gps_time", "x", "y", "z")
 	if err != nil {
 		return inFile(path, err)
+	}
+	if i, _ := cloud.Find(f.Columns(), "gps_time"); isTimestamp(f.Columns()[i]) {
+		s.fromUTC(columns[0])
 	}
 	scale(columns[1], s.plan)
 	scale(columns[2], s.plan)

@@ -15,7 +15,7 @@ import (
 // unknown and fails, so that a new room is placed on purpose.
 var mayImport = map[string][]string{
 	"cmd/bentray":        {"pipeline", "pipeline/demo", "pipeline/job", "pipeline/receipt", "correct", "correct/medium", "correct/optics"},
-	"pipeline":           {"pipeline/job", "pipeline/receipt", "correct", "correct/medium", "geo", "io/cloud", "io/csvfile", "io/atomicfile"},
+	"pipeline":           {"pipeline/job", "pipeline/receipt", "correct", "correct/medium", "geo", "io/cloud", "io/csvfile", "io/parquetfile", "io/atomicfile"},
 	"pipeline/demo":      {"pipeline", "pipeline/job", "pipeline/receipt", "correct/medium", "io/cloud", "io/csvfile", "io/atomicfile"},
 	"pipeline/benchmark": {"correct/medium"},
 	"pipeline/job":       {"correct/medium", "geo", "io/cloud"},
@@ -27,6 +27,7 @@ var mayImport = map[string][]string{
 	"io/atomicfile":      {},
 	"io/cloud":           {},
 	"io/csvfile":         {"io/cloud"},
+	"io/parquetfile":     {"io/cloud"},
 }
 
 func TestImportsPointOneWay(t *testing.T) {

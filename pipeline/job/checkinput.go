@@ -40,12 +40,12 @@ func (in *Input) checkFiles(f *faults) {
 
 func (in *Input) checkWeek(f *faults) {
 	if in.Time == GPSWeek {
-		f.require("input.week", `a whole number from 0, because of time = "gps-week"`)
+		f.require("input.week", `a whole number from 1, because of time = "gps-week"`)
 	} else {
 		f.noEffect("input.week", fmt.Sprintf("with time = %q", in.Time), `use time = "gps-week"`)
 	}
-	if in.Week != nil && *in.Week < 0 {
-		f.add("input.week", "is %d, want 0 or above, counted from 1980-01-06 without rollover", *in.Week)
+	if in.Week != nil && *in.Week < 1 {
+		f.add("input.week", "is %d, want 1 or above, counted from 1980-01-06 without rollover", *in.Week)
 	}
 }
 

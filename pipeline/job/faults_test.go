@@ -88,9 +88,9 @@ func TestParseFaults(t *testing.T) {
 		{"vertical unit", "files", "vertical_unit = ''\nfiles", `job.toml:2: [input] vertical_unit is "", want "m", "ft" or "us-ft"`},
 		{"bad rows", "files", "bad_rows = 'skip'\nfiles", `job.toml:2: [input] bad_rows is "skip", want "stop" or "divert"`},
 		{"time", "files", "time = 'gps'\nfiles", `job.toml:2: [input] time is "gps", want "gps-adjusted", "gps-week" or "utc"`},
-		{"no week", "files", "time = 'gps-week'\nfiles", `job.toml:1: [input] week is missing, want a whole number from 0, because of time = "gps-week"`},
+		{"no week", "files", "time = 'gps-week'\nfiles", `job.toml:1: [input] week is missing, want a whole number from 1, because of time = "gps-week"`},
 		{"week for nothing", "files", "week = 2300\nfiles", `job.toml:2: [input] week has no effect with time = "gps-adjusted"; remove it, or use time = "gps-week"`},
-		{"week below 0", "files", "time = 'gps-week'\nweek = -1\nfiles", `job.toml:3: [input] week is -1, want 0 or above, counted from 1980-01-06 without rollover`},
+		{"week below 0", "files", "time = 'gps-week'\nweek = -1\nfiles", `job.toml:3: [input] week is -1, want 1 or above, counted from 1980-01-06 without rollover`},
 
 		{"unknown role", "", "[input.columns]\nclasification = 'c'", `job.toml:13: unknown role "clasification" in [input.columns]; did you mean "classification"?`},
 		{"role and column exchanged", "", "[input.columns]\neasting = 'x'", `job.toml:13: unknown role "easting" in [input.columns]; the role stands first: x = "easting"`},

@@ -51,6 +51,7 @@ type Input struct {
 	Unit         string            `toml:"unit" json:"unit"`                   // of every length: Metre (default), Foot or SurveyFoot
 	VerticalUnit string            `toml:"vertical_unit" json:"vertical_unit"` // of heights; default Unit
 	BadRows      string            `toml:"bad_rows" json:"bad_rows"`           // Stop (default) or Divert
+	Coarse       bool              `toml:"coarse" json:"coarse,omitempty"`     // accept Parquet FLOAT coordinates in steps above 1 mm; default false
 	Time         string            `toml:"time" json:"time"`                   // scale of gps_time: GPSAdjusted (default), GPSWeek or UTC
 	Week         *int              `toml:"week" json:"week,omitempty"`         // since 1980-01-06 without rollover; with GPSWeek always, else nil
 	Columns      map[string]string `toml:"columns" json:"columns,omitempty"`   // role -> column, where the names differ

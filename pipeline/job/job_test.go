@@ -100,7 +100,6 @@ func TestParseAccepts(t *testing.T) {
 		{"column surface", strings.Replace(least, "surface.level = 0.42", `surface.column = "tide"`, 1), func(j *Job) bool { return j.Surface.Column == "tide" && j.Surface.Level == nil }},
 		{"level zero", strings.Replace(least, "0.42", "0", 1), func(j *Job) bool { return *j.Surface.Level == 0 }},
 		{"range index of vacuum", pulse + `rays.range_index = 1`, func(j *Job) bool { return *j.Rays.RangeIndex == 1 }},
-		{"week zero", least + "input.time = 'gps-week'\ninput.week = 0", func(j *Job) bool { return *j.Input.Week == 0 }},
 		{"a dotted column", least + `select.where = { "a.b" = [1] }`, func(j *Job) bool { return j.Select.Where["a.b"][0] == 1.0 }},
 		{"byte order mark and CR LF", "\ufeff" + strings.ReplaceAll(least, "\n", "\r\n"), func(j *Job) bool { return *j.Surface.Level == 0.42 }},
 	} {

@@ -1,0 +1,47 @@
+package pipeline
+
+import (
+	"fmt"
+	"path/filepath"
+	"strings"
+
+	"bentray/io/cloud"
+	"bentray/io/csvfile"
+	"bentray/io/parquetfile"
+	"bentray/pipeline/job"
+)
+
+// IsCloud tells whether a name is that of a cloud, not of a job.
+func IsCloud(path string) bool { return csvfile.IsName(path) || parquetfile.IsName(path) }
+
+// open opens a table in the format that its name tells.
+func open(path string, csv csvfile.Options, parquet parquetfile.Options) (cloud.Rewriter, error) {
+	switch {
+	case csvfile.IsName(path):
+		return csvfile.Open(path, csv)
+	case parquetfile.IsName(path):
+		return parquetfile.Open(path, parquet)
+	}
+	return nil, fmt.Errorf("%s: unknown kind of file %q, want .parquet, or .csv .tsv .txt .xyz or .asc (these also with .gz or .zst)", path, filepath.Ext(path))
+}
+
+// openTable opens a file that goes with clouds, or a cloud of which nothing is known.
+func openTable(path string) (cloud.Rewriter, error) {
+	return open(path, csvfile.Options{}, parquetfile.Options{})
+}
+
+// openCloud opens a cloud of the job. A Parquet output carries the settings that
+// made it in its key-value metadata.
+func (s *survey) openCloud(in input) (cloud.Rewriter, error) {
+	i := &s.job.Input
+	return open(in.path,
+		csvfile.Options{Names: i.CSV.Names, Divert: i.BadRows == job.Divert},
+		parquetfile.Options{
+			Coarse: i.Coarse, Unit: s.plan, ScratchDir: filepath.Dir(in.output),
+			Metadata: map[string]string{"bentray.program": Program, "bentray.run": s.run, "bentray.job": string(s.settings)},
+		})
+}
+
+// isTimestamp tells a column of dates and times, which are read as UTC seconds
+// since 1970 whatever the scale of the job's numbers.
+func isTimestamp(c cloud.Column) bool { return strings.Contains(c.Type, "TIMESTAMP") }
