@@ -1,0 +1,64 @@
+package correct_test
+
+import (
+	"fmt"
+	"math"
+
+	"bentray/correct"
+)
+
+func ExampleMarkDry() {
+	raw := correct.XYZ{X: []float64{0, 5}, Y: []float64{0, 5}, Z: []float64{1.25, -2}}
+	surface := correct.Planes{Level: []float64{0.5, 0.5}, SlopeX: []float64{0, 0}, SlopeY: []float64{0, 0}}
+	dst, out := correct.NewResult(2), make([]correct.Outcome, 2)
+	correct.MarkInvalid(out, raw)
+	correct.MarkNoSurface(out, surface)
+	correct.MarkDry(out, &dst, raw, surface)
+	fmt.Println(out, dst.Depth[0])
+	// Output: [dry corrected] -0.75
+}
+
+func ExampleMarkInvalid() {
+	out := make([]correct.Outcome, 2)
+	correct.MarkInvalid(out, correct.XYZ{X: []float64{1, 2}, Y: []float64{1, 2}, Z: []float64{-3, math.NaN()}})
+	fmt.Println(out)
+	// Output: [corrected invalid]
+}
+
+func ExampleMarkNoSurface() {
+	out := make([]correct.Outcome, 2)
+	correct.MarkNoSurface(out, correct.Planes{Level: []float64{0.4, math.NaN()}, SlopeX: []float64{0, 0}, SlopeY: []float64{0, 0}})
+	fmt.Println(out)
+	// Output: [corrected no_surface]
+}
+
+func ExampleMarkNoOrigin() {
+	raw := correct.XYZ{X: []float64{0, 0}, Y: []float64{0, 0}, Z: []float64{-2, -2}}
+	scanner := correct.XYZ{X: []float64{10, 10}, Y: []float64{0, 0}, Z: []float64{300, -1}}
+	surface := correct.Planes{Level: []float64{0, 0}, SlopeX: []float64{0, 0}, SlopeY: []float64{0, 0}}
+	out := make([]correct.Outcome, 2)
+	correct.MarkNoOrigin(out, raw, scanner, surface)
+	fmt.Println(out)
+	// Output: [corrected no_origin]
+}
+
+func ExampleVertical() {
+	raw := correct.XYZ{X: []float64{0}, Y: []float64{0}, Z: []float64{-2.5}}
+	surface := correct.Planes{Level: []float64{0.5}, SlopeX: []float64{0}, SlopeY: []float64{0}}
+	light := correct.Light{Air: 1.00028, Water: []float64{1.34}}
+	dst, out := correct.NewResult(1), make([]correct.Outcome, 1)
+	correct.Vertical(&dst, out, raw, surface, light)
+	fmt.Printf("%s, depth %.3f, z %.3f\n", out[0], dst.Depth[0], dst.Z[0])
+	// Output: corrected, depth 4.019, z -3.519
+}
+
+func ExamplePulse() {
+	raw := correct.XYZ{X: []float64{0}, Y: []float64{0}, Z: []float64{-10}}
+	scanner := correct.XYZ{X: []float64{300}, Y: []float64{0}, Z: []float64{740}}
+	surface := correct.Planes{Level: []float64{0}, SlopeX: []float64{0}, SlopeY: []float64{0}}
+	light := correct.Light{Air: 1.00028, RangeIndex: 1.00029, Water: []float64{1.34}, WaterGroup: []float64{1.362}}
+	dst, out := correct.NewResult(1), make([]correct.Outcome, 1)
+	correct.Pulse(&dst, out, raw, scanner, surface, light, math.Pi/3)
+	fmt.Printf("%s, x %.3f, depth %.3f, %.2f degrees\n", out[0], dst.X[0], dst.Depth[0], dst.IncidenceRad[0]*180/math.Pi)
+	// Output: corrected, x 1.807, depth 7.600, 21.80 degrees
+}

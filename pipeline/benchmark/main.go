@@ -1,0 +1,186 @@
+package main
+
+import (
+	"errors"
+	"flag"
+	"fmt"
+	"os"
+	"os/exec"
+	"path/filepath"
+	"strconv"
+	"syscall"
+)
+
+// options are the flags.
+type options struct {
+	dir     string
+	rows    int64
+	digits  int
+	format  string
+	runs    int
+	workers int
+	floors  bool
+}
+
+func parse(args []string) (options, error) {
+	var o options
+	f := flag.NewFlagSet("benchmark", flag.ContinueOnError)
+	f.StringVar(&o.dir, "dir", "bench-out", "work `folder`; its survey and outputs are replaced")
+	f.Int64Var(&o.rows, "rows", 5_000_000, "points in the survey")
+	f.IntVar(&o.digits, "digits", 0, "significant digits of coordinates and times, up to 17; 0 writes millimetres and microseconds")
+	f.StringVar(&o.format, "format", "csv", "csv, parquet or both")
+	f.IntVar(&o.runs, "runs", 3, "runs of each program, taken in turn")
+	f.IntVar(&o.workers, "workers", 2, "bentray's workers and the engine's threads")
+	f.BoolVar(&o.floors, "floors", true, "fail where the speed ratio is below its floor")
+	if err := f.Parse(args); err != nil {
+		return o, err
+	}
+	return o, o.validate(f.NArg())
+}
+
+func (o options) validate(extra int) error {
+	switch {
+	case extra > 0:
+		return errors.New("benchmark takes flags only")
+	case o.rows < 1 || o.runs < 1 || o.workers < 1:
+		return errors.New("-rows, -runs and -workers want at least 1")
+	case o.digits < 0 || o.digits > 17:
+		return fmt.Errorf("-digits is %d, want 0 to 17", o.digits)
+	case o.format != "csv" && o.format != "parquet" && o.format != "both":
+		return fmt.Errorf("-format is %q, want csv, parquet or both", o.format)
+	}
+	return nil
+}
+
+func (o options) formats() []string {
+	if o.format == "both" {
+		return []string{"csv", "parquet"}
+	}
+	return []string{o.format}
+}
+
+func main() {
+	o, err := parse(os.Args[1:])
+	if errors.Is(err, flag.ErrHelp) {
+		return
+	}
+	if err == nil {
+		err = o.bench()
+	}
+	if err != nil {
+		fmt.Fprintln(os.Stderr, "benchmark:", err)
+		os.Exit(1)
+	}
+}
+
+// bench prepares programs and survey, then measures one format after the other.
+func (o options) bench() error {
+	program := filepath.Join(o.dir, "bentray")
+	if err := os.MkdirAll(o.dir, 0o755); err != nil {
+		return err
+	}
+	if out, err := exec.Command("go", "build", "-o", program, "bentray/cmd/bentray").CombinedOutput(); err != nil {
+		return fmt.Errorf("go build bentray/cmd/bentray: %w\n%s", err, out)
+	}
+	sql, err := installEngine(filepath.Join(o.dir, "engine"), o.workers)
+	if err != nil {
+		sql = nil
+		fmt.Fprintln(os.Stderr, "benchmark: engine skipped, no ratio:", err)
+	}
+	fmt.Fprintf(os.Stderr, "benchmark: writing %d points\n", o.rows)
+	if err := writeSurvey(filepath.Join(o.dir, "survey.csv"), o.rows, o.digits); err != nil {
+		return err
+	}
+	var broken []error
+	for _, format := range o.formats() {
+		r, err := o.measure(format, program, sql)
+		if err != nil {
+			return err
+		}
+		r.print(os.Stdout)
+		broken = append(broken, r.check(o.floors))
+	}
+	return errors.Join(broken...)
+}
+
+// measure runs both programs in turn on one format and compares their outputs.
+func (o options) measure(format, program string, sql *engine) (*result, error) {
+	input := filepath.Join(o.dir, "survey."+format)
+	if format == "parquet" {
+		if sql == nil {
+			return nil, errors.New("parquet: only the engine can make the survey's Parquet file, and there is none")
+		}
+		if _, err := sql.run(task{Do: "convert", Input: filepath.Join(o.dir, "survey.csv"), Output: input}); err != nil {
+			return nil, err
+		}
+	}
+	info, err := os.Stat(input)
+	if err != nil {
+		return nil, err
+	}
+	job, err := writeJob(o.dir, format)
+	if err != nil {
+		return nil, err
+	}
+	outFolder := filepath.Join(o.dir, "bentray-"+format)
+	outEngine := filepath.Join(o.dir, "engine."+format)
+	var bentray, engine []usage
+	for range o.runs {
+		u, err := o.runBentray(program, job, outFolder)
+		if err != nil {
+			return nil, err
+		}
+		bentray = append(bentray, u)
+		if sql == nil {
+			continue
+		}
+		if u, err = runEngine(sql, format, input, outEngine); err != nil {
+			return nil, err
+		}
+		engine = append(engine, u)
+	}
+	r := &result{format: format, rows: o.rows, inputBytes: info.Size(), workers: o.workers, runs: o.runs, bentray: summary(bentray)}
+	if sql == nil {
+		return r, nil
+	}
+	total := summary(engine)
+	r.engine = &total
+	r.checkedRows, err = compareOutputs(sql, format, filepath.Join(outFolder, "survey."+format), outEngine)
+	return r, err
+}
+
+// runBentray corrects the survey into an empty folder.
+func (o options) runBentray(program, job, outFolder string) (usage, error) {
+	if err := os.RemoveAll(outFolder); err != nil {
+		return usage{}, err
+	}
+	syscall.Sync()
+	u, _, err := measure(exec.Command(program, "run", job, "--quiet", "--workers", strconv.Itoa(o.workers)))
+	return u, err
+}
+
+// runEngine corrects the survey into a file that is not there yet.
+func runEngine(sql *engine, format, input, output string) (usage, error) {
+	if err := os.Remove(output); err != nil && !errors.Is(err, os.ErrNotExist) {
+		return usage{}, err
+	}
+	syscall.Sync()
+	return sql.run(task{Do: "correct", Format: format, Input: input, Output: output})
+}
+
+// compareOutputs compares every 997th row (a prime, so that it falls on no
+// rhythm of the data). Of Parquet files the engine writes that sample as CSV.
+func compareOutputs(sql *engine, format, bentray, engine string) (int64, error) {
+	const every = 997
+	if format == "csv" {
+		return compare(bentray, engine, every)
+	}
+	folder := filepath.Dir(engine)
+	samples := []string{filepath.Join(folder, "sample-bentray.csv"), filepath.Join(folder, "sample-engine.csv")}
+	for i, path := range []string{bentray, engine} {
+		if _, err := sql.run(task{Do: "sample", Input: path, Output: samples[i], Every: every}); err != nil {
+			return 0, err
+		}
+	}
+	return compare(samples[0], samples[1], 1)
+}

@@ -1,0 +1,60 @@
+package main
+
+import (
+	"fmt"
+	"io"
+	"text/tabwriter"
+)
+
+// peakLimitMiB bounds bentray's memory at two workers, whatever the file's size.
+const peakLimitMiB = 512
+
+// floors are the least ratios of the engine's seconds to bentray's.
+var floors = map[string]float64{"csv": 3, "parquet": 2}
+
+// result is what one format's runs came to. Without an engine its usage is nil.
+type result struct {
+	format      string
+	rows        int64
+	inputBytes  int64
+	workers     int
+	runs        int
+	bentray     usage
+	engine      *usage
+	checkedRows int64
+}
+
+// ratio is how many times faster than the engine bentray is.
+func (r *result) ratio() float64 { return r.engine.seconds / r.bentray.seconds }
+
+func (r *result) print(w io.Writer) {
+	fmt.Fprintf(w, "\npulse, %s, %d points, %.0f MB in, %d workers, median of %d\n",
+		r.format, r.rows, float64(r.inputBytes)/1e6, r.workers, r.runs)
+	t := tabwriter.NewWriter(w, 0, 0, 2, ' ', tabwriter.AlignRight)
+	fmt.Fprintln(t, "\tseconds\tpoints/s\tMB/s\tCPU s\tpeak MiB\t")
+	r.line(t, "bentray", r.bentray)
+	if r.engine != nil {
+		r.line(t, "engine", *r.engine)
+	}
+	t.Flush()
+	if r.engine != nil {
+		fmt.Fprintf(w, "ratio engine/bentray %.2f (floor %g); outputs agree on %d rows\n",
+			r.ratio(), floors[r.format], r.checkedRows)
+	}
+}
+
+func (r *result) line(w io.Writer, name string, u usage) {
+	fmt.Fprintf(w, "%s\t%.2f\t%.0f\t%.1f\t%.2f\t%.0f\t\n", name, u.seconds,
+		float64(r.rows)/u.seconds, float64(r.inputBytes)/1e6/u.seconds, u.cpuSeconds, u.peakMiB)
+}
+
+// check says which promise is broken. The ratio counts only with holdFloor.
+func (r *result) check(holdFloor bool) error {
+	if r.bentray.peakMiB > peakLimitMiB {
+		return fmt.Errorf("%s: peak memory is %.0f MiB, want at most %d", r.format, r.bentray.peakMiB, peakLimitMiB)
+	}
+	if holdFloor && r.engine != nil && r.ratio() < floors[r.format] {
+		return fmt.Errorf("%s: %.2f times the engine's speed, want at least %g", r.format, r.ratio(), floors[r.format])
+	}
+	return nil
+}

@@ -1,0 +1,231 @@
+package pipeline
+
+import (
+	"context"
+	"io"
+	"math"
+	"time"
+
+	"bentray/geo"
+	"bentray/io/cloud"
+	"bentray/pipeline/job"
+)
+
+// Plan is what a run of a job would do, as far as the job, the files beside it
+// and the head of every cloud tell. Lengths are in the job's units.
+type Plan struct {
+	Run      string // fingerprint
+	Files    []PlannedFile
+	LeftOut  int // matches that are outputs of earlier runs
+	Roles    []RoleColumn
+	Heads    Heads
+	Water    [2]float64 // index of water, phase and group, referred to vacuum
+	Air      [2]float64 // the same of air
+	Corners  [4]Corner  // of the heads' bounds, where the surface does not come from the cloud
+	Cautions []string
+}
+
+// PlannedFile is one file of a plan.
+type PlannedFile struct {
+	Input, Output string
+	Points        int64 // estimated from the head where Exact is false
+	Exact         bool
+	Fresh         bool  // done already
+	Err           error // why it would fail
+}
+
+// RoleColumn says which column of the first readable file plays a role.
+type RoleColumn struct{ Role, Column string }
+
+// Heads sums up the first rows of all files.
+type Heads struct {
+	Points   int64
+	Low      [3]float64 // least x, y, z
+	High     [3]float64
+	Times    [2]time.Time // first and last, UTC; zero where there are none
+	Outcomes map[string]int64
+}
+
+// Corner is the surface at a corner of the bounds.
+type Corner struct{ X, Y, Level float64 }
+
+// MakePlan looks ahead. It writes nothing. Errors are *CallErrors; files that
+// cannot be read are in the plan with their error.
+func MakePlan(ctx context.Context, j *job.Job) (*Plan, error) {
+	inputs, leftOut, err := findInputs(j)
+	if err != nil {
+		return nil, err
+	}
+	s, err := readSurvey(ctx, j)
+	if err != nil {
+		return nil, err
+	}
+	p := &planner{survey: s, tally: newTally(), times: emptySpan()}
+	for k := range p.bounds {
+		p.bounds[k] = emptySpan()
+	}
+	p.plan = Plan{
+		Run: s.run, LeftOut: leftOut,
+		Water: [2]float64{s.optics.waterPhase, s.optics.waterGroup}, Air: [2]float64{s.optics.airPhase, s.optics.airGroup},
+	}
+	for _, in := range inputs {
+		if err := ctx.Err(); err != nil {
+			return nil, err
+		}
+		p.file(ctx, in)
+	}
+	p.finish()
+	return &p.plan, nil
+}
+
+// planner gathers a plan.
+type planner struct {
+	*survey
+	plan   Plan
+	slot   slot
+	tally  *tally
+	bounds [3]span
+	times  span
+}
+
+func (p *planner) file(ctx context.Context, in input) {
+	f := PlannedFile{Input: in.name, Output: in.target}
+	if done, err := p.fresh(ctx, in); err == nil && done != nil {
+		f.Fresh = true
+	}
+	f.Err = inFile(in.path, p.head(in, &f))
+	p.plan.Files = append(p.plan.Files, f)
+}
+
+// head corrects a file's first rows as a run would.
+func (p *planner) head(in input, f *PlannedFile) error {
+	file, err := p.openCloud(in.path)
+	if err != nil {
+		return err
+	}
+	defer file.Close()
+	r, err := newReading(p.survey, file.Columns())
+	if err != nil {
+		return err
+	}
+	l, err := newLayout(p.survey, file.Columns(), r)
+	if err != nil {
+		return err
+	}
+	if p.plan.Roles == nil {
+		p.plan.Roles = p.roles(file.Columns(), r)
+	}
+	if err := file.Begin(r.request, l.Layout, nil); err != nil {
+		return err
+	}
+	c := &p.slot.chunk
+	if err := file.Next(c); err == io.EOF {
+		f.Exact = true
+		return nil
+	} else if err != nil {
+		return err
+	}
+	if err := file.Decode(c); err != nil {
+		return err
+	}
+	p.take(c, r)
+	p.correctChunk(c, r, l, &p.slot.work, p.tally)
+	return f.count(c, file, in.bytes)
+}
+
+// count takes the points of a file's first chunk, and where that was not all
+// estimates from them how many the file has.
+func (f *PlannedFile) count(c *cloud.Chunk, file cloud.Rewriter, bytes int64) error {
+	f.Points = int64(c.Rows)
+	share := float64(c.Consumed) / float64(max(bytes, 1))
+	err := file.Next(c)
+	switch {
+	case err == io.EOF:
+		f.Exact = true
+		return nil
+	case err == nil && share > 0:
+		f.Points = int64(float64(f.Points) / share)
+	}
+	return err
+}
+
+// take widens the bounds by a chunk.
+func (p *planner) take(c *cloud.Chunk, r *reading) {
+	for k := range p.bounds {
+		p.bounds[k].addFinite(c.Numbers[k])
+	}
+	if r.time >= 0 {
+		p.times.addFinite(c.Numbers[r.time])
+	}
+}
+
+func (s *span) addFinite(values []float64) {
+	for _, v := range values {
+		if !math.IsNaN(v) && !math.IsInf(v, 0) {
+			s.add(v)
+		}
+	}
+}
+
+func (p *planner) roles(columns []cloud.Column, r *reading) []RoleColumn {
+	var roles []RoleColumn
+	add := func(role string, number int) {
+		if number >= 0 {
+			roles = append(roles, RoleColumn{role, columns[r.request.Numbers[number]].Name})
+		}
+	}
+	add("x", 0)
+	add("y", 1)
+	add("z", 2)
+	add("gps_time", r.time)
+	add("origin_x", r.origin[0])
+	add("origin_y", r.origin[1])
+	add("origin_z", r.origin[2])
+	add("surface", r.level)
+	return roles
+}
+
+func (p *planner) finish() {
+	h := &p.plan.Heads
+	h.Points, h.Outcomes = p.tally.points(), p.tally.counts()
+	if p.times.low <= p.times.high {
+		week := 0
+		if p.job.Input.Week != nil {
+			week = *p.job.Input.Week
+		}
+		if scale, err := geo.ParseTimeScale(p.job.Input.Time, week); err == nil {
+			h.Times = [2]time.Time{scale.Time(p.times.low), scale.Time(p.times.high)}
+		}
+	}
+	if p.bounds[0].low > p.bounds[0].high {
+		p.plan.Cautions = p.tally.cautions(p.survey)
+		return
+	}
+	for k, b := range p.bounds {
+		h.Low[k], h.High[k] = b.low, b.high
+	}
+	p.corners()
+	p.plan.Cautions = append(p.geometryCautions(), p.tally.cautions(p.survey)...)
+}
+
+// corners asks the surface at the corners of the bounds.
+func (p *planner) corners() {
+	x := []float64{p.bounds[0].low, p.bounds[0].high, p.bounds[0].low, p.bounds[0].high}
+	y := []float64{p.bounds[1].low, p.bounds[1].low, p.bounds[1].high, p.bounds[1].high}
+	level := make([]float64, 4)
+	switch {
+	case p.job.Surface.Level != nil:
+		fill(level, *p.job.Surface.Level)
+	case p.job.Surface.Plane != nil:
+		mx, my, slope := append([]float64{}, x...), append([]float64{}, y...), make([]float64, 4)
+		scale(mx, p.survey.plan)
+		scale(my, p.survey.plan)
+		p.plane().Fill(level, slope, make([]float64, 4), mx, my)
+		scale(level, 1/p.height)
+	default:
+		fill(level, math.NaN())
+	}
+	for i := range p.plan.Corners {
+		p.plan.Corners[i] = Corner{x[i], y[i], level[i]}
+	}
+}

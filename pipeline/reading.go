@@ -1,0 +1,139 @@
+package pipeline
+
+import (
+	"fmt"
+	"maps"
+	"slices"
+	"strconv"
+
+	"bentray/io/cloud"
+	"bentray/pipeline/job"
+)
+
+// reading says which of a file's columns are decoded, and where each stands in
+// a chunk's numbers or texts; -1 where it is not read.
+type reading struct {
+	request cloud.Request
+	xyz     [3]int // positions in the file, not in the chunk; x y z are the chunk's first three numbers
+	time    int
+	origin  [3]int
+	level   int // the surface's column
+	where   []condition
+}
+
+// condition selects the points whose value is one of a list.
+type condition struct {
+	column  int // in the chunk's texts where texts is set, else in its numbers
+	numbers []float64
+	texts   map[string]bool
+}
+
+// newReading finds the columns that a job needs in a file.
+func newReading(s *survey, columns []cloud.Column) (*reading, error) {
+	j := s.job
+	r := &reading{time: -1, origin: [3]int{-1, -1, -1}, level: -1}
+	var err error
+	if r.xyz, err = cloud.Coordinates(columns, j.Input.Columns); err != nil {
+		return nil, err
+	}
+	for _, i := range r.xyz {
+		r.number(i)
+	}
+	if err := r.findOrigins(s, columns); err != nil {
+		return nil, err
+	}
+	if j.Surface.Column != "" {
+		if r.level, err = r.need(j, columns, j.Surface.Column, "[surface] column names it"); err != nil {
+			return nil, err
+		}
+	}
+	return r, r.findConditions(j, columns)
+}
+
+// findOrigins finds what gives a pulse its ray origin.
+func (r *reading) findOrigins(s *survey, columns []cloud.Column) (err error) {
+	switch {
+	case s.job.Rays.Model != job.Pulse:
+		return nil
+	case s.trajectory != nil:
+		r.time, err = r.need(s.job, columns, "gps_time", "the trajectory is looked up by it")
+		return err
+	}
+	for k, role := range []string{"origin_x", "origin_y", "origin_z"} {
+		if r.origin[k], err = r.need(s.job, columns, role, "a pulse needs its ray origin; or give [rays] trajectory"); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+// originByTime tells whether ray origins come from the trajectory.
+func (r *reading) originByTime() bool { return r.time >= 0 }
+
+func (r *reading) findConditions(j *job.Job, columns []cloud.Column) error {
+	for _, name := range slices.Sorted(maps.Keys(j.Select.Where)) {
+		values := j.Select.Where[name]
+		i, err := cloud.FindRole(columns, name, j.Input.Columns)
+		if err != nil {
+			return err
+		}
+		if i < 0 {
+			return missing(columns, name, "[select] where names it")
+		}
+		r.where = append(r.where, r.condition(i, values))
+	}
+	return nil
+}
+
+// condition compares as numbers where all values are numbers, else as texts.
+func (r *reading) condition(column int, values []any) condition {
+	var c condition
+	for _, v := range values {
+		number, ok := v.(float64)
+		if !ok {
+			return r.textCondition(column, values)
+		}
+		c.numbers = append(c.numbers, number)
+	}
+	c.column = r.number(column)
+	return c
+}
+
+func (r *reading) textCondition(column int, values []any) condition {
+	c := condition{column: len(r.request.Texts), texts: map[string]bool{}}
+	r.request.Texts = append(r.request.Texts, column)
+	for _, v := range values {
+		switch v := v.(type) {
+		case string:
+			c.texts[v] = true
+		case float64:
+			c.texts[strconv.FormatFloat(v, 'f', -1, 64)] = true
+		}
+	}
+	return c
+}
+
+// number asks for a column as numbers and returns its place in the chunk.
+func (r *reading) number(column int) int {
+	if i := slices.Index(r.request.Numbers, column); i >= 0 {
+		return i
+	}
+	r.request.Numbers = append(r.request.Numbers, column)
+	return len(r.request.Numbers) - 1
+}
+
+// need asks for a column that the job cannot do without, by role or name.
+func (r *reading) need(j *job.Job, columns []cloud.Column, name, why string) (int, error) {
+	i, err := cloud.FindRole(columns, name, j.Input.Columns)
+	if err != nil {
+		return -1, err
+	}
+	if i < 0 {
+		return -1, missing(columns, name, why)
+	}
+	return r.number(i), nil
+}
+
+func missing(columns []cloud.Column, name, why string) error {
+	return fmt.Errorf("no column %q (%s); the columns are %s", name, why, cloud.Names(columns))
+}

@@ -1,0 +1,91 @@
+package receipt
+
+import (
+	"cmp"
+	"slices"
+	"time"
+)
+
+// Summary says what one run did to all its files. Unlike a receipt it holds
+// times and the machine's name.
+type Summary struct {
+	Run      string           `json:"run"`
+	Program  string           `json:"program"`
+	Title    string           `json:"title,omitempty"`
+	Host     string           `json:"host"`
+	Shard    string           `json:"shard,omitempty"` // I/N
+	Workers  int              `json:"workers"`
+	Started  time.Time        `json:"started"`
+	Finished time.Time        `json:"finished"`
+	Seconds  float64          `json:"seconds"`
+	Files    []FileSummary    `json:"files"` // in order of their outputs
+	Done     int              `json:"files_done"`
+	Fresh    int              `json:"files_fresh"` // done by an earlier run, and still right
+	Failed   int              `json:"files_failed"`
+	Dropped  int              `json:"files_not_done"` // interrupted
+	Rows     Rows             `json:"rows"`           // over the files that are done
+	Outcomes map[string]int64 `json:"outcomes"`
+}
+
+// Rows counts rows. Read = Written + Diverted.
+type Rows struct {
+	Read     int64 `json:"read"`
+	Written  int64 `json:"written"`
+	Diverted int64 `json:"diverted"`
+}
+
+// Status is what became of one file.
+type Status string
+
+// What can become of a file.
+const (
+	Done    Status = "done"
+	Fresh   Status = "fresh"
+	Failed  Status = "failed"
+	Dropped Status = "not_done"
+)
+
+// FileSummary is what one run did to one file.
+type FileSummary struct {
+	Input    string   `json:"input"`
+	Output   string   `json:"output"`
+	Status   Status   `json:"status"`
+	Error    string   `json:"error,omitempty"`
+	Rows     Rows     `json:"rows"`
+	Cautions []string `json:"cautions,omitempty"`
+	Seconds  float64  `json:"seconds"`
+}
+
+// Add takes the result of one file into the summary; outcomes are those of its
+// receipt.
+func (s *Summary) Add(f FileSummary, outcomes map[string]int64) {
+	s.Files = append(s.Files, f)
+	switch f.Status {
+	case Done:
+		s.Done++
+	case Fresh:
+		s.Fresh++
+	case Failed:
+		s.Failed++
+	case Dropped:
+		s.Dropped++
+	}
+	s.Rows.Read += f.Rows.Read
+	s.Rows.Written += f.Rows.Written
+	s.Rows.Diverted += f.Rows.Diverted
+	for name, n := range outcomes {
+		s.Outcomes[name] += n
+	}
+}
+
+// Close sets the end of the run and brings the files into order.
+func (s *Summary) Close() {
+	s.Finished = time.Now().UTC().Truncate(time.Millisecond)
+	s.Seconds = s.Finished.Sub(s.Started).Seconds()
+	slices.SortFunc(s.Files, func(a, b FileSummary) int { return cmp.Compare(a.Output, b.Output) })
+}
+
+// Write puts the summary at the path, whole or not at all.
+func (s *Summary) Write(path string) error {
+	return writeJSON(path, s)
+}
