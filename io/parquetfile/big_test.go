@@ -1,6 +1,7 @@
 package parquetfile
 
 import (
+	"fmt"
 	"math"
 	"os"
 	"path/filepath"
@@ -13,8 +14,8 @@ import (
 )
 
 // bigRows is enough for pages that go to the scratch file, and for new pages of
-// three columns that do.
-const bigRows = 1_500_000
+// three coordinates and six columns that do.
+const bigRows = 600_000
 
 // bigFile has one row group, and pages of all its rows.
 func bigFile(t testing.TB) (path string, z []any) {
@@ -39,9 +40,15 @@ func TestGiantPages(t *testing.T) {
 	path, z := bigFile(t)
 	folder := t.TempDir()
 	layout := cloud.Layout{XYZ: [3]int{0, 1, 2}, RawNames: rawNames, Moved: []bool{true}}
+	for k := range 6 {
+		layout.Added = append(layout.Added, cloud.Added{Name: fmt.Sprint("more", k)})
+	}
 	o := Options{ScratchDir: folder}
 	out, err := rewrite(path, o, cloud.Request{Numbers: []int{0, 1, 2}}, layout, 2, func(c *cloud.Chunk) {
 		clear(c.Class)
+		for k := range c.Added {
+			copy(c.Added[k], c.Numbers[0])
+		}
 		for k := range c.XYZ {
 			for i, v := range c.Numbers[k] {
 				c.XYZ[k][i] = 2 * v
@@ -62,7 +69,7 @@ func TestGiantPages(t *testing.T) {
 	if err := os.WriteFile(made, out, 0o600); err != nil {
 		t.Fatal(err)
 	}
-	numbers, _, err := readAll(made, o, cloud.Request{Numbers: []int{0, 1, 2, 5}})
+	numbers, _, err := readAll(made, o, cloud.Request{Numbers: []int{0, 1, 2, 5, 11}})
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -70,6 +77,9 @@ func TestGiantPages(t *testing.T) {
 		raw, isSet := z[i].(float64)
 		if numbers[0][i] != float64(i)/2 || numbers[1][i] != float64(-2*i) {
 			t.Fatalf("row %d is at %v, %v, want %v, %v", i, numbers[0][i], numbers[1][i], float64(i)/2, -2*i)
+		}
+		if numbers[4][i] != float64(i)/4 {
+			t.Fatalf("the last new column of row %d is %v, want %v", i, numbers[4][i], float64(i)/4)
 		}
 		if got := numbers[3][i]; isSet && got != raw || !isSet && !isMarked(got) {
 			t.Fatalf("z_raw of row %d is %v, want %v", i, got, z[i])
@@ -124,8 +134,8 @@ func TestAllocations(t *testing.T) {
 		}
 	}
 	step()
-	if n := testing.AllocsPerRun(20, step); n > 600 {
-		t.Errorf("%v allocations for a piece of %d rows, want at most 600", n, chunk.Rows)
+	if n := testing.AllocsPerRun(20, step); n > 150 {
+		t.Errorf("%v allocations for a piece of %d rows, want at most 150", n, chunk.Rows)
 	}
 }
 

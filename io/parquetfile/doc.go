@@ -13,10 +13,12 @@
 //
 // Next decodes the next piece of a row group, at most 64 Ki rows, page after
 // page; pages of a column follow from one another, so this is work in order, and
-// Decode has nothing left to do. It costs about a fifth of what hashing the
-// output does, which is in order too. Encode makes one page of every new
-// column. Put copies the old chunks at the first piece of a group and holds the
-// new pages until the last one, because the chunks of a group cannot be woven.
+// Decode has nothing left to do. It is not what a copy waits for: of 5 million
+// points, eight columns decode in 0.35 s (snappy; 0.5 s zstd), and Put's writing
+// with the caller's hash takes twice that, in order too. Encode makes one page
+// of every new column. Put copies the old chunks at the first piece of a group
+// and holds the new pages until the last one, because the chunks of a group
+// cannot be woven.
 //
 // # Numbers and texts
 //
@@ -52,6 +54,8 @@ const (
 
 	maxFooterBytes = 64 << 20  // footer as stored
 	maxListItems   = 1 << 20   // elements of one list in footer or page header
+	maxSmallItems  = 1 << 19   // structures and strings in footer or page header, and
+	itemBytes      = 12        // one more for so many bytes: a chunk's description has 6 in 100
 	maxHeaderBytes = 1 << 20   // header of one page
 	maxPageBytes   = 128 << 20 // one page, compressed or not
 	maxDictBytes   = 32 << 20  // one dictionary page, decompressed

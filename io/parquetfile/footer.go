@@ -1,14 +1,11 @@
 package parquetfile
 
 import (
-	"bytes"
-	"context"
 	"encoding/binary"
 	"errors"
 	"fmt"
 	"io"
 
-	"github.com/apache/thrift/lib/go/thrift"
 	"github.com/xitongsys/parquet-go/parquet"
 )
 
@@ -82,30 +79,4 @@ func readAt(r io.ReaderAt, b []byte, off int64) error {
 		return fmt.Errorf("ends at byte %d, want %d bytes more; did it shrink while it was read?", off+int64(n), len(b)-n)
 	}
 	return err
-}
-
-var limits = &thrift.TConfiguration{
-	MaxMessageSize:   maxFooterBytes,
-	MaxFrameSize:     maxFooterBytes,
-	MaxContainerSize: maxListItems,
-}
-
-// readThrift reads a structure from the beginning of b and returns its length.
-func readThrift(b []byte, s thrift.TStruct) (int, error) {
-	buffer := &thrift.TMemoryBuffer{Buffer: bytes.NewBuffer(b)}
-	if err := s.Read(context.Background(), thrift.NewTCompactProtocolConf(buffer, limits)); err != nil {
-		return 0, err
-	}
-	return len(b) - buffer.Len(), nil
-}
-
-// appendThrift writes a structure behind b.
-func appendThrift(b []byte, s thrift.TStruct) ([]byte, error) {
-	buffer := &thrift.TMemoryBuffer{Buffer: bytes.NewBuffer(b)}
-	ctx := context.Background()
-	p := thrift.NewTCompactProtocolConf(buffer, limits)
-	if err := s.Write(ctx, p); err != nil {
-		return b, err
-	}
-	return buffer.Bytes(), p.Flush(ctx)
 }
