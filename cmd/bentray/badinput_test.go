@@ -88,7 +88,7 @@ var badClouds = []badInput{
 	{name: "dangling link", files: map[string]string{"raw/b.csv": "-> gone.csv"}, want: `raw/b.csv: no such file or directory`},
 	{name: "UTF-16", files: map[string]string{"raw/b.csv": "\xff\xfex\x00"}, want: `raw/b.csv is UTF-16 text, want UTF-8; convert it first`},
 	{name: "no gzip", files: map[string]string{"raw/b.csv.gz": "x,y,z\n"}, old: "*.csv", new: "*.csv*", want: `raw/b.csv.gz: gzip data are damaged or cut short (unexpected EOF); fetch the file again`},
-	{name: "unknown format", files: map[string]string{"raw/b.dat": "x,y,z\n"}, old: "*.csv", new: "*", want: `raw/b.dat: unknown kind of file ".dat", want .csv .tsv .txt .xyz or .asc (also with .gz or .zst)`},
+	{name: "unknown format", files: map[string]string{"raw/b.dat": "x,y,z\n"}, old: "*.csv", new: "*", want: `raw/b.dat: unknown kind of file ".dat", want .parquet, or .csv .tsv .txt .xyz or .asc (these also with .gz or .zst)`},
 }
 
 // lay writes the files of a case into a new folder and goes there.
