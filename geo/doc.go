@@ -1,6 +1,7 @@
 // Package geo answers where and when for the points of a cloud: the water
-// surface at a plan position, the polygon that holds it, the sensor's place at a
-// time, and what a time or a length of a file means.
+// surface at a plan position, the polygon that holds it, the sensor's place and
+// the level of the tide at a time, the temperature and salinity of the water there,
+// and what a time or a length of a file means.
 //
 // # Model
 //
@@ -16,7 +17,10 @@
 // Polygon coordinates reach 1e12 at most. A point with a NaN or infinite
 // coordinate lies in no polygon, a time that is NaN or outside the records has no
 // position, and a GPS time before 1980-01-06 has no UTC: nothing is ever replaced
-// by the nearest known value.
+// by the nearest known value. A gauge has no level outside its records or in a gap,
+// a separation none outside the cells that have their four nodes; added to a
+// surface they leave NaN, no surface. Only stations hold their first and last record,
+// for the time that is asked for.
 //
 // # Accuracy
 //
@@ -25,13 +29,20 @@
 // TestTrajectoryPrecision). Polygons are tested with the coordinates as they stand;
 // the index gives the answer of the plain test over all edges
 // (TestFindAgainstPlainTest). UTC holds to the rounding of a time near 1.5e9 s,
-// 0.12 microseconds (TestPublishedPairs, TestTimeScaleRoundTrip).
+// 0.12 microseconds (TestPublishedPairs, TestTimeScaleRoundTrip). Gauges hold to the
+// rounding of their levels (TestGaugePrecision, TestGaugeAgainstCloudTimes), a
+// separation to 1e-12 m of a bilinear one (TestSeparationBilinear). Stations give the
+// water of the plain computation over all stations within 1e-10 (TestStationsPlain),
+// and the same to the bit whatever points came before (TestStationsChunk).
 //
 // # Sources
 //
 //   - Butler, H. and others, 2016. The GeoJSON Format. RFC 7946, sections 3.1 and 4.
 //   - IERS Earth Orientation Centre. Bulletin C, numbers to 2017-01-01: the leap
 //     seconds.
+//   - Shepard, D., 1968. A two-dimensional interpolation function for irregularly-spaced
+//     data. Proceedings of the 23rd ACM National Conference, 517-524: weights by
+//     inverse distance.
 //   - Shimrat, M., 1962. Algorithm 112: position of point relative to polygon.
 //     Communications of the ACM 5(8), 434: the even-odd rule.
 //   - NIST Special Publication 811 (2008), appendix B.6: the foot and the US
