@@ -59,7 +59,7 @@ func MakePlan(ctx context.Context, j *job.Job) (*Plan, error) {
 	if err != nil {
 		return nil, err
 	}
-	p := &planner{survey: s, tally: newTally(), clock: emptySpan()}
+	p := &planner{survey: s, known: readHistory(j.Resolve(j.Output.Folder)), tally: newTally(), clock: emptySpan()}
 	for k := range p.bounds {
 		p.bounds[k] = emptySpan()
 	}
@@ -85,11 +85,12 @@ type planner struct {
 	tally  *tally
 	bounds [3]span
 	clock  span // of gps_time
+	known  history
 }
 
 func (p *planner) file(ctx context.Context, in input) {
 	f := PlannedFile{Input: in.name, Output: in.target}
-	if done, err := p.fresh(ctx, in); err == nil && done != nil {
+	if done, err := p.fresh(ctx, in, p.known); err == nil && done != nil {
 		f.Fresh = true
 	}
 	f.Err = inFile(in.path, p.head(in, &f))

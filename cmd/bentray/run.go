@@ -88,6 +88,9 @@ func printSummary(s *streams, summary *receipt.Summary, j *job.Job) {
 	if summary.Rows.Diverted > 0 {
 		fmt.Fprintf(s.out, "  %s of %s rows could not be read and were diverted\n", grouped(summary.Rows.Diverted), grouped(summary.Rows.Read))
 	}
+	if summary.LeftOut > 0 {
+		fmt.Fprintf(s.out, "  %d matches of the patterns left out: outputs of earlier runs\n", summary.LeftOut)
+	}
 	printCautions(s, summary)
 	fmt.Fprintf(s.out, "output: %s (%.1f s)\n", j.Resolve(j.Output.Folder), summary.Seconds)
 }
