@@ -145,7 +145,7 @@ func (w *rewriting) commit(whole receipt.Input) (*receipt.Receipt, error) {
 		Outcomes: w.tally.counts(), Ranges: w.tally.ranges(w.survey), Cautions: w.tally.cautions(w.survey),
 	}
 	if w.rows.Diverted > 0 {
-		r.Cautions = append(r.Cautions, fmt.Sprintf("%d rows could not be read and were diverted to %s%s", w.rows.Diverted, w.in.target, rejectsSuffix))
+		r.Cautions = append(r.Cautions, fmt.Sprintf("%d of %d rows could not be read and were diverted to %s%s", w.rows.Diverted, w.rows.Read, w.in.target, rejectsSuffix))
 	}
 	return r, r.Write(w.in.output)
 }

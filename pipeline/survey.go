@@ -7,7 +7,11 @@ import (
 	"io/fs"
 	"os"
 	"path/filepath"
+	"slices"
 	"strings"
+	"time"
+
+	"github.com/paulmach/orb"
 
 	"bentray/correct"
 	"bentray/correct/medium"
@@ -35,7 +39,10 @@ type survey struct {
 	optics     indices
 	trajectory *geo.Trajectory   // nil: origins come from the cloud
 	extent     *geo.PolygonIndex // nil: no limit; in the cloud's own units
-	cautions   []string          // that hold for every file
+
+	trajectoryInfo *TrajectoryInfo
+	extentBound    orb.Bound
+	cautions       []string // that hold for every file
 }
 
 // indices are the refractive indices of a job, referred to vacuum.
@@ -67,8 +74,8 @@ func readSurvey(ctx context.Context, j *job.Job) (*survey, error) {
 
 func (s *survey) readFiles(ctx context.Context) error {
 	return errors.Join(
-		s.auxiliaryFile(ctx, "trajectory", s.job.Rays.Trajectory, s.readTrajectory),
-		s.auxiliaryFile(ctx, "extent", s.job.Extent.Polygons, s.readExtent),
+		s.auxiliaryFile(ctx, "trajectory", "[rays] trajectory", s.job.Rays.Trajectory, s.readTrajectory),
+		s.auxiliaryFile(ctx, "extent", "[extent] polygons", s.job.Extent.Polygons, s.readExtent),
 	)
 }
 
@@ -138,11 +145,28 @@ func (s *survey) readTrajectory(path string) error {
 	if i, _ := cloud.Find(f.Columns(), "gps_time"); isTimestamp(f.Columns()[i]) {
 		s.fromUTC(columns[0])
 	}
+	s.trajectoryInfo = s.describe(columns)
 	scale(columns[1], s.plan)
 	scale(columns[2], s.plan)
 	scale(columns[3], s.height)
 	s.trajectory, err = geo.NewTrajectory(columns[0], columns[1], columns[2], columns[3], s.job.Rays.MaxGap)
 	return err
+}
+
+// describe sums up a trajectory's columns gps_time, x, y, z, in the job's units.
+func (s *survey) describe(columns [][]float64) *TrajectoryInfo {
+	t := columns[0]
+	if len(t) == 0 {
+		return nil
+	}
+	info := &TrajectoryInfo{Records: len(t), Times: [2]time.Time{s.times.Time(t[0]), s.times.Time(t[len(t)-1])}}
+	for k, column := range columns[1:] {
+		info.Low[k], info.High[k] = slices.Min(column), slices.Max(column)
+	}
+	for i := 1; i < len(t); i++ {
+		info.Gap = max(info.Gap, t[i]-t[i-1])
+	}
+	return info
 }
 
 func (s *survey) readExtent(path string) error {
@@ -154,24 +178,27 @@ func (s *survey) readExtent(path string) error {
 	if err != nil {
 		return err
 	}
-	s.extent = geo.NewPolygonIndex(polygons)
+	s.extent, s.extentBound = geo.NewPolygonIndex(polygons), orb.MultiPolygon(polygons).Bound()
 	return nil
 }
 
 // auxiliaryFile hashes and reads a file that the job names beside its clouds, if
 // it names one.
-func (s *survey) auxiliaryFile(ctx context.Context, use, name string, read func(path string) error) error {
+func (s *survey) auxiliaryFile(ctx context.Context, use, key, name string, read func(path string) error) error {
 	if name == "" {
 		return nil
 	}
 	path := s.job.Resolve(name)
 	before, err := os.Stat(path)
 	if err != nil {
-		return fmt.Errorf("%s: %s: %w", s.job.Path, use, inFile(path, err))
+		return fmt.Errorf("%s: %s: %w", s.job.Path, key, inFile(path, err))
+	}
+	if !before.Mode().IsRegular() {
+		return fmt.Errorf("%s: %s: %s is not a regular file", s.job.Path, key, path)
 	}
 	bytes, sum, err := receipt.Hash(ctx, path)
 	if err != nil {
-		return fmt.Errorf("%s: %s: %w", s.job.Path, use, inFile(path, err))
+		return fmt.Errorf("%s: %s: %w", s.job.Path, key, inFile(path, err))
 	}
 	s.auxiliary = append(s.auxiliary, receipt.Input{Use: use, File: receipt.File{Path: filepath.ToSlash(name), Bytes: bytes, SHA256: sum}})
 	if err := read(path); err != nil {
