@@ -11,28 +11,40 @@ const (
 	levelRise   = 30   // the highest point of a shallow cloud lies no deeper than this
 )
 
-// geometryCautions looks at the bounds for the usual mistakes.
-func (p *planner) geometryCautions() []string {
+// geometryCautions looks at the bounds of raw points for the usual mistakes.
+func (t *tally) geometryCautions(s *survey) []string {
 	var cautions []string
 	say := func(format string, args ...any) { cautions = append(cautions, fmt.Sprintf(format, args...)) }
-	x, y, z := p.bounds[0], p.bounds[1], p.bounds[2]
+	x, y, z := t.bounds[0], t.bounds[1], t.bounds[2]
+	if x.isEmpty() || y.isEmpty() || z.isEmpty() {
+		return nil
+	}
 	if math.Max(math.Abs(x.low), math.Abs(x.high)) <= 180 && math.Max(math.Abs(y.low), math.Abs(y.high)) <= 90 {
 		say("all x lie within 180 and all y within 90: these look like degrees; coordinates must be projected lengths")
 	}
-	width, length := x.high-x.low, y.high-y.low
-	level := p.job.Surface.Level
-	if level == nil {
-		return cautions
+	if e := s.extentBound; s.extent != nil && (e.Max[0] < x.low || e.Min[0] > x.high || e.Max[1] < y.low || e.Min[1] > y.high) {
+		say("the polygons (x %.1f to %.1f, y %.1f to %.1f) do not meet the points (x %.1f to %.1f, y %.1f to %.1f); are both in one projected system?",
+			e.Min[0], e.Max[0], e.Min[1], e.Max[1], x.low, x.high, y.low, y.high)
 	}
-	if extent := math.Max(width, length) * p.survey.plan; extent > levelExtent {
+	if level := s.job.Surface.Level; level != nil {
+		cautions = append(cautions, s.levelCautions(*level, math.Max(x.high-x.low, y.high-y.low)*s.plan, z)...)
+	}
+	return cautions
+}
+
+// levelCautions looks at one constant level; extent is in metres, level and
+// heights are in the job's unit.
+func (s *survey) levelCautions(level, extent float64, z span) (cautions []string) {
+	say := func(format string, args ...any) { cautions = append(cautions, fmt.Sprintf(format, args...)) }
+	if extent > levelExtent {
 		say("one constant level over %.1f km: an ellipsoidal level is not level over such a distance; use a plane, or heights above a geoid", extent/1000)
 	}
-	unit := p.job.Input.VerticalUnit
+	unit := s.job.Input.VerticalUnit
 	switch {
-	case *level <= z.low:
-		say("the level %g lies %.1f %s below the lowest point: no point would be under water; are level and cloud in one vertical reference?", *level, z.low-*level, unit)
-	case (*level-z.high)*p.height > levelRise:
-		say("the level %g lies %.1f %s above the highest point: far for a shallow cloud; are level and cloud in one vertical reference?", *level, *level-z.high, unit)
+	case level <= z.low:
+		say("the level %g lies %.1f %s below the lowest point: no point would be under water; are level and cloud in one vertical reference?", level, z.low-level, unit)
+	case (level-z.high)*s.height > levelRise:
+		say("the level %g lies %.1f %s above the highest point: far for a shallow cloud; are level and cloud in one vertical reference?", level, level-z.high, unit)
 	}
 	return cautions
 }

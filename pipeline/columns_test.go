@@ -44,23 +44,25 @@ func outcomesJob(surface, provenance string) string {
 		"[select.where]\nclassification = [2]\n[extent]\npolygons = \"water.geojson\"\n[surface]\n" + surface + "\n[rays]\nmodel = \"pulse\"\n"
 }
 
-func correctOutcomes(t *testing.T, jobText string) table {
+// correctOutcomes returns the raw cloud and its output as tables.
+func correctOutcomes(t *testing.T, format, jobText string) (raw, got table) {
 	t.Helper()
-	folder := t.TempDir()
-	files{"raw/a.csv": outcomesCloud, "water.geojson": outcomesPolygon}.write(t, folder)
-	runJob(t, loadJob(t, folder, jobText), Options{})
-	return readTable(t, readFile(t, folder, "true/a.csv"))
+	folder, data := t.TempDir(), encode(t, format, outcomesCloud)
+	files{"raw/a." + format: data, "water.geojson": outcomesPolygon}.write(t, folder)
+	runJob(t, loadJob(t, folder, strings.Replace(jobText, "*.csv", "*."+format, 1)), Options{})
+	return decode(t, format, data), decode(t, format, readFile(t, folder, "true/a."+format))
 }
 
 func TestOutcomesByPrecedence(t *testing.T) {
-	got := correctOutcomes(t, outcomesJob(`column = "tide"`, "full"))
-	if outcomes := got.column(t, "outcome"); !slices.Equal(outcomes, outcomesWant) {
-		t.Errorf("outcomes are %q, want %q", outcomes, outcomesWant)
-	}
-	raw := readTable(t, outcomesCloud)
-	for i, outcome := range outcomesWant {
-		if was, is := raw.rows[i], got.rows[i][:len(raw.names)]; outcome != "corrected" && !slices.Equal(is, was) {
-			t.Errorf("row %d (%s) is %q, want it to repeat %q", i+1, outcome, is, was)
+	for _, format := range formats {
+		raw, got := correctOutcomes(t, format, outcomesJob(`column = "tide"`, "full"))
+		if outcomes := got.column(t, "outcome"); !slices.Equal(outcomes, outcomesWant) {
+			t.Errorf("%s: outcomes are %q, want %q", format, outcomes, outcomesWant)
+		}
+		for i, outcome := range outcomesWant {
+			if was, is := raw.rows[i], got.rows[i][:len(raw.names)]; outcome != "corrected" && !slices.Equal(is, was) {
+				t.Errorf("%s: row %d (%s) is %q, want it to repeat %q", format, i+1, outcome, is, was)
+			}
 		}
 	}
 }
@@ -97,38 +99,48 @@ var outcomeLetters = map[string]string{"corrected": "c", "dry": "d", "grazing": 
 
 // What was not computed is empty, whatever the kind of surface.
 func TestFullColumnsHoldWhatWasComputed(t *testing.T) {
-	raw := readTable(t, outcomesCloud)
-	for _, surface := range []string{"level = 0", `column = "tide"`, "plane = { level = 0, at = [5, 6], slope_x = 0, slope_y = 0 }"} {
-		got := correctOutcomes(t, outcomesJob(surface, "full"))
-		want := slices.Clone(raw.names)
+	for _, format := range formats {
+		for _, surface := range []string{"level = 0", `column = "tide"`, "plane = { level = 0, at = [5, 6], slope_x = 0, slope_y = 0 }"} {
+			t.Run(format+", "+surface, func(t *testing.T) {
+				raw, got := correctOutcomes(t, format, outcomesJob(surface, "full"))
+				checkFullColumns(t, raw, got)
+			})
+		}
+	}
+}
+
+func checkFullColumns(t *testing.T, raw, got table) {
+	t.Helper()
+	want := slices.Clone(raw.names)
+	for _, c := range fullColumns {
+		want = append(want, c.name)
+	}
+	if !slices.Equal(got.names, want) {
+		t.Fatalf("columns are %q, want %q", got.names, want)
+	}
+	for i, outcome := range got.column(t, "outcome") {
+		letter, ok := outcomeLetters[outcome]
+		if !ok {
+			continue // invalid: x_raw may be empty itself
+		}
 		for _, c := range fullColumns {
-			want = append(want, c.name)
-		}
-		if !slices.Equal(got.names, want) {
-			t.Fatalf("%s: columns are %q, want %q", surface, got.names, want)
-		}
-		for i, outcome := range got.column(t, "outcome") {
-			letter, ok := outcomeLetters[outcome]
-			if !ok {
-				continue // invalid: x_raw may be empty itself
-			}
-			for _, c := range fullColumns {
-				if has := got.text(t, i, c.name) != ""; has != strings.Contains(c.has, letter) {
-					t.Errorf("%s: row %d (%s): %s is %q", surface, i+1, outcome, c.name, got.text(t, i, c.name))
-				}
+			if has := got.text(t, i, c.name) != ""; has != strings.Contains(c.has, letter) {
+				t.Errorf("row %d (%s): %s is %q", i+1, outcome, c.name, got.text(t, i, c.name))
 			}
 		}
 	}
 }
 
 func TestLeanColumns(t *testing.T) {
-	got := correctOutcomes(t, outcomesJob(`column = "tide"`, "lean"))
-	want := append(readTable(t, outcomesCloud).names, "x_raw", "y_raw", "z_raw", "depth", "outcome", "run")
-	if !slices.Equal(got.names, want) {
-		t.Errorf("columns are %q, want %q", got.names, want)
-	}
-	if outcomes := got.column(t, "outcome"); !slices.Equal(outcomes, outcomesWant) {
-		t.Errorf("outcomes are %q, want %q", outcomes, outcomesWant)
+	for _, format := range formats {
+		raw, got := correctOutcomes(t, format, outcomesJob(`column = "tide"`, "lean"))
+		want := append(raw.names, "x_raw", "y_raw", "z_raw", "depth", "outcome", "run")
+		if !slices.Equal(got.names, want) {
+			t.Errorf("%s: columns are %q, want %q", format, got.names, want)
+		}
+		if outcomes := got.column(t, "outcome"); !slices.Equal(outcomes, outcomesWant) {
+			t.Errorf("%s: outcomes are %q, want %q", format, outcomes, outcomesWant)
+		}
 	}
 }
 
@@ -215,24 +227,39 @@ func TestSelect(t *testing.T) {
 
 func TestCautionsOfAFile(t *testing.T) {
 	rest := tinyJob(`"raw/*.csv"`, "true")
+	north := strings.Replace(tiny, "5,6,-10,5,6,400", "500005,6000006,-10,500005,6000006,400", 1)
+	degrees := "all x lie within 180 and all y within 90: these look like degrees; coordinates must be projected lengths"
+	polygon := "the polygons (x 0.0 to 9.0, y 0.0 to 9.0) do not meet the points (x 500005.0 to 500005.0, y 6000006.0 to 6000006.0); are both in one projected system?"
 	for _, c := range []struct {
 		name, cloud, job string
 		want             []string
 	}{
-		{"none", tiny, rest, []string{}},
+		{"none", north, rest, []string{}},
+		{"degrees", tiny, rest, []string{degrees}},
+		{"polygons elsewhere", north, rest + "[extent]\npolygons = \"water.geojson\"\n", []string{polygon, "no point was corrected"}},
+		{"one level over 3 km", north + "503005,6000006,-10,503005,6000006,400\n", rest, []string{
+			"one constant level over 3.0 km: an ellipsoidal level is not level over such a distance; use a plane, or heights above a geoid",
+		}},
+		{"origin in the water", north + "500005,6000006,-10,500005,6000006,-400\n500005,6000006,-10,,,\n", rest, []string{
+			"1 of 3 points have no ray origin: an origin column is empty there",
+			"1 of 3 points have a ray origin that is not above the water: are origins and cloud in one system and unit?",
+		}},
 		{"no rows", "x,y,z,origin_x,origin_y,origin_z\n", rest, []string{"the file holds no points"}},
-		{"all dry", strings.Replace(tiny, "-10", "10", 1), rest, []string{"no point was corrected"}},
-		{"invalid and grazing", tiny + "5,,-1,5,6,400\n5,6,-1,5000,6,400\n", rest, []string{
+		{"all dry", strings.Replace(north, "-10", "10", 1), rest, []string{
+			"the level 0 lies 10.0 m below the lowest point: no point would be under water; are level and cloud in one vertical reference?",
+			"no point was corrected",
+		}},
+		{"invalid and grazing", north + "500005,,-1,5,6,400\n500005,6000006,-1,505000,6000006,400\n", rest, []string{
 			"1 of 3 points have no finite coordinates",
 			"1 of 3 points were seen at more than max_incidence from the surface normal",
 		}},
-		{"diverted", tiny + "1\n", strings.Replace(rest, "[output]", "bad_rows = \"divert\"\n[output]", 1), []string{
-			"1 rows could not be read and were diverted to a.csv.rejects.csv",
+		{"diverted", north + "1\n", strings.Replace(rest, "[output]", "bad_rows = \"divert\"\n[output]", 1), []string{
+			"1 of 2 rows could not be read and were diverted to a.csv.rejects.csv",
 		}},
-		{"beyond the formula's published range", tiny, strings.Replace(rest, "34.9", "40", 1), []string{
+		{"beyond the formula's published range", north, strings.Replace(rest, "34.9", "40", 1), []string{
 			"the water (17.5 degrees C, salinity 40, 532 nm) is outside the published range of quan-fry; its index is an extension of the formula",
 		}},
-		{"pressure to no effect", tiny, strings.Replace(rest, "salinity", "pressure_dbar = 5\nsalinity", 1), []string{
+		{"pressure to no effect", north, strings.Replace(rest, "salinity", "pressure_dbar = 5\nsalinity", 1), []string{
 			"pressure_dbar = 5 has no effect: quan-fry has no pressure term",
 		}},
 	} {

@@ -39,7 +39,7 @@ func (s *survey) correctChunk(c *cloud.Chunk, r *reading, l *layout, w *workspac
 	correct.MarkDry(w.out, &w.result, w.raw, w.planes)
 	s.bend(w, c, r)
 
-	t.add(w)
+	t.add(w, c, r)
 	s.toUnits(c, w)
 }
 

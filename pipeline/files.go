@@ -33,15 +33,13 @@ type input struct {
 // findInputs returns the files that the job's patterns name, ordered by their
 // outputs. A file keeps the sub-folders below the fixed part of the first
 // pattern that names it. Outputs of earlier runs are left out and counted: what
-// has a receipt, and what a pattern reaches in the output folder below it, for a
-// killed run may leave an output there without its receipt.
+// has a receipt, and in the output folder what a killed run left without one.
 func findInputs(j *job.Job) (inputs []input, leftOut int, err error) {
 	folder := j.Resolve(j.Output.Folder)
 	seen := map[string]bool{}
 	for _, pattern := range j.Input.Files {
 		fixed, rest := doublestar.SplitPattern(filepath.ToSlash(pattern))
 		start := j.Resolve(fixed)
-		reached := !within(folder, start) // the output folder may be below the pattern
 		matches, err := match(start, rest)
 		if err != nil {
 			return nil, 0, callErrorf("%s: [input] files: %q %w", j.Path, pattern, err)
@@ -52,7 +50,7 @@ func findInputs(j *job.Job) (inputs []input, leftOut int, err error) {
 				continue
 			}
 			seen[path] = true
-			if isOutput(path) || reached && within(folder, path) {
+			if hasReceipt(path) || within(folder, path) && (isOwn(path) || strings.HasSuffix(path, rejectsSuffix)) {
 				leftOut++
 				continue
 			}
@@ -85,12 +83,6 @@ func match(folder, pattern string) ([]string, error) {
 	return matches, nil
 }
 
-// isOutput tells a file that an earlier run wrote, by the receipt beside it.
-func isOutput(path string) bool {
-	_, err := os.Stat(strings.TrimSuffix(path, rejectsSuffix) + receipt.Suffix)
-	return err == nil
-}
-
 // newInput describes a file, which may turn out not to be readable.
 func newInput(j *job.Job, path, output, target string) input {
 	in := input{path: path, name: filepath.ToSlash(relative(j.Dir, path)), output: output, target: target}
@@ -115,34 +107,53 @@ func relative(folder, path string) string {
 // within tells whether a path is the folder or below it.
 func within(folder, path string) bool { return filepath.IsLocal(relative(folder, path)) }
 
-// checkOutputs refuses two inputs with one output, and an output that is an
-// input, one of the job's other files or the job file, and a file for a folder.
-// Inputs are ordered by their targets.
+// checkOutputs refuses a file in the place of the output folder, two inputs that
+// would write one file, and an output in the place of an input, of another file
+// of the job, or of anything that bentray did not write.
 func checkOutputs(j *job.Job, inputs []input) error {
 	if info, err := os.Stat(j.Resolve(j.Output.Folder)); err == nil && !info.IsDir() {
 		return callErrorf("%s: [output] folder %q is a file, want a folder", j.Path, j.Output.Folder)
 	}
-	for i := 1; i < len(inputs); i++ {
-		a, b := inputs[i-1], inputs[i]
-		if a.target == b.target {
-			return callErrorf("%s: %s and %s would both be written to %s; give them different names, or run them as two jobs", j.Path, a.name, b.name, a.output)
-		}
-	}
-	byPath := map[string]bool{}
+	raw, writer := map[string]bool{}, map[string]string{}
 	for _, in := range inputs {
-		byPath[in.path] = true
-	}
-	for _, in := range inputs {
-		if byPath[in.output] || sameFile(in.path, in.output) {
-			return callErrorf("%s: the output %s would overwrite an input; set [output] folder to another folder", j.Path, in.output)
-		}
-		for _, other := range []string{j.Path, j.Resolve(j.Rays.Trajectory), j.Resolve(j.Extent.Polygons)} {
-			if sameFile(other, in.output) {
-				return callErrorf("%s: the output %s would overwrite %s; set [output] folder to another folder", j.Path, in.output, other)
+		raw[in.path] = true
+		for _, path := range in.writes() {
+			if other, taken := writer[path]; taken {
+				return callErrorf("%s: %s and %s would both be written to %s; give them different names, or run them as two jobs", j.Path, other, in.name, path)
 			}
+			writer[path] = in.name
+		}
+	}
+	for _, in := range inputs {
+		if err := checkOverInput(j, in, raw); err != nil {
+			return err
+		}
+	}
+	for _, in := range inputs {
+		if exists(in.output) && !isOwn(in.output) {
+			return callErrorf("%s: %s is there already and no output of bentray; move it, or %s", j.Path, in.output, otherFolder)
 		}
 	}
 	return nil
+}
+
+const otherFolder = "set [output] folder to another folder"
+
+func checkOverInput(j *job.Job, in input, raw map[string]bool) error {
+	if raw[in.output] || sameFile(in.path, in.output) {
+		return callErrorf("%s: the output %s would overwrite an input; %s", j.Path, in.output, otherFolder)
+	}
+	for _, other := range []string{j.Path, j.Resolve(j.Rays.Trajectory), j.Resolve(j.Extent.Polygons)} {
+		if sameFile(other, in.output) {
+			return callErrorf("%s: the output %s would overwrite %s; %s", j.Path, in.output, other, otherFolder)
+		}
+	}
+	return nil
+}
+
+// writes lists the files that an input may lead to.
+func (in *input) writes() []string {
+	return []string{in.output, in.output + receipt.Suffix, in.output + rejectsSuffix}
 }
 
 func sameFile(a, b string) bool {

@@ -115,6 +115,8 @@ func TestFindInputs(t *testing.T) {
 		{"braces", `"raw/{a,c}.csv"`, "true", []string{"raw/a.csv", "raw/b.csv", "raw/c.csv"}, []string{"raw/a.csv -> a.csv", "raw/c.csv -> c.csv"}, 0},
 		{"outputs of another job, by their receipt", `"**/*.csv"`, "true", []string{"raw/a.csv", "old/a.csv", "old/a.csv.receipt.json", "old/a.csv.rejects.csv"}, []string{"raw/a.csv -> raw/a.csv"}, 2},
 		{"an output that a killed run left without receipt", `"**/*.csv"`, "true", []string{"raw/a.csv", "true/raw/a.csv"}, []string{"raw/a.csv -> raw/a.csv"}, 1},
+		{"rejects that a killed run left without receipt", `"**/*.csv"`, "true", []string{"raw/a.csv", "true/raw/a.csv.rejects.csv"}, []string{"raw/a.csv -> raw/a.csv"}, 1},
+		{"a raw cloud in the output folder", `"out/raw/*.csv"`, "out", []string{"out/raw/a.csv"}, []string{"out/raw/a.csv -> a.csv"}, 0},
 		{"a folder with the name of a cloud is no cloud", `"raw/**/*.csv"`, "true", []string{"raw/a.csv", "raw/b.csv/part.csv"}, []string{"raw/a.csv -> a.csv", "raw/b.csv/part.csv -> b.csv/part.csv"}, 0},
 	} {
 		t.Run(c.name, func(t *testing.T) {
@@ -122,6 +124,9 @@ func TestFindInputs(t *testing.T) {
 			f := files{}
 			for _, name := range c.files {
 				f[name] = tiny
+				if strings.HasPrefix(name, "true/") {
+					f[name] = "x,y,z,outcome,run\n"
+				}
 			}
 			f.write(t, folder)
 			inputs, leftOut, err := findInputs(loadJob(t, folder, tinyJob(c.patterns, c.folder)))
@@ -163,13 +168,17 @@ func TestOutputOverInput(t *testing.T) {
 	for _, c := range []struct{ name, job, want string }{
 		{"the cloud itself", tinyJob(`"raw/*.csv"`, "raw"), "the output raw/a.csv would overwrite an input"},
 		{"the cloud itself through a link", tinyJob(`"raw/*.csv"`, "linked"), "the output linked/a.csv would overwrite an input"},
-		{"another cloud", tinyJob(`"raw/*.csv", "a.csv"`, "."), "a.csv would both be written to a.csv"},
+		{"two clouds to one name", tinyJob(`"raw/*.csv", "a.csv"`, "."), "a.csv would both be written to a.csv"},
+		{"another cloud", tinyJob(`"flights/*.csv", "sub/flight.csv"`, "sub"), "both be written to sub/flight.csv"},
+		{"another cloud that goes elsewhere", tinyJob(`"flights/*.csv", "{sub,none}/flight.csv"`, "."), "the output sub/flight.csv would overwrite an input"},
+		{"the rejects of another", tinyJob(`"pair/*"`, "true"), "a.csv and pair/a.csv.rejects.csv would both be written to true/a.csv.rejects.csv"},
+		{"what is not bentray's", tinyJob(`"raw/*.csv"`, "notes"), "notes/a.csv is there already and no output of bentray"},
 		{"the trajectory", tinyJob(`"flights/*.csv"`, ".") + "trajectory = \"flight.csv\"\n", "the output flight.csv would overwrite flight.csv"},
 		{"the polygons", tinyJob(`"flights/*.csv"`, "sub") + "[extent]\npolygons = \"sub/flight.csv\"\n", "the output sub/flight.csv would overwrite sub/flight.csv"},
 	} {
 		t.Run(c.name, func(t *testing.T) {
 			folder := t.TempDir()
-			files{"raw/a.csv": tiny, "a.csv": tiny, "flight.csv": "gps_time,x,y,z\n", "flights/flight.csv": tiny, "sub/flight.csv": polygon}.write(t, folder)
+			files{"raw/a.csv": tiny, "a.csv": tiny, "flight.csv": "gps_time,x,y,z\n", "flights/flight.csv": tiny, "sub/flight.csv": polygon, "notes/a.csv": "day,remark\n1,calm\n", "pair/a.csv": tiny, "pair/a.csv.rejects.csv": tiny}.write(t, folder)
 			if err := os.Symlink("raw", filepath.Join(folder, "linked")); err != nil {
 				t.Fatal(err)
 			}

@@ -2,6 +2,7 @@ package pipeline
 
 import (
 	"fmt"
+	"os"
 	"path/filepath"
 	"strings"
 
@@ -16,6 +17,9 @@ func IsCloud(path string) bool { return csvfile.IsName(path) || parquetfile.IsNa
 
 // open opens a table in the format that its name tells.
 func open(path string, csv csvfile.Options, parquet parquetfile.Options) (cloud.Rewriter, error) {
+	if info, err := os.Stat(path); err == nil && !info.Mode().IsRegular() {
+		return nil, fmt.Errorf("%s: is not a regular file", path)
+	}
 	switch {
 	case csvfile.IsName(path):
 		return csvfile.Open(path, csv)

@@ -76,7 +76,7 @@ func runJob(t *testing.T, j *job.Job, o Options) *receipt.Summary {
 func correctText(t *testing.T, cloud, jobText string) (string, *receipt.Receipt) {
 	t.Helper()
 	folder := t.TempDir()
-	files{"raw/a.csv": cloud}.write(t, folder)
+	files{"raw/a.csv": cloud, "water.geojson": polygonOf(0, 0, 9, 9)}.write(t, folder)
 	runJob(t, loadJob(t, folder, jobText), Options{Workers: 2})
 	return readFile(t, folder, "true/a.csv"), readReceipt(t, filepath.Join(folder, "true/a.csv"))
 }

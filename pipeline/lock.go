@@ -6,16 +6,19 @@ import (
 	"errors"
 	"fmt"
 	"io/fs"
+	"maps"
 	"os"
 	"path/filepath"
+	"slices"
 
 	"github.com/gofrs/flock"
 )
 
-// A run keeps others off its outputs by a lock file in the output folder that
-// lists them and that it holds by an advisory file lock until it ends. The
-// operating system lets go of that lock when the process dies, so the lock of
-// a dead run is known by being free, and is swept by the next run.
+// A run keeps others off its outputs by a lock file in every folder that it
+// writes to. The file lists the outputs there, and the run holds it by an advisory
+// file lock until it ends. The operating system lets go of that lock when the
+// process dies, so the lock of a dead run is known by being free, and is swept by
+// the next run.
 //
 // Runs whose outputs differ (shards of one job, or several jobs) share a folder.
 const (
@@ -27,29 +30,39 @@ const (
 type holder struct {
 	Host    string   `json:"host"`
 	Process int      `json:"process"`
-	Outputs []string `json:"outputs"` // relative to the folder
+	Outputs []string `json:"outputs"` // names in the lock's folder
 }
 
-// lock is a held lock file.
-type lock struct{ file *flock.Flock }
+// locks are held lock files.
+type locks []*flock.Flock
 
 // acquire takes the outputs for this process, or says who has one of them.
-func acquire(folder string, inputs []input) (*lock, error) {
-	mine := make(map[string]bool, len(inputs))
+func acquire(inputs []input) (locks, error) {
+	outputs := map[string][]string{} // by folder
 	for _, in := range inputs {
-		mine[in.target] = true
+		folder := filepath.Dir(in.output)
+		outputs[folder] = append(outputs[folder], filepath.Base(in.output))
 	}
-	var held *lock
-	err := withGate(folder, func() (err error) {
-		if err = checkOthers(folder, mine); err == nil {
-			held, err = hold(folder, inputs)
+	var held locks
+	for _, folder := range slices.Sorted(maps.Keys(outputs)) {
+		l, err := acquireIn(folder, outputs[folder])
+		if err != nil {
+			held.release()
+			return nil, &CallError{err}
+		}
+		held = append(held, l)
+	}
+	return held, nil
+}
+
+func acquireIn(folder string, outputs []string) (l *flock.Flock, err error) {
+	err = withGate(folder, func() (err error) {
+		if err = checkOthers(folder, outputs); err == nil {
+			l, err = hold(folder, outputs)
 		}
 		return err
 	})
-	if err != nil {
-		return nil, &CallError{err}
-	}
-	return held, nil
+	return l, err
 }
 
 // withGate calls f while no other run does the same in this folder.
@@ -63,8 +76,8 @@ func withGate(folder string, f func() error) error {
 }
 
 // checkOthers looks at every lock file: a dead one is removed, a live one must
-// not list any of the outputs in mine.
-func checkOthers(folder string, mine map[string]bool) error {
+// not list any of mine.
+func checkOthers(folder string, mine []string) error {
 	paths, err := filepath.Glob(filepath.Join(escapeGlob(folder), lockPattern))
 	if err != nil {
 		return err
@@ -91,7 +104,7 @@ func checkOthers(folder string, mine map[string]bool) error {
 }
 
 // checkHolder looks at a lock that was held. Its run may have ended since.
-func checkHolder(path string, mine map[string]bool) error {
+func checkHolder(path string, mine []string) error {
 	data, err := os.ReadFile(path)
 	if errors.Is(err, fs.ErrNotExist) {
 		return nil
@@ -103,34 +116,34 @@ func checkHolder(path string, mine map[string]bool) error {
 	if err := json.Unmarshal(data, &h); err != nil {
 		return fmt.Errorf("%s: a lock that is held but cannot be read: %w", path, err)
 	}
+	theirs := map[string]bool{}
 	for _, output := range h.Outputs {
-		if mine[output] {
+		theirs[output] = true
+	}
+	for _, output := range mine {
+		if theirs[output] {
 			return fmt.Errorf("%s is being written by another run (host %s, process %d); wait for it to end, or stop it", filepath.Join(filepath.Dir(path), output), h.Host, h.Process)
 		}
 	}
 	return nil
 }
 
-// hold makes this process's lock file. The gate is held.
-func hold(folder string, inputs []input) (*lock, error) {
+// hold makes a lock file of this process. The gate is held.
+func hold(folder string, outputs []string) (*flock.Flock, error) {
 	host, err := os.Hostname()
 	if err != nil {
 		return nil, err
 	}
-	h := holder{Host: host, Process: os.Getpid()}
-	for _, in := range inputs {
-		h.Outputs = append(h.Outputs, in.target)
-	}
-	data, err := json.Marshal(h)
+	data, err := json.Marshal(holder{Host: host, Process: os.Getpid(), Outputs: outputs})
 	if err != nil {
 		return nil, err
 	}
-	l := &lock{newLock(filepath.Join(folder, "bentray-"+rand.Text()[:12]+".lock"))}
-	if err := l.file.Lock(); err != nil {
-		return nil, fmt.Errorf("%s: cannot lock the output folder: %w", folder, err)
+	l := newLock(filepath.Join(folder, "bentray-"+rand.Text()[:12]+".lock"))
+	if err = l.Lock(); err == nil {
+		err = os.WriteFile(l.Path(), data, 0o666)
 	}
-	if err := os.WriteFile(l.file.Path(), data, 0o666); err != nil {
-		l.release()
+	if err != nil {
+		locks{l}.release()
 		return nil, fmt.Errorf("%s: cannot lock the output folder: %w", folder, err)
 	}
 	return l, nil
@@ -142,9 +155,11 @@ func newLock(path string) *flock.Flock {
 }
 
 // release gives the outputs free.
-func (l *lock) release() {
-	_ = os.Remove(l.file.Path()) // a lock that stays is free all the same
-	_ = l.file.Unlock()
+func (held locks) release() {
+	for _, l := range held {
+		_ = os.Remove(l.Path()) // a lock that stays is free all the same
+		_ = l.Unlock()
+	}
 }
 
 // escapeGlob keeps a folder's name from being read as a pattern.

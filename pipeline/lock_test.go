@@ -13,13 +13,13 @@ import (
 )
 
 // holdLock keeps the outputs locked as a run does, until the test ends.
-func holdLock(t *testing.T, folder string, targets ...string) *lock {
+func holdLock(t *testing.T, folder string, targets ...string) locks {
 	t.Helper()
 	var inputs []input
 	for _, target := range targets {
-		inputs = append(inputs, input{target: target})
+		inputs = append(inputs, input{output: filepath.Join(folder, target)})
 	}
-	l, err := acquire(folder, inputs)
+	l, err := acquire(inputs)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -51,6 +51,18 @@ func TestRunIsRefusedWhileAnotherWritesTheSame(t *testing.T) {
 	}
 }
 
+// Two jobs may name one file from different output folders.
+func TestOutputFoldersInsideEachOther(t *testing.T) {
+	folder := t.TempDir()
+	files{"raw/sub/a.csv": tiny, "out/sub/x": ""}.write(t, folder)
+	outer := loadJob(t, folder, tinyJob(`"raw/**/*.csv"`, "out"))
+	defer holdLock(t, filepath.Join(folder, "out", "sub"), "a.csv").release()
+	_, err := Run(context.Background(), outer, Options{})
+	if err == nil || !strings.Contains(err.Error(), filepath.Join("out", "sub", "a.csv")+" is being written by another run") {
+		t.Errorf("got %v, want a refusal that names the file", err)
+	}
+}
+
 func TestLockOfADeadRunIsSwept(t *testing.T) {
 	folder := t.TempDir()
 	files{"raw/a.csv": tiny, "true/bentray-DEAD.lock": `{"host":"lantern","process":1,"outputs":["a.csv"]}`, "true/bentray-EMPTY.lock": ""}.write(t, folder)
@@ -64,7 +76,7 @@ func TestLockOfADeadRunIsSwept(t *testing.T) {
 
 // A run may end between the look at its lock and the reading of it.
 func TestLockThatWentAway(t *testing.T) {
-	if err := checkHolder(filepath.Join(t.TempDir(), "bentray-GONE.lock"), map[string]bool{"a.csv": true}); err != nil {
+	if err := checkHolder(filepath.Join(t.TempDir(), "bentray-GONE.lock"), []string{"a.csv"}); err != nil {
 		t.Errorf("got %v, want nothing", err)
 	}
 }
@@ -74,7 +86,7 @@ func TestLockInAFolderNamedLikeAPattern(t *testing.T) {
 	folder := filepath.Join(t.TempDir(), "cove [a] *?")
 	files{"x": ""}.write(t, folder)
 	defer holdLock(t, folder, "a.csv").release()
-	if _, err := acquire(folder, []input{{target: "a.csv"}}); err == nil {
+	if _, err := acquire([]input{{output: filepath.Join(folder, "a.csv")}}); err == nil {
 		t.Error("the lock is taken twice")
 	}
 }

@@ -13,15 +13,16 @@ import (
 // Plan is what a run of a job would do, as far as the job, the files beside it
 // and the head of every cloud tell. Lengths are in the job's units.
 type Plan struct {
-	Run      string // fingerprint
-	Files    []PlannedFile
-	LeftOut  int // matches that are outputs of earlier runs
-	Roles    []RoleColumn
-	Heads    Heads
-	Water    [2]float64 // index of water, phase and group, referred to vacuum
-	Air      [2]float64 // the same of air
-	Corners  [4]Corner  // of the heads' bounds, where the surface does not come from the cloud
-	Cautions []string
+	Run        string // fingerprint
+	Files      []PlannedFile
+	LeftOut    int // matches that are outputs of earlier runs
+	Roles      []RoleColumn
+	Heads      Heads
+	Water      [2]float64      // index of water, phase and group, referred to vacuum
+	Air        [2]float64      // the same of air
+	Trajectory *TrajectoryInfo // nil where the job names none
+	Corners    [4]Corner       // of the heads' bounds, where the surface does not come from the cloud
+	Cautions   []string
 }
 
 // PlannedFile is one file of a plan.
@@ -45,6 +46,15 @@ type Heads struct {
 	Outcomes map[string]int64
 }
 
+// TrajectoryInfo sums up the trajectory.
+type TrajectoryInfo struct {
+	Records int
+	Times   [2]time.Time // first and last, UTC
+	Low     [3]float64   // least x, y, z
+	High    [3]float64
+	Gap     float64 // longest time between records, s
+}
+
 // Corner is the surface at a corner of the bounds.
 type Corner struct{ X, Y, Level float64 }
 
@@ -59,10 +69,7 @@ func MakePlan(ctx context.Context, j *job.Job) (*Plan, error) {
 	if err != nil {
 		return nil, err
 	}
-	p := &planner{survey: s, tally: newTally(), clock: emptySpan()}
-	for k := range p.bounds {
-		p.bounds[k] = emptySpan()
-	}
+	p := &planner{survey: s, known: readHistory(j.Resolve(j.Output.Folder)), tally: newTally()}
 	p.plan = Plan{
 		Run: s.run, LeftOut: leftOut,
 		Water: [2]float64{s.optics.waterPhase, s.optics.waterGroup}, Air: [2]float64{s.optics.airPhase, s.optics.airGroup},
@@ -80,16 +87,15 @@ func MakePlan(ctx context.Context, j *job.Job) (*Plan, error) {
 // planner gathers a plan.
 type planner struct {
 	*survey
-	plan   Plan
-	slot   slot
-	tally  *tally
-	bounds [3]span
-	clock  span // of gps_time
+	plan  Plan
+	slot  slot
+	tally *tally
+	known history
 }
 
 func (p *planner) file(ctx context.Context, in input) {
 	f := PlannedFile{Input: in.name, Output: in.target}
-	if done, err := p.fresh(ctx, in); err == nil && done != nil {
+	if done, err := p.fresh(ctx, in, p.known); err == nil && done != nil {
 		f.Fresh = true
 	}
 	f.Err = inFile(in.path, p.head(in, &f))
@@ -128,7 +134,6 @@ func (p *planner) head(in input, f *PlannedFile) error {
 		return err
 	}
 	p.correctChunk(c, r, l, &p.slot.work, p.tally)
-	p.take(c, r)
 	return f.count(c, file, in.bytes)
 }
 
@@ -146,24 +151,6 @@ func (f *PlannedFile) count(c *cloud.Chunk, file cloud.Rewriter, bytes int64) er
 		f.Points = int64(float64(f.Points) / share)
 	}
 	return err
-}
-
-// take widens the bounds by a corrected chunk, whose times are on the job's scale.
-func (p *planner) take(c *cloud.Chunk, r *reading) {
-	for k := range p.bounds {
-		p.bounds[k].addFinite(c.Numbers[k])
-	}
-	if r.time >= 0 {
-		p.clock.addFinite(c.Numbers[r.time])
-	}
-}
-
-func (s *span) addFinite(values []float64) {
-	for _, v := range values {
-		if !math.IsNaN(v) && !math.IsInf(v, 0) {
-			s.add(v)
-		}
-	}
 }
 
 func (p *planner) roles(columns []cloud.Column, r *reading) []RoleColumn {
@@ -185,26 +172,23 @@ func (p *planner) roles(columns []cloud.Column, r *reading) []RoleColumn {
 }
 
 func (p *planner) finish() {
-	h := &p.plan.Heads
-	h.Points, h.Outcomes = p.tally.points(), p.tally.counts()
-	if p.clock.low <= p.clock.high {
-		h.Times = [2]time.Time{p.times.Time(p.clock.low), p.times.Time(p.clock.high)}
+	t, h := p.tally, &p.plan.Heads
+	h.Points, h.Outcomes = t.points(), t.counts()
+	if !t.times.isEmpty() {
+		h.Times = [2]time.Time{p.times.Time(t.times.low), p.times.Time(t.times.high)}
 	}
-	if p.bounds[0].low > p.bounds[0].high {
-		p.plan.Cautions = p.tally.cautions(p.survey)
-		return
-	}
-	for k, b := range p.bounds {
+	for k, b := range t.bounds {
 		h.Low[k], h.High[k] = b.low, b.high
 	}
 	p.corners()
-	p.plan.Cautions = append(p.geometryCautions(), p.tally.cautions(p.survey)...)
+	p.plan.Trajectory = p.trajectoryInfo
+	p.plan.Cautions = t.cautions(p.survey)
 }
 
 // corners asks the surface at the corners of the bounds.
 func (p *planner) corners() {
-	x := []float64{p.bounds[0].low, p.bounds[0].high, p.bounds[0].low, p.bounds[0].high}
-	y := []float64{p.bounds[1].low, p.bounds[1].low, p.bounds[1].high, p.bounds[1].high}
+	x := []float64{p.tally.bounds[0].low, p.tally.bounds[0].high, p.tally.bounds[0].low, p.tally.bounds[0].high}
+	y := []float64{p.tally.bounds[1].low, p.tally.bounds[1].low, p.tally.bounds[1].high, p.tally.bounds[1].high}
 	level := make([]float64, 4)
 	switch {
 	case p.job.Surface.Level != nil:

@@ -64,14 +64,33 @@ func TestSameBytesForAnyWorkers(t *testing.T) {
 	same(t, "redo", outputs(t, filepath.Join(folder, "true2")), want)
 }
 
-// age sets the time of every file below a folder to long ago, but keeps that of
-// receipts, which is their input's.
+// age sets the time of every file below a folder to long ago.
 func age(t *testing.T, folder string) {
 	t.Helper()
 	for name := range snapshot(t, folder) {
-		if !strings.HasSuffix(name, ".receipt.json") {
-			setTime(t, filepath.Join(folder, name), long)
-		}
+		setTime(t, filepath.Join(folder, name), long)
+	}
+}
+
+// An input whose size and time are those of the last run is not read again, so
+// a change behind its back is seen only without that run's summary.
+func TestSizeAndTimeSpareHashing(t *testing.T) {
+	folder := t.TempDir()
+	files{"raw/a.csv": tiny}.write(t, folder)
+	raw := filepath.Join(folder, "raw/a.csv")
+	setTime(t, raw, long)
+	j := loadJob(t, folder, tinyJob(`"raw/*.csv"`, "true"))
+	runJob(t, j, Options{})
+	files{"raw/a.csv": strings.Replace(tiny, "-10", "-11", 1)}.write(t, folder)
+	setTime(t, raw, long)
+	if s := runJob(t, j, Options{}); s.Fresh != 1 {
+		t.Errorf("the input was read: %+v", s.Files)
+	}
+	if err := os.Remove(filepath.Join(folder, "true", "run-summary.json")); err != nil {
+		t.Fatal(err)
+	}
+	if s := runJob(t, j, Options{}); s.Done != 1 {
+		t.Errorf("without the summary the input was not read: %+v", s.Files)
 	}
 }
 

@@ -37,6 +37,7 @@ type runner struct {
 	*survey
 	engine *engine
 	redo   bool
+	known  history
 	watch  Watcher
 
 	mu      sync.Mutex
@@ -48,9 +49,10 @@ type runner struct {
 // each. A file that fails does not stop the others, and is no error of Run.
 //
 // Errors: a *CallError where the call or the job is wrong and nothing was
-// written; the context's error when it was cancelled (then with the summary).
+// written; the context's error when it was cancelled, and that of a summary which
+// could not be written (both with the summary); else what the file system says.
 func Run(ctx context.Context, j *job.Job, o Options) (*receipt.Summary, error) {
-	all, _, err := findInputs(j)
+	all, leftOut, err := findInputs(j)
 	if err != nil {
 		return nil, err
 	}
@@ -70,19 +72,19 @@ func Run(ctx context.Context, j *job.Job, o Options) (*receipt.Summary, error) {
 	if r.watch == nil {
 		r.watch = silent{}
 	}
-	return r.run(ctx, inputs, o.Shard, workers)
+	return r.run(ctx, inputs, leftOut, o.Shard, workers)
 }
 
-func (r *runner) run(ctx context.Context, inputs []input, shard Shard, workers int) (*receipt.Summary, error) {
+func (r *runner) run(ctx context.Context, inputs []input, leftOut int, shard Shard, workers int) (*receipt.Summary, error) {
 	folder := r.job.Resolve(r.job.Output.Folder)
 	if err := makeFolders(folder, inputs); err != nil {
 		return nil, err
 	}
-	lock, err := acquire(folder, inputs)
+	held, err := acquire(inputs)
 	if err != nil {
 		return nil, err
 	}
-	defer lock.release()
+	defer held.release()
 	if _, err := atomicfile.NewSweeper(targets(inputs)).Sweep(); err != nil {
 		return nil, err
 	}
@@ -91,9 +93,10 @@ func (r *runner) run(ctx context.Context, inputs []input, shard Shard, workers i
 		return nil, err
 	}
 	r.summary = &receipt.Summary{
-		Run: r.survey.run, Program: Program, Title: r.job.Title, Host: host, Shard: shard.String(), Workers: workers,
+		Run: r.survey.run, Program: Program, Title: r.job.Title, Host: host, Shard: shard.String(), Workers: workers, LeftOut: leftOut,
 		Started: time.Now().UTC().Truncate(time.Millisecond), Files: []receipt.FileSummary{}, Outcomes: map[string]int64{},
 	}
+	r.known = readHistory(folder)
 	r.all(ctx, inputs, workers)
 	r.summary.Close()
 	return r.summary, errors.Join(ctx.Err(), r.writeSummary(folder, summaryName(shard)))
@@ -133,10 +136,10 @@ func (r *runner) all(ctx context.Context, inputs []input, workers int) {
 func (r *runner) one(ctx context.Context, in input) {
 	started := time.Now()
 	f := receipt.FileSummary{Input: in.name, Output: in.target, Status: receipt.Dropped}
-	var done *receipt.Receipt
+	var done *finished
 	err := ctx.Err()
 	if err == nil && !r.redo {
-		if done, err = r.fresh(ctx, in); done != nil {
+		if done, err = r.fresh(ctx, in, r.known); done != nil {
 			f.Status = receipt.Fresh
 			r.watch.Read(in.bytes)
 		}
@@ -154,6 +157,7 @@ func (r *runner) one(ctx context.Context, in input) {
 	default:
 		f.Rows = receipt.Rows{Read: done.RowsRead, Written: done.RowsWritten, Diverted: done.RowsDiverted}
 		f.Cautions, outcomes = done.Cautions, done.Outcomes
+		f.InputBytes, f.InputSHA256, f.InputModified = done.Inputs[0].Bytes, done.Inputs[0].SHA256, done.modified
 	}
 	f.Seconds = time.Since(started).Seconds()
 	r.mu.Lock()
@@ -166,10 +170,13 @@ func (r *runner) one(ctx context.Context, in input) {
 func targets(inputs []input) []string {
 	var paths []string
 	for _, in := range inputs {
-		paths = append(paths, in.output, in.output+receipt.Suffix, in.output+rejectsSuffix)
+		paths = append(paths, in.writes()...)
 	}
 	return paths
 }
+
+// summaryPattern matches the names of summaryName.
+const summaryPattern = "run-summary*.json"
 
 func summaryName(s Shard) string {
 	if s.Count == 0 {

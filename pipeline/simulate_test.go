@@ -111,11 +111,18 @@ func standardSea(t *testing.T) sea {
 
 // shoot simulates n points along the line: to 30 m deep, to 24 degrees off
 // nadir, by increasing time. With choppy set every point has a level of its own.
-func (w sea) shoot(n int, choppy bool) []shot {
+func (w sea) shoot(n int, choppy bool) []shot { return w.shootEvery(0, n, choppy) }
+
+// shootEvery is shoot at times that are whole steps after the first, where the
+// step is not 0.
+func (w sea) shootEvery(step float64, n int, choppy bool) []shot {
 	r := rand.New(rand.NewPCG(seed, uint64(n)))
 	shots := make([]shot, n)
 	for i := range shots {
 		time := firstTime + flightStep*(flightSize-1)*(float64(i)+r.Float64())/float64(n)
+		if step > 0 {
+			time = firstTime + step*math.Floor((time-firstTime)/step)
+		}
 		origin := onLine(time)
 		here := w
 		if choppy {

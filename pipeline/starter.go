@@ -25,18 +25,18 @@ func StartJob(w io.Writer, path string) error {
 		return inFile(path, err)
 	}
 	var b strings.Builder
+	fmt.Fprintf(&b, "# A job to start from: fill in what stands behind # and take the # away.\n")
 	fmt.Fprintf(&b, "# %s has %d columns; those with a role are marked:\n", filepath.Base(path), len(columns))
 	for i, c := range columns {
 		name := strings.Join(strings.Fields(c.Name), " ") // it may have line breaks
 		b.WriteString(strings.TrimRight(fmt.Sprintf("#   %-20s %s", name, roles[i]), " ") + "\n")
 	}
-	fmt.Fprintf(&b, "\ntitle = %q\n\n[input]\nfiles = [%q]\n", "untitled survey", filepath.ToSlash(path))
-	if missing := missingRoles(roles); len(missing) > 0 {
-		b.WriteString("[input.columns]\n")
-		for _, role := range missing {
-			fmt.Fprintf(&b, "# %s = \"\"   # the column that holds it\n", role)
-		}
+	if i := slices.IndexFunc(columns, func(c cloud.Column) bool { return cloud.IsGeographic(c.Name) }); i >= 0 {
+		fmt.Fprintf(&b, "# Column %q holds degrees: project the cloud first, its coordinates must be lengths.\n", columns[i].Name)
 	}
+	fmt.Fprintf(&b, "\ntitle = %q\n\n[input]\nfiles = [%q]\n", "untitled survey", escapePattern(filepath.ToSlash(path)))
+	b.WriteString(starterInput)
+	writeMissing(&b, roles)
 	b.WriteString(starterRest)
 	if hasOrigins(roles) {
 		b.WriteString("# ray origins come from the cloud's origin columns\n")
@@ -47,22 +47,47 @@ func StartJob(w io.Writer, path string) error {
 	return err
 }
 
-const starterRest = `
-# Fill in what is marked with # and take the mark away.
+const starterInput = `# Set unit here where lengths are not in "m" but in "ft" or "us-ft", and time where gps_time
+# is not "gps-adjusted" but "gps-week" (with week) or "utc".
+`
 
+const starterRest = `
 [output]
-folder = "true"
+folder = "corrected"
 
 [water]
-# temperature = 17.5   # degrees C, of the day
-# salinity = 34.9      # practical salinity: 0 fresh, about 35 ocean
+# temperature = 17.5           # degrees C, of the day
+# salinity = 34.9              # practical salinity: 0 fresh, about 35 ocean
 
 [surface]
-# level = 0.42         # of the water, in the cloud's own heights
+# level = 0.42                 # of the water, in the cloud's own heights
+
+# A table [extent] with polygons, a GeoJSON file, limits the correction to water.
 
 [rays]
-model = "pulse"        # airborne laser; "vertical" for images without camera data
+model = "pulse"                # airborne laser; "vertical" for images without camera data
 `
+
+// writeMissing offers the roles that a job needs and no column plays by its name.
+func writeMissing(b *strings.Builder, roles []string) {
+	needed := cloud.Roles[:3:3]
+	if !hasOrigins(roles) {
+		needed = append(needed, "gps_time")
+	}
+	missing := slices.DeleteFunc(slices.Clone(needed), func(role string) bool { return slices.Contains(roles, role) })
+	if len(missing) == 0 {
+		return
+	}
+	b.WriteString("[input.columns]\n")
+	for _, role := range missing {
+		fmt.Fprintf(b, "# %s = \"\"   # the column that holds it\n", role)
+	}
+}
+
+// escapePattern writes a path as a pattern that names it alone.
+func escapePattern(path string) string {
+	return strings.NewReplacer(`\`, `\\`, "*", `\*`, "?", `\?`, "[", `\[`, "]", `\]`, "{", `\{`, "}", `\}`).Replace(path)
+}
 
 // playedRoles returns each column's role, or "".
 func playedRoles(columns []cloud.Column) ([]string, error) {
@@ -77,16 +102,6 @@ func playedRoles(columns []cloud.Column) ([]string, error) {
 		}
 	}
 	return roles, nil
-}
-
-func missingRoles(roles []string) []string {
-	var missing []string
-	for _, need := range cloud.Roles[:3] {
-		if !slices.Contains(roles, need) {
-			missing = append(missing, need)
-		}
-	}
-	return missing
 }
 
 func hasOrigins(roles []string) bool {

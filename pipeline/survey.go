@@ -7,7 +7,11 @@ import (
 	"io/fs"
 	"os"
 	"path/filepath"
+	"slices"
 	"strings"
+	"time"
+
+	"github.com/paulmach/orb"
 
 	"bentray/correct"
 	"bentray/correct/medium"
@@ -35,7 +39,10 @@ type survey struct {
 	optics     indices
 	trajectory *geo.Trajectory   // nil: origins come from the cloud
 	extent     *geo.PolygonIndex // nil: no limit; in the cloud's own units
-	cautions   []string          // that hold for every file
+
+	trajectoryInfo *TrajectoryInfo
+	extentBound    orb.Bound
+	cautions       []string // that hold for every file
 }
 
 // indices are the refractive indices of a job, referred to vacuum.
@@ -54,7 +61,7 @@ func readSurvey(ctx context.Context, j *job.Job) (*survey, error) {
 	if err := s.readIndices(); err != nil {
 		return nil, &CallError{fmt.Errorf("%s: %w", j.Path, err)}
 	}
-	if err := errors.Join(s.readTrajectory(ctx), s.readExtent(ctx)); err != nil {
+	if err := s.readFiles(ctx); err != nil {
 		return nil, &CallError{err}
 	}
 	var err error
@@ -63,6 +70,13 @@ func readSurvey(ctx context.Context, j *job.Job) (*survey, error) {
 	}
 	s.run, err = receipt.Fingerprint(s.settings, s.auxiliary, correct.Version)
 	return s, err
+}
+
+func (s *survey) readFiles(ctx context.Context) error {
+	return errors.Join(
+		s.auxiliaryFile(ctx, "trajectory", "[rays] trajectory", s.job.Rays.Trajectory, s.readTrajectory),
+		s.auxiliaryFile(ctx, "extent", "[extent] polygons", s.job.Extent.Polygons, s.readExtent),
+	)
 }
 
 func (s *survey) readUnits() error {
@@ -118,15 +132,7 @@ func (s *survey) readIndices() error {
 	return nil
 }
 
-func (s *survey) readTrajectory(ctx context.Context) error {
-	j := s.job
-	if j.Rays.Trajectory == "" {
-		return nil
-	}
-	path := j.Resolve(j.Rays.Trajectory)
-	if err := s.note(ctx, "trajectory", j.Rays.Trajectory); err != nil {
-		return err
-	}
+func (s *survey) readTrajectory(path string) error {
 	f, err := openTable(path)
 	if err != nil {
 		return err
@@ -134,48 +140,71 @@ func (s *survey) readTrajectory(ctx context.Context) error {
 	defer f.Close()
 	columns, err := cloud.ReadNumbers(f, "gps_time", "x", "y", "z")
 	if err != nil {
-		return inFile(path, err)
+		return err
 	}
 	if i, _ := cloud.Find(f.Columns(), "gps_time"); isTimestamp(f.Columns()[i]) {
 		s.fromUTC(columns[0])
 	}
+	s.trajectoryInfo = s.describe(columns)
 	scale(columns[1], s.plan)
 	scale(columns[2], s.plan)
 	scale(columns[3], s.height)
-	s.trajectory, err = geo.NewTrajectory(columns[0], columns[1], columns[2], columns[3], j.Rays.MaxGap)
-	return inFile(path, err)
+	s.trajectory, err = geo.NewTrajectory(columns[0], columns[1], columns[2], columns[3], s.job.Rays.MaxGap)
+	return err
 }
 
-func (s *survey) readExtent(ctx context.Context) error {
-	j := s.job
-	if j.Extent.Polygons == "" {
+// describe sums up a trajectory's columns gps_time, x, y, z, in the job's units.
+func (s *survey) describe(columns [][]float64) *TrajectoryInfo {
+	t := columns[0]
+	if len(t) == 0 {
 		return nil
 	}
-	path := j.Resolve(j.Extent.Polygons)
-	if err := s.note(ctx, "extent", j.Extent.Polygons); err != nil {
-		return err
+	info := &TrajectoryInfo{Records: len(t), Times: [2]time.Time{s.times.Time(t[0]), s.times.Time(t[len(t)-1])}}
+	for k, column := range columns[1:] {
+		info.Low[k], info.High[k] = slices.Min(column), slices.Max(column)
 	}
+	for i := 1; i < len(t); i++ {
+		info.Gap = max(info.Gap, t[i]-t[i-1])
+	}
+	return info
+}
+
+func (s *survey) readExtent(path string) error {
 	data, err := os.ReadFile(path)
 	if err != nil {
 		return err
 	}
 	polygons, err := geo.ParsePolygons(data)
 	if err != nil {
-		return inFile(path, err)
+		return err
 	}
-	s.extent = geo.NewPolygonIndex(polygons)
+	s.extent, s.extentBound = geo.NewPolygonIndex(polygons), orb.MultiPolygon(polygons).Bound()
 	return nil
 }
 
-// note hashes an auxiliary file, named as in the job.
-func (s *survey) note(ctx context.Context, use, name string) error {
+// auxiliaryFile hashes and reads a file that the job names beside its clouds, if
+// it names one.
+func (s *survey) auxiliaryFile(ctx context.Context, use, key, name string, read func(path string) error) error {
+	if name == "" {
+		return nil
+	}
 	path := s.job.Resolve(name)
+	before, err := os.Stat(path)
+	if err != nil {
+		return fmt.Errorf("%s: %s: %w", s.job.Path, key, inFile(path, err))
+	}
+	if !before.Mode().IsRegular() {
+		return fmt.Errorf("%s: %s: %s is not a regular file", s.job.Path, key, path)
+	}
 	bytes, sum, err := receipt.Hash(ctx, path)
 	if err != nil {
-		return fmt.Errorf("%s: %s: %w", s.job.Path, use, inFile(path, err))
+		return fmt.Errorf("%s: %s: %w", s.job.Path, key, inFile(path, err))
 	}
 	s.auxiliary = append(s.auxiliary, receipt.Input{Use: use, File: receipt.File{Path: filepath.ToSlash(name), Bytes: bytes, SHA256: sum}})
-	return nil
+	if err := read(path); err != nil {
+		return inFile(path, err)
+	}
+	return unchanged(path, before)
 }
 
 // inFile puts the file's name before an error that does not begin with it.

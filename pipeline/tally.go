@@ -5,6 +5,7 @@ import (
 	"math"
 
 	"bentray/correct"
+	"bentray/io/cloud"
 	"bentray/pipeline/job"
 )
 
@@ -12,6 +13,9 @@ import (
 // which chunks are added.
 type tally struct {
 	outcomes         [correct.NumOutcomes]int64
+	noPosition       int64   // of the points without origin, those that have none at all
+	bounds           [3]span // raw x, y, z in the file's units
+	times            span    // gps_time on the job's scale
 	depth, incidence span
 }
 
@@ -20,7 +24,10 @@ type span struct{ low, high float64 }
 
 func emptySpan() span { return span{math.Inf(1), math.Inf(-1)} }
 
-func newTally() *tally { return &tally{depth: emptySpan(), incidence: emptySpan()} }
+func newTally() *tally {
+	e := emptySpan()
+	return &tally{bounds: [3]span{e, e, e}, times: e, depth: e, incidence: e}
+}
 
 func (s *span) add(v float64) {
 	if v < s.low {
@@ -31,18 +38,39 @@ func (s *span) add(v float64) {
 	}
 }
 
+// addFinite widens the span by those values that are finite.
+func (s *span) addFinite(values []float64) {
+	for _, v := range values {
+		if v-v == 0 {
+			s.add(v)
+		}
+	}
+}
+
+func (s *span) isEmpty() bool { return s.low > s.high }
+
 func (s *span) join(o span) {
 	s.low, s.high = min(s.low, o.low), max(s.high, o.high)
 }
 
-// add counts the points of a corrected chunk, in metres and radians.
-func (t *tally) add(w *workspace) {
+// add counts the points of a corrected chunk, whose results are in metres and
+// radians.
+func (t *tally) add(w *workspace, c *cloud.Chunk, r *reading) {
 	for i, o := range w.out {
 		t.outcomes[o]++
-		if o == correct.Corrected {
+		switch {
+		case o == correct.Corrected:
 			t.depth.add(w.result.Depth[i])
 			t.incidence.add(w.result.IncidenceRad[i])
+		case o == correct.NoOrigin && math.IsNaN(w.origin.X[i]+w.origin.Y[i]+w.origin.Z[i]):
+			t.noPosition++
 		}
+	}
+	for k := range t.bounds {
+		t.bounds[k].addFinite(c.Numbers[k])
+	}
+	if r.time >= 0 {
+		t.times.addFinite(c.Numbers[r.time])
 	}
 }
 
@@ -50,6 +78,11 @@ func (t *tally) join(o *tally) {
 	for i, n := range o.outcomes {
 		t.outcomes[i] += n
 	}
+	for k := range t.bounds {
+		t.bounds[k].join(o.bounds[k])
+	}
+	t.noPosition += o.noPosition
+	t.times.join(o.times)
 	t.depth.join(o.depth)
 	t.incidence.join(o.incidence)
 }
@@ -92,19 +125,24 @@ func (t *tally) ranges(s *survey) map[string][2]float64 {
 var advice = map[correct.Outcome]string{
 	correct.Invalid:   "have no finite coordinates",
 	correct.NoSurface: "have no water surface: the surface column is empty there",
-	correct.NoOrigin:  "have no ray origin above the water: their times are outside the trajectory or in a gap longer than max_gap, or the origins are not in the cloud's heights",
 	correct.Grazing:   "were seen at more than max_incidence from the surface normal",
 	correct.Unsolved:  "have no finite solution",
 }
 
 // cautions says what a person should look at before trusting the output.
 func (t *tally) cautions(s *survey) []string {
-	cautions := append([]string{}, s.cautions...)
 	total := t.points()
+	cautions := append(t.geometryCautions(s), s.cautions...)
 	for o, n := range t.outcomes {
 		if text := advice[correct.Outcome(o)]; n > 0 && text != "" {
 			cautions = append(cautions, fmt.Sprintf("%d of %d points %s", n, total, text))
 		}
+	}
+	if n := t.noPosition; n > 0 {
+		cautions = append(cautions, fmt.Sprintf("%d of %d points have no ray origin: %s", n, total, s.whyNoPosition()))
+	}
+	if n := t.outcomes[correct.NoOrigin] - t.noPosition; n > 0 {
+		cautions = append(cautions, fmt.Sprintf("%d of %d points have a ray origin that is not above the water: are origins and cloud in one system and unit?", n, total))
 	}
 	switch {
 	case total == 0:
@@ -113,4 +151,12 @@ func (t *tally) cautions(s *survey) []string {
 		cautions = append(cautions, "no point was corrected")
 	}
 	return cautions
+}
+
+// whyNoPosition says what leaves a point without ray origin.
+func (s *survey) whyNoPosition() string {
+	if s.trajectory == nil {
+		return "an origin column is empty there"
+	}
+	return fmt.Sprintf("their times are outside the trajectory, or in a gap of it longer than max_gap (%g s)", s.job.Rays.MaxGap)
 }

@@ -49,21 +49,37 @@ var truthCases = []truthCase{
 
 func TestTruthComesBack(t *testing.T) {
 	for _, c := range truthCases {
-		t.Run(c.name, func(t *testing.T) {
-			w := standardSea(t)
-			if c.surface == "plane" {
-				w.slopeX, w.slopeY = 0.004, -0.003
-			}
-			if c.rangeIndex > 0 {
-				w.rangeNg = c.rangeIndex
-			}
-			shots := w.shoot(400, c.surface == "column")
-			folder := t.TempDir()
-			files{"raw/a.csv": c.cloud(shots), "flight.csv": c.flight()}.write(t, folder)
-			runJob(t, loadJob(t, folder, c.job(w)), Options{Workers: 2})
-			c.compare(t, readTable(t, readFile(t, folder, "true/a.csv")), shots)
-		})
+		for _, format := range formats {
+			t.Run(c.name+", "+format, func(t *testing.T) {
+				w := standardSea(t)
+				if c.surface == "plane" {
+					w.slopeX, w.slopeY = 0.004, -0.003
+				}
+				if c.rangeIndex > 0 {
+					w.rangeNg = c.rangeIndex
+				}
+				shots := w.shoot(400, c.surface == "column")
+				c.checkRun(t, format, c.job(w), shots, files{
+					"raw/a." + format:  encode(t, format, c.cloud(shots)),
+					"flight." + format: encode(t, format, c.flight()),
+				})
+			})
+		}
 	}
+}
+
+// checkRun does a job of one cloud in a format and compares its output.
+func (c truthCase) checkRun(t *testing.T, format, jobText string, shots []shot, f files) {
+	t.Helper()
+	folder := t.TempDir()
+	f.write(t, folder)
+	jobText = strings.NewReplacer("raw/*.csv", "raw/*."+format, "flight.csv", "flight."+format).Replace(jobText)
+	runJob(t, loadJob(t, folder, jobText), Options{Workers: 2})
+	half := 0.5 * math.Pow10(-c.decimals)
+	if format == "parquet" {
+		half = 0 // DOUBLE, as computed
+	}
+	c.compare(t, decode(t, format, readFile(t, folder, "true/a."+format)), shots, half)
 }
 
 // in writes a position in the file's units.
@@ -118,12 +134,12 @@ func (c truthCase) job(w sea) string {
 	return b.String()
 }
 
-func (c truthCase) compare(t *testing.T, got table, shots []shot) {
+// compare holds an output, written to half a unit of the last place, against the truth.
+func (c truthCase) compare(t *testing.T, got table, shots []shot, half float64) {
 	t.Helper()
 	if len(got.rows) != len(shots) {
 		t.Fatalf("%d rows, want %d", len(got.rows), len(shots))
 	}
-	half := 0.5 * math.Pow10(-c.decimals)
 	plan, height := half+c.roundingMetres/c.plan, half+c.roundingMetres/c.height
 	for i, s := range shots {
 		if outcome := got.text(t, i, "outcome"); outcome != "corrected" {

@@ -58,13 +58,13 @@ job.toml: [water] salinity is missing, want a number (practical salinity; 0 for 
 	{name: "temperature out of range", old: "17.5", new: "35.1", want: `job.toml:6: [water] temperature is 35.1, want -2 to 35 degrees C for quan-fry`},
 	{name: "salinity out of range", old: "34.9", new: "45.5", want: `job.toml:7: [water] salinity is 45.5, want 0 to 45 for quan-fry`},
 	{name: "salt for the formula of fresh water", old: "34.9", new: "34.9\nformula = \"iapws\"", want: `job.toml:7: [water] salinity is 34.9, want 0 to 0.5 for iapws`},
-	{name: "trajectory missing", old: `"pulse"`, new: `"pulse"` + "\ntrajectory = \"flight.csv\"", want: `job.toml: trajectory: flight.csv: no such file or directory`},
+	{name: "trajectory missing", old: `"pulse"`, new: `"pulse"` + "\ntrajectory = \"flight.csv\"", want: `job.toml: [rays] trajectory: flight.csv: no such file or directory`},
 	{name: "trajectory out of order", files: map[string]string{"flight.csv": "gps_time,x,y,z\n1,0,0,400\n3,0,0,400\n2.5,0,0,400\n"}, old: `"pulse"`, new: `"pulse"` + "\ntrajectory = \"flight.csv\"", want: `flight.csv: record 3: time 2.5 comes after 3, want records sorted by time`},
 	{name: "trajectory with repeats", files: map[string]string{"flight.csv": "gps_time,x,y,z\n1,0,0,400\n1,0,0,400\n"}, old: `"pulse"`, new: `"pulse"` + "\ntrajectory = \"flight.csv\"", want: `flight.csv: record 2: time 1 repeats the one above it, want each time once`},
 	{name: "trajectory without a column", files: map[string]string{"flight.csv": "gps_time,x,y\n1,0,0\n"}, old: `"pulse"`, new: `"pulse"` + "\ntrajectory = \"flight.csv\"", want: `flight.csv: no column "z"; the columns are gps_time, x, y`},
 	{name: "trajectory with a gap in a row", files: map[string]string{"flight.csv": "gps_time,x,y,z\n1,0,0,400\n2,0,,400\n"}, old: `"pulse"`, new: `"pulse"` + "\ntrajectory = \"flight.csv\"", want: `flight.csv: record 2: a value is not finite, want a time and a position`},
 	{name: "trajectory with a text", files: map[string]string{"flight.csv": "gps_time,x,y,z\n1,0,0,400\n2,0,high,400\n"}, old: `"pulse"`, new: `"pulse"` + "\ntrajectory = \"flight.csv\"", want: `flight.csv: line 3: y is "high", want a number`},
-	{name: "polygons missing", old: "[rays]", new: "[extent]\npolygons = \"water.geojson\"\n[rays]", want: `job.toml: extent: water.geojson: no such file or directory`},
+	{name: "polygons missing", old: "[rays]", new: "[extent]\npolygons = \"water.geojson\"\n[rays]", want: `job.toml: [extent] polygons: water.geojson: no such file or directory`},
 	{name: "polygons are none", files: map[string]string{"water.geojson": "{}"}, old: "[rays]", new: "[extent]\npolygons = \"water.geojson\"\n[rays]", want: `water.geojson: not GeoJSON: no "type", want FeatureCollection, Feature, Polygon or MultiPolygon`},
 }
 

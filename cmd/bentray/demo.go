@@ -46,7 +46,8 @@ func (c *demoCommand) Run(s *streams) error {
 	if err != nil {
 		return err
 	}
-	fmt.Fprintf(s.out, "%s: %s points in %s, corrected in %.1f s\n\n", demo.Title, grouped(survey.Points), plural(len(survey.Tiles), "tile"), summary.Seconds)
+	fmt.Fprintf(s.out, "%s: %s points in %s (%s), corrected in %.1f s\n\n",
+		demo.Title, grouped(survey.Points), plural(len(survey.Tiles), "tile"), formats(survey.Tiles), summary.Seconds)
 	printOutcomes(s, comparison)
 	printErrors(s, comparison)
 	if err := comparison.Verify(); err != nil {
@@ -55,6 +56,17 @@ func (c *demoCommand) Run(s *streams) error {
 	printRounding(s)
 	printPlaces(s, survey)
 	return nil
+}
+
+// formats counts tiles by format.
+func formats(tiles []string) string {
+	parquet := 0
+	for _, name := range tiles {
+		if strings.HasSuffix(name, ".parquet") {
+			parquet++
+		}
+	}
+	return fmt.Sprintf("%d CSV, %d Parquet", len(tiles)-parquet, parquet)
 }
 
 // meanings says why points of the demo have their outcomes.
@@ -127,7 +139,7 @@ func printPlaces(s *streams, survey *demo.Survey) {
 		{survey.Trajectory, "where the laser was, with a gap"},
 		{survey.Polygons, "the extent of the water"},
 		{survey.Corrected + slash, "the corrected tiles, a receipt beside each"},
-		{survey.Truth + slash, "where each point really is, row by row as the tiles"},
+		{survey.Truth + slash, "where each point really is, row by row as the tiles, in CSV"},
 	} {
 		fmt.Fprintf(s.out, "  %-*s  %s\n", len(survey.Polygons)+1, f[0], f[1])
 	}

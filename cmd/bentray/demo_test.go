@@ -3,17 +3,25 @@ package main
 import (
 	"bytes"
 	"encoding/csv"
+	"io"
 	"math"
 	"os"
 	"path/filepath"
+	"slices"
 	"strconv"
 	"strings"
 	"testing"
+
+	"bentray/io/cloud"
+	"bentray/io/parquetfile"
 )
 
-// readTable reads a CSV file as texts by column.
+// readTable reads a file as texts by column; null is empty.
 func readTable(t *testing.T, path string) (map[string]int, [][]string) {
 	t.Helper()
+	if parquetfile.IsName(path) {
+		return readParquet(t, path)
+	}
 	f, err := os.Open(path)
 	if err != nil {
 		t.Fatal(err)
@@ -28,6 +36,49 @@ func readTable(t *testing.T, path string) (map[string]int, [][]string) {
 		columns[name] = i
 	}
 	return columns, rows[1:]
+}
+
+func readParquet(t *testing.T, path string) (map[string]int, [][]string) {
+	t.Helper()
+	f, err := parquetfile.Open(path, parquetfile.Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	defer f.Close()
+	columns, places, read := map[string]int{}, []int{}, cloud.Request{}
+	for i, c := range f.Columns() {
+		columns[c.Name] = i
+		if strings.HasPrefix(c.Type, "BYTE_ARRAY") {
+			places = append(places, len(read.Texts))
+			read.Texts = append(read.Texts, i)
+		} else {
+			places = append(places, len(read.Numbers))
+			read.Numbers = append(read.Numbers, i)
+		}
+	}
+	if err := f.Begin(read, cloud.Layout{}, nil); err != nil {
+		t.Fatal(err)
+	}
+	var rows [][]string
+	var c cloud.Chunk
+	for {
+		if err := f.Next(&c); err == io.EOF {
+			return columns, rows
+		} else if err != nil {
+			t.Fatal(err)
+		}
+		for i := range c.Rows {
+			row := make([]string, len(places))
+			for k, place := range places {
+				if slices.Contains(read.Texts, k) {
+					row[k] = string(c.Texts[place].At(i))
+				} else if v := c.Numbers[place][i]; v == v {
+					row[k] = strconv.FormatFloat(v, 'g', -1, 64)
+				}
+			}
+			rows = append(rows, row)
+		}
+	}
 }
 
 // farthest returns how far three coordinates of one row lie from those of another.
@@ -51,13 +102,13 @@ func TestDemoMeetsItsTruth(t *testing.T) {
 	if code := run(t.Context(), []string{"demo", folder}, &stdout, &stderr); code != exitDone || stderr.Len() > 0 {
 		t.Fatalf("exit code is %d with %q on stderr, want 0 and nothing", code, &stderr)
 	}
-	for _, want := range []string{"200 000 points in 5 tiles", "all bands", "What is left is rounding", "bentray plan " + filepath.Join(folder, "survey.toml")} {
+	for _, want := range []string{"200 000 points in 5 tiles (3 CSV, 2 Parquet)", "all bands", "What is left is rounding", "bentray plan " + filepath.Join(folder, "survey.toml")} {
 		if !strings.Contains(stdout.String(), want) {
 			t.Errorf("the report lacks %q:\n%s", want, &stdout)
 		}
 	}
 	counts := map[string]int{}
-	for _, name := range []string{"tile_01.csv", "tile_02.csv", "tile_03.csv", "tile_04.csv", "cross_line/tile_05.csv"} {
+	for _, name := range []string{"tile_01.csv", "tile_02.parquet", "tile_03.csv", "tile_04.parquet", "cross_line/tile_05.csv"} {
 		checkTile(t, folder, name, counts)
 	}
 	total := 0
@@ -78,7 +129,7 @@ func TestDemoMeetsItsTruth(t *testing.T) {
 func checkTile(t *testing.T, folder, name string, counts map[string]int) {
 	t.Helper()
 	at, rows := readTable(t, filepath.Join(folder, "corrected", name))
-	_, truth := readTable(t, filepath.Join(folder, "truth", name))
+	_, truth := readTable(t, filepath.Join(folder, "truth", strings.TrimSuffix(name, filepath.Ext(name))+".csv"))
 	_, raw := readTable(t, filepath.Join(folder, "raw", name))
 	if len(rows) != len(truth) || len(rows) != len(raw) {
 		t.Fatalf("%s: %d rows, want %d as the truth and %d as the raw tile", name, len(rows), len(truth), len(raw))

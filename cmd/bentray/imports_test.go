@@ -16,7 +16,7 @@ import (
 var mayImport = map[string][]string{
 	"cmd/bentray":            {"pipeline", "pipeline/demo", "pipeline/job", "pipeline/receipt", "correct", "correct/medium", "correct/optics"},
 	"pipeline":               {"pipeline/job", "pipeline/receipt", "correct", "correct/medium", "geo", "io/cloud", "io/csvfile", "io/parquetfile", "io/atomicfile"},
-	"pipeline/demo":          {"pipeline", "pipeline/job", "pipeline/receipt", "correct/medium", "io/cloud", "io/csvfile", "io/atomicfile"},
+	"pipeline/demo":          {"pipeline", "pipeline/job", "pipeline/receipt", "correct/medium", "io/cloud", "io/parquetfile", "io/atomicfile"},
 	"pipeline/benchmark":     {"correct/medium"},
 	"pipeline/job":           {"correct/medium", "geo", "io/cloud"},
 	"pipeline/receipt":       {"io/atomicfile"},

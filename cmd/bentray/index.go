@@ -90,6 +90,7 @@ func (c *mediaFlags) report() (*mediaReport, error) {
 }
 
 func (c *indexCommand) print(s *streams, r *mediaReport) {
+	c.printPressure(s)
 	fmt.Fprintf(s.out, "light        %g nm in vacuum\n", c.Wavelength)
 	fmt.Fprintf(s.out, "water        %g degrees C, salinity %g, %g dbar; %s%s\n", c.Temperature, c.Salinity, c.PressureDbar, r.Formula, outside(r.InRange))
 	fmt.Fprintf(s.out, "air          %g degrees C, %g hPa, %g %% humidity; Ciddor 1996\n\n", c.AirTemperature, c.AirPressure, c.Humidity)
@@ -102,6 +103,14 @@ func (c *indexCommand) print(s *streams, r *mediaReport) {
 		return
 	}
 	fmt.Fprintf(s.out, "sound speed  %.2f m/s; chen-millero\n", *r.SoundSpeed)
+}
+
+// printPressure says where the pressure has no effect on the index.
+func (c *mediaFlags) printPressure(s *streams) {
+	formula, err := medium.ParseWaterFormula(c.Formula)
+	if err == nil && c.PressureDbar != 0 && !formula.UsesPressure() {
+		fmt.Fprintf(s.errors, "caution: %s has no pressure term; the index is that at the surface\n", formula)
+	}
 }
 
 func outside(inRange bool) string {

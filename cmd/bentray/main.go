@@ -53,7 +53,10 @@ type streams struct {
 
 func main() {
 	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM)
-	context.AfterFunc(ctx, stop) // a second signal stops at once
+	context.AfterFunc(ctx, func() {
+		stop() // a second signal stops at once
+		fmt.Fprintln(os.Stderr, "bentray: stopping; once more to stop at once")
+	})
 	os.Exit(run(ctx, os.Args[1:], os.Stdout, os.Stderr))
 }
 

@@ -39,6 +39,7 @@ func (c *planCommand) Run(s *streams) error {
 	printFiles(s, p, j)
 	printRoles(s, p)
 	printMedia(s, p, j)
+	printTrajectory(s, p, j)
 	printHeads(s, p, j)
 	for _, caution := range p.Cautions {
 		fmt.Fprintln(s.out, "caution:", caution)
@@ -58,7 +59,7 @@ func printFiles(s *streams, p *pipeline.Plan, j *job.Job) {
 			about = "about "
 		}
 	}
-	fmt.Fprintf(s.out, "job      %s %s\n", j.Path, quoted(j.Title))
+	fmt.Fprintf(s.out, "job      %s%s\n", j.Path, quoted(j.Title))
 	fmt.Fprintf(s.out, "files    %s, %s%s points; %d done and unchanged, %d to do\n", plural(len(p.Files), "file"), about, grouped(points), fresh, len(p.Files)-fresh)
 	if p.LeftOut > 0 {
 		fmt.Fprintf(s.out, "         %d matches left out: outputs of earlier runs\n", p.LeftOut)
@@ -79,7 +80,7 @@ func quoted(title string) string {
 	if title == "" {
 		return ""
 	}
-	return fmt.Sprintf("%q", title)
+	return fmt.Sprintf(" %q", title)
 }
 
 func printRoles(s *streams, p *pipeline.Plan) {
@@ -98,15 +99,28 @@ func printMedia(s *streams, p *pipeline.Plan, j *job.Job) {
 	fmt.Fprintf(s.out, "air      %g degrees C, %g hPa, %g %%: phase %.6f, group %.6f\n", j.Air.Temperature, j.Air.Pressure, j.Air.Humidity, p.Air[0], p.Air[1])
 }
 
+func printTrajectory(s *streams, p *pipeline.Plan, j *job.Job) {
+	t := p.Trajectory
+	if t == nil {
+		return
+	}
+	fmt.Fprintf(s.out, "flight   %s, %s to %s, longest gap %.3g s\n", plural(t.Records, "record"), t.Times[0].Format(time.RFC3339), t.Times[1].Format(time.RFC3339), t.Gap)
+	printBounds(s, t.Low, t.High, j)
+}
+
+func printBounds(s *streams, low, high [3]float64, j *job.Job) {
+	for k, axis := range []string{"x", "y", "z"} {
+		fmt.Fprintf(s.out, "         %s %.3f to %.3f %s\n", axis, low[k], high[k], unitOf(j, k))
+	}
+}
+
 func printHeads(s *streams, p *pipeline.Plan, j *job.Job) {
 	h := p.Heads
 	if h.Points == 0 {
 		return
 	}
 	fmt.Fprintf(s.out, "heads    the first %s points of the files:\n", grouped(h.Points))
-	for k, axis := range []string{"x", "y", "z"} {
-		fmt.Fprintf(s.out, "         %s %.3f to %.3f %s\n", axis, h.Low[k], h.High[k], unitOf(j, k))
-	}
+	printBounds(s, h.Low, h.High, j)
 	if !h.Times[0].IsZero() {
 		fmt.Fprintf(s.out, "         time %s to %s\n", h.Times[0].Format(time.RFC3339), h.Times[1].Format(time.RFC3339))
 	}

@@ -13,13 +13,13 @@ import (
 
 type rayCommand struct {
 	mediaFlags
-	Origin       string  `required:"" help:"Ray origin, m." placeholder:"X,Y,Z"`
-	Point        string  `required:"" help:"Apparent point, m." placeholder:"X,Y,Z"`
-	Level        float64 `required:"" help:"Elevation of the water surface at the point's plan position, m." placeholder:"Z"`
-	SlopeX       float64 `default:"0" help:"Slope of the surface along x."`
-	SlopeY       float64 `default:"0" help:"Slope of the surface along y."`
-	RangeIndex   float64 `default:"0" help:"Index that the range was made with; 0 is the group index of the air."`
-	MaxIncidence float64 `default:"60" help:"Largest incidence, degrees."`
+	Origin       string   `required:"" help:"Ray origin, m." placeholder:"X,Y,Z"`
+	Point        string   `required:"" help:"Apparent point, m." placeholder:"X,Y,Z"`
+	Level        float64  `required:"" help:"Elevation of the water surface at the point's plan position, m." placeholder:"Z"`
+	SlopeX       float64  `default:"0" help:"Slope of the surface along x."`
+	SlopeY       float64  `default:"0" help:"Slope of the surface along y."`
+	RangeIndex   *float64 `help:"Index that the range was made with, 1 to 1.01; the group index of the air where it is left out."`
+	MaxIncidence float64  `default:"60" help:"Largest incidence, degrees."`
 }
 
 func (rayCommand) Help() string {
@@ -46,9 +46,12 @@ func (c *rayCommand) Run(s *streams) error {
 	if err != nil {
 		return &pipeline.CallError{Err: err}
 	}
-	light := correct.Light{Air: media.AirPhase, RangeIndex: c.RangeIndex, Water: []float64{media.WaterPhase}, WaterGroup: []float64{media.WaterGroup}}
-	if c.RangeIndex == 0 {
-		light.RangeIndex = media.AirGroup
+	light := correct.Light{Air: media.AirPhase, RangeIndex: media.AirGroup, Water: []float64{media.WaterPhase}, WaterGroup: []float64{media.WaterGroup}}
+	if c.RangeIndex != nil {
+		light.RangeIndex = *c.RangeIndex
+	}
+	if !(light.RangeIndex >= 1 && light.RangeIndex <= 1.01) {
+		return &pipeline.CallError{Err: fmt.Errorf("--range-index is %g, want 1 to 1.01", light.RangeIndex)}
 	}
 	if !(c.MaxIncidence > 0 && c.MaxIncidence < 90) {
 		return &pipeline.CallError{Err: fmt.Errorf("--max-incidence is %g, want above 0 and below 90", c.MaxIncidence)}
@@ -78,6 +81,7 @@ func vec(flag, text string) (optics.Vec, error) {
 
 func (c *rayCommand) print(s *streams, raw, origin optics.Vec, media *mediaReport, l correct.Light, r correct.PulseRay, outcome correct.Outcome) {
 	say := func(format string, args ...any) { fmt.Fprintf(s.out, format+"\n", args...) }
+	c.printPressure(s)
 	say("origin        %s m", position(origin))
 	say("apparent      %s m", position(raw))
 	say("surface       %.4f m there, slopes %g, %g", c.Level, c.SlopeX, c.SlopeY)

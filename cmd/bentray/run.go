@@ -16,7 +16,7 @@ type runCommand struct {
 	Redo    bool   `help:"Do files again that are done already."`
 	Only    string `help:"Do only files that match, named as below the output folder." placeholder:"PATTERN"`
 	Quiet   bool   `help:"No progress and no report; failures are still named."`
-	Log     string `help:"Log each file to stderr in place of progress: text or json." enum:",text,json" default:"" placeholder:"text/json"`
+	Log     string `help:"Log each file to stderr in place of progress: text or json." placeholder:"text/json"`
 }
 
 func (runCommand) Help() string {
@@ -37,6 +37,9 @@ func (c *runCommand) Run(s *streams) error {
 	}
 	if c.Workers < 0 {
 		return &pipeline.CallError{Err: fmt.Errorf("--workers is %d, want 0 or more", c.Workers)}
+	}
+	if c.Log != "" && c.Log != "text" && c.Log != "json" {
+		return &pipeline.CallError{Err: fmt.Errorf("--log is %q, want text or json", c.Log)}
 	}
 	o := pipeline.Options{Workers: c.Workers, Redo: c.Redo, Only: c.Only}
 	if c.Shard != "" {
@@ -62,6 +65,9 @@ func (c *runCommand) Run(s *streams) error {
 }
 
 func loadJob(path string) (*job.Job, error) {
+	if pipeline.IsCloud(path) {
+		return nil, &pipeline.CallError{Err: fmt.Errorf("%s is a cloud, want a job file; bentray plan %s prints one to start from", path, path)}
+	}
 	j, err := job.Load(path)
 	if err != nil {
 		return nil, &pipeline.CallError{Err: err}
@@ -88,6 +94,9 @@ func printSummary(s *streams, summary *receipt.Summary, j *job.Job) {
 	if summary.Rows.Diverted > 0 {
 		fmt.Fprintf(s.out, "  %s of %s rows could not be read and were diverted\n", grouped(summary.Rows.Diverted), grouped(summary.Rows.Read))
 	}
+	if summary.LeftOut > 0 {
+		fmt.Fprintf(s.out, "  %d matches of the patterns left out: outputs of earlier runs\n", summary.LeftOut)
+	}
 	printCautions(s, summary)
 	fmt.Fprintf(s.out, "output: %s (%.1f s)\n", j.Resolve(j.Output.Folder), summary.Seconds)
 }
@@ -102,22 +111,35 @@ func countFiles(s *receipt.Summary) string {
 			parts = append(parts, fmt.Sprintf("%d %s,", p.n, p.what))
 		}
 	}
+	if len(s.Files) == 0 {
+		return "this share holds no file of the job"
+	}
 	return strings.TrimSuffix(strings.Join(parts, " "), ",")
 }
 
-// printCautions names the cautions of each file, as many as a person reads.
+// printCautions names each caution once, with the first file it holds for, and
+// as many as a person reads.
 func printCautions(s *streams, summary *receipt.Summary) {
 	const most = 20
-	printed := 0
+	files := map[string][]string{}
+	var cautions []string
 	for _, f := range summary.Files {
 		for _, caution := range f.Cautions {
-			if printed++; printed <= most {
-				fmt.Fprintf(s.out, "caution: %s: %s\n", f.Output, caution)
+			if files[caution] == nil {
+				cautions = append(cautions, caution)
 			}
+			files[caution] = append(files[caution], f.Output)
 		}
 	}
-	if printed > most {
-		fmt.Fprintf(s.out, "caution: %d more in the receipts and in run-summary.json\n", printed-most)
+	for _, caution := range cautions[:min(len(cautions), most)] {
+		where := files[caution][0]
+		if more := len(files[caution]) - 1; more > 0 {
+			where += fmt.Sprintf(" and %d more", more)
+		}
+		fmt.Fprintf(s.out, "caution: %s: %s\n", where, caution)
+	}
+	if more := len(cautions) - most; more > 0 {
+		fmt.Fprintf(s.out, "caution: %d more in the receipts and in run-summary.json\n", more)
 	}
 }
 

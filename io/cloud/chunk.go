@@ -25,9 +25,7 @@ func (c *Chunk) Resize(rows int, write Layout) {
 	for i := range c.XYZ {
 		c.XYZ[i] = Grow(c.XYZ[i], rows)
 	}
-	if c.Added == nil {
-		c.Added = make([][]float64, len(write.Added))
-	}
+	c.Added = Grow(c.Added, len(write.Added))
 	for i, a := range write.Added {
 		if a.ByClass == nil {
 			c.Added[i] = Grow(c.Added[i], rows)

@@ -90,6 +90,19 @@ func TestGiantPages(t *testing.T) {
 	}
 }
 
+// TestGiantTexts reads a page of texts that is too large for the usual memory.
+func TestGiantTexts(t *testing.T) {
+	const rows = 300_000
+	c := built{name: "views", typ: parquet.Type_BYTE_ARRAY, codec: parquet.CompressionCodec_SNAPPY}
+	for i := range rows {
+		c.values = append(c.values, any(fmt.Sprintf("cam%d;cam%d", i, i+1)))
+		if i%1000 == 3 {
+			c.values[i] = nil
+		}
+	}
+	checkColumns(t, []built{c}, buildFile(t, []built{c}, []int{rows}, nil))
+}
+
 // TestAllocations wants no allocation by row: decoding and encoding a piece
 // once more takes those of its page headers alone.
 func TestAllocations(t *testing.T) {

@@ -144,16 +144,25 @@ func (f *File) Finish() error {
 	for range o.paths {
 		meta.ColumnOrders = append(meta.ColumnOrders, &parquet.ColumnOrder{TYPE_ORDER: parquet.NewTypeDefinedOrder()})
 	}
-	footer, err := appendThrift(nil, meta)
+	footer, err := sealed(meta)
 	if err != nil {
-		return fmt.Errorf("%s: the footer cannot be written: %w", f.path, err)
+		return fmt.Errorf("%s: %w", f.path, err)
 	}
-	if len(footer) > maxFooterBytes {
-		return fmt.Errorf("%s: the footer has %d bytes, want at most %d; split the file or write larger row groups", f.path, len(footer), maxFooterBytes)
-	}
-	footer = binary.LittleEndian.AppendUint32(footer, uint32(len(footer)))
-	if err := o.write(append(footer, magic...)); err != nil {
+	if err := o.write(footer); err != nil {
 		return err
 	}
 	return o.writer.Flush()
+}
+
+// sealed returns the end of a file: its description, with length and magic.
+func sealed(meta *parquet.FileMetaData) ([]byte, error) {
+	footer, err := appendThrift(nil, meta)
+	if err != nil {
+		return nil, fmt.Errorf("the footer cannot be written: %w", err)
+	}
+	if len(footer) > maxFooterBytes {
+		return nil, fmt.Errorf("the footer has %d bytes, want at most %d; split the file or write larger row groups", len(footer), maxFooterBytes)
+	}
+	footer = binary.LittleEndian.AppendUint32(footer, uint32(len(footer)))
+	return append(footer, magic...), nil
 }

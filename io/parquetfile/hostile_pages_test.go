@@ -63,6 +63,7 @@ func TestPageLies(t *testing.T) {
 		{"compressed size", double, pageOf(t, plain, 800, 100, eight)[:700], "a page says it has 800 bytes, want at most"},
 		{"page size", double, pageOf(t, plain, 900, 100, eight), "a page that is not compressed has 800 bytes, want 900"},
 		{"huge page", double, pageOf(t, plain, 1<<30, 100, eight), "want at most 134217728; write the file with smaller pages"},
+		{"too large for its values", double, pageOf(t, plain, 100<<20, 100, eight), "a page of 100 values has 104857600 bytes, want at most 67136"},
 		{"negative size", double, pageOf(t, plain, -1, 100, eight), "a page has 800 bytes, -1 decompressed"},
 		{"too many values", double, pageOf(t, plain, 800, 101, eight), "a page has 101 values, want at most the 100"},
 		{"negative values", double, pageOf(t, plain, 800, -1, eight), "a page has -1 values"},

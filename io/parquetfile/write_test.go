@@ -231,3 +231,33 @@ func TestNoRows(t *testing.T) {
 		f.Close()
 	}
 }
+
+// TestChunkReuse passes one chunk from file to file, and from another format.
+func TestChunkReuse(t *testing.T) {
+	c := cloud.Chunk{Format: "of another format", Numbers: [][]float64{{1, 2}}, Texts: make([]cloud.Texts, 3)}
+	path := buildFile(t, survey(20), []int{20}, nil)
+	for _, read := range []cloud.Request{{Numbers: []int{1, 4}}, {Texts: []int{0}}, {Numbers: []int{4}, Texts: []int{0}}} {
+		f, err := Open(path, Options{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		if err := f.Begin(read, cloud.Layout{}, nil); err != nil {
+			t.Fatal(err)
+		}
+		if err := f.Next(&c); err != nil {
+			t.Fatal(err)
+		}
+		if c.Rows != 20 || len(c.Numbers) != len(read.Numbers) || len(c.Texts) != len(read.Texts) || c.Consumed != f.size {
+			t.Errorf("%v: %d rows, %d numbers, %d texts, %d bytes", read, c.Rows, len(c.Numbers), len(c.Texts), c.Consumed)
+		}
+		for k := range c.Numbers {
+			if column := read.Numbers[k]; column == 4 && c.Numbers[k][19] != 19%6 {
+				t.Errorf("class of row 19 is %v, want 1", c.Numbers[k][19])
+			}
+		}
+		if err := f.Next(&c); err != io.EOF {
+			t.Errorf("got error %v behind the last row, want io.EOF", err)
+		}
+		f.Close()
+	}
+}

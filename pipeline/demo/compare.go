@@ -8,6 +8,8 @@ import (
 	"os"
 	"slices"
 	"strconv"
+
+	"bentray/io/parquetfile"
 )
 
 // RoundingM is the most that the rounding of the tiles to millimetres leaves of
@@ -30,7 +32,7 @@ func Compare(s *Survey) (*Comparison, error) {
 	c := &Comparison{Outcomes: map[string]int64{}}
 	var b bands
 	for _, name := range s.Tiles {
-		if err := c.compareTile(&b, below(s.Corrected, name), below(s.Truth, name)); err != nil {
+		if err := c.compareTile(&b, below(s.Corrected, name), below(s.Truth, truthName(name))); err != nil {
 			return nil, err
 		}
 	}
@@ -50,18 +52,36 @@ func (c *Comparison) Verify() error {
 	return nil
 }
 
+// points reads an output row by row: the corrected point, the raw one, and the
+// outcome, in this order of columns.
+type points interface {
+	next() error                 // io.EOF after the last row
+	vec(column int) (vec, error) // three numbers from that column on
+	text() string                // the last column
+	close() error
+}
+
+// openPoints opens an output in the format of its name.
+func openPoints(path string) (points, error) {
+	names := []string{"x", "y", "z", "x_raw", "y_raw", "z_raw", "outcome"}
+	if parquetfile.IsName(path) {
+		return openChunks(path, names...)
+	}
+	return openTable(path, names...)
+}
+
 // compareTile compares one output with its truth, row by row.
 func (c *Comparison) compareTile(b *bands, output, truth string) error {
-	found, err := openTable(output, "x", "y", "z", "x_raw", "y_raw", "z_raw", "outcome")
+	found, err := openPoints(output)
 	if err != nil {
 		return err
 	}
-	defer found.file.Close()
+	defer found.close()
 	known, err := openTable(truth, "x", "y", "z", "depth", "outcome")
 	if err != nil {
 		return err
 	}
-	defer known.file.Close()
+	defer known.close()
 	for {
 		foundErr, knownErr := found.next(), known.next()
 		if foundErr == io.EOF && knownErr == io.EOF {
@@ -80,18 +100,22 @@ func (c *Comparison) compareTile(b *bands, output, truth string) error {
 }
 
 // add takes the present row of an output and of its truth.
-func (c *Comparison) add(b *bands, found, known *table) error {
-	outcome := found.text(6)
+func (c *Comparison) add(b *bands, found points, known *table) error {
+	outcome := found.text()
 	c.Points++
 	c.Outcomes[outcome]++
-	if outcome != known.text(4) {
+	if outcome != known.text() {
 		c.Unexpected++
 	}
 	if outcome != "corrected" {
 		return nil
 	}
-	b.add(known.number(3), found.vec(3), found.vec(0), known.vec(0))
-	return errors.Join(found.err, known.err)
+	corrected, errCorrected := found.vec(0)
+	raw, errRaw := found.vec(3)
+	truth, errTruth := known.vec(0)
+	depth, errDepth := known.number(3)
+	b.add(depth, raw, corrected, truth)
+	return errors.Join(errCorrected, errRaw, errTruth, errDepth)
 }
 
 // table reads chosen columns of a CSV file row by row. It is not the reader of
@@ -103,7 +127,6 @@ type table struct {
 	columns []int
 	fields  []string // of the present row, all columns
 	row     int64
-	err     error // the first number that is none
 }
 
 func openTable(path string, names ...string) (*table, error) {
@@ -143,17 +166,21 @@ func (t *table) next() (err error) {
 	return err
 }
 
-func (t *table) text(column int) string { return t.fields[t.columns[column]] }
+func (t *table) text() string { return t.fields[t.columns[len(t.columns)-1]] }
 
-func (t *table) number(column int) float64 {
-	v, err := strconv.ParseFloat(t.text(column), 64)
-	if err != nil && t.err == nil {
-		t.err = fmt.Errorf("%s: row %d: %w", t.path, t.row, err)
+func (t *table) number(column int) (float64, error) {
+	v, err := strconv.ParseFloat(t.fields[t.columns[column]], 64)
+	if err != nil {
+		return 0, fmt.Errorf("%s: row %d: %w", t.path, t.row, err)
 	}
-	return v
+	return v, nil
 }
 
-// vec reads three columns from the given one on.
-func (t *table) vec(column int) vec {
-	return vec{t.number(column), t.number(column + 1), t.number(column + 2)}
+func (t *table) vec(column int) (vec, error) {
+	x, errX := t.number(column)
+	y, errY := t.number(column + 1)
+	z, errZ := t.number(column + 2)
+	return vec{x, y, z}, errors.Join(errX, errY, errZ)
 }
+
+func (t *table) close() error { return t.file.Close() }

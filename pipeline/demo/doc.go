@@ -5,7 +5,8 @@
 //
 // A green laser flies over Lantern Cove, a place that does not exist: a cove
 // that deepens to some 12 m behind a sand bar, with a rock that stands out of the
-// water. Five flight lines of 40 000 pulses give 200 000 points in five CSV tiles.
+// water. Five flight lines of 40 000 pulses give 200 000 points in five tiles, three
+// of them CSV and two Parquet.
 // Some of them lie on the shore, outside the water polygon, on the rock, in a
 // gap of the trajectory, or have no coordinates, so that a run shows how it
 // names each. Equal programs write equal bytes.
@@ -31,6 +32,6 @@
 // TestApparentPoint hold the simulation itself to 1e-9 m, far below it.
 //
 // The rooms: scene.go has the bed and the polygon, flight.go the trajectory,
-// simulate.go the light, shot.go the pulses, write.go and rows.go the files,
-// compare.go and errors.go the comparison.
+// simulate.go the light, shot.go the pulses, write.go, rows.go and
+// parquet.go the files, compare.go and errors.go the comparison.
 package demo

@@ -4,6 +4,7 @@ import (
 	"math"
 	"path"
 	"strconv"
+	"strings"
 )
 
 const (
@@ -18,19 +19,27 @@ const (
 	classBathymetry = 40
 )
 
-// tile is a cloud and its truth, row by row, as CSV.
+// tile is a cloud and its truth, row by row. The truth is CSV, the cloud CSV or
+// Parquet as its name says.
 type tile struct {
-	name         string // below the folder of tiles, with slashes
-	cloud, truth []byte
-	rows         int
+	name  string  // below the folder of tiles, with slashes
+	cloud []byte  // of a CSV tile, without its header
+	table columns // of a Parquet tile
+	truth []byte
+	rows  int
+}
+
+// truthName names the truth of a tile below its folder.
+func truthName(tile string) string {
+	return strings.TrimSuffix(tile, path.Ext(tile)) + ".csv"
 }
 
 // newTiles returns the tiles of the lines to and fro, cut from west to east, and
-// that of the line across.
+// that of the line across. Half of the lines' tiles are Parquet.
 func newTiles() []*tile {
 	var tiles []*tile
-	for _, name := range []string{"tile_01.csv", "tile_02.csv", "tile_03.csv", "tile_04.csv", path.Join("cross_line", "tile_05.csv")} {
-		tiles = append(tiles, &tile{name: name, cloud: []byte(cloudColumns), truth: []byte(truthColumns)})
+	for _, name := range []string{"tile_01.csv", "tile_02.parquet", "tile_03.csv", "tile_04.parquet", path.Join("cross_line", "tile_05.csv")} {
+		tiles = append(tiles, &tile{name: name, truth: []byte(truthColumns)})
 	}
 	return tiles
 }
@@ -45,7 +54,11 @@ func tileOf(l *flightLine, s *shot) int {
 
 // add appends a shot.
 func (t *tile) add(s *shot) {
-	t.cloud = s.appendRow(t.cloud)
+	if t.isParquet() {
+		t.table.add(s)
+	} else {
+		t.cloud = s.appendRow(t.cloud)
+	}
 	t.truth = s.appendTruth(t.truth)
 	t.rows++
 }
@@ -58,15 +71,25 @@ func (s *shot) appendRow(b []byte) []byte {
 		b = appendVec(b, s.apparent, 3)
 	}
 	b = appendFixed(append(b, ','), takeOffS*1e6+s.timeUS, 6)
-	class, returnNumber := int64(classGround), int64(1)
+	for _, n := range s.numbers() {
+		b = strconv.AppendInt(append(b, ','), int64(n), 10)
+	}
+	b = append(b, ',')
+	if text := remark(s.bed.x, s.bed.y); strings.Contains(text, ",") {
+		b = append(append(append(b, '"'), text...), '"')
+	} else {
+		b = append(b, text...)
+	}
+	return append(b, '\n')
+}
+
+// numbers are intensity, return_number, classification and point_source_id.
+func (s *shot) numbers() [4]int32 {
+	class, returnNumber := int32(classGround), int32(1)
 	if s.bed.z < levelM {
 		class, returnNumber = classBathymetry, 2
 	}
-	for _, n := range []int64{int64(s.intensity), returnNumber, class, int64(s.line)} {
-		b = strconv.AppendInt(append(b, ','), n, 10)
-	}
-	b = append(append(b, ','), remark(s.bed.x, s.bed.y)...)
-	return append(b, '\n')
+	return [4]int32{int32(s.intensity), returnNumber, class, int32(s.line)}
 }
 
 // appendTruth appends the row of the truth.

@@ -45,7 +45,7 @@ func remark(x, y float64) string {
 	u, v := x-cornerX, y-cornerY
 	switch {
 	case squareSum(u-rockX, v-rockY) < 40*40:
-		return `"rock, weed"`
+		return "rock, weed"
 	case math.Abs(v-barCrest(u)) < barWidthM && bedZ(x, y) < levelM:
 		return "sand bar"
 	}

@@ -34,7 +34,7 @@ type Survey struct {
 	Raw        string   // the folder of the raw tiles
 	Corrected  string   // the folder that the job writes to
 	Truth      string   // the folder of the truth, row by row as the tiles
-	Tiles      []string // names below the three folders, with slashes
+	Tiles      []string // names below Raw and Corrected, with slashes; below Truth all end in .csv
 	Points     int64    // rows of all tiles
 }
 
@@ -64,7 +64,7 @@ func Write(folder string) (*Survey, error) {
 	for _, t := range tiles {
 		s.Tiles = append(s.Tiles, t.name)
 		s.Points += int64(t.rows)
-		err = errors.Join(err, atomicfile.Write(below(s.Raw, t.name), t.cloud), atomicfile.Write(below(s.Truth, t.name), t.truth))
+		err = errors.Join(err, t.write(below(s.Raw, t.name)), atomicfile.Write(below(s.Truth, truthName(t.name)), t.truth))
 	}
 	return s, err
 }
@@ -151,10 +151,10 @@ func jobText() []byte {
 	return fmt.Appendf(nil, `title = %q
 
 [input]
-files = ["%s/**/*.csv"]
+files = ["%s/**/*.csv", "%[2]s/**/*.parquet"]
 
 [output]
-folder = %q
+folder = %[3]q
 
 [water]
 temperature = %.1f # degrees C

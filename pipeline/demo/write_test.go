@@ -44,7 +44,7 @@ func TestWriteGivesTheSameBytes(t *testing.T) {
 	want := contents(t, one)
 	names := slices.Sorted(maps.Keys(want))
 	wantNames := []string{
-		"flight.csv", "raw/cross_line/tile_05.csv", "raw/tile_01.csv", "raw/tile_02.csv", "raw/tile_03.csv", "raw/tile_04.csv", "survey.toml",
+		"flight.csv", "raw/cross_line/tile_05.csv", "raw/tile_01.csv", "raw/tile_02.parquet", "raw/tile_03.csv", "raw/tile_04.parquet", "survey.toml",
 		"truth/cross_line/tile_05.csv", "truth/tile_01.csv", "truth/tile_02.csv", "truth/tile_03.csv", "truth/tile_04.csv", "water.geojson",
 	}
 	if !slices.Equal(names, wantNames) {
@@ -72,10 +72,11 @@ func TestTilesHaveTheirTruth(t *testing.T) {
 	total := 0
 	for _, tile := range tiles {
 		total += tile.rows
-		for what, text := range map[string][]byte{"cloud": tile.cloud, "truth": tile.truth} {
-			if got := bytes.Count(text, []byte("\n")); got != tile.rows+1 {
-				t.Errorf("%s: the %s has %d lines, want a header and %d rows", tile.name, what, got, tile.rows)
-			}
+		if got := bytes.Count(tile.truth, []byte("\n")); got != tile.rows+1 {
+			t.Errorf("%s: the truth has %d lines, want a header and %d rows", tile.name, got, tile.rows)
+		}
+		if got := bytes.Count(tile.cloud, []byte("\n")) + len(tile.table.x); got != tile.rows {
+			t.Errorf("%s: the cloud has %d rows, want %d", tile.name, got, tile.rows)
 		}
 		if tile.rows < 10_000 {
 			t.Errorf("%s has %d rows, want a fair share", tile.name, tile.rows)

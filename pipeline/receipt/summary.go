@@ -2,6 +2,9 @@ package receipt
 
 import (
 	"cmp"
+	"encoding/json"
+	"fmt"
+	"os"
 	"slices"
 	"time"
 )
@@ -18,7 +21,8 @@ type Summary struct {
 	Started  time.Time        `json:"started"`
 	Finished time.Time        `json:"finished"`
 	Seconds  float64          `json:"seconds"`
-	Files    []FileSummary    `json:"files"` // in order of their outputs
+	LeftOut  int              `json:"left_out"` // matches of the patterns that are outputs of earlier runs
+	Files    []FileSummary    `json:"files"`    // in order of their outputs
 	Done     int              `json:"files_done"`
 	Fresh    int              `json:"files_fresh"` // done by an earlier run, and still right
 	Failed   int              `json:"files_failed"`
@@ -54,6 +58,24 @@ type FileSummary struct {
 	Rows     Rows     `json:"rows"`
 	Cautions []string `json:"cautions,omitempty"`
 	Seconds  float64  `json:"seconds"`
+
+	// The input of a file that is done or fresh.
+	InputBytes    int64     `json:"input_bytes,omitempty"`
+	InputSHA256   string    `json:"input_sha256,omitempty"`
+	InputModified time.Time `json:"input_modified,omitzero"`
+}
+
+// ReadSummary reads a summary that Write wrote.
+func ReadSummary(path string) (*Summary, error) {
+	data, err := os.ReadFile(path)
+	if err != nil {
+		return nil, err
+	}
+	var s Summary
+	if err := json.Unmarshal(data, &s); err != nil {
+		return nil, fmt.Errorf("%s: not a summary: %w", path, err)
+	}
+	return &s, nil
 }
 
 // Add takes the result of one file into the summary; outcomes are those of its

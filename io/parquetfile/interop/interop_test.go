@@ -1,5 +1,10 @@
 //go:build interop
 
+// Package interop proves Parquet outputs with another program: a columnar SQL
+// engine reads them back. Its test has the build tag interop and runs node:
+//
+//	npm install --prefix FOLDER @duckdb/node-api
+//	BENTRAY_ENGINE=FOLDER go test -tags interop ./io/parquetfile/interop
 package interop
 
 import (
@@ -120,8 +125,12 @@ func TestEngineReads(t *testing.T) {
 			target := filepath.Join(t.TempDir(), "out.parquet")
 			rewrite(t, path, target)
 			in, out := fmt.Sprintf("read_parquet('%s')", path), fmt.Sprintf("read_parquet('%s')", target)
-			statements := append(copied(t, path, in, out), added(in, out)...)
+			statements := append([]string{"create table copy as select * from " + out}, copied(t, path, in, out)...)
+			statements = append(statements, added(in, out)...)
 			for i, rows := range engine(t, statements...) {
+				if i == 0 {
+					continue // the table
+				}
 				if len(rows) != 1 || rows[0][0] != "0" {
 					t.Errorf("%s\ngives %v, want 0", statements[i], rows)
 				}
@@ -178,7 +187,8 @@ func added(in, out string) []string {
 	}
 	slices.Sort(list)
 	for _, filter := range []string{"depth > 7", "outcome = 'dry'", "outcome = 'invalid'", "n_water is null", "run = 'x'", "ray_count = 5", "z < -14", "nothing is not null"} {
-		list = append(list, fmt.Sprintf("select (select count(*) from %s where %s) - (select count(*) from (select * from %s offset 0) where (%s) and random() >= 0)", out, filter, out, filter))
+		// The second count comes from a table, which has no statistics of ours.
+		list = append(list, fmt.Sprintf("select (select count(*) from %s where %s) - (select count(*) from copy where %s)", out, filter, filter))
 	}
 	return list
 }

@@ -1,0 +1,157 @@
+package pipeline
+
+import (
+	"fmt"
+	"path/filepath"
+	"slices"
+	"strings"
+	"testing"
+
+	"bentray/io/parquetfile"
+	"bentray/pipeline/job"
+)
+
+// mixedFleet is a survey of CSV and Parquet clouds with a Parquet trajectory;
+// one cloud has row groups of several chunks, one has many small groups, one has
+// no rows.
+func mixedFleet(t *testing.T) (folder string) {
+	t.Helper()
+	c, w := truthCases[0], standardSea(t)
+	folder = t.TempDir()
+	parquet := func(n, groupRows int) string { return parquetOf(t, c.cloud(w.shoot(n, false)), groupRows, nil) }
+	files{
+		"flight.parquet":        parquetOf(t, c.flight(), 7, nil),
+		"water.geojson":         polygonOf(-1000, -1000, 900, 1000),
+		"raw/none.parquet":      parquet(0, 0),
+		"raw/part/wide.parquet": parquet(140_000, 131_000),
+		"raw/part/many.parquet": parquet(5_000, 300),
+		"raw/plain.csv":         c.cloud(w.shoot(700, false)),
+	}.write(t, folder)
+	return folder
+}
+
+func mixedJob(t *testing.T, folder, output string) *job.Job {
+	t.Helper()
+	return loadJob(t, folder, "[input]\nfiles = [\"raw/**/*.csv\", \"raw/**/*.parquet\"]\n[output]\nfolder = \""+output+"\"\n"+media+
+		"[surface]\nlevel = 0.42\n[extent]\npolygons = \"water.geojson\"\n[rays]\nmodel = \"pulse\"\ntrajectory = \"flight.parquet\"\n")
+}
+
+func TestSameParquetBytesForAnyWorkers(t *testing.T) {
+	folder := mixedFleet(t)
+	var want map[string]string
+	for _, workers := range []int{1, 2, 7} {
+		output := fmt.Sprintf("true%d", workers)
+		s := runJob(t, mixedJob(t, folder, output), Options{Workers: workers})
+		got := outputs(t, filepath.Join(folder, output))
+		if want == nil {
+			want = got
+		}
+		same(t, fmt.Sprintf("%d workers", workers), got, want)
+		if s.Rows.Read != 145_700 || s.Rows.Written != 145_700 || s.Done != 4 {
+			t.Errorf("%d workers: rows %+v in %d files, want 145700 in 4", workers, s.Rows, s.Done)
+		}
+	}
+	if s := runJob(t, mixedJob(t, folder, "true2"), Options{}); s.Fresh != 4 {
+		t.Errorf("a second run finds %d files fresh, want 4", s.Fresh)
+	}
+	runJob(t, mixedJob(t, folder, "true2"), Options{Workers: 3, Redo: true})
+	same(t, "redo", outputs(t, filepath.Join(folder, "true2")), want)
+}
+
+// One job treats a cloud alike in both formats: the same outcomes, and the same
+// numbers but for the rounding to text.
+func TestBothFormatsAgree(t *testing.T) {
+	c, w := truthCases[0], standardSea(t)
+	text := c.cloud(w.shoot(3000, false))
+	folder := t.TempDir()
+	files{
+		"raw/a.csv": text, "raw/a.parquet": parquetOf(t, text, 700, nil),
+		"flight.parquet": parquetOf(t, c.flight(), 0, nil), "water.geojson": polygonOf(-1000, -1000, 900, 1000),
+	}.write(t, folder)
+	runJob(t, mixedJob(t, folder, "true"), Options{})
+	inText, inParquet := readTable(t, readFile(t, folder, "true/a.csv")), readParquet(t, readFile(t, folder, "true/a.parquet"))
+	if !slices.Equal(inText.names, inParquet.names) || len(inText.rows) != len(inParquet.rows) {
+		t.Fatalf("columns are %q, want %q", inParquet.names, inText.names)
+	}
+	for i := range inText.rows {
+		for _, name := range inText.names {
+			a, b := inText.text(t, i, name), inParquet.text(t, i, name)
+			if _, number := numbersOf([]string{a}); a != b && a != "" && number {
+				near(t, i, name, inParquet.number(t, i, name), inText.number(t, i, name), 0.5001e-4)
+			} else if a != b {
+				t.Errorf("row %d: %s is %q in Parquet, %q in CSV", i, name, b, a)
+			}
+		}
+	}
+}
+
+// Parquet columns have types: a condition of texts wants a text column, one of
+// numbers a number.
+func TestSelectByTypes(t *testing.T) {
+	data := parquetOf(t, "x,y,z,classification,strip,origin_x,origin_y,origin_z\n"+
+		"5,6,-1,2,north,5,6,400\n5,6,-1,9,south,5,6,400\n5,6,-1,40,7,5,6,400\n5,6,-1,2,North,5,6,400\n", 3, map[string]string{"classification": "INT32"})
+	for _, c := range []struct{ where, want string }{
+		{"classification = [2]", "+--+"},
+		{"classification = [9, 40]", "-++-"},
+		{`strip = ["north", 7]`, "+-+-"},
+		{"classification = [2]\nstrip = [\"north\"]", "+---"},
+	} {
+		got := ""
+		for _, outcome := range readParquet(t, correctParquet(t, data, parquetJob()+"[select.where]\n"+c.where+"\n")).column(t, "outcome") {
+			got += map[string]string{"corrected": "+", "not_selected": "-"}[outcome]
+		}
+		if got != c.want {
+			t.Errorf("%s selects %s, want %s", c.where, got, c.want)
+		}
+	}
+	for where, want := range map[string]string{
+		`z = ["-10"]`: `column "z" is DOUBLE, want a text (BYTE_ARRAY)`,
+		"z = [-10]":   "",
+	} {
+		folder := t.TempDir()
+		files{"raw/a.parquet": parquetOf(t, tiny, 0, nil)}.write(t, folder)
+		s, err := Run(t.Context(), loadJob(t, folder, parquetJob()+"[select.where]\n"+where+"\n"), Options{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		if got := strings.TrimPrefix(s.Files[0].Error, filepath.Join(folder, "raw/a.parquet")+": "); got != want {
+			t.Errorf("%s gives %q, want %q", where, got, want)
+		}
+	}
+}
+
+// A file of no rows is done: its output has all columns, and a caution says so.
+func TestParquetWithoutRows(t *testing.T) {
+	folder := t.TempDir()
+	files{"raw/a.parquet": tableOf(t, 0,
+		parquetfile.Column{Name: "x", Values: []float64{}}, parquetfile.Column{Name: "y", Values: []float64{}}, parquetfile.Column{Name: "z", Values: []float64{}},
+		parquetfile.Column{Name: "origin_x", Values: []float64{}}, parquetfile.Column{Name: "origin_y", Values: []float64{}}, parquetfile.Column{Name: "origin_z", Values: []float64{}},
+	)}.write(t, folder)
+	runJob(t, loadJob(t, folder, parquetJob()), Options{})
+	got := readParquet(t, readFile(t, folder, "true/a.parquet"))
+	if len(got.rows) != 0 || got.names[6] != "x_raw" || got.names[len(got.names)-1] != "run" {
+		t.Errorf("%d rows of %q", len(got.rows), got.names)
+	}
+	if r := readReceipt(t, filepath.Join(folder, "true/a.parquet")); !slices.Equal(r.Cautions, []string{"the file holds no points"}) {
+		t.Errorf("cautions are %q", r.Cautions)
+	}
+}
+
+// What fails, fails alone, with the column named.
+func TestParquetThatCannotBeDone(t *testing.T) {
+	named := func(names string) string { return parquetOf(t, strings.Replace(tiny, "x,y,z", names, 1), 0, nil) }
+	for name, c := range map[string]struct{ data, want string }{
+		"a text for a coordinate": {parquetOf(t, tiny, 0, map[string]string{"z": "text"}), `column "z" is BYTE_ARRAY UTF8, want a number (DOUBLE, FLOAT, INT32, INT64 or TIMESTAMP)`},
+		"no z":                    {named("x,y,up"), "no column for z; the columns are x, y, up, origin_x, origin_y, origin_z; name it in [input.columns]"},
+		"degrees":                 {named("lon,lat,z"), `no column for x, and "lon" holds degrees; project the cloud first, its coordinates must be lengths`},
+		"a raw copy there":        {parquetOf(t, "x,y,z,origin_x,origin_y,origin_z,Z_raw\n5,6,-10,5,6,400,1\n", 0, nil), `the file already has a column "Z_raw", which bentray would add; rename it there, or take the raw cloud if this file is an output`},
+		"an output again": {correctParquet(t, parquetOf(t, tiny, 0, nil), parquetJob()),
+			`the file already has a column "x_raw", which bentray would add; rename it there, or take the raw cloud if this file is an output`},
+	} {
+		t.Run(name, func(t *testing.T) {
+			if got := failParquet(t, c.data, parquetJob()); got != c.want {
+				t.Errorf("the error is %s, want %s", got, c.want)
+			}
+		})
+	}
+}
