@@ -32,7 +32,7 @@
 // TestTrajectoryPrecision). Polygons are tested with the coordinates as they stand;
 // the index gives the answer of the plain test over all edges
 // (TestFindAgainstPlainTest). UTC holds to the rounding of a time near 1.5e9 s,
-// 0.12 microseconds (TestPublishedPairs).
+// 0.12 microseconds (TestPublishedPairs, TestTimeScaleRoundTrip).
 //
 // Against simulated truth: the plane through 400 waterline points with 4 mm noise and
 // 12 % wrong by 0 to 2 m upwards holds to 2 mm (TestFitPlaneWithBlunders); a profile

@@ -4,8 +4,8 @@ import "math"
 
 // axis cuts the interval from min to max into n cells of one size.
 type axis struct {
-	min, max, perMetre float64
-	n                  int
+	min, max, perUnit float64
+	n                 int
 }
 
 // newAxis returns an axis of about n cells, at least 1. A cell is never below 256
@@ -17,7 +17,7 @@ func newAxis(low, high float64, n int) axis {
 	}
 	rounding := max(math.Abs(low), math.Abs(high)) * 0x1p-52
 	n = int(max(min(float64(n), (high-low)/(256*rounding)), 1))
-	return axis{min: low, max: high, perMetre: float64(n) / (high - low), n: n}
+	return axis{min: low, max: high, perUnit: float64(n) / (high - low), n: n}
 }
 
 // holds tells whether v lies on the axis, ends included; NaN does not.
@@ -26,7 +26,7 @@ func (a *axis) holds(v float64) bool { return v >= a.min && v <= a.max }
 // cell returns the cell of v, the nearest one where v is outside. It never falls
 // where v rises, so what spans v lies between the cells of its ends.
 func (a *axis) cell(v float64) int {
-	at := (v - a.min) * a.perMetre
+	at := (v - a.min) * a.perUnit
 	if !(at > 0) {
 		return 0
 	}

@@ -10,33 +10,50 @@ import (
 )
 
 // PolygonIndex finds the polygon that holds a point. A raster over all polygons
-// knows the cells that lie wholly in a polygon or in none; only points in cells
-// that an edge touches are tested, against the edges in one level band of the
-// polygon. It does not change once made, so goroutines may share it.
+// knows the cells that lie wholly in a polygon or in none. Where edges touch the
+// cells of a row, the run of such cells keeps the few edges that can tell; so a
+// point costs a look at its cell and, near an edge, a test of the edges beside it.
+// An index does not change once made, so goroutines may share it.
 type PolygonIndex struct {
-	shapes     []shape
 	cols, rows axis
-	cells      lists // of 2*polygon, +1 where the cell lies wholly in it; smallest area first
+	cells      lists // of 2*polygon + 1 where the cell lies wholly in it, else 2*run; smallest area first
+	runs       []run
+	parts      []part
+	near       []int32 // edges by number, one piece for each part
+	edges      []edge
 }
 
-// maxCells bounds the raster, and with it the memory: 1 MB and 4 bytes an entry.
-const maxCells = 1 << 18
+// run is a row's run of cells that edges of one polygon touch, between cells that
+// none touches. A point in it is in the polygon if every part agrees.
+type run struct{ poly, first, end int32 }
+
+// part holds the edges near[first:end] of one ring in a run. A point of the run is
+// on the side of the ring that the polygon wants if it has an odd number of them to
+// its right (odd) or an even one: those of other runs to the right are accounted for.
+type part struct {
+	first, end int32
+	odd        bool
+}
+
+// maxCells bounds the raster and with it the memory: 4 MiB, and 4 bytes an entry.
+const maxCells = 1 << 20
 
 // NewPolygonIndex returns an index of polygons as ParsePolygons gives them: closed
 // rings with finite coordinates (m), the first ring the outline, others holes. It
 // copies what it needs. It takes time and memory for the edges, and for the cells
 // that each polygon covers.
 func NewPolygonIndex(polys []orb.Polygon) *PolygonIndex {
-	idx := &PolygonIndex{shapes: make([]shape, len(polys))}
+	shapes := make([]*shape, len(polys))
 	for k, poly := range polys {
-		idx.shapes[k] = newShape(poly)
+		shapes[k] = newShape(poly)
 	}
-	idx.layRaster()
-	r := raster{idx: idx, seen: make([]int32, idx.cols.n*idx.rows.n)}
-	for turn, k := range byArea(polys) {
-		r.burn(int32(turn+1), int32(k))
+	idx := &PolygonIndex{}
+	idx.layRaster(shapes)
+	b := burner{PolygonIndex: idx, closed: make([]bool, idx.cols.n*idx.rows.n)}
+	for _, k := range byArea(polys) {
+		b.burn(shapes[k], int32(k))
 	}
-	idx.cells = newLists(r.entries, len(r.seen))
+	idx.cells = newLists(b.entries, len(b.closed))
 	return idx
 }
 
@@ -52,24 +69,22 @@ func byArea(polys []orb.Polygon) []int {
 }
 
 // layRaster chooses the cells: about four for each edge, nearly square.
-func (idx *PolygonIndex) layRaster() {
-	low, high := [2]float64{math.Inf(1), math.Inf(1)}, [2]float64{math.Inf(-1), math.Inf(-1)}
+func (idx *PolygonIndex) layRaster(shapes []*shape) {
+	left, right, low, high := math.Inf(1), math.Inf(-1), math.Inf(1), math.Inf(-1)
 	count := 0
-	for k := range idx.shapes {
-		count += len(idx.shapes[k].edges)
-		for _, e := range idx.shapes[k].edges {
-			low[0], high[0] = min(low[0], e.x0, e.x1), max(high[0], e.x0, e.x1)
-			low[1], high[1] = min(low[1], e.y0), max(high[1], e.y1)
+	for _, s := range shapes {
+		count += len(s.edges)
+		for _, e := range s.edges {
+			left, right = min(left, e.x0, e.x1), max(right, e.x0, e.x1)
+			low, high = min(low, e.y0), max(high, e.y1)
 		}
 	}
-	cells := float64(min(4*count, maxCells))
-	wide, tall := high[0]-low[0], high[1]-low[1]
-	across := 1.0
-	if wide > 0 && tall > 0 {
-		across = min(max(math.Sqrt(cells*(wide/tall)), 1), cells)
+	cells, across := float64(min(4*count, maxCells)), 1.0
+	if right > left && high > low {
+		across = min(max(math.Sqrt(cells*((right-left)/(high-low))), 1), cells)
 	}
-	idx.cols = newAxis(low[0], high[0], int(across))
-	idx.rows = newAxis(low[1], high[1], int(cells/across))
+	idx.cols = newAxis(left, right, int(across))
+	idx.rows = newAxis(low, high, int(cells/across))
 }
 
 // Find fills dst with the number of the polygon that contains each point x, y (m):
@@ -95,9 +110,28 @@ func (idx *PolygonIndex) find(x, y float64) int32 {
 		return -1
 	}
 	for _, item := range idx.cells.of(idx.rows.cell(y)*idx.cols.n + idx.cols.cell(x)) {
-		if item&1 == 1 || idx.shapes[item>>1].contains(x, y) {
+		if item&1 == 1 {
 			return item >> 1
+		}
+		if r := &idx.runs[item>>1]; idx.inside(r, x, y) {
+			return r.poly
 		}
 	}
 	return -1
+}
+
+// inside tells whether a point of a run is in the run's polygon.
+func (idx *PolygonIndex) inside(r *run, x, y float64) bool {
+	for _, p := range idx.parts[r.first:r.end] {
+		odd := false
+		for _, i := range idx.near[p.first:p.end] {
+			if idx.edges[i].rightOf(x, y) {
+				odd = !odd
+			}
+		}
+		if odd != p.odd {
+			return false
+		}
+	}
+	return true
 }

@@ -95,8 +95,18 @@ func TestFindAgainstPlainTest(t *testing.T) {
 
 func TestFindAgainstPlanar(t *testing.T) {
 	rng := newRand(t, 42)
-	for _, ring := range []orb.Ring{comb(60, orb.Point{0, 1}), comb(60, orb.Point{1, 0}), comb(60, orb.Point{0.6, 0.8}), coast(rng, orb.Point{512000, 7012000}, 900, 5000)} {
-		poly := orb.Polygon{ring}
+	islands := orb.Polygon{star(rng, orb.Point{512000, 7012000}, 800, 900, 300)}
+	for k := range 225 {
+		at := orb.Point{511500 + 70*float64(k%15), 7011500 + 70*float64(k/15)}
+		islands = append(islands, star(rng, at, 20, 45, 40)) // some overlap
+	}
+	for _, poly := range []orb.Polygon{
+		{comb(60, orb.Point{0, 1})},
+		{comb(60, orb.Point{1, 0})},
+		{comb(60, orb.Point{0.6, 0.8})},
+		{coast(rng, orb.Point{512000, 7012000}, 900, 5000)},
+		islands,
+	} {
 		idx, bound := NewPolygonIndex([]orb.Polygon{poly}), poly.Bound()
 		inside := 0
 		for range 3000 {
@@ -155,6 +165,27 @@ func TestHolesAreTakenOut(t *testing.T) {
 	for _, p := range []orb.Point{{0.5, 0.5}, {7, 7}, {9, 1}} {
 		if got := findOne(idx, p[0], p[1]); got != 0 {
 			t.Errorf("%v: polygon %d, want 0", p, got)
+		}
+	}
+}
+
+// TestRingsFarFromTheOthers has holes within a hole and outside the outline, where
+// cells that only their edges touch lie deep within another ring, or in none.
+func TestRingsFarFromTheOthers(t *testing.T) {
+	rng := newRand(t, 45)
+	poly := orb.Polygon{
+		star(rng, orb.Point{0, 0}, 950, 1000, 500),
+		star(rng, orb.Point{0, 0}, 600, 650, 500),
+		star(rng, orb.Point{0, 100}, 80, 120, 500),
+		star(rng, orb.Point{1900, 0}, 250, 300, 500),
+	}
+	idx := NewPolygonIndex([]orb.Polygon{poly})
+	for k, ring := range poly {
+		for _, p := range ring {
+			x, y := p[0]+rng.NormFloat64(), p[1]+rng.NormFloat64()
+			if got, want := findOne(idx, x, y) == 0, planar.PolygonContains(poly, orb.Point{x, y}); got != want {
+				t.Fatalf("%v %v near ring %d inside: %v, want %v", x, y, k, got, want)
+			}
 		}
 	}
 }

@@ -71,6 +71,8 @@ func TestParsePolygonsRefuses(t *testing.T) {
 		{"geometry in a collection", collection(good, good, polygon(unitBox)), []string{"feature 3", `"Polygon"`, "Feature"}},
 		{"no geometry", collection(good, `{"type":"Feature"}`), []string{"feature 2", "no geometry"}},
 		{"null geometry", feature(`null`), []string{"no geometry"}},
+		{"geometry is a number", feature(`7`), []string{"not GeoJSON"}},
+		{"flat multipolygon", `{"type":"MultiPolygon","coordinates":[[0,0]]}`, []string{"coordinates"}},
 		{"null feature", collection(`null`), []string{"feature 1"}},
 		{"no coordinates", `{"type":"Polygon"}`, []string{"coordinates"}},
 		{"empty polygon", polygon(), []string{"empty"}},

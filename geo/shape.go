@@ -31,32 +31,33 @@ func (e *edge) rightOf(x, y float64) bool {
 	return e.y0 <= y && y < e.y1 && (x-e.x0)*(e.y1-e.y0) < (e.x1-e.x0)*(y-e.y0)
 }
 
-// xAt returns where a line through an edge that is not level has the height y,
-// held between its ends.
+// xAt returns where an edge that is not level has the height y, held between its
+// ends.
 func (e *edge) xAt(y float64) float64 {
 	w := min(max((y-e.y0)/(e.y1-e.y0), 0), 1)
 	return e.x0 + w*(e.x1-e.x0)
 }
 
-// shape holds the edges of one polygon or ring in level bands: the band of a height
-// lists the edges that may pass it, in the order of the rings.
+// shape holds the edges of one polygon, ring by ring, in level bands: the band of a
+// height lists the edges that may pass it.
 type shape struct {
 	edges []edge
+	rings int
 	rows  axis
 	bands lists
 }
 
 // newShape returns the shape of a polygon.
-func newShape(poly orb.Polygon) shape {
-	var edges []edge
+func newShape(poly orb.Polygon) *shape {
+	s := &shape{rings: len(poly)}
 	for number, ring := range poly {
-		edges = appendEdges(edges, ring, number)
+		s.edges = appendEdges(s.edges, ring, number)
 	}
-	s := shape{edges: edges, rows: bandAxis(edges)}
+	s.rows = bandAxis(s.edges)
 	var entries []entry
-	for i := range edges {
-		top := s.rows.cell(edges[i].y1)
-		for band := s.rows.cell(edges[i].y0); band <= top; band++ {
+	for i := range s.edges {
+		top := s.rows.cell(s.edges[i].y1)
+		for band := s.rows.cell(s.edges[i].y0); band <= top; band++ {
 			entries = append(entries, entry{int32(band), int32(i)})
 		}
 	}
@@ -64,9 +65,9 @@ func newShape(poly orb.Polygon) shape {
 	return s
 }
 
-// bandAxis chooses the bands. A height is passed by the sum of the edges' heights
-// over the whole height, on average; bands so high that as many edges again may
-// end within one are listed in few entries (3 an edge) and read fast.
+// bandAxis chooses the bands. A height is passed by as many edges as the sum of
+// their heights over the whole height, on average; bands in which half as many again
+// may end are read fast and cost no more than three entries an edge.
 func bandAxis(edges []edge) axis {
 	low, high, sum := math.Inf(1), math.Inf(-1), 0.0
 	for i := range edges {
@@ -76,21 +77,21 @@ func bandAxis(edges []edge) axis {
 	return newAxis(low, high, int(float64(len(edges))*min(2*(high-low)/sum, 1)))
 }
 
-// contains tells whether a point is in the first ring and in none of the others,
-// each by the even-odd rule. The edges of a band come ring by ring.
-func (s *shape) contains(x, y float64) bool {
-	ring, inside := int32(0), false
+// against returns how many rings keep a point out of the polygon: the outline
+// (ring 0) if the point is not in it, and each hole that the point is in. It fills
+// in with one flag a ring: whether the point is in it, by the even-odd rule.
+func (s *shape) against(in []bool, x, y float64) int {
+	clear(in)
 	for _, i := range s.bands.of(s.rows.cell(y)) {
-		e := &s.edges[i]
-		if e.ring != ring {
-			if inside != (ring == 0) {
-				return false
-			}
-			ring, inside = e.ring, false
-		}
-		if e.rightOf(x, y) {
-			inside = !inside
+		if e := &s.edges[i]; e.rightOf(x, y) {
+			in[e.ring] = !in[e.ring]
 		}
 	}
-	return inside == (ring == 0)
+	count := 0
+	for ring := range in {
+		if in[ring] != (ring == 0) {
+			count++
+		}
+	}
+	return count
 }

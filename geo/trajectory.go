@@ -26,6 +26,8 @@ func (e *RecordError) Unwrap() error { return e.Err }
 type Trajectory struct {
 	t, x, y, z []float64
 	maxGap     float64
+	slots      axis    // equal slots of time, about one a record
+	first      []int32 // for each slot, and one beyond, the first record in it or later
 }
 
 // NewTrajectory returns the trajectory with positions x, y, z (m) at the times t
@@ -50,7 +52,21 @@ func NewTrajectory(t, x, y, z []float64, maxGap float64) (*Trajectory, error) {
 	if len(t) < 2 {
 		return nil, fmt.Errorf("trajectory has %d records, want at least 2", len(t))
 	}
-	return &Trajectory{t: t, x: x, y: y, z: z, maxGap: maxGap}, nil
+	tr := &Trajectory{t: t, x: x, y: y, z: z, maxGap: maxGap, slots: newAxis(t[0], t[len(t)-1], len(t))}
+	tr.fillSlots()
+	return tr, nil
+}
+
+// fillSlots notes the first record of each slot.
+func (tr *Trajectory) fillSlots() {
+	tr.first = make([]int32, tr.slots.n+1)
+	record := 0
+	for slot := range tr.first {
+		for record < len(tr.t) && tr.slots.cell(tr.t[record]) < slot {
+			record++
+		}
+		tr.first[slot] = int32(record)
+	}
 }
 
 // checkRecord returns what is wrong with record i, given that those above it are
@@ -78,7 +94,8 @@ func decimal(seconds float64) string { return strconv.FormatFloat(seconds, 'f', 
 // after the last record, in a gap, and where t is NaN. The four slices have one
 // length (otherwise it panics); t may be one of the others.
 //
-// Ascending times cost a step or none each, times in any order a binary search.
+// Ascending times cost a step or none each; times in any order a search among the
+// records of a short slot of time.
 func (tr *Trajectory) At(x, y, z, t []float64) {
 	if len(x) != len(t) || len(y) != len(t) || len(z) != len(t) {
 		panic(errLengths)
@@ -104,7 +121,9 @@ func (tr *Trajectory) record(at float64, i int) int {
 		}
 		i = min(i+1, last)
 	}
-	return sort.Search(last, func(k int) bool { return tr.t[k+1] > at })
+	slot := tr.slots.cell(at)
+	from, next := int(tr.first[slot]), int(tr.first[slot+1])
+	return from - 1 + sort.Search(next-from, func(k int) bool { return tr.t[from+k] > at })
 }
 
 // between returns the position at a time from record i up to the next one. The

@@ -59,7 +59,7 @@ func (l *layout) addSurface(s *survey) {
 	switch {
 	case surface.Level != nil:
 		l.constant("water_level", levelKnown, *surface.Level)
-		l.constant("entry_level", traced, *surface.Level)
+		l.constant("entry_level", solved, *surface.Level)
 	default:
 		l.waterLevel = l.byRow("water_level", l.Decimals)
 		l.entryLevel = l.byRow("entry_level", l.Decimals)
@@ -119,6 +119,9 @@ func ruled(o correct.Outcome) bool {
 
 // levelKnown points have a water level at their true position.
 func levelKnown(o correct.Outcome) bool { return o == correct.Corrected || o == correct.Dry }
+
+// solved points have an entry.
+func solved(o correct.Outcome) bool { return o == correct.Corrected }
 
 // traced points had all that it takes to trace their rays.
 func traced(o correct.Outcome) bool {

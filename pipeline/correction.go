@@ -59,9 +59,14 @@ func (w *workspace) prepare(c *cloud.Chunk, l *layout) {
 		column int
 		result *[]float64
 	}{
-		{l.depth, &w.result.Depth}, {l.waterLevel, &w.result.WaterLevel}, {l.entryLevel, &w.result.EntryLevel},
-		{l.incidence, &w.result.IncidenceRad}, {l.refraction, &w.result.RefractionRad},
-		{l.origin[0], &w.origin.X}, {l.origin[1], &w.origin.Y}, {l.origin[2], &w.origin.Z},
+		{l.depth, &w.result.Depth},
+		{l.waterLevel, &w.result.WaterLevel},
+		{l.entryLevel, &w.result.EntryLevel},
+		{l.incidence, &w.result.IncidenceRad},
+		{l.refraction, &w.result.RefractionRad},
+		{l.origin[0], &w.origin.X},
+		{l.origin[1], &w.origin.Y},
+		{l.origin[2], &w.origin.Z},
 	} {
 		if into.column >= 0 {
 			*into.result = c.Added[into.column]

@@ -46,7 +46,7 @@ type rewriting struct {
 func (r *runner) rewrite(ctx context.Context, in input) (*receipt.Receipt, error) {
 	before, err := os.Stat(in.path)
 	if err != nil {
-		return nil, err
+		return nil, inFile(in.path, err)
 	}
 	file, err := r.openCloud(in.path)
 	if err != nil {
@@ -168,7 +168,7 @@ func (w *rewriting) commit(whole receipt.Input, info fs.FileInfo) (*receipt.Rece
 func unchanged(path string, before fs.FileInfo) error {
 	after, err := os.Stat(path)
 	if err != nil {
-		return err
+		return inFile(path, err)
 	}
 	if after.Size() != before.Size() || !after.ModTime().Equal(before.ModTime()) {
 		return fmt.Errorf("%s: changed while it was read; run again when it is complete", path)
@@ -186,7 +186,7 @@ func stamp(output string, input fs.FileInfo) error {
 // with the same settings from the same input. Otherwise nil.
 func (s *survey) fresh(ctx context.Context, in input) (*receipt.Receipt, error) {
 	r, err := receipt.Read(in.output)
-	if err != nil || r.Run != s.run || r.Program != Program || len(r.Inputs) == 0 {
+	if err != nil || r.Run != s.run || r.Program != Program || len(r.Inputs) == 0 || r.Inputs[0].Path != in.name {
 		return nil, nil // no receipt that helps: do the file
 	}
 	if !hasSize(in.output, r.Output.Bytes) || (r.RowsDiverted > 0) != exists(in.output+rejectsSuffix) {
@@ -194,7 +194,7 @@ func (s *survey) fresh(ctx context.Context, in input) (*receipt.Receipt, error) 
 	}
 	info, err := os.Stat(in.path)
 	if err != nil {
-		return nil, err
+		return nil, inFile(in.path, err)
 	}
 	stamped, err := os.Stat(in.output + receipt.Suffix)
 	if err != nil || r.Inputs[0].Bytes != info.Size() {

@@ -9,6 +9,7 @@ import (
 	"os"
 	"path/filepath"
 	"slices"
+	"strconv"
 	"strings"
 
 	"github.com/bmatcuk/doublestar/v4"
@@ -32,31 +33,31 @@ type input struct {
 
 // findInputs returns the files that the job's patterns name, ordered by their
 // outputs. A file keeps the sub-folders below the fixed part of the first
-// pattern that names it. Outputs of earlier runs are left out and counted.
+// pattern that names it. Outputs of earlier runs are left out and counted: what
+// has a receipt, and what a pattern reaches in the output folder below it, for a
+// killed run may leave an output there without its receipt.
 func findInputs(j *job.Job) (inputs []input, leftOut int, err error) {
 	folder := j.Resolve(j.Output.Folder)
 	seen := map[string]bool{}
 	for _, pattern := range j.Input.Files {
 		fixed, rest := doublestar.SplitPattern(filepath.ToSlash(pattern))
-		matches, err := match(j.Resolve(fixed), rest)
+		start := j.Resolve(fixed)
+		reached := !within(folder, start) // the output folder may be below the pattern
+		matches, err := match(start, rest)
 		if err != nil {
 			return nil, 0, callErrorf("%s: [input] files: %q %w", j.Path, pattern, err)
 		}
 		for _, target := range matches {
-			path := filepath.Join(j.Resolve(fixed), target)
+			path := filepath.Join(start, target)
 			if seen[path] {
 				continue
 			}
 			seen[path] = true
-			if isOutput(path) {
+			if isOutput(path) || reached && within(folder, path) {
 				leftOut++
 				continue
 			}
-			in, err := newInput(j, path, filepath.Join(folder, target), target)
-			if err != nil {
-				return nil, 0, err
-			}
-			inputs = append(inputs, in)
+			inputs = append(inputs, newInput(j, path, filepath.Join(folder, target), target))
 		}
 	}
 	if len(inputs) == 0 {
@@ -69,7 +70,7 @@ func findInputs(j *job.Job) (inputs []input, leftOut int, err error) {
 // match returns the files below the folder that a pattern names, as names
 // relative to the folder.
 func match(folder, pattern string) ([]string, error) {
-	matches, err := doublestar.Glob(os.DirFS(folder), pattern, doublestar.WithFilesOnly())
+	matches, err := doublestar.Glob(os.DirFS(folder), pattern, doublestar.WithFilesOnly(), doublestar.WithFailOnIOErrors())
 	switch {
 	case errors.Is(err, doublestar.ErrBadPattern):
 		return nil, errors.New("is not a pattern; * ? [abc] {a,b} and ** are understood")
@@ -77,6 +78,8 @@ func match(folder, pattern string) ([]string, error) {
 		return nil, err
 	case len(matches) == 0 && strings.ContainsAny(pattern, "*?[{"):
 		return nil, errors.New("matches no file")
+	case len(matches) == 0 && exists(filepath.Join(folder, pattern)):
+		return nil, errors.New("is a folder, want a file, or a pattern of files in it")
 	case len(matches) == 0:
 		return nil, errors.New("is not there")
 	}
@@ -89,21 +92,37 @@ func isOutput(path string) bool {
 	return err == nil
 }
 
-func newInput(j *job.Job, path, output, target string) (input, error) {
-	name, err := filepath.Rel(j.Resolve("."), path)
-	if err != nil {
-		name = path
+// newInput describes a file, which may turn out not to be readable.
+func newInput(j *job.Job, path, output, target string) input {
+	in := input{path: path, name: filepath.ToSlash(relative(j.Dir, path)), output: output, target: target}
+	if info, err := os.Stat(path); err == nil {
+		in.bytes = info.Size()
 	}
-	info, err := os.Stat(path)
-	if err != nil {
-		return input{}, callErrorf("%s: [input] files: %w", j.Path, err)
-	}
-	return input{path: path, name: filepath.ToSlash(name), output: output, target: target, bytes: info.Size()}, nil
+	return in
 }
 
+// relative returns the path as seen from the folder, or unchanged where there
+// is no way. Either may be relative to the working folder.
+func relative(folder, path string) string {
+	from, fromErr := filepath.Abs(folder)
+	to, toErr := filepath.Abs(path)
+	name, err := filepath.Rel(from, to)
+	if errors.Join(fromErr, toErr, err) != nil {
+		return path
+	}
+	return name
+}
+
+// within tells whether a path is the folder or below it.
+func within(folder, path string) bool { return filepath.IsLocal(relative(folder, path)) }
+
 // checkOutputs refuses two inputs with one output, and an output that is an
-// input. Inputs are ordered by their targets.
+// input, one of the job's other files or the job file, and a file for a folder.
+// Inputs are ordered by their targets.
 func checkOutputs(j *job.Job, inputs []input) error {
+	if info, err := os.Stat(j.Resolve(j.Output.Folder)); err == nil && !info.IsDir() {
+		return callErrorf("%s: [output] folder %q is a file, want a folder", j.Path, j.Output.Folder)
+	}
 	for i := 1; i < len(inputs); i++ {
 		a, b := inputs[i-1], inputs[i]
 		if a.target == b.target {
@@ -117,6 +136,11 @@ func checkOutputs(j *job.Job, inputs []input) error {
 	for _, in := range inputs {
 		if byPath[in.output] || sameFile(in.path, in.output) {
 			return callErrorf("%s: the output %s would overwrite an input; set [output] folder to another folder", j.Path, in.output)
+		}
+		for _, other := range []string{j.Path, j.Resolve(j.Rays.Trajectory), j.Resolve(j.Extent.Polygons)} {
+			if sameFile(other, in.output) {
+				return callErrorf("%s: the output %s would overwrite %s; set [output] folder to another folder", j.Path, in.output, other)
+			}
 		}
 	}
 	return nil
@@ -136,13 +160,13 @@ type Shard struct {
 
 // ParseShard reads "I/N", I from 0.
 func ParseShard(s string) (Shard, error) {
-	var shard Shard
-	var rest string
-	n, _ := fmt.Sscanf(s+" .", "%d/%d %s", &shard.Index, &shard.Count, &rest)
-	if n != 3 || rest != "." || shard.Index < 0 || shard.Index >= shard.Count {
+	i, n, _ := strings.Cut(s, "/")
+	index, indexErr := strconv.Atoi(i)
+	count, countErr := strconv.Atoi(n)
+	if indexErr != nil || countErr != nil || index < 0 || index >= count {
 		return Shard{}, callErrorf("--shard is %q, want I/N with I from 0 to N-1, such as 0/4", s)
 	}
-	return shard, nil
+	return Shard{index, count}, nil
 }
 
 func (s Shard) String() string {
@@ -161,7 +185,7 @@ func (s Shard) has(target string) bool {
 	}
 	h := fnv.New32a()
 	h.Write([]byte(target))
-	return int(h.Sum32()%uint32(s.Count)) == s.Index
+	return uint64(h.Sum32())%uint64(s.Count) == uint64(s.Index)
 }
 
 // pick keeps the inputs that a shard and a pattern (empty: all) name.

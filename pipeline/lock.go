@@ -3,6 +3,9 @@ package pipeline
 import (
 	"crypto/rand"
 	"encoding/json"
+	"errors"
+	"fmt"
+	"io/fs"
 	"os"
 	"path/filepath"
 
@@ -16,7 +19,7 @@ import (
 //
 // Runs whose outputs differ (shards of one job, or several jobs) share a folder.
 const (
-	gateName    = "bentray.lock" // held only while lock files are looked at and made
+	gateName    = "bentray.lock" // held only while lock files are looked at and made, or a summary is written
 	lockPattern = "bentray-*.lock"
 )
 
@@ -32,20 +35,31 @@ type lock struct{ file *flock.Flock }
 
 // acquire takes the outputs for this process, or says who has one of them.
 func acquire(folder string, inputs []input) (*lock, error) {
-	gate := newLock(filepath.Join(folder, gateName))
-	if err := gate.Lock(); err != nil {
-		return nil, callErrorf("%s: cannot lock the output folder: %w", folder, err)
-	}
-	defer gate.Unlock()
-
 	mine := make(map[string]bool, len(inputs))
 	for _, in := range inputs {
 		mine[in.target] = true
 	}
-	if err := checkOthers(folder, mine); err != nil {
-		return nil, err
+	var held *lock
+	err := withGate(folder, func() (err error) {
+		if err = checkOthers(folder, mine); err == nil {
+			held, err = hold(folder, inputs)
+		}
+		return err
+	})
+	if err != nil {
+		return nil, &CallError{err}
 	}
-	return hold(folder, inputs)
+	return held, nil
+}
+
+// withGate calls f while no other run does the same in this folder.
+func withGate(folder string, f func() error) error {
+	gate := newLock(filepath.Join(folder, gateName))
+	if err := gate.Lock(); err != nil {
+		return fmt.Errorf("%s: cannot lock the output folder: %w", folder, err)
+	}
+	defer gate.Unlock()
+	return f()
 }
 
 // checkOthers looks at every lock file: a dead one is removed, a live one must
@@ -59,7 +73,7 @@ func checkOthers(folder string, mine map[string]bool) error {
 		other := newLock(path)
 		free, err := other.TryLock()
 		if err != nil {
-			return callErrorf("%s: cannot look at the lock: %w", path, err)
+			return fmt.Errorf("%s: cannot look at the lock: %w", path, err)
 		}
 		if free {
 			err := os.Remove(path)
@@ -76,18 +90,22 @@ func checkOthers(folder string, mine map[string]bool) error {
 	return nil
 }
 
+// checkHolder looks at a lock that was held. Its run may have ended since.
 func checkHolder(path string, mine map[string]bool) error {
 	data, err := os.ReadFile(path)
+	if errors.Is(err, fs.ErrNotExist) {
+		return nil
+	}
 	if err != nil {
 		return err
 	}
 	var h holder
 	if err := json.Unmarshal(data, &h); err != nil {
-		return callErrorf("%s: a lock that is held but cannot be read: %w", path, err)
+		return fmt.Errorf("%s: a lock that is held but cannot be read: %w", path, err)
 	}
 	for _, output := range h.Outputs {
 		if mine[output] {
-			return callErrorf("%s is being written by another run (host %s, process %d); wait for it to end, or stop it", filepath.Join(filepath.Dir(path), output), h.Host, h.Process)
+			return fmt.Errorf("%s is being written by another run (host %s, process %d); wait for it to end, or stop it", filepath.Join(filepath.Dir(path), output), h.Host, h.Process)
 		}
 	}
 	return nil
@@ -109,11 +127,11 @@ func hold(folder string, inputs []input) (*lock, error) {
 	}
 	l := &lock{newLock(filepath.Join(folder, "bentray-"+rand.Text()[:12]+".lock"))}
 	if err := l.file.Lock(); err != nil {
-		return nil, callErrorf("%s: cannot lock the output folder: %w", folder, err)
+		return nil, fmt.Errorf("%s: cannot lock the output folder: %w", folder, err)
 	}
 	if err := os.WriteFile(l.file.Path(), data, 0o666); err != nil {
 		l.release()
-		return nil, callErrorf("%s: cannot lock the output folder: %w", folder, err)
+		return nil, fmt.Errorf("%s: cannot lock the output folder: %w", folder, err)
 	}
 	return l, nil
 }

@@ -128,13 +128,25 @@ func (p *planner) head(in input, f *PlannedFile) error {
 	if err := file.Decode(c); err != nil {
 		return err
 	}
-	f.Points, f.Exact = int64(c.Rows), c.Consumed >= in.bytes
-	if !f.Exact && c.Consumed > 0 {
-		f.Points = int64(float64(f.Points) * float64(in.bytes) / float64(c.Consumed))
-	}
 	p.take(c, r)
 	p.correctChunk(c, r, l, &p.slot.work, p.tally)
-	return nil
+	return f.count(c, file, in.bytes)
+}
+
+// count takes the points of a file's first chunk, and where that was not all
+// estimates from them how many the file has.
+func (f *PlannedFile) count(c *cloud.Chunk, file cloud.Rewriter, bytes int64) error {
+	f.Points = int64(c.Rows)
+	share := float64(c.Consumed) / float64(max(bytes, 1))
+	err := file.Next(c)
+	switch {
+	case err == io.EOF:
+		f.Exact = true
+		return nil
+	case err == nil && share > 0:
+		f.Points = int64(float64(f.Points) / share)
+	}
+	return err
 }
 
 // take widens the bounds by a chunk.

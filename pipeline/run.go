@@ -83,8 +83,7 @@ func (r *runner) run(ctx context.Context, inputs []input, shard Shard, workers i
 		return nil, err
 	}
 	defer lock.release()
-	summaryPath := filepath.Join(folder, summaryName(shard))
-	if _, err := atomicfile.NewSweeper(targets(inputs, summaryPath)).Sweep(); err != nil {
+	if _, err := atomicfile.NewSweeper(targets(inputs)).Sweep(); err != nil {
 		return nil, err
 	}
 	host, err := os.Hostname()
@@ -97,7 +96,19 @@ func (r *runner) run(ctx context.Context, inputs []input, shard Shard, workers i
 	}
 	r.all(ctx, inputs, workers)
 	r.summary.Close()
-	return r.summary, errors.Join(ctx.Err(), r.summary.Write(summaryPath))
+	return r.summary, errors.Join(ctx.Err(), r.writeSummary(folder, summaryName(shard)))
+}
+
+// writeSummary also sweeps what killed runs left of the summary. Runs that share
+// the folder share its name, so only the gate keeps a live run's out of the broom.
+func (r *runner) writeSummary(folder, name string) error {
+	path := filepath.Join(folder, name)
+	return withGate(folder, func() error {
+		if _, err := atomicfile.NewSweeper([]string{path}).Sweep(); err != nil {
+			return err
+		}
+		return r.summary.Write(path)
+	})
 }
 
 // all does the files, as many at once as there are workers.
@@ -151,9 +162,9 @@ func (r *runner) one(ctx context.Context, in input) {
 	r.watch.End(f)
 }
 
-// targets lists every file that this run may write.
-func targets(inputs []input, summary string) []string {
-	paths := []string{summary}
+// targets lists every file that this run alone may write.
+func targets(inputs []input) []string {
+	var paths []string
 	for _, in := range inputs {
 		paths = append(paths, in.output, in.output+receipt.Suffix, in.output+rejectsSuffix)
 	}

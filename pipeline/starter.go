@@ -31,7 +31,8 @@ func StartJob(w io.Writer, path string) error {
 	var b strings.Builder
 	fmt.Fprintf(&b, "# %s has %d columns; those with a role are marked:\n", filepath.Base(path), len(columns))
 	for i, c := range columns {
-		fmt.Fprintf(&b, "#   %-20s %s\n", c.Name, roles[i])
+		name := strings.Join(strings.Fields(c.Name), " ") // it may have line breaks
+		b.WriteString(strings.TrimRight(fmt.Sprintf("#   %-20s %s", name, roles[i]), " ") + "\n")
 	}
 	fmt.Fprintf(&b, "\ntitle = %q\n\n[input]\nfiles = [%q]\n", "untitled survey", filepath.ToSlash(path))
 	if missing := missingRoles(roles); len(missing) > 0 {

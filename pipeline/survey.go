@@ -4,8 +4,10 @@ import (
 	"context"
 	"errors"
 	"fmt"
+	"io/fs"
 	"os"
 	"path/filepath"
+	"strings"
 
 	"bentray/correct"
 	"bentray/correct/medium"
@@ -152,19 +154,23 @@ func (s *survey) readExtent(ctx context.Context) error {
 
 // note hashes an auxiliary file, named as in the job.
 func (s *survey) note(ctx context.Context, use, name string) error {
-	bytes, sum, err := receipt.Hash(ctx, s.job.Resolve(name))
+	path := s.job.Resolve(name)
+	bytes, sum, err := receipt.Hash(ctx, path)
 	if err != nil {
-		return fmt.Errorf("%s: %s: %w", s.job.Path, use, err)
+		return fmt.Errorf("%s: %s: %w", s.job.Path, use, inFile(path, err))
 	}
 	s.auxiliary = append(s.auxiliary, receipt.Input{Use: use, File: receipt.File{Path: filepath.ToSlash(name), Bytes: bytes, SHA256: sum}})
 	return nil
 }
 
-// inFile puts the file's name before an error that does not name it itself.
+// inFile puts the file's name before an error that does not begin with it.
 func inFile(path string, err error) error {
-	var row *cloud.RowError
-	if err == nil || errors.As(err, &row) {
+	if err == nil || strings.HasPrefix(err.Error(), path) {
 		return err
+	}
+	var system *fs.PathError
+	if errors.As(err, &system) && system.Path == path {
+		err = system.Err
 	}
 	return fmt.Errorf("%s: %w", path, err)
 }

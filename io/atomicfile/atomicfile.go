@@ -22,9 +22,14 @@ const prefix = ".part-"
 // File is a file on its way to its name. Write to it, then Commit or Discard.
 type File struct {
 	*os.File
-	target string
-	done   bool
+	target  string
+	done    bool
+	written int64
+	started int64 // of the written bytes, how many are on their way to the disk
 }
+
+// writebackStep is how many bytes are gathered before the disk is asked to take them.
+const writebackStep = 16 << 20
 
 // Create begins a file that will stand at the path. Its folder must exist.
 func Create(path string) (*File, error) {
@@ -39,6 +44,11 @@ func Create(path string) (*File, error) {
 // Write appends to the file. Its errors name the target.
 func (f *File) Write(p []byte) (int, error) {
 	n, err := f.File.Write(p)
+	f.written += int64(n)
+	if f.written-f.started >= writebackStep {
+		startWriteback(f.File, f.started, f.written-f.started)
+		f.started = f.written
+	}
 	if err != nil {
 		err = fmt.Errorf("%s: cannot write: %w", f.target, cause(err))
 	}

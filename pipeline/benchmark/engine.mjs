@@ -59,9 +59,9 @@ WITH ray AS (
 SELECT ${length("x + back * dx")} AS x, ${length("y + back * dy")} AS y, ${length(`${s.level} - below`)} AS z,
   gps_time, intensity, return_number, classification, origin_x, origin_y, origin_z,
   x AS x_raw, y AS y_raw, z AS z_raw,
-  ${length("below")} AS depth, ${length(s.level)} AS water_level, ${length(s.level)} AS entry_level,
+  ${length("below")} AS depth, ${s.level} AS water_level, ${s.level} AS entry_level,
   ${s.slope} AS slope_x, ${s.slope} AS slope_y,
-  'corrected' AS outcome, 'pulse' AS model, 1 AS ray_count,
+  'corrected' AS outcome, 'pulse' AS model, 1 AS ray_count, CAST(NULL AS VARCHAR) AS view_source,
   ${angle("degrees(asin(sin_air))")} AS incidence_deg, ${angle("degrees(asin(sin_water))")} AS refraction_deg,
   ${s.n_air} AS n_air, ${s.n_water} AS n_water, ${s.ng_air} AS ng_air, ${s.ng_water} AS ng_water,
   ${s.temperature} AS temperature, ${s.salinity} AS salinity, 'job' AS water_source, '${s.run}' AS run

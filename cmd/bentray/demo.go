@@ -1,0 +1,135 @@
+package main
+
+import (
+	"fmt"
+	"path/filepath"
+	"strconv"
+	"strings"
+
+	"bentray/pipeline"
+	"bentray/pipeline/demo"
+)
+
+type demoCommand struct {
+	Folder string `arg:"" help:"The folder to write to: a new or an empty one, or that of an earlier demo."`
+}
+
+func (demoCommand) Help() string {
+	return `A made-up laser survey of a cove is written with its job file, corrected by that job, and held against the truth and against doing nothing. The whole takes a few seconds and some 70 MB of disk.
+
+Example:
+
+    bentray demo demo-out
+
+Exit codes: 0 done, and the correction meets the truth; 1 it does not, or the files cannot be written; 3 some tiles failed; 64 the folder holds something else, nothing was written; 130 interrupted.`
+}
+
+// Run writes the survey, corrects it and reports.
+func (c *demoCommand) Run(s *streams) error {
+	survey, err := demo.Write(c.Folder)
+	if err != nil {
+		return err
+	}
+	j, err := loadJob(survey.Job)
+	if err != nil {
+		return err
+	}
+	summary, err := pipeline.Run(s.ctx, j, pipeline.Options{Redo: true})
+	if err != nil {
+		return err
+	}
+	if err := verdict(summary); err != nil {
+		printFailures(s, summary)
+		return err
+	}
+	comparison, err := demo.Compare(survey)
+	if err != nil {
+		return err
+	}
+	fmt.Fprintf(s.out, "%s: %s points in %s, corrected in %.1f s\n\n", demo.Title, grouped(survey.Points), plural(len(survey.Tiles), "tile"), summary.Seconds)
+	printOutcomes(s, comparison)
+	printErrors(s, comparison)
+	if err := comparison.Verify(); err != nil {
+		return err
+	}
+	printRounding(s)
+	printPlaces(s, survey)
+	return nil
+}
+
+// meanings says why points of the demo have their outcomes.
+var meanings = map[string]string{
+	"corrected": "under water: put back where the bed is",
+	"outside":   "beyond the water polygon, or in its hole around the rock",
+	"dry":       "on the shore, at or above the water level",
+	"no_origin": "measured in a gap of the trajectory: not guessed",
+	"invalid":   "rows without coordinates",
+}
+
+func printOutcomes(s *streams, c *demo.Comparison) {
+	for _, o := range outcomeRows(c.Outcomes) {
+		fmt.Fprintf(s.out, "  %-10s %8s  %4.1f %%  %s\n", o.name, grouped(o.count), o.percent, meanings[o.name])
+	}
+	if c.Unexpected == 0 {
+		fmt.Fprintf(s.out, "  Each point has the outcome that the simulation gives it, and each row is there.\n")
+	}
+}
+
+// printErrors shows the errors of the corrected points, before and after.
+func printErrors(s *streams, c *demo.Comparison) {
+	fmt.Fprintf(s.out, "\nError of the %s corrected points against the truth (z: minus is too deep)\n", grouped(c.All.Points))
+	printBands(s, c, "doing nothing, in metres", 1, 3, func(b *demo.Band) demo.Errors { return b.Raw })
+	printBands(s, c, "corrected, in millimetres", 1000, 2, func(b *demo.Band) demo.Errors { return b.Corrected })
+}
+
+// printBands shows one kind of errors by depth; scale is the number of printed
+// units in a metre.
+func printBands(s *streams, c *demo.Comparison, head string, scale float64, decimals int, pick func(*demo.Band) demo.Errors) {
+	fmt.Fprintf(s.out, "\n  %-27s|  height z                 |  plan\n", head)
+	fmt.Fprintf(s.out, "  %-14s %11s |%8s %8s %8s |%8s %8s %8s\n", "true depth, m", "points", "bias", "rms", "largest", "mean", "rms", "largest")
+	for i := range c.Bands {
+		b := &c.Bands[i]
+		printBand(s, fmt.Sprintf("%3.0f to %2.0f", b.From, b.To), b.Points, pick(b), scale, decimals)
+	}
+	printBand(s, "all bands", c.All.Points, pick(&c.All), scale, decimals)
+}
+
+func printBand(s *streams, name string, points int64, e demo.Errors, scale float64, decimals int) {
+	fmt.Fprintf(s.out, "  %-14s %11s |", name, grouped(points))
+	for _, v := range []float64{e.ZBias, e.ZRMS, e.ZMax} {
+		fmt.Fprintf(s.out, "%8s ", fixed(scale*v, decimals))
+	}
+	fmt.Fprintf(s.out, "|%8s %8s %8s\n", fixed(scale*e.PlanMean, decimals), fixed(scale*e.PlanRMS, decimals), fixed(scale*e.PlanMax, decimals))
+}
+
+// fixed writes a number with so many decimals, and 0 without a sign.
+func fixed(v float64, decimals int) string {
+	text := strconv.FormatFloat(v, 'f', decimals, 64)
+	if strings.Trim(text, "-0.") == "" {
+		return strings.TrimPrefix(text, "-")
+	}
+	return text
+}
+
+func printRounding(s *streams) {
+	fmt.Fprintf(s.out, `
+  What is left is rounding: the tiles hold whole millimetres, like many clouds.
+  In a real survey the level, the index and the sensor's own errors come on top.
+`)
+}
+
+func printPlaces(s *streams, survey *demo.Survey) {
+	fmt.Fprintf(s.out, "\nFiles\n")
+	slash := string(filepath.Separator)
+	for _, f := range [][2]string{
+		{survey.Job, "the job: what is corrected, with which water, surface and rays"},
+		{survey.Raw + slash, "the tiles as measured"},
+		{survey.Trajectory, "where the laser was, with a gap"},
+		{survey.Polygons, "the extent of the water"},
+		{survey.Corrected + slash, "the corrected tiles, a receipt beside each"},
+		{survey.Truth + slash, "where each point really is, row by row as the tiles"},
+	} {
+		fmt.Fprintf(s.out, "  %-*s  %s\n", len(survey.Polygons)+1, f[0], f[1])
+	}
+	fmt.Fprintf(s.out, "\nTry next\n  bentray plan %s\n  bentray run %[1]s --redo\n", survey.Job)
+}

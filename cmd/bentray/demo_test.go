@@ -1,0 +1,136 @@
+package main
+
+import (
+	"bytes"
+	"encoding/csv"
+	"math"
+	"os"
+	"path/filepath"
+	"strconv"
+	"strings"
+	"testing"
+)
+
+// readTable reads a CSV file as texts by column.
+func readTable(t *testing.T, path string) (map[string]int, [][]string) {
+	t.Helper()
+	f, err := os.Open(path)
+	if err != nil {
+		t.Fatal(err)
+	}
+	defer f.Close()
+	rows, err := csv.NewReader(f).ReadAll()
+	if err != nil {
+		t.Fatal(err)
+	}
+	columns := map[string]int{}
+	for i, name := range rows[0] {
+		columns[name] = i
+	}
+	return columns, rows[1:]
+}
+
+// farthest returns how far three coordinates of one row lie from those of another.
+func farthest(t *testing.T, a, b []string) (d float64) {
+	t.Helper()
+	for k := range 3 {
+		x, errX := strconv.ParseFloat(a[k], 64)
+		y, errY := strconv.ParseFloat(b[k], 64)
+		if errX != nil || errY != nil {
+			t.Fatalf("coordinates are %q and %q, want numbers", a[k], b[k])
+		}
+		d = max(d, math.Abs(x-y))
+	}
+	return d
+}
+
+// The demo reads its files back itself; here they are read once more.
+func TestDemoMeetsItsTruth(t *testing.T) {
+	folder := filepath.Join(t.TempDir(), "demo-out")
+	var stdout, stderr bytes.Buffer
+	if code := run(t.Context(), []string{"demo", folder}, &stdout, &stderr); code != exitDone || stderr.Len() > 0 {
+		t.Fatalf("exit code is %d with %q on stderr, want 0 and nothing", code, &stderr)
+	}
+	for _, want := range []string{"200 000 points in 5 tiles", "all bands", "What is left is rounding", "bentray plan " + filepath.Join(folder, "survey.toml")} {
+		if !strings.Contains(stdout.String(), want) {
+			t.Errorf("the report lacks %q:\n%s", want, &stdout)
+		}
+	}
+	counts := map[string]int{}
+	for _, name := range []string{"tile_01.csv", "tile_02.csv", "tile_03.csv", "tile_04.csv", "cross_line/tile_05.csv"} {
+		checkTile(t, folder, name, counts)
+	}
+	total := 0
+	for _, n := range counts {
+		total += n
+	}
+	if total != 200_000 || counts["invalid"] != 5 || len(counts) != 5 {
+		t.Errorf("outcomes are %v, want 200000 points, 5 of them invalid", counts)
+	}
+	for _, outcome := range []string{"corrected", "outside", "dry", "no_origin"} {
+		if counts[outcome] < 1000 {
+			t.Errorf("%d points are %s, want 1000 at least", counts[outcome], outcome)
+		}
+	}
+}
+
+// checkTile holds an output against its truth and its raw tile, and counts outcomes.
+func checkTile(t *testing.T, folder, name string, counts map[string]int) {
+	t.Helper()
+	at, rows := readTable(t, filepath.Join(folder, "corrected", name))
+	_, truth := readTable(t, filepath.Join(folder, "truth", name))
+	_, raw := readTable(t, filepath.Join(folder, "raw", name))
+	if len(rows) != len(truth) || len(rows) != len(raw) {
+		t.Fatalf("%s: %d rows, want %d as the truth and %d as the raw tile", name, len(rows), len(truth), len(raw))
+	}
+	rawErrorM := 0.0
+	for i, row := range rows {
+		outcome := row[at["outcome"]]
+		counts[outcome]++
+		if outcome != truth[i][4] {
+			t.Fatalf("%s: row %d is %s, want %s", name, i+1, outcome, truth[i][4])
+		}
+		if outcome != "corrected" {
+			if row[0] != raw[i][0] || row[1] != raw[i][1] || row[2] != raw[i][2] {
+				t.Fatalf("%s: row %d is %s and at %q, want it where it was", name, i+1, outcome, row[:3])
+			}
+			continue
+		}
+		if d := farthest(t, row, truth[i]); !(d < 0.001) {
+			t.Fatalf("%s: row %d lies %g m from the truth, want less than 1 mm", name, i+1, d)
+		}
+		rawErrorM = max(rawErrorM, farthest(t, raw[i], truth[i]))
+	}
+	if rawErrorM < 3 {
+		t.Errorf("%s: the largest raw error is %g m, want metres", name, rawErrorM)
+	}
+}
+
+func TestDemoRefusesAForeignFolder(t *testing.T) {
+	folder := t.TempDir()
+	if err := os.WriteFile(filepath.Join(folder, "notes.txt"), []byte("keep"), 0o666); err != nil {
+		t.Fatal(err)
+	}
+	var stdout, stderr bytes.Buffer
+	if code := run(t.Context(), []string{"demo", folder}, &stdout, &stderr); code != exitCall {
+		t.Errorf("exit code is %d, want %d", code, exitCall)
+	}
+	if stdout.Len() > 0 || !strings.Contains(stderr.String(), "not empty") {
+		t.Errorf("stdout is %q and stderr %q, want one message about the folder", &stdout, &stderr)
+	}
+	entries, err := os.ReadDir(folder)
+	if err != nil || len(entries) != 1 {
+		t.Errorf("the folder holds %v (%v), want it untouched", entries, err)
+	}
+}
+
+func TestFixed(t *testing.T) {
+	for _, c := range []struct {
+		v    float64
+		want string
+	}{{-0.001, "0.00"}, {0, "0.00"}, {-0.006, "-0.01"}, {-10, "-10.00"}, {0.254, "0.25"}, {math.NaN(), "NaN"}} {
+		if got := fixed(c.v, 2); got != c.want {
+			t.Errorf("fixed(%g, 2) = %q, want %q", c.v, got, c.want)
+		}
+	}
+}

@@ -1,0 +1,157 @@
+package csvfile
+
+import (
+	"bytes"
+	"strings"
+)
+
+// span is a stretch of bytes, end not included.
+type span struct{ begin, end uint32 }
+
+func (s span) of(text []byte) []byte { return text[s.begin:s.end] }
+
+// separator is the byte between two fields; blanks stands for runs of spaces
+// and tabs.
+type separator byte
+
+const blanks separator = ' '
+
+// split locates the first len(spans) fields of a row and returns how many
+// fields it has. The row has no line end.
+func (s separator) split(row []byte, spans []span) int {
+	switch {
+	case s == blanks:
+		return splitBlanks(row, spans)
+	case bytes.IndexByte(row, '"') >= 0:
+		return splitQuoted(row, byte(s), spans)
+	}
+	return splitPlain(row, byte(s), spans)
+}
+
+// splitPlain is split for a row without quotes.
+func splitPlain(row []byte, sep byte, spans []span) int {
+	begin := 0
+	for k := range spans {
+		i := bytes.IndexByte(row[begin:], sep)
+		if i < 0 {
+			spans[k] = span{uint32(begin), uint32(len(row))}
+			return k + 1
+		}
+		spans[k] = span{uint32(begin), uint32(begin + i)}
+		begin += i + 1
+	}
+	return len(spans) + 1 + bytes.Count(row[begin:], []byte{sep})
+}
+
+// splitQuoted is split for a row that may have quotes.
+func splitQuoted(row []byte, sep byte, spans []span) int {
+	count, begin, inside := 0, 0, false
+	for i, c := range row {
+		switch {
+		case c == '"':
+			inside = !inside
+		case c == sep && !inside:
+			place(spans, count, begin, i)
+			count++
+			begin = i + 1
+		}
+	}
+	place(spans, count, begin, len(row))
+	return count + 1
+}
+
+// splitBlanks is split for runs of blanks; those before the first field and
+// behind the last separate nothing.
+func splitBlanks(row []byte, spans []span) int {
+	count, begin, inside := 0, -1, false
+	for i, c := range row {
+		if c == '"' {
+			inside = !inside
+		}
+		blank := isBlank(c) && !inside
+		switch {
+		case begin < 0 && !blank:
+			begin = i
+		case begin >= 0 && blank:
+			place(spans, count, begin, i)
+			count++
+			begin = -1
+		}
+	}
+	if begin >= 0 {
+		place(spans, count, begin, len(row))
+		count++
+	}
+	return count
+}
+
+// place sets span k where there is room for it.
+func place(spans []span, k, begin, end int) {
+	if k < len(spans) {
+		spans[k] = span{uint32(begin), uint32(end)}
+	}
+}
+
+func isBlank(c byte) bool { return c == ' ' || c == '\t' }
+
+// trim cuts blanks off both ends.
+func trim(s []byte) []byte {
+	for len(s) > 0 && isBlank(s[0]) {
+		s = s[1:]
+	}
+	for len(s) > 0 && isBlank(s[len(s)-1]) {
+		s = s[:len(s)-1]
+	}
+	return s
+}
+
+// isQuoted tells whether quotes enclose a trimmed field.
+func isQuoted(s []byte) bool {
+	return len(s) >= 2 && s[0] == '"' && s[len(s)-1] == '"'
+}
+
+// appendContent appends what a field says: without the quotes around it, with
+// doubled quotes made single, trimmed of blanks.
+func appendContent(dst, field []byte) []byte {
+	field = trim(field)
+	if !isQuoted(field) {
+		return append(dst, field...)
+	}
+	field = trim(field[1 : len(field)-1])
+	for {
+		i := bytes.Index(field, []byte(`""`))
+		if i < 0 {
+			return append(dst, field...)
+		}
+		dst = append(dst, field[:i+1]...)
+		field = field[i+2:]
+	}
+}
+
+// appendField appends a text as a field that reads as that text: quoted where
+// the separator, a quote or a line break is in it, where it would begin a
+// comment, and where blanks separate and it is empty.
+func (s separator) appendField(dst []byte, text string) []byte {
+	special := "\"\r\n" + string(rune(s))
+	if s == blanks {
+		special += "\t"
+	}
+	quote := strings.ContainsAny(text, special) || isComment([]byte(text)) || (s == blanks && text == "")
+	if !quote {
+		return append(dst, text...)
+	}
+	dst = append(dst, '"')
+	dst = append(dst, strings.ReplaceAll(text, `"`, `""`)...)
+	return append(dst, '"')
+}
+
+// appendFields appends texts as fields with separators between them.
+func (s separator) appendFields(dst []byte, texts []string) []byte {
+	for i, text := range texts {
+		if i > 0 {
+			dst = append(dst, byte(s))
+		}
+		dst = s.appendField(dst, text)
+	}
+	return dst
+}

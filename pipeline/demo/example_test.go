@@ -1,0 +1,37 @@
+package demo_test
+
+import (
+	"context"
+	"fmt"
+	"log"
+	"os"
+
+	"bentray/pipeline"
+	"bentray/pipeline/demo"
+	"bentray/pipeline/job"
+)
+
+func Example() {
+	folder, err := os.MkdirTemp("", "demo")
+	if err != nil {
+		log.Fatal(err)
+	}
+	defer os.RemoveAll(folder)
+	survey, err := demo.Write(folder)
+	if err != nil {
+		log.Fatal(err)
+	}
+	j, err := job.Load(survey.Job)
+	if err != nil {
+		log.Fatal(err)
+	}
+	if _, err := pipeline.Run(context.Background(), j, pipeline.Options{}); err != nil {
+		log.Fatal(err)
+	}
+	comparison, err := demo.Compare(survey)
+	if err != nil {
+		log.Fatal(err)
+	}
+	fmt.Println(comparison.Points, "points, doing nothing:", comparison.All.Raw.ZMax > 4, "corrected:", comparison.Verify())
+	// Output: 200000 points, doing nothing: true corrected: <nil>
+}

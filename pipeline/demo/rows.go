@@ -1,0 +1,112 @@
+package demo
+
+import (
+	"math"
+	"path"
+	"strconv"
+)
+
+const (
+	cloudColumns      = "x,y,z,gps_time,intensity,return_number,classification,point_source_id,remark\n"
+	truthColumns      = "x,y,z,depth,outcome\n"
+	trajectoryColumns = "gps_time,x,y,z\n"
+)
+
+// Classes of LAS 1.4 R15 (ASPRS 2019), tables 17 and 18.
+const (
+	classGround     = 2
+	classBathymetry = 40
+)
+
+// tile is a cloud and its truth, row by row, as CSV.
+type tile struct {
+	name         string // below the folder of tiles, with slashes
+	cloud, truth []byte
+	rows         int
+}
+
+// newTiles returns the tiles of the lines to and fro, cut from west to east, and
+// that of the line across.
+func newTiles() []*tile {
+	var tiles []*tile
+	for _, name := range []string{"tile_01.csv", "tile_02.csv", "tile_03.csv", "tile_04.csv", path.Join("cross_line", "tile_05.csv")} {
+		tiles = append(tiles, &tile{name: name, cloud: []byte(cloudColumns), truth: []byte(truthColumns)})
+	}
+	return tiles
+}
+
+// tileOf returns the place of a shot's tile.
+func tileOf(l *flightLine, s *shot) int {
+	if l.folder != "" {
+		return 4
+	}
+	return min(max(int((s.apparent.x-cornerX)/(widthM/4)), 0), 3)
+}
+
+// add appends a shot.
+func (t *tile) add(s *shot) {
+	t.cloud = s.appendRow(t.cloud)
+	t.truth = s.appendTruth(t.truth)
+	t.rows++
+}
+
+// appendRow appends the row of the cloud. A lost shot has no coordinates.
+func (s *shot) appendRow(b []byte) []byte {
+	if s.lost {
+		b = append(b, ",,"...)
+	} else {
+		b = appendVec(b, s.apparent, 3)
+	}
+	b = appendFixed(append(b, ','), takeOffS*1e6+s.timeUS, 6)
+	class, returnNumber := int64(classGround), int64(1)
+	if s.bed.z < levelM {
+		class, returnNumber = classBathymetry, 2
+	}
+	for _, n := range []int64{int64(s.intensity), returnNumber, class, int64(s.line)} {
+		b = strconv.AppendInt(append(b, ','), n, 10)
+	}
+	b = append(append(b, ','), remark(s.bed.x, s.bed.y)...)
+	return append(b, '\n')
+}
+
+// appendTruth appends the row of the truth.
+func (s *shot) appendTruth(b []byte) []byte {
+	b = appendVec(b, s.bed, 4)
+	b = appendNumber(append(b, ','), levelM-s.bed.z, 4)
+	b = append(append(b, ','), s.outcome...)
+	return append(b, '\n')
+}
+
+// appendTrajectory appends the records of a line that there are.
+func (l *flightLine) appendTrajectory(b []byte) []byte {
+	for i, p := range l.position {
+		if l.isRecorded(i) {
+			b = appendFixed(b, (takeOffS+l.startS())*recordsPerS+int64(i), 1)
+			b = append(appendVec(append(b, ','), p, 3), '\n')
+		}
+	}
+	return b
+}
+
+func appendVec(b []byte, v vec, decimals int) []byte {
+	b = appendNumber(b, v.x, decimals)
+	b = appendNumber(append(b, ','), v.y, decimals)
+	return appendNumber(append(b, ','), v.z, decimals)
+}
+
+func appendNumber(b []byte, v float64, decimals int) []byte {
+	return appendFixed(b, int64(math.Round(v*math.Pow10(decimals))), decimals)
+}
+
+// appendFixed appends n parts of 10^-decimals; decimals is above 0.
+func appendFixed(b []byte, n int64, decimals int) []byte {
+	if n < 0 {
+		b, n = append(b, '-'), -n
+	}
+	scale := int64(math.Pow10(decimals))
+	b = append(strconv.AppendInt(b, n/scale, 10), '.')
+	for part := scale / 10; part > 0; part /= 10 {
+		b = append(b, byte('0'+n/part%10))
+	}
+	return b
+}

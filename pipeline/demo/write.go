@@ -1,0 +1,178 @@
+package demo
+
+import (
+	"encoding/json"
+	"errors"
+	"fmt"
+	"io/fs"
+	"os"
+	"path/filepath"
+
+	"bentray/io/atomicfile"
+	"bentray/pipeline"
+	"bentray/pipeline/job"
+)
+
+// Title is that of the survey's job, and what a folder of the survey is known by.
+const Title = "Lantern Cove, a made-up survey"
+
+// The files of a survey's folder.
+const (
+	jobFile        = "survey.toml"
+	trajectoryFile = "flight.csv"
+	polygonFile    = "water.geojson"
+	rawFolder      = "raw"
+	outputFolder   = "corrected"
+	truthFolder    = "truth"
+)
+
+// Survey is a survey that was written.
+type Survey struct {
+	Job        string   // the job file
+	Trajectory string   // the positions of the laser
+	Polygons   string   // the extent of the water
+	Raw        string   // the folder of the raw tiles
+	Corrected  string   // the folder that the job writes to
+	Truth      string   // the folder of the truth, row by row as the tiles
+	Tiles      []string // names below the three folders, with slashes
+	Points     int64    // rows of all tiles
+}
+
+// Write writes the survey into a folder, which it makes where it is not there.
+// It does not run the job.
+//
+// Errors: a *pipeline.CallError where the folder holds anything but this survey,
+// which is written again, and nothing was touched; else those of the file system.
+func Write(folder string) (*Survey, error) {
+	if err := checkFolder(folder); err != nil {
+		return nil, &pipeline.CallError{Err: err}
+	}
+	s, lines := newSurvey(folder), flightLines()
+	tiles, err := fill(lines)
+	if err != nil {
+		return nil, err
+	}
+	if err := s.makeFolders(tiles); err != nil {
+		return nil, err
+	}
+	// The job file comes first: a folder with it can be written again.
+	err = errors.Join(
+		atomicfile.Write(s.Job, jobText()),
+		atomicfile.Write(s.Polygons, polygonText()),
+		atomicfile.Write(s.Trajectory, trajectoryText(lines)),
+	)
+	for _, t := range tiles {
+		s.Tiles = append(s.Tiles, t.name)
+		s.Points += int64(t.rows)
+		err = errors.Join(err, atomicfile.Write(below(s.Raw, t.name), t.cloud), atomicfile.Write(below(s.Truth, t.name), t.truth))
+	}
+	return s, err
+}
+
+func newSurvey(folder string) *Survey {
+	in := func(name string) string { return filepath.Join(folder, name) }
+	return &Survey{
+		Job: in(jobFile), Trajectory: in(trajectoryFile), Polygons: in(polygonFile),
+		Raw: in(rawFolder), Corrected: in(outputFolder), Truth: in(truthFolder),
+	}
+}
+
+// below is a file named with slashes below a folder.
+func below(folder, name string) string { return filepath.Join(folder, filepath.FromSlash(name)) }
+
+// checkFolder refuses a folder that is something else's.
+func checkFolder(folder string) error {
+	entries, err := os.ReadDir(folder)
+	switch {
+	case errors.Is(err, fs.ErrNotExist):
+		return nil
+	case err != nil:
+		return fmt.Errorf("%s: not a folder that can be read, want a new or an empty one: %w", folder, err)
+	case len(entries) == 0:
+		return nil
+	}
+	j, err := job.Load(filepath.Join(folder, jobFile))
+	if err != nil || j.Title != Title {
+		return fmt.Errorf("%s: the folder is not empty and holds no survey of this demo, want a new or an empty one; nothing was written", folder)
+	}
+	return nil
+}
+
+// fill fires all pulses and returns the tiles.
+func fill(lines []*flightLine) ([]*tile, error) {
+	shooter, err := newShooter()
+	if err != nil {
+		return nil, err
+	}
+	tiles := newTiles()
+	for _, l := range lines {
+		for pulse := range lineS * pulsesPerS {
+			shot := shooter.fire(l, pulse)
+			tiles[tileOf(l, &shot)].add(&shot)
+		}
+	}
+	return tiles, nil
+}
+
+func (s *Survey) makeFolders(tiles []*tile) error {
+	for _, t := range tiles {
+		for _, folder := range []string{s.Raw, s.Truth} {
+			if err := os.MkdirAll(filepath.Dir(below(folder, t.name)), 0o777); err != nil {
+				return err
+			}
+		}
+	}
+	return nil
+}
+
+func trajectoryText(lines []*flightLine) []byte {
+	text := []byte(trajectoryColumns)
+	for _, l := range lines {
+		text = l.appendTrajectory(text)
+	}
+	return text
+}
+
+// polygonText is the extent of the water as GeoJSON (RFC 7946).
+func polygonText() []byte {
+	outline, hole := waterPolygon()
+	text, err := json.Marshal(map[string]any{
+		"type":       "Feature",
+		"properties": map[string]string{"name": "Lantern Cove"},
+		"geometry":   map[string]any{"type": "Polygon", "coordinates": []ring{outline, hole}},
+	})
+	if err != nil {
+		panic("demo: " + err.Error()) // finite numbers have JSON
+	}
+	return append(text, '\n')
+}
+
+func jobText() []byte {
+	return fmt.Appendf(nil, `title = %q
+
+[input]
+files = ["%s/**/*.csv"]
+
+[output]
+folder = %q
+
+[water]
+temperature = %.1f # degrees C
+salinity    = %.1f
+
+[air]
+temperature = %.1f # degrees C
+humidity    = %.0f   # percent
+
+[surface]
+level = %.2f # m, in the heights of the cloud
+
+[extent]
+polygons = %q
+
+[rays]
+model      = "pulse"
+trajectory = %q # times are adjusted standard GPS times
+max_gap    = %.0f # s
+`, Title, rawFolder, outputFolder, waterTemperatureC, salinity, airTemperatureC, humidityPercent, levelM, polygonFile, trajectoryFile, maxGapS)
+}
