@@ -9,9 +9,11 @@ const (
 	// patchRadius, in cells, is how far from its centre a patch uses points.
 	patchRadius = 2
 
-	// patchRounds is the number of reweighted fits; more change little
+	// patchRounds is the greatest number of reweighted fits. They end before where
+	// sigma changes by less than the share settled; more change little
 	// (TestPatchRounds).
-	patchRounds = 6
+	patchRounds = 8
+	settled     = 0.02
 
 	// The fewest points of a patch: twice its coefficients.
 	minQuadratic, minPlane = 12, 6
@@ -98,17 +100,23 @@ func resize(v []float64, n int) []float64 { return slices.Grow(v[:0], n)[:n] }
 // first weights come from the differences to the median height.
 func (f *patchFitter) reweight(n int) bool {
 	copy(f.r, f.z)
+	last := math.Inf(1)
 	for range patchRounds {
-		if !f.step(n) {
+		sigma := max(robustSigma(f.r, f.scratch, n), scaleFloor)
+		if !f.step(n, biweightCut*sigma) {
 			return false
 		}
+		if math.Abs(last-sigma) <= settled*sigma {
+			break
+		}
+		last = sigma
 	}
 	return true
 }
 
-// step makes one weighted fit and takes the differences to it.
-func (f *patchFitter) step(n int) bool {
-	cut := biweightCut * max(robustSigma(f.r, f.scratch, n), scaleFloor)
+// step makes one fit of n coefficients, with weights by the last differences and
+// their cut, and takes the differences to it.
+func (f *patchFitter) step(n int, cut float64) bool {
 	m := &f.equations
 	m.reset(n)
 	f.total = 0

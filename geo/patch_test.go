@@ -108,7 +108,7 @@ func TestPatchRounds(t *testing.T) {
 			t.Fatal("no patch")
 		}
 		for range 20 {
-			f.step(f.equations.n)
+			f.step(f.equations.n, biweightCut*robustSigma(f.r, f.scratch, f.equations.n))
 		}
 		change += (f.result().level - before.level) / before.sigma * ((f.result().level - before.level) / before.sigma) / 100
 	}

@@ -125,9 +125,10 @@ func newPlaneFitter(x, y, z []float64) *planeFitter {
 type trial struct{ sx, sy, level float64 }
 
 // start takes the best of the planes through three points; false where no three
-// points give a plane. The least median of them gives the scale only: with most of
-// the points on one bank, planes that turn about that bank share it. The plane is the
-// one with the least sum of losses bounded at the cut, which counts both banks.
+// points give a plane. The least median of them gives the scale only: with few points,
+// or most of them on one bank, planes that turn about that bank come close to it. The
+// plane is the one with the least sum of squares bounded at the cut, which counts all
+// points.
 func (f *planeFitter) start() bool {
 	rng := rand.New(rand.NewPCG(1984, 871))
 	judges := rng.Perm(len(f.u))[:min(len(f.u), planeSample)]

@@ -18,17 +18,18 @@ func levelOf(p Plane, x, y float64) float64 {
 // banks returns n waterline points on both banks of a winding river, 600 m long and
 // 40 m wide, with noise (m), the share wrong by 0 to 2 m upwards.
 func banks(rng *rand.Rand, n int, noise, wrong float64) (x, y, z []float64) {
-	return unevenBanks(rng, n, noise, wrong, 0.5)
+	return banksOf(rng, n, noise, wrong, 0.5, 25)
 }
 
-// unevenBanks returns such points, the given share of them on the southern bank.
-func unevenBanks(rng *rand.Rand, n int, noise, wrong, south float64) (x, y, z []float64) {
+// banksOf returns such points, the given share of them on the southern bank of a
+// river that winds by so much (m).
+func banksOf(rng *rand.Rand, n int, noise, wrong, south, winding float64) (x, y, z []float64) {
 	for range n {
 		along, side := 600*rng.Float64()-300, 20.0
 		if rng.Float64() < south {
 			side = -20
 		}
-		px, py := riverPlane.AtX+along, riverPlane.AtY+25*math.Sin(along/70)+side
+		px, py := riverPlane.AtX+along, riverPlane.AtY+winding*math.Sin(along/70)+side
 		pz := levelOf(riverPlane, px, py) + noise*rng.NormFloat64()
 		if rng.Float64() < wrong {
 			pz += 2 * rng.Float64()
@@ -114,12 +115,12 @@ func TestFitPlaneLeverage(t *testing.T) {
 	}
 }
 
-// TestFitPlaneUneven has few points on one bank, so that any plane through the other
-// bank fits most points.
+// TestFitPlaneUneven has few points on one bank of a straight river, so that any plane
+// through the other bank fits most points.
 func TestFitPlaneUneven(t *testing.T) {
 	rng := newRand(t, 87)
 	for run := range 20 {
-		x, y, z := unevenBanks(rng, 400, 0.004, 0.15, 0.88)
+		x, y, z := banksOf(rng, 400, 0.004, 0.15, 0.88, 0.1)
 		fit, err := FitPlane(x, y, z)
 		if err != nil {
 			t.Fatal(err)
