@@ -10,6 +10,10 @@ import (
 // maxCell is the greatest number of a cell, so that numbers are exact.
 const maxCell = 1 << 40
 
+// maxCellTrials bounds the search for the default cell. It ends within a few trials,
+// later where a few points lie very far from each other.
+const maxCellTrials = 50
+
 // surfacePoint is a surface point with its cell.
 type surfacePoint struct {
 	col, row   int
@@ -179,7 +183,7 @@ func defaultCell(points []surfacePoint) float64 {
 		return 1 // any cell holds them all
 	}
 	cell := long
-	for range 8 {
+	for range maxCellTrials {
 		used := map[[2]int]struct{}{}
 		for _, p := range points {
 			used[[2]int{int((p.x - low.x) / cell), int((p.y - low.y) / cell)}] = struct{}{}

@@ -138,8 +138,9 @@ func (g *Grid) Stats() GridStats { return g.stats }
 // 0.25 m and 6 s at 60 m/s by 0.004.
 //
 // It takes some 2 to 4 microseconds a surface point, much the same for any cell;
-// meanwhile 100 bytes a point, afterwards 90 bytes a patch and 1 KiB for each
-// tile of 16 by 16 cells in use.
+// meanwhile 100 bytes a point, afterwards 90 bytes a patch, 1 KiB for each tile of
+// 16 by 16 cells in use and 4 bytes, 16 MiB at most, for each tile of the rectangle
+// around the points.
 //
 // Errors: options as of Validate; no cell with enough points; points too far apart.
 func NewGrid(x, y, z, t []float64, options GridOptions) (*Grid, error) {
@@ -192,8 +193,7 @@ func (g *Grid) Fill(level, slopeX, slopeY, x, y, t []float64) {
 // FillSigma fills a chunk with the 1-sigma (m) of the level that Fill gives: from the
 // scatter of the points about each patch, taken as independent; in a gap, from what
 // the cells within reach say too. What the shape of a wave does to a patch or in a gap
-// is not in it. Lengths, aliasing and NaN are
-// those of Fill.
+// is not in it. Lengths, aliasing and NaN are those of Fill.
 func (g *Grid) FillSigma(sigma, x, y, t []float64) {
 	if len(x) != len(sigma) || len(y) != len(sigma) || t != nil && len(t) != len(sigma) {
 		panic(errLengths)

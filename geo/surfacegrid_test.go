@@ -169,7 +169,8 @@ func TestGridContinuity(t *testing.T) {
 func TestGridRefuses(t *testing.T) {
 	rng := newRand(t, 115)
 	x, y, z := scattered(rng, 200, 30, func(_, _ float64) float64 { return 1 })
-	none, far := []float64{math.NaN(), math.NaN()}, append([]float64{0}, x[1:]...)
+	none := []float64{math.NaN(), math.NaN()}
+	farX, farY := append([]float64{0}, x[1:]...), append([]float64{0}, y[1:]...)
 	for _, tc := range []struct {
 		name    string
 		x, y, z []float64
@@ -180,7 +181,8 @@ func TestGridRefuses(t *testing.T) {
 		{"nothing finite", none, none, none, GridOptions{}, []string{"none of 2 surface points"}},
 		{"one point", x[:1], y[:1], z[:1], GridOptions{}, []string{"cell of 1 m", "1 surface points", "larger cells"}},
 		{"cells too small", x, y, z, GridOptions{Cell: 0.01}, []string{"cell of 0.01 m", "200 surface points", "larger cells"}},
-		{"a point far away", far, y, z, GridOptions{Cell: 0.001}, []string{"span", "far away"}},
+		{"a point far away", farX, farY, z, GridOptions{}, []string{"span", "far away"}},
+		{"a point far away, cells given", farX, farY, z, GridOptions{Cell: 0.5}, []string{"span", "far away"}},
 		{"cells out of number", x, y, z, GridOptions{Cell: 1e-9}, []string{"too far away for cells of 1e-09 m"}},
 		{"all options wrong", x, y, z, GridOptions{Cell: -1, Reach: 51, Window: -2, Offset: math.NaN()}, []string{"cell is -1 m", "reach is 51 cells, want 0 to 50", "window is -2 s", "offset is NaN m"}},
 		{"options NaN", x, y, z, GridOptions{Cell: math.NaN(), Reach: math.NaN(), Window: math.NaN()}, []string{"cell is NaN", "reach is NaN", "window is NaN"}},
