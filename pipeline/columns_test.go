@@ -254,3 +254,15 @@ func TestMaxIncidence(t *testing.T) {
 		}
 	}
 }
+
+// Polygons are in the cloud's own coordinates, whatever their unit.
+func TestExtentInFeet(t *testing.T) {
+	folder := t.TempDir()
+	files{"raw/a.csv": "x,y,z\n19,19,-1\n21,19,-1\n1,1,-1\n", "water.geojson": polygonOf(10, 10, 20, 20)}.write(t, folder)
+	runJob(t, loadJob(t, folder, "[input]\nfiles = [\"raw/*.csv\"]\nunit = \"ft\"\n[output]\nfolder = \"true\"\n"+media+
+		"[surface]\nlevel = 0\n[extent]\npolygons = \"water.geojson\"\n[rays]\nmodel = \"vertical\"\n"), Options{})
+	got := readTable(t, readFile(t, folder, "true/a.csv")).column(t, "outcome")
+	if want := []string{"corrected", "outside", "outside"}; !slices.Equal(got, want) {
+		t.Errorf("outcomes are %q, want %q", got, want)
+	}
+}

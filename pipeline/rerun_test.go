@@ -181,6 +181,12 @@ func TestRejectsGoWithTheirInput(t *testing.T) {
 	if got := readFile(t, folder, "true/a.csv.rejects.csv"); got != "line,reason,text\n3,\"has 1 field, want 6\",ragged\n" {
 		t.Errorf("rejects are %q", got)
 	}
+	if err := os.Remove(filepath.Join(folder, "true/a.csv.rejects.csv")); err != nil {
+		t.Fatal(err)
+	}
+	if s := runJob(t, loadJob(t, folder, text), Options{}); s.Done != 1 || !exists(filepath.Join(folder, "true/a.csv.rejects.csv")) {
+		t.Errorf("without its rejects a file is not done again: %+v", s)
+	}
 	files{"raw/a.csv": tiny}.write(t, folder)
 	runJob(t, loadJob(t, folder, text), Options{})
 	if exists(filepath.Join(folder, "true/a.csv.rejects.csv")) {
@@ -211,4 +217,28 @@ func TestFailedFileLeavesNothing(t *testing.T) {
 		t.Errorf("got %s, want %s", summary.Files[0].Error, want)
 	}
 	same(t, "the output folder", outputs(t, filepath.Join(folder, "true")), before)
+}
+
+// meddler changes a file's time as soon as the run has read of it.
+type meddler struct {
+	silent
+	path string
+}
+
+func (m meddler) Read(int64) { _ = os.Chtimes(m.path, long, long) } // an error fails the test below
+
+func TestInputThatChangesWhileItIsRead(t *testing.T) {
+	folder := t.TempDir()
+	files{"raw/a.csv": tiny}.write(t, folder)
+	path := filepath.Join(folder, "raw/a.csv")
+	summary, err := Run(t.Context(), loadJob(t, folder, tinyJob(`"raw/*.csv"`, "true")), Options{Watch: meddler{path: path}})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if want := path + ": changed while it was read; run again when it is complete"; summary.Files[0].Error != want {
+		t.Errorf("got %q, want %q", summary.Files[0].Error, want)
+	}
+	if exists(filepath.Join(folder, "true/a.csv")) {
+		t.Error("there is an output of it")
+	}
 }

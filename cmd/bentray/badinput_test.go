@@ -227,7 +227,7 @@ func TestHeaderOnly(t *testing.T) {
 	}
 }
 
-// An interrupted run says so, also where a file has failed before.
+// An interrupted run says so.
 func TestInterrupted(t *testing.T) {
 	badInput{}.lay(t)
 	ctx, cancel := context.WithCancel(t.Context())

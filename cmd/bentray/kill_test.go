@@ -217,6 +217,13 @@ func TestInterruptedRunGoesOn(t *testing.T) {
 	}
 }
 
+// An interrupt outweighs a file that failed before it.
+func TestInterruptAfterAFailure(t *testing.T) {
+	fleet(t)
+	put(t, "raw/a.csv", "x,y\n1,2\n") // the first file of the run
+	interruptAtFirstOutput(t, os.Interrupt)
+}
+
 // interruptAtFirstOutput signals a run as soon as it has begun a file.
 func interruptAtFirstOutput(t *testing.T, signal os.Signal) {
 	t.Helper()
