@@ -8,7 +8,7 @@ import (
 const (
 	tileSide = 16 // cells along a side of a tile
 	tileSize = tileSide * tileSide
-	maxTiles = 1 << 23 // 32 MB of tile numbers
+	maxTiles = 1 << 22 // 16 MiB of tile numbers
 )
 
 // cellTable holds one number for each cell of a large raster of which most is

@@ -225,12 +225,3 @@ func TestFitPlaneRefuses(t *testing.T) {
 	mustPanic(t, func() { _, _ = FitPlane(x, y, z[:1]) })
 	mustPanic(t, func() { new(PlaneFit).FillSigma(x, y, z[:1]) })
 }
-
-func BenchmarkFitPlane(b *testing.B) {
-	x, y, z := banks(newRand(b, 86), 400, 0.004, 0.12)
-	for b.Loop() {
-		if _, err := FitPlane(x, y, z); err != nil {
-			b.Fatal(err)
-		}
-	}
-}

@@ -16,23 +16,6 @@ func winding(n int, long float64) (x, y []float64) {
 	return x, y
 }
 
-// footOf finds the nearest point of a line by looking at every segment: its
-// chainage, distance and segment.
-func footOf(lineX, lineY []float64, x, y float64) (chainage, distance float64, segment int) {
-	start, distance := 0.0, math.Inf(1)
-	for i := 1; i < len(lineX); i++ {
-		dx, dy := lineX[i]-lineX[i-1], lineY[i]-lineY[i-1]
-		long := math.Hypot(dx, dy)
-		along := min(max(((x-lineX[i-1])*dx+(y-lineY[i-1])*dy)/long, 0), long)
-		d := math.Hypot(x-lineX[i-1]-dx*along/long, y-lineY[i-1]-dy*along/long)
-		if d < distance-1e-9 { // ties: the lower chainage
-			chainage, distance, segment = start+along, d, i-1
-		}
-		start += long
-	}
-	return chainage, distance, segment
-}
-
 // riverLevel is the truth of the profile's tests: steep above, flat below, with a
 // curve between; s is the chainage (m).
 func riverLevel(s float64) float64 { return 30 + 1.5*math.Exp(-s/400) - 0.0002*s }
@@ -269,36 +252,6 @@ func TestProfileShapes(t *testing.T) {
 	}
 }
 
-// TestNearestAgainstAll compares the search, with any hint, with a look at all
-// segments of lines that cross themselves.
-func TestNearestAgainstAll(t *testing.T) {
-	rng := newRand(t, 94)
-	for _, n := range []int{2, 3, 4, 5, 6, 8, 9, 10, 33, 1023} {
-		var lineX, lineY []float64
-		px, py := 512000.0, 7012000.0
-		for range n {
-			px, py = px+20*rng.NormFloat64(), py+20*rng.NormFloat64()
-			lineX, lineY = append(lineX, px), append(lineY, py)
-		}
-		line, err := newPolyline(lineX, lineY)
-		if err != nil {
-			t.Fatal(err)
-		}
-		for range 300 {
-			i := rng.IntN(n)
-			x, y := lineX[i]+60*rng.NormFloat64(), lineY[i]+60*rng.NormFloat64()
-			f := line.nearest(x, y, 70, rng.IntN(n-1))
-			chainage, distance, _ := footOf(lineX, lineY, x, y)
-			if (f.segment >= 0) != (distance <= 70) {
-				t.Fatalf("n %d: segment %d at distance %v", n, f.segment, distance)
-			}
-			if f.segment >= 0 && (math.Abs(math.Sqrt(f.distance2)-distance) > 1e-8 || math.Abs(line.chainageOf(f)-chainage) > 1e-6) {
-				t.Fatalf("n %d: chainage %v at %v, want %v at %v", n, line.chainageOf(f), math.Sqrt(f.distance2), chainage, distance)
-			}
-		}
-	}
-}
-
 func TestNewProfileRefuses(t *testing.T) {
 	lineX, lineY := []float64{0, 100}, []float64{0, 0}
 	x, y, z := []float64{10, 20, 30}, []float64{0, 0, 90}, []float64{3, 2, 1}
@@ -357,49 +310,5 @@ func TestProfileAllocations(t *testing.T) {
 	level, sx, sy := make([]float64, len(x)), make([]float64, len(x)), make([]float64, len(x))
 	if n := testing.AllocsPerRun(10, func() { p.Fill(level, sx, sy, x, y); p.FillSigma(level, x, y) }); n != 0 {
 		t.Errorf("%v allocations, want 0", n)
-	}
-}
-
-// BenchmarkProfileFill asks a line of 5000 vertices for positions along it, and in
-// any order.
-func BenchmarkProfileFill(b *testing.B) {
-	rng := newRand(b, 96)
-	lineX, lineY := winding(5000, 20000)
-	x, y, z := levelPoints(rng, lineX, lineY, 1000, 0.01, 0)
-	p, err := NewProfile(lineX, lineY, x, y, z, 100)
-	if err != nil {
-		b.Fatal(err)
-	}
-	const n = 1 << 16
-	level, sx, sy := make([]float64, n), make([]float64, n), make([]float64, n)
-	for _, order := range []string{"along", "any"} {
-		px, py := make([]float64, n), make([]float64, n)
-		for i := range n {
-			at := 20000 * float64(i) / n
-			if order == "any" {
-				at = 20000 * rng.Float64()
-			}
-			px[i], py[i] = 512000+at, 7012000+60*math.Sin(at/90)+40*(rng.Float64()-0.5)
-		}
-		b.Run(order, func(b *testing.B) {
-			b.SetBytes(n * 16)
-			b.ReportAllocs()
-			for b.Loop() {
-				p.Fill(level, sx, sy, px, py)
-			}
-			b.ReportMetric(float64(b.Elapsed().Nanoseconds())/float64(b.N*n), "ns/point")
-		})
-	}
-}
-
-func BenchmarkNewProfile(b *testing.B) {
-	rng := newRand(b, 97)
-	lineX, lineY := winding(1000, 20000)
-	x, y, z := levelPoints(rng, lineX, lineY, 2000, 0.01, 0.1)
-	b.ReportAllocs()
-	for b.Loop() {
-		if _, err := NewProfile(lineX, lineY, x, y, z, 100); err != nil {
-			b.Fatal(err)
-		}
 	}
 }
