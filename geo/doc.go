@@ -12,6 +12,12 @@
 // nothing per point, and indices and trajectories may be read from several
 // goroutines at once.
 //
+// Three surfaces are fitted to surveyed points: a plane to waterline points (FitPlane),
+// a profile along a river (NewProfile), a grid of local fits to surface points that
+// may move with time (NewGrid). All hold with single points wrong to one side. Each
+// gives a chunk its levels and slopes, so that a ray can take the plane at its entry
+// anew, and the 1-sigma of the level.
+//
 // # Range and special cases
 //
 // Polygon coordinates reach 1e12 at most. A point with a NaN or infinite
@@ -21,6 +27,7 @@
 // a separation none outside the cells that have their four nodes; added to a
 // surface they leave NaN, no surface. Only stations hold their first and last record,
 // for the time that is asked for.
+// A surface has no level (NaN) beyond its reach or window.
 //
 // # Accuracy
 //
@@ -35,8 +42,42 @@
 // water of the plain computation over all stations within 1e-10 (TestStationsPlain),
 // and the same to the bit whatever points came before (TestStationsChunk).
 //
+// Against simulated truth: the plane through 400 waterline points with 4 mm noise and
+// 12 % wrong by 0 to 2 m upwards holds to 2 mm (TestFitPlaneWithBlunders); a profile
+// through such points along a river holds to 4 mm rms (TestProfileRiver); a grid over
+// swell of 0.25 m and 60 m, from one point a square metre with 2 cm noise and 2 %
+// blunders, puts a bed 10 m down to 1.5 mm rms in height and 5 mm in the plan at 20
+// degrees off nadir (TestGridSwell). The stated sigmas are those found over many
+// simulations (TestFitPlaneErrors, TestProfileSigma, TestGridSigma).
+//
 // # Sources
 //
+//   - Ayer, M. and others, 1955. An empirical distribution function for sampling with
+//     incomplete information. Annals of Mathematical Statistics 26(4), 641-647:
+//     pooling adjacent violators.
+//   - Beaton, A. E. and Tukey, J. W., 1974. The fitting of power series, meaning
+//     polynomials, illustrated on band-spectroscopic data. Technometrics 16(2),
+//     147-185: the biweight.
+//   - Fritsch, F. N. and Butland, J., 1984. A method for constructing local monotone
+//     piecewise cubic interpolants. SIAM Journal on Scientific and Statistical
+//     Computing 5(2), 300-304.
+//   - Hoare, C. A. R., 1961. Algorithm 65: find. Communications of the ACM 4(7), 321.
+//   - Holland, P. W. and Welsch, R. E., 1977. Robust regression using iteratively
+//     reweighted least-squares. Communications in Statistics A6(9), 813-827: the
+//     constant 4.685.
+//   - Huber, P. J., 1981. Robust Statistics. Wiley, section 7.6: the covariance of
+//     M-estimates.
+//   - Robertson, T. and Wright, F. T., 1973. Multiple isotonic median regression.
+//     Annals of Statistics 1(3), 422-432.
+//   - Rousseeuw, P. J., 1984. Least median of squares regression. Journal of the
+//     American Statistical Association 79(388), 871-880.
+//   - Schell, M. J. and Singh, B., 1997. The reduced monotonic regression method.
+//     Journal of the American Statistical Association 92(437), 128-135.
+//   - Torr, P. H. S. and Zisserman, A., 2000. MLESAC: a new robust estimator with
+//     application to estimating image geometry. Computer Vision and Image
+//     Understanding 78(1), 138-156: the bounded sum of squares.
+//   - Airy, G. B., 1845. Tides and waves. Encyclopaedia Metropolitana: deep-water
+//     waves, in the tests.
 //   - Butler, H. and others, 2016. The GeoJSON Format. RFC 7946, sections 3.1 and 4.
 //   - IERS Earth Orientation Centre. Bulletin C, numbers to 2017-01-01: the leap
 //     seconds.

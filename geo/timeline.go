@@ -2,7 +2,6 @@ package geo
 
 import (
 	"fmt"
-	"math"
 )
 
 // timeline finds the records on either side of a time. Equal slots of time, about
@@ -68,6 +67,3 @@ func checkMaxGap(seconds float64) error {
 	}
 	return nil
 }
-
-// isFinite tells whether v is a number, not NaN or infinite.
-func isFinite(v float64) bool { return !math.IsNaN(v) && !math.IsInf(v, 0) }
