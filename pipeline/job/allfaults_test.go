@@ -27,12 +27,10 @@ files = ["", "a/*.csv"]
 		`job.toml:1: unknown key "range" in [rays], want "model", "trajectory", "max_gap" or "range_index"`,
 		`job.toml:4: [water] temperature is 99, want -2 to 35 degrees C for quan-fry`,
 		`job.toml:5: [water] salinity is a string, want a number`,
-		`job.toml:6: unknown key "depth" in [water], want "temperature", "salinity", "formula" or "pressure_dbar"`,
+		`job.toml:6: unknown key "depth" in [water], want "temperature", "salinity", "formula", "pressure_dbar", "stations", "max_gap" or "zones"`,
 		`job.toml:9: unknown key "temperature" in [surface]; it belongs to [water] or [air]`,
 		`job.toml:12: [surface.plane] at is missing, want a place [x, y]`,
-		`job.toml:12: [surface.plane] slope_x is missing, want the rise over run along x`,
-		`job.toml:12: [surface.plane] slope_y is missing, want the rise over run along y`,
-		`job.toml:12: [surface] has level (line 10) and plane (line 12), want one of level, column and [surface.plane]`,
+		`job.toml:12: [surface] has level (line 10) and plane (line 12), want one of level, column, [surface.plane], [surface.profile] and [surface.grid]`,
 		`job.toml:13: [surface.plane] level is inf, want a finite number`,
 		`job.toml:16: [input] files item 1 is empty, want a pattern`,
 		`job.toml: [output] folder is missing, want a folder`,
@@ -49,7 +47,7 @@ func TestParseOfNothing(t *testing.T) {
 		`job.toml: [output] folder is missing, want a folder`,
 		`job.toml: [water] temperature is missing, want a number in degrees C`,
 		`job.toml: [water] salinity is missing, want a number (practical salinity; 0 for fresh water)`,
-		`job.toml: [surface] has no water surface, want level, column or [surface.plane]`,
+		`job.toml: [surface] has no water surface, want level, column, [surface.plane], [surface.profile], [surface.grid] or [surface.gauge], or [water] zones with levels`,
 		`job.toml: [rays] model is missing, want "vertical" or "pulse"`,
 	}
 	_, err := Parse("job.toml", nil)

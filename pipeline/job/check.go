@@ -14,13 +14,12 @@ func (j *Job) check(f *faults) {
 	j.checkMedia(f)
 	j.Surface.check(f)
 	j.Extent.check(f)
-	j.Rays.check(f)
+	j.checkSensors(f)
 	j.Limits.check(f)
 }
 
 func (o *Output) check(f *faults) {
-	f.require("output.folder", "a folder")
-	f.notBlank("output.folder", o.Folder, "a folder")
+	f.requireText("output.folder", o.Folder, "a folder")
 	f.oneOf("output.provenance", o.Provenance, Full, Lean)
 	if o.Decimals < 0 || o.Decimals > 9 {
 		f.add("output.decimals", "is %d, want 0 to 9", o.Decimals)
@@ -29,62 +28,7 @@ func (o *Output) check(f *faults) {
 
 func (e *Extent) check(f *faults) {
 	if f.has("extent") {
-		f.require("extent.polygons", "a GeoJSON file")
-		f.notBlank("extent.polygons", e.Polygons, "a GeoJSON file")
-	}
-}
-
-var planeWants = map[string]string{
-	"level":   "the elevation at the place named by at",
-	"at":      "a place [x, y]",
-	"slope_x": "the rise over run along x",
-	"slope_y": "the rise over run along y",
-}
-
-func (s *Surface) check(f *faults) {
-	f.notBlank("surface.column", s.Column, "a column's name")
-	if f.has("surface.plane") {
-		for _, key := range schema.keys("surface.plane") {
-			f.require("surface.plane."+key, planeWants[key])
-		}
-	}
-	given := slices.DeleteFunc([]string{"level", "column", "plane"}, func(key string) bool { return !f.has("surface." + key) })
-	switch {
-	case len(given) > 1:
-		f.tooMany(given)
-	case len(given) == 0 && !f.isTold("surface.level") && !f.isTold("surface.column") && !f.isTold("surface.plane"):
-		f.add("surface", "has no water surface, want level, column or [surface.plane]")
-	}
-}
-
-// tooMany reports water surfaces beside each other, at the last one's line.
-func (f *faults) tooMany(given []string) {
-	slices.SortStableFunc(given, func(a, b string) int { return f.line("surface."+a) - f.line("surface."+b) })
-	where := each(given, func(key string) string {
-		return key + " (line " + strconv.Itoa(f.line("surface."+key)) + ")"
-	})
-	f.addAt(f.line("surface."+given[len(given)-1]),
-		"[surface] has "+strings.Join(where, " and ")+", want one of level, column and [surface.plane]")
-}
-
-func (r *Rays) check(f *faults) {
-	f.require("rays.model", `"vertical" or "pulse"`)
-	f.oneOf("rays.model", r.Model, Vertical, Pulse)
-	if r.Model == Vertical {
-		for _, key := range []string{"trajectory", "max_gap", "range_index"} {
-			f.noEffect("rays."+key, `with model "vertical"`, `use model = "pulse"`)
-		}
-		return
-	}
-	f.notBlank("rays.trajectory", r.Trajectory, "a file")
-	if !f.has("rays.trajectory") {
-		f.noEffect("rays.max_gap", "without trajectory", "name the trajectory")
-	}
-	if f.has("rays.max_gap") && r.MaxGap <= 0 {
-		f.add("rays.max_gap", "is %s, want above 0 seconds", format(r.MaxGap))
-	}
-	if n := r.RangeIndex; n != nil && (*n < 1 || *n > 1.01) {
-		f.add("rays.range_index", "is %s, want 1 to 1.01, the index of air that the ranges were made with", format(*n))
+		f.requireText("extent.polygons", e.Polygons, "a GeoJSON file")
 	}
 }
 
@@ -99,6 +43,30 @@ func (f *faults) require(key, wanted string) {
 	if !f.has(key) {
 		f.add(key, "is missing, want %s", wanted)
 	}
+}
+
+// requireText reports a text that is missing or empty.
+func (f *faults) requireText(key, text, wanted string) {
+	f.require(key, wanted)
+	f.notBlank(key, text, wanted)
+}
+
+// above0 reports a number in the file that is not above 0.
+func (f *faults) above0(key string, v float64, unit string) {
+	if f.has(key) && !(v > 0) {
+		f.add(key, "is %s, want above 0%s", format(v), unit)
+	}
+}
+
+// meant tells whether the file has a key or table, or a fault that stands for it
+// or, of a table, for a key in it.
+func (f *faults) meant(key string) bool {
+	for told := range f.told {
+		if strings.HasPrefix(told, key+".") {
+			return true
+		}
+	}
+	return f.has(key) || f.isTold(key)
 }
 
 // noEffect reports a key that is in the file to no effect.

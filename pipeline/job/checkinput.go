@@ -120,19 +120,10 @@ func (c *CSV) check(f *faults) {
 }
 
 func (s *Select) check(f *faults) {
-	const table = "select.where"
 	if f.has("select") && len(s.Where) == 0 {
-		f.add(table, "has no column, want lists of values by column, such as classification = [2]")
+		f.add("select.where", "has no column, want lists of values by column, such as classification = [2]")
 	}
-	for _, column := range slices.Sorted(maps.Keys(s.Where)) {
-		switch key := table + "." + column; {
-		case f.isTold(key):
-		case len(s.Where[column]) == 0:
-			f.add(key, "is empty, want a list of values, such as [2, 9]")
-		default:
-			s.Where[column] = normalized(s.Where[column])
-		}
-	}
+	checkWhere(f, "select.where", s.Where)
 }
 
 // normalized sorts values, numbers first, and drops repeats.

@@ -11,8 +11,7 @@ import (
 // not compute. It tries each quantity by itself, the others at values that all
 // formulas take, so that every fault is found and known by its key.
 func (j *Job) checkMedia(f *faults) {
-	f.require("water.temperature", "a number in degrees C")
-	f.require("water.salinity", "a number (practical salinity; 0 for fresh water)")
+	j.Water.check(f)
 	const green = 550 // nm, inside every range
 	if formula, err := medium.ParseWaterFormula(j.Water.Formula); err == nil {
 		j.checkWater(f, formula, green)
@@ -22,16 +21,43 @@ func (j *Job) checkMedia(f *faults) {
 	j.checkAir(f, green)
 }
 
+// check reports keys of [water] that are missing or to no effect. Stations or
+// zones stand in for temperature and salinity, but not for one of them.
+func (w *Water) check(f *faults) {
+	const temperature, salinity = "water.temperature", "water.salinity"
+	switch local := f.meant("water.stations") || f.meant("water.zones"); {
+	case !local:
+		f.require(temperature, "a number in degrees C")
+		f.require(salinity, "a number (practical salinity; 0 for fresh water)")
+	case f.has(temperature):
+		f.require(salinity, "a number beside temperature; with stations or zones both may be left out")
+	case f.has(salinity):
+		f.require(temperature, "a number beside salinity; with stations or zones both may be left out")
+	}
+	f.notBlank("water.stations", w.Stations, "a file of x, y, temperature and salinity")
+	f.notBlank("water.zones", w.Zones, "a GeoJSON file")
+	if !f.has("water.stations") {
+		f.noEffect("water.max_gap", "without stations", "name the stations")
+	}
+	f.above0("water.max_gap", w.MaxGap, " seconds")
+}
+
 func (j *Job) checkWater(f *faults, formula medium.WaterFormula, nm float64) {
 	const t = 10 // degrees C, inside every range
 	water := func(key string, w medium.Water, nm float64) {
 		_, _, err := formula.Index(w, nm)
 		f.outOfRange(key, err)
 	}
-	water("water.temperature", medium.Water{TemperatureC: j.Water.Temperature}, nm)
-	water("water.salinity", medium.Water{TemperatureC: t, Salinity: j.Water.Salinity}, nm)
+	if v := j.Water.Temperature; v != nil {
+		water("water.temperature", medium.Water{TemperatureC: *v}, nm)
+	}
+	if v := j.Water.Salinity; v != nil {
+		water("water.salinity", medium.Water{TemperatureC: t, Salinity: *v}, nm)
+	}
 	water("water.pressure_dbar", medium.Water{TemperatureC: t, PressureDbar: j.Water.PressureDbar}, nm)
-	water("light.wavelength", medium.Water{TemperatureC: t}, j.Light.Wavelength)
+	if v := j.Light.Wavelength; v != nil {
+		water("light.wavelength", medium.Water{TemperatureC: t}, *v)
+	}
 }
 
 func (j *Job) checkAir(f *faults, nm float64) {
@@ -45,7 +71,9 @@ func (j *Job) checkAir(f *faults, nm float64) {
 	air("air.pressure", nm, func(a *medium.Air) { a.PressureHPa = j.Air.Pressure })
 	air("air.humidity", nm, func(a *medium.Air) { a.HumidityPercent = j.Air.Humidity })
 	air("air.co2", nm, func(a *medium.Air) { a.CO2PPM = j.Air.CO2 })
-	air("light.wavelength", j.Light.Wavelength, func(*medium.Air) {})
+	if v := j.Light.Wavelength; v != nil {
+		air("light.wavelength", *v, func(*medium.Air) {})
+	}
 }
 
 // outOfRange reports what medium says of a key's value; nil is nothing.

@@ -9,18 +9,21 @@ import (
 	"strconv"
 )
 
-// decode fills the job from the values of its file and reports unknown keys,
+// decode fills in the content of a job file from its values and reports unknown keys,
 // wrong types and numbers that are not finite.
-func decode(f *faults, j *Job, values map[string]any) {
-	decodeTable(f, reflect.ValueOf(j).Elem(), values, "")
+func decode(f *faults, content *file, values map[string]any) {
+	decodeTable(f, reflect.ValueOf(content).Elem(), values, "")
 }
 
 func decodeTable(f *faults, dst reflect.Value, values map[string]any, table string) {
 	for _, key := range slices.Sorted(maps.Keys(values)) {
-		if to, ok := field(dst, key); ok {
-			decodeValue(f, to, values[key], join(table, key))
-		} else {
+		switch to, ok := field(dst.Type(), key); {
+		case !ok:
 			unknown(f, table, key, values[key])
+		case to.Tag.Get("form") == "time":
+			decodeTime(f, dst.FieldByIndex(to.Index), values[key], join(table, key))
+		default:
+			decodeValue(f, dst.FieldByIndex(to.Index), values[key], join(table, key))
 		}
 	}
 }
@@ -36,6 +39,11 @@ func decodeValue(f *faults, dst reflect.Value, v any, key string) {
 		decodeTable(f, dst, inner, key)
 	case kind == reflect.Map && isTable:
 		decodeMap(f, dst, inner, key)
+	case isTables(dst.Type()) && isList:
+		dst.Set(reflect.MakeSlice(dst.Type(), len(items), len(items)))
+		for i, item := range items {
+			decodeValue(f, dst.Index(i), item, join(key, strconv.Itoa(i+1)))
+		}
 	case kind == reflect.Slice && isList:
 		dst.Set(reflect.MakeSlice(dst.Type(), len(items), len(items)))
 		decodeList(f, dst, items, key)
@@ -146,6 +154,9 @@ func want(t reflect.Type) string {
 	case reflect.Interface:
 		return "a number or a string"
 	case reflect.Slice:
+		if isTables(t) {
+			return "a list of tables"
+		}
 		return "a list, each item " + want(t.Elem())
 	case reflect.Array:
 		return fmt.Sprintf("a list of %d, each item %s", t.Len(), want(t.Elem()))

@@ -1,6 +1,9 @@
 package job
 
-import "path/filepath"
+import (
+	"cmp"
+	"path/filepath"
+)
 
 // newJob returns a job with the defaults that depend on nothing else.
 func newJob(path string) *Job {
@@ -28,19 +31,49 @@ func (j *Job) applyDefaults(f *faults) {
 	if f.has("input.csv.names") && !f.has("input.csv.header") {
 		j.Input.CSV.Header = false
 	}
-	if !f.has("light.wavelength") {
-		j.Light.Wavelength = defaultWavelength(j.Rays.Model)
+	if f.has("water.stations") {
+		f.setDefault("water.max_gap", &j.Water.MaxGap, 3600)
 	}
-	if j.Rays.Trajectory != "" && !f.has("rays.max_gap") {
-		j.Rays.MaxGap = 1
+	j.Surface.applyDefaults(f)
+	for i := range j.Sensors {
+		if r := &j.Sensors[i].Rays; r.Trajectory != "" {
+			f.setDefault(f.raysKey(i)+".max_gap", &r.MaxGap, 1)
+		}
+	}
+	j.settleWavelength()
+}
+
+// settleWavelength writes out the default wavelength that all sensors share.
+func (j *Job) settleWavelength() {
+	if j.Light.Wavelength != nil || len(j.Sensors) == 0 {
+		return
+	}
+	nm := j.Wavelength(j.Sensors[0])
+	for _, s := range j.Sensors {
+		if j.Wavelength(s) != nm {
+			return
+		}
+	}
+	j.Light.Wavelength = &nm
+}
+
+func (s *Surface) applyDefaults(f *faults) {
+	if p := s.Plane; p != nil && !f.has("surface.plane.waterline") {
+		p.SlopeX = cmp.Or(p.SlopeX, new(float64))
+		p.SlopeY = cmp.Or(p.SlopeY, new(float64))
+	}
+	if g := s.Grid; g != nil {
+		f.setDefault("surface.grid.reach", &g.Reach, 5)
+		f.setDefault("surface.grid.window", &g.Window, 2)
+	}
+	if g := s.Gauge; g != nil {
+		f.setDefault("surface.gauge.max_gap", &g.MaxGap, 3600)
 	}
 }
 
-// defaultWavelength is that of common green lasers, or the middle of the
-// visible light that an image is made of, in nm.
-func defaultWavelength(model string) float64 {
-	if model == Pulse {
-		return 532
+// setDefault sets a number that is not in the file.
+func (f *faults) setDefault(key string, to *float64, value float64) {
+	if !f.has(key) {
+		*to = value
 	}
-	return 550
 }

@@ -11,7 +11,8 @@
 // Celsius (ITS-90), practical salinity, air pressure in hPa (at the water, not
 // reduced to sea level), water pressure in dbar gauge, humidity in percent,
 // vacuum wavelengths in nm, times in seconds, lengths in the job's unit.
-// Conversion is the caller's.
+// Conversion is the caller's. A time is a number of UTC seconds since 1970, or
+// has its offset, as text by RFC 3339 or as TOML's own date and time.
 //
 // The ranges of water, air and light are those that package medium computes;
 // everything else is checked here. No file but the job is opened: patterns and

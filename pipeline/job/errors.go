@@ -5,6 +5,7 @@ import (
 	"errors"
 	"fmt"
 	"slices"
+	"strconv"
 	"strings"
 )
 
@@ -47,6 +48,13 @@ func (f *faults) add(key, format string, args ...any) {
 	}
 	f.told[key] = true
 	f.addAt(f.line(key), label(key)+" "+fmt.Sprintf(format, args...))
+}
+
+// addTable reports a fault of a table as a whole, whose keys may have others.
+func (f *faults) addTable(key, format string, args ...any) {
+	if !f.isTold(key) {
+		f.addAt(f.line(key), label(key)+" "+fmt.Sprintf(format, args...))
+	}
 }
 
 // addAt reports a fault at a line.
@@ -106,14 +114,38 @@ func join(table, key string) string {
 	return table + "." + key
 }
 
+// cutItem cuts the path of a sensor's key, such as "sensor.2.rays.model", into
+// that of the sensor, "sensor.2", and the rest.
+func cutItem(key string) (item, rest string, ok bool) {
+	after, ok := strings.CutPrefix(key, sensorTable+".")
+	number, rest, _ := strings.Cut(after, ".")
+	if _, err := strconv.Atoi(number); !ok || err != nil {
+		return "", key, false
+	}
+	return join(sensorTable, number), rest, true
+}
+
+// plain is a path without a sensor's number, as the schema has it.
+func plain(key string) string {
+	item, rest, ok := cutItem(key)
+	switch {
+	case !ok:
+		return key
+	case rest == "":
+		return parent(item)
+	}
+	return join(parent(item), rest)
+}
+
 // label is a key's name in messages: `title`, `[water] salinity`, `[surface]`.
 func label(key string) string {
+	key = plain(key)
 	if schema.has(key) {
-		return "[" + key + "]"
+		return place(key)
 	}
 	for table := parent(key); table != ""; table = parent(table) {
 		if schema.has(table) {
-			return "[" + table + "] " + key[len(table)+1:]
+			return place(table) + " " + key[len(table)+1:]
 		}
 	}
 	return key

@@ -32,7 +32,7 @@ trajectory = "flight.csv"
 		return
 	}
 	fmt.Println(j.Title)
-	fmt.Println(j.Light.Wavelength, "nm, at most", j.Limits.MaxIncidence, "degrees")
+	fmt.Println(j.Wavelength(j.Sensors[0]), "nm, at most", j.Limits.MaxIncidence, "degrees")
 	// Output:
 	// Lantern Cove, spring flight
 	// 532 nm, at most 60 degrees

@@ -52,7 +52,7 @@ func TestParseFaults(t *testing.T) {
 		{"unknown table", "[water]", "[watr]", `job.toml:5: unknown table [watr]; did you mean [water]?`},
 		{"unknown inline table", "", "[input.cvs]", `job.toml:12: unknown table [input.cvs]; did you mean [input.csv]?`},
 		{"table at the wrong place", "[surface]\nlevel = 0.42", "[plane]\nlevel = 0.42", `job.toml:8: unknown table [plane]; did you mean [surface.plane]?`},
-		{"list of tables", "", "[[sensor]]\nname = 'a'", `job.toml:12: unknown table [sensor], want [input], [input.columns], [input.csv], [output], [select], [select.where], [water], [air], [light], [surface], [surface.plane], [extent], [rays] or [limits]`},
+		{"list of tables", "", "[[cameras]]\nname = 'a'", `job.toml:12: unknown table [cameras], want [rays], [input], [input.columns], [input.csv], [output], [select], [select.where], [water], [air], [light], [surface], [surface.plane], [surface.profile], [surface.grid], [surface.gauge], [surface.separation], [extent], [[sensor]], [sensor.where], [sensor.rays] or [limits]`},
 
 		{"string for a number", "temperature = 12", "temperature = '12'", `job.toml:6: [water] temperature is a string, want a number`},
 		{"boolean for a number", "temperature = 12", "temperature = true", `job.toml:6: [water] temperature is a boolean, want a number`},
@@ -76,8 +76,8 @@ func TestParseFaults(t *testing.T) {
 		{"no temperature", "temperature = 12\n", "", `job.toml:5: [water] temperature is missing, want a number in degrees C`},
 		{"no salinity", "salinity = 34\n", "", `job.toml:5: [water] salinity is missing, want a number (practical salinity; 0 for fresh water)`},
 		{"no model", "model = \"pulse\"\n", "", `job.toml:10: [rays] model is missing, want "vertical" or "pulse"`},
-		{"no surface", level, "", `job.toml: [surface] has no water surface, want level, column or [surface.plane]`},
-		{"empty surface", "level = 0.42", "", `job.toml:8: [surface] has no water surface, want level, column or [surface.plane]`},
+		{"no surface", level, "", `job.toml: [surface] has no water surface, want level, column, [surface.plane], [surface.profile], [surface.grid] or [surface.gauge], or [water] zones with levels`},
+		{"empty surface", "level = 0.42", "", `job.toml:8: [surface] has no water surface, want level, column, [surface.plane], [surface.profile], [surface.grid] or [surface.gauge], or [water] zones with levels`},
 		{"extent of nothing", "", "[extent]", `job.toml:12: [extent] polygons is missing, want a GeoJSON file`},
 		{"plane without place", level, "[surface.plane]\nlevel = 1\nslope_x = 0\nslope_y = 0\n", `job.toml:8: [surface.plane] at is missing, want a place [x, y]`},
 
@@ -129,7 +129,7 @@ func TestParseFaults(t *testing.T) {
 		{"co2", "", "[air]\nco2 = -1", `job.toml:13: [air] co2 is -1, want 0 to 2000 ppm for ciddor`},
 		{"wavelength", "", "[light]\nwavelength = 0.532", `job.toml:13: [light] wavelength is 0.532, want 400 to 700 nm for quan-fry`},
 
-		{"two surfaces", "level = 0.42", "column = 'tide'\nlevel = 0.42", `job.toml:10: [surface] has column (line 9) and level (line 10), want one of level, column and [surface.plane]`},
+		{"two surfaces", "level = 0.42", "column = 'tide'\nlevel = 0.42", `job.toml:10: [surface] has column (line 9) and level (line 10), want one of level, column, [surface.plane], [surface.profile] and [surface.grid]`},
 		{"blank column", "level = 0.42", "column = ''", `job.toml:9: [surface] column is empty, want a column's name`},
 		{"place of three", level, "[surface.plane]\nlevel = 1\nat = [0, 0, 0]\nslope_x = 0\nslope_y = 0\n", `job.toml:10: [surface.plane] at has 3 items, want a list of 2, each item a number`},
 		{"blank extent", "", "[extent]\npolygons = ''", `job.toml:13: [extent] polygons is empty, want a GeoJSON file`},
@@ -146,19 +146,22 @@ func TestParseFaults(t *testing.T) {
 		{"incidence", "", "[limits]\nmax_incidence = 90", `job.toml:13: [limits] max_incidence is 90, want above 0 and below 90 degrees`},
 		{"no incidence", "", "[limits]\nmax_incidence = 0", `job.toml:13: [limits] max_incidence is 0, want above 0 and below 90 degrees`},
 	} {
-		t.Run(c.name, func(t *testing.T) {
-			text := edit(t, pulseJob, c.old, c.text)
-			_, err := Parse("job.toml", []byte(text))
-			if err == nil {
-				t.Fatalf("job is accepted:\n%s", text)
-			}
-			if err.Error() != c.want {
-				t.Errorf("got  %v\nwant %s", err, c.want)
-			}
-			var e *Error
-			if !errors.As(err, &e) || e.Path != "job.toml" {
-				t.Errorf("%#v holds no *Error of job.toml", err)
-			}
-		})
+		t.Run(c.name, func(t *testing.T) { wantFault(t, edit(t, pulseJob, c.old, c.text), c.want) })
+	}
+}
+
+// wantFault checks that a job is refused with the whole message given.
+func wantFault(t *testing.T, text, want string) {
+	t.Helper()
+	_, err := Parse("job.toml", []byte(text))
+	if err == nil {
+		t.Fatalf("job is accepted:\n%s", text)
+	}
+	if err.Error() != want {
+		t.Errorf("got  %v\nwant %s", err, want)
+	}
+	var e *Error
+	if !errors.As(err, &e) || e.Path != "job.toml" {
+		t.Errorf("%#v holds no *Error of job.toml", err)
 	}
 }

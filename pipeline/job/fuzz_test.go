@@ -15,8 +15,14 @@ func FuzzParse(f *testing.F) {
 	if err != nil {
 		f.Fatal(err)
 	}
+	reach, err := os.ReadFile("testdata/reach.toml")
+	if err != nil {
+		f.Fatal(err)
+	}
 	for _, seed := range []string{
-		string(cove), least, pulseJob, "", "\ufeff", "a", "[a", "a=1\na=1", "[[water]]", "water=[{}]", "input.columns={x='y',\"\"='z'}",
+		string(cove), string(reach), withSensors(manySensors(3)), "sensor=[1,{name=[]},{rays={model='pulse'}}]", "[sensor]\n[sensor.1]\nname=1", "[[sensor.rays]]\nmodel=1",
+		"[[a]]\n[[a.b]]\n[a.b.c]\n[[a]]\nb=[[{c=1}]]", "surface.gauge.at=09:30:00", "surface.gauge.at=0001-01-01T00:00:00Z", "surface.gauge.at=''", "surface.grid.classes=[-1,256]",
+		least, pulseJob, "", "\ufeff", "a", "[a", "a=1\na=1", "[[water]]", "water=[{}]", "input.columns={x='y',\"\"='z'}",
 		"select.where={a=[1,'b',nan],b=3}", "surface.plane.at=[1]", "''=1", "[a.'.'.b]\n'.'={c={d=1}}", "input.csv.names=['\\u0000']", "rays=1979-05-27",
 		"surface.level=9223372036854775807", "input.week=-9223372036854775808", "\xff", "[input.columns]\nx.y=1",
 	} {

@@ -35,11 +35,14 @@ type Job struct {
 	Select  Select  `toml:"select" json:"select,omitzero"`
 	Water   Water   `toml:"water" json:"water"`
 	Air     Air     `toml:"air" json:"air"`
-	Light   Light   `toml:"light" json:"light"`
+	Light   Light   `toml:"light" json:"light,omitzero"`
 	Surface Surface `toml:"surface" json:"surface"`
 	Extent  Extent  `toml:"extent" json:"extent,omitzero"`
-	Rays    Rays    `toml:"rays" json:"rays"`
-	Limits  Limits  `toml:"limits" json:"limits"`
+
+	// Sensors are at least one. [rays] alone is one without a name or condition.
+	Sensors []Sensor `toml:"sensor" json:"sensor"`
+
+	Limits Limits `toml:"limits" json:"limits"`
 
 	Path string `toml:"-" json:"-"` // the job file, as given to Load or Parse
 	Dir  string `toml:"-" json:"-"` // its folder, which relative paths start from
@@ -79,12 +82,16 @@ type Select struct {
 	Where map[string][]any `toml:"where" json:"where,omitempty"`
 }
 
-// Water is the water's state, one for all points.
+// Water is the water's state. A point takes that of its zone, else that of the
+// stations, else temperature and salinity as given here.
 type Water struct {
-	Temperature  float64 `toml:"temperature" json:"temperature"`     // degrees C (ITS-90)
-	Salinity     float64 `toml:"salinity" json:"salinity"`           // practical salinity
-	Formula      string  `toml:"formula" json:"formula"`             // of the index; default quan-fry
-	PressureDbar float64 `toml:"pressure_dbar" json:"pressure_dbar"` // gauge, at the middle of the path; default 0
+	Temperature  *float64 `toml:"temperature" json:"temperature,omitempty"` // degrees C (ITS-90); nil: stations or zones alone
+	Salinity     *float64 `toml:"salinity" json:"salinity,omitempty"`       // practical salinity; nil just where Temperature is
+	Formula      string   `toml:"formula" json:"formula"`                   // of the index; default quan-fry
+	PressureDbar float64  `toml:"pressure_dbar" json:"pressure_dbar"`       // gauge, at the middle of the path; default 0
+	Stations     string   `toml:"stations" json:"stations,omitempty"`       // a file of temperature and salinity by place; empty: none
+	MaxGap       float64  `toml:"max_gap" json:"max_gap,omitempty"`         // s that a station's record holds beyond its ends; default 3600, and 0 without Stations
+	Zones        string   `toml:"zones" json:"zones,omitempty"`             // a GeoJSON file of waters with values of their own; empty: none
 }
 
 // Air is the air's state at the survey. Each default is that of standard air.
@@ -97,22 +104,7 @@ type Air struct {
 
 // Light is the light that made the raw cloud.
 type Light struct {
-	Wavelength float64 `toml:"wavelength" json:"wavelength"` // nm in vacuum; default 532 for Pulse, 550 for Vertical
-}
-
-// Surface is the water surface: exactly one of its fields is set.
-type Surface struct {
-	Level  *float64 `toml:"level" json:"level,omitempty"`   // one elevation
-	Column string   `toml:"column" json:"column,omitempty"` // the cloud's column that holds it
-	Plane  *Plane   `toml:"plane" json:"plane,omitempty"`
-}
-
-// Plane is a sloping water surface. All of its keys are required.
-type Plane struct {
-	Level  float64    `toml:"level" json:"level"`     // elevation at At
-	At     [2]float64 `toml:"at" json:"at"`           // plan position x, y
-	SlopeX float64    `toml:"slope_x" json:"slope_x"` // rise over run along x, both in one unit
-	SlopeY float64    `toml:"slope_y" json:"slope_y"` // the same along y
+	Wavelength *float64 `toml:"wavelength" json:"wavelength,omitempty"` // nm in vacuum; nil where sensors differ in their default
 }
 
 // Extent limits the correction to water.
@@ -120,19 +112,15 @@ type Extent struct {
 	Polygons string `toml:"polygons" json:"polygons"` // a GeoJSON file; empty where there is no limit
 }
 
-// Rays says how light went between the ray origin and the points.
-type Rays struct {
-	Model string `toml:"model" json:"model"` // Vertical or Pulse
-
-	// The rest is for Pulse alone.
-	Trajectory string   `toml:"trajectory" json:"trajectory,omitempty"`   // a file of ray origins by time; empty: the cloud's origin columns
-	MaxGap     float64  `toml:"max_gap" json:"max_gap,omitempty"`         // s between its records at most; default 1, and 0 without Trajectory
-	RangeIndex *float64 `toml:"range_index" json:"range_index,omitempty"` // the index the ranges were made with, 1 to 1.01; nil: group index of the job's air
-}
-
 // Limits are the bounds beyond which a ray is not corrected.
 type Limits struct {
 	MaxIncidence float64 `toml:"max_incidence" json:"max_incidence"` // degrees from the surface normal, above 0 and below 90; default 60
+}
+
+// file is what a job file holds: a job whose only sensor may stand in [rays].
+type file struct {
+	Rays Rays `toml:"rays"`
+	*Job
 }
 
 // Load reads and checks the job file at path. A fault of its content is an
@@ -155,8 +143,10 @@ func Parse(path string, data []byte) (*Job, error) {
 		return nil, err
 	}
 	f := newFaults(path, doc.lines)
-	j := newJob(path)
-	decode(f, j, doc.values)
+	content := &file{Job: newJob(path)}
+	decode(f, content, doc.values)
+	content.settleSensors(f)
+	j := content.Job
 	j.applyDefaults(f)
 	j.check(f)
 	if err := f.err(); err != nil {

@@ -36,11 +36,11 @@ func TestParseAppliesDefaults(t *testing.T) {
 			Time: "gps-adjusted", CSV: CSV{Header: true},
 		},
 		Output:  Output{Folder: "true", Provenance: "full", Decimals: 4},
-		Water:   Water{Temperature: 12, Salinity: 0, Formula: "quan-fry"},
+		Water:   Water{Temperature: ptr(12.0), Salinity: ptr(0.0), Formula: "quan-fry"},
 		Air:     Air{Temperature: 15, Pressure: 1013.25, Humidity: 0, CO2: 450},
-		Light:   Light{Wavelength: 550},
+		Light:   Light{Wavelength: ptr(550.0)},
 		Surface: Surface{Level: ptr(0.42)},
-		Rays:    Rays{Model: "vertical"},
+		Sensors: []Sensor{{Rays: Rays{Model: "vertical"}}},
 		Limits:  Limits{MaxIncidence: 60},
 		Path:    "jobs/job.toml",
 		Dir:     "jobs",
@@ -61,12 +61,12 @@ func TestLoadReadsEveryKey(t *testing.T) {
 		},
 		Output:  Output{Folder: "true", Provenance: "lean", Decimals: 3},
 		Select:  Select{Where: map[string][]any{"classification": {2.0, 9.0, "unknown"}, "flight": {"A"}}},
-		Water:   Water{Temperature: 17.5, Salinity: 34.9, Formula: "millard-seaver", PressureDbar: 2},
+		Water:   Water{Temperature: ptr(17.5), Salinity: ptr(34.9), Formula: "millard-seaver", PressureDbar: 2},
 		Air:     Air{Temperature: 18, Pressure: 1009.5, Humidity: 60, CO2: 420},
-		Light:   Light{Wavelength: 515},
-		Surface: Surface{Plane: &Plane{Level: 1.4, At: [2]float64{1250000, 640000.5}, SlopeX: 1e-5, SlopeY: -2e-5}},
+		Light:   Light{Wavelength: ptr(515.0)},
+		Surface: Surface{Plane: &Plane{Level: ptr(1.4), At: &[2]float64{1250000, 640000.5}, SlopeX: ptr(1e-5), SlopeY: ptr(-2e-5)}},
 		Extent:  Extent{Polygons: "water.geojson"},
-		Rays:    Rays{Model: "pulse", Trajectory: "flight.csv", MaxGap: 0.5, RangeIndex: ptr(1.00029)},
+		Sensors: []Sensor{{Rays: Rays{Model: "pulse", Trajectory: "flight.csv", MaxGap: 0.5, RangeIndex: ptr(1.00029)}}},
 		Limits:  Limits{MaxIncidence: 40},
 		Path:    "testdata/cove.toml",
 		Dir:     "testdata",
@@ -80,15 +80,53 @@ func TestLoadReadsEveryKey(t *testing.T) {
 	}
 }
 
+func TestLoadReadsLocalWater(t *testing.T) {
+	want := &Job{
+		Title: "Quillon reach, low water",
+		Input: Input{
+			Files: []string{"raw/**/*.csv"}, Unit: "m", VerticalUnit: "m", BadRows: "stop",
+			Time: "gps-adjusted", CSV: CSV{Header: true},
+		},
+		Output: Output{Folder: "true", Provenance: "full", Decimals: 4},
+		Water:  Water{Formula: "quan-fry", Stations: "sondes.csv", MaxGap: 1800, Zones: "waters.geojson"},
+		Air:    Air{Temperature: 15, Pressure: 1013.25, CO2: 450},
+		Surface: Surface{
+			Profile:    &Profile{Centreline: "thalweg.geojson", Levels: "levels.csv", Reach: 60},
+			Gauge:      &Gauge{File: "weir.csv", Zero: -31.25, MaxGap: 900, At: ptr(1934184600.5)}, // date -u -d 2031-04-17T09:30Z +%s
+			Separation: &Separation{File: "geoid.csv"},
+		},
+		Sensors: []Sensor{
+			{
+				Name: "laser", Where: map[string][]any{"point_source_id": {11.0, 12.0}},
+				Rays: Rays{Model: "pulse", Trajectory: "flight.csv", MaxGap: 1, RangeIndex: ptr(1.0003)},
+			},
+			{Name: "images", Rays: Rays{Model: "vertical"}},
+		},
+		Limits: Limits{MaxIncidence: 60},
+		Path:   "testdata/reach.toml",
+		Dir:    "testdata",
+	}
+	got, err := Load("testdata/reach.toml")
+	if err != nil {
+		t.Fatal(err)
+	}
+	if !reflect.DeepEqual(got, want) {
+		t.Errorf("got  %+v\nwant %+v", got, want)
+	}
+	if laser, images := got.Wavelength(got.Sensors[0]), got.Wavelength(got.Sensors[1]); laser != 532 || images != 550 {
+		t.Errorf("wavelengths are %v and %v nm, want 532 and 550", laser, images)
+	}
+}
+
 func TestParseAccepts(t *testing.T) {
 	pulse := strings.Replace(least, "vertical", "pulse", 1)
 	for _, c := range []struct {
 		name, text string
 		holds      func(*Job) bool
 	}{
-		{"pulse wavelength", pulse, func(j *Job) bool { return j.Light.Wavelength == 532 }},
-		{"pulse without trajectory has no gap", pulse, func(j *Job) bool { return j.Rays.MaxGap == 0 && j.Rays.RangeIndex == nil }},
-		{"trajectory gap", pulse + `rays.trajectory = "t.csv"`, func(j *Job) bool { return j.Rays.MaxGap == 1 }},
+		{"pulse wavelength", pulse, func(j *Job) bool { return *j.Light.Wavelength == 532 }},
+		{"pulse without trajectory has no gap", pulse, func(j *Job) bool { return j.Sensors[0].Rays.MaxGap == 0 && j.Sensors[0].Rays.RangeIndex == nil }},
+		{"trajectory gap", pulse + `rays.trajectory = "t.csv"`, func(j *Job) bool { return j.Sensors[0].Rays.MaxGap == 1 }},
 		{"heights follow the unit", least + `input.unit = "ft"`, func(j *Job) bool { return j.Input.VerticalUnit == "ft" }},
 		{"air by the key", least + `air.humidity = 80`, func(j *Job) bool { return j.Air == Air{15, 1013.25, 80, 450} }},
 		{"integer for a float", least + `limits.max_incidence = 45`, func(j *Job) bool { return j.Limits.MaxIncidence == 45 }},
@@ -99,7 +137,7 @@ func TestParseAccepts(t *testing.T) {
 		{"lat is fine for what is no coordinate", least + `input.columns.views = "lat"`, func(j *Job) bool { return j.Input.Columns["views"] == "lat" }},
 		{"column surface", strings.Replace(least, "surface.level = 0.42", `surface.column = "tide"`, 1), func(j *Job) bool { return j.Surface.Column == "tide" && j.Surface.Level == nil }},
 		{"level zero", strings.Replace(least, "0.42", "0", 1), func(j *Job) bool { return *j.Surface.Level == 0 }},
-		{"range index of vacuum", pulse + `rays.range_index = 1`, func(j *Job) bool { return *j.Rays.RangeIndex == 1 }},
+		{"range index of vacuum", pulse + `rays.range_index = 1`, func(j *Job) bool { return *j.Sensors[0].Rays.RangeIndex == 1 }},
 		{"a dotted column", least + `select.where = { "a.b" = [1] }`, func(j *Job) bool { return j.Select.Where["a.b"][0] == 1.0 }},
 		{"byte order mark and CR LF", "\ufeff" + strings.ReplaceAll(least, "\n", "\r\n"), func(j *Job) bool { return *j.Surface.Level == 0.42 }},
 	} {

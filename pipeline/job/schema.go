@@ -17,19 +17,18 @@ type table struct {
 // tables are all tables of the job file, in the order of their fields.
 type tables []table
 
-// schema is what a job file may hold, read from the tags of Job.
-var schema = tablesOf(reflect.TypeFor[Job](), "")
+// schema is what a job file may hold, read from the tags of file.
+var schema = tablesOf(reflect.TypeFor[file](), "")
 
 func tablesOf(t reflect.Type, name string) tables {
 	own, below := table{name: name}, tables{}
-	for i := range t.NumField() {
-		key := t.Field(i).Tag.Get("toml")
-		field := t.Field(i).Type
-		if field.Kind() == reflect.Pointer {
+	for _, f := range reflect.VisibleFields(t) {
+		key, field := f.Tag.Get("toml"), f.Type
+		if field.Kind() == reflect.Pointer || isTables(field) {
 			field = field.Elem()
 		}
 		switch {
-		case key == "-":
+		case f.Anonymous || key == "-":
 		case field.Kind() == reflect.Struct:
 			below = append(below, tablesOf(field, join(name, key))...)
 		case field.Kind() == reflect.Map:
@@ -41,14 +40,19 @@ func tablesOf(t reflect.Type, name string) tables {
 	return append(tables{own}, below...)
 }
 
+// isTables tells whether a type stands for a list of tables.
+func isTables(t reflect.Type) bool {
+	return t.Kind() == reflect.Slice && t.Elem().Kind() == reflect.Struct
+}
+
 // field returns the field of a struct that a key fills.
-func field(dst reflect.Value, key string) (reflect.Value, bool) {
-	for i := range dst.NumField() {
-		if tag := dst.Type().Field(i).Tag.Get("toml"); tag == key && tag != "-" {
-			return dst.Field(i), true
+func field(t reflect.Type, key string) (reflect.StructField, bool) {
+	for _, f := range reflect.VisibleFields(t) {
+		if tag := f.Tag.Get("toml"); tag == key && tag != "-" && !f.Anonymous {
+			return f, true
 		}
 	}
-	return reflect.Value{}, false
+	return reflect.StructField{}, false
 }
 
 // has tells whether there is a table of this name below the top.
@@ -89,8 +93,11 @@ func standing(table string) string {
 
 // place names a table, for messages.
 func place(table string) string {
-	if table == "" {
+	switch table {
+	case "":
 		return "the top of the file"
+	case sensorTable:
+		return "[[" + table + "]]"
 	}
 	return "[" + table + "]"
 }

@@ -12,9 +12,12 @@ func unknown(f *faults, table, key string, v any) {
 	name := join(table, key)
 	msg, meant := "", ""
 	if isTable(v) {
-		msg, meant = unknownTable(name)
+		msg, meant = unknownTable(plain(name))
 	} else {
-		msg, meant = unknownKey(table, key)
+		msg, meant = unknownKey(plain(table), key)
+	}
+	if item, _, ok := cutItem(table); ok && strings.HasPrefix(meant, sensorTable+".") {
+		meant = join(item, meant[len(sensorTable)+1:])
 	}
 	if meant != "" && !f.has(meant) {
 		f.told[meant] = true // not also as missing

@@ -1,0 +1,81 @@
+package job
+
+import (
+	"fmt"
+	"maps"
+	"slices"
+)
+
+func (j *Job) checkSensors(f *faults) {
+	switch {
+	case f.isTold(sensorTable):
+		return
+	case f.has(sensorTable) && f.has("rays"):
+		f.addAt(max(f.line(sensorTable), f.line("rays")), fmt.Sprintf(
+			"the file has [rays] (line %d) and [[sensor]] (line %d), want one of them; the rays of a sensor stand in [sensor.rays]",
+			f.line("rays"), f.line(sensorTable)))
+	case f.has(sensorTable) && len(j.Sensors) == 0:
+		f.add(sensorTable, "is empty, want at least one table")
+	}
+	for i := range j.Sensors {
+		if f.has(sensorTable) {
+			j.checkSensor(f, i)
+		}
+		j.Sensors[i].Rays.check(f, f.raysKey(i))
+	}
+}
+
+// checkSensor reports what is wrong with a sensor but for its rays.
+func (j *Job) checkSensor(f *faults, i int) {
+	s, key := &j.Sensors[i], sensorKey(i)
+	if i == maxSensors {
+		f.addTable(key, "is there %d times, want at most %d", len(j.Sensors), maxSensors)
+	}
+	f.requireText(key+".name", s.Name, "a name")
+	checkWhere(f, key+".where", s.Where)
+	for k, other := range j.Sensors[:i] {
+		if s.Name == other.Name {
+			f.add(key+".name", "is %q, as is that of line %d, want different names", s.Name, f.line(sensorKey(k)+".name"))
+		}
+	}
+	if first := slices.IndexFunc(j.Sensors[:i], func(s Sensor) bool { return len(s.Where) == 0 }); first >= 0 && !f.isTold(sensorKey(first)+".where") {
+		f.addTable(key, "can never match, because that of line %d has no where and takes all points; give it a where, or put it last", f.line(sensorKey(first)))
+	}
+}
+
+// checkWhere reports conditions without values, and sorts their values.
+func checkWhere(f *faults, table string, where map[string][]any) {
+	if f.has(table) && len(where) == 0 {
+		f.add(table, "has no column, want lists of values by column, such as classification = [2]")
+	}
+	for _, column := range slices.Sorted(maps.Keys(where)) {
+		switch key := table + "." + column; {
+		case f.isTold(key):
+		case len(where[column]) == 0:
+			f.add(key, "is empty, want a list of values, such as [2, 9]")
+		default:
+			where[column] = normalized(where[column])
+		}
+	}
+}
+
+// check reports what is wrong with the rays of the table named.
+func (r *Rays) check(f *faults, table string) {
+	key := func(name string) string { return join(table, name) }
+	f.require(key("model"), `"vertical" or "pulse"`)
+	f.oneOf(key("model"), r.Model, Vertical, Pulse)
+	if r.Model == Vertical {
+		for _, name := range []string{"trajectory", "max_gap", "range_index"} {
+			f.noEffect(key(name), `with model "vertical"`, `use model = "pulse"`)
+		}
+		return
+	}
+	f.notBlank(key("trajectory"), r.Trajectory, "a file")
+	if !f.has(key("trajectory")) {
+		f.noEffect(key("max_gap"), "without trajectory", "name the trajectory")
+	}
+	f.above0(key("max_gap"), r.MaxGap, " seconds")
+	if n := r.RangeIndex; n != nil && (*n < 1 || *n > 1.01) {
+		f.add(key("range_index"), "is %s, want 1 to 1.01, the index of air that the ranges were made with", format(*n))
+	}
+}
