@@ -1,6 +1,7 @@
 package pipeline
 
 import (
+	"errors"
 	"fmt"
 	"os"
 	"path/filepath"
@@ -38,12 +39,16 @@ func openTable(path string) (cloud.Rewriter, error) {
 // made it in its key-value metadata.
 func (s *survey) openCloud(in input) (cloud.Rewriter, error) {
 	i := &s.job.Input
-	return open(in.path,
+	file, err := open(in.path,
 		csvfile.Options{Names: i.CSV.Names, Divert: i.BadRows == job.Divert},
 		parquetfile.Options{
 			Coarse: i.Coarse, Unit: s.plan, ScratchDir: filepath.Dir(in.output),
 			Metadata: map[string]string{"bentray.program": Program, "bentray.run": s.run, "bentray.job": string(s.settings)},
 		})
+	if errors.Is(err, csvfile.ErrNoHeader) {
+		err = fmt.Errorf("%w; name the columns in [input.csv] names", err)
+	}
+	return file, err
 }
 
 // isTimestamp tells a column of dates and times, which are read as UTC seconds

@@ -18,9 +18,7 @@ func (f *File) Decode(c *cloud.Chunk) error {
 	loneReturns := hasLoneReturns(b.text)
 	from := 0
 	for begin, next := 0, 0; begin < len(b.text); begin = next {
-		if next = rowEnd(b.text, begin, b.quoted); next < 0 {
-			next = len(b.text)
-		}
+		next = f.nextRow(b, begin)
 		text := withoutEnd(b.text[begin:next])
 		if len(text) == 0 || f.sep == blanks && len(trim(text)) == 0 {
 			continue
@@ -46,6 +44,20 @@ func (f *File) Decode(c *cloud.Chunk) error {
 	return nil
 }
 
+// nextRow returns where the row behind the one that begins at a position begins.
+func (f *File) nextRow(b *block, begin int) int {
+	length := 0
+	if b.quoted {
+		length, _ = f.sep.rowEnd(b.text[begin:])
+	} else {
+		length = bytes.IndexByte(b.text[begin:], '\n') + 1
+	}
+	if length <= 0 { // the last row has no line end
+		return len(b.text)
+	}
+	return begin + length
+}
+
 // clear empties a chunk and makes room for the rows of its block.
 func (f *File) clear(c *cloud.Chunk, b *block) {
 	c.Rows = 0
@@ -65,14 +77,17 @@ func (f *File) clear(c *cloud.Chunk, b *block) {
 // decodeRow reads one row into place c.Rows. What is wrong with it comes back
 // without its line.
 func (f *File) decodeRow(c *cloud.Chunk, b *block, text []byte, begin int, loneReturns bool) *cloud.RowError {
-	var count int
+	count, stray := 0, -1
 	if b.quoted || f.sep == blanks {
-		count = f.sep.split(text, b.fields)
+		count, stray = f.sep.split(text, b.fields)
 	} else {
 		count = splitPlain(text, byte(f.sep), b.fields)
 	}
 	if loneReturns && hasLoneReturn(text) {
 		return &cloud.RowError{Path: f.path, Err: errors.New("has a carriage return within, want LF or CR LF at its end; convert the line ends first")}
+	}
+	if stray >= 0 {
+		return f.strayQuote(text, stray, b.lineAt(begin))
 	}
 	if count != len(f.columns) {
 		return &cloud.RowError{Path: f.path, Err: fmt.Errorf("has %s, want %d", plural(count, "field"), len(f.columns))}
@@ -97,6 +112,23 @@ func (f *File) decodeRow(c *cloud.Chunk, b *block, text []byte, begin int, loneR
 		}
 	}
 	return nil
+}
+
+// errStrayQuote is what is wrong with a row or header with a quote elsewhere than
+// around a field.
+var errStrayQuote = errors.New("has a quote within a field, want quotes around the whole field")
+
+// strayQuote explains a quote within a field, naming its column, and its line
+// where that is not the row's.
+func (f *File) strayQuote(text []byte, quote int, line int64) *cloud.RowError {
+	bad := &cloud.RowError{Path: f.path, Err: errStrayQuote}
+	if lines := bytes.Count(text[:quote], lineFeed); lines > 0 {
+		bad.Err = fmt.Errorf("has a quote within a field on line %d, want quotes around the whole field", line+int64(lines))
+	}
+	if fields, _ := f.sep.split(text[:quote], nil); fields <= len(f.columns) {
+		bad.Column = shorten(f.columns[fields-1].Name)
+	}
+	return bad
 }
 
 // lineAt returns the line number at a position, which may not fall from call to

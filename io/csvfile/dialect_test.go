@@ -26,17 +26,23 @@ func TestDetect(t *testing.T) {
 		{"first data row ragged", "x;y;z|1;2|1;2;3|1;2;3", 0, ';'},
 		{"stray commas", "x;y;z;note, if any|1;2;3;a|1;2;3;b, c", 0, ';'},
 		{"separators in quotes", "\"a;b;c;d\",x,y|\"1;2;3;4\",5,6", 0, ','},
+		{"other separators in quotes", "x;y;\"a,b,c\"|1;2;\"d,e,f\"", 0, ';'},
+		{"quotes within fields", "x,y,z,note|1,2,3,5\" pipe|4,5,6,7\" pipe", 0, ','},
+		{"quotes within fields of the header", "x,y,5\" pipe|1,2,3|4,5,6", 0, ','},
+		{"line breaks in quotes", "x,y,\"a|b c|d e|f g\"|1,2,\"a|b c\"", 0, ','},
+		{"quotes behind blanks open nothing between commas", "x,y,n|1,2,old \"pipe|3,4,a|5,6,b\"", 0, ','},
 		{"header alone", "x,y,z", 0, ','},
 		{"two rows that differ", "x,y,z|1,2", 0, ','},
 		{"names of no fit", "1,2,3|4,5,6", 5, ','},
 		{"pipes", "x|1", 0, 0},
 	}
 	for _, test := range tests {
-		var rows [][]byte
-		for _, row := range strings.Split(test.rows, "|") {
-			rows = append(rows, []byte(row))
+		s := takeSample([]byte(strings.ReplaceAll(test.rows, "|", "\n")), true)
+		got := separator(0)
+		if k := detect(&s.rows, test.names); k >= 0 {
+			got = candidates[k]
 		}
-		if got := detect(rows, test.names); got != test.want {
+		if got != test.want {
 			t.Errorf("%s: got %q, want %q", test.name, rune(got), rune(test.want))
 		}
 	}

@@ -6,15 +6,19 @@
 // Columns are separated by commas, semicolons, tabs or blanks (runs of spaces
 // and tabs). The separator is found from the first row and up to 19 rows behind
 // it. A candidate must part the first row in two fields at least; its score is
-// the number of those rows with as many fields as the first, times that number
-// of fields, so that neither one ragged row nor a stray comma in a text
-// decides. Blanks count only where no other candidate holds for most of the
+// the number of those rows with as many fields as the first and no quote within
+// a field, times that number of fields, so that neither one ragged row nor a
+// stray comma in a text decides. Blanks count only where no other candidate holds for most of the
 // rows, since texts have blanks too. Equal scores go to the first of comma,
 // semicolon, tab. Where Options.Names says how many fields there are, candidates
 // that give the first row that many are preferred.
 //
-// A double quote anywhere switches quoting on or off; separators and line
-// breaks inside quotes are text, and a doubled quote inside them stands for one.
+// Double quotes stand around a whole field, blanks outside them allowed;
+// separators and line breaks inside are text, and a doubled quote inside stands
+// for one. A quote elsewhere, as in 5" pipe, opens nothing and makes its row a
+// bad one; a header with one is refused. Where a quoted field goes on behind its
+// closing quote, all lines up to there belong to the bad row.
+//
 // Lines end in LF or CR LF, each row as it likes; the last row may lack its line
 // end. Lines that begin with # or // before the header, empty lines everywhere
 // and a UTF-8 byte order mark are kept as they stand; none of them is a row. In

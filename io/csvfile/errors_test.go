@@ -26,7 +26,7 @@ func TestErrors(t *testing.T) {
 		{"carriage return later", "x,y,z\n1,2,3\n1,2,3\r4,5,6\n", `a.csv: line 3 has a carriage return within, want LF or CR LF at its end; convert the line ends first`},
 		{"carriage return last", "x,y,z\r\n1,2,3\r", `a.csv: line 2 has a carriage return within, want LF or CR LF at its end; convert the line ends first`},
 		{"one column", "# c\nx|y|z\n1|2|3\n", `a.csv: line 2 has one field, want at least two, separated by commas, semicolons, tabs or blanks`},
-		{"no header", "# c\n1,-2.5,\"3\",\n", `a.csv: line 2 has only numbers, want a header line; name the columns in [input.csv] names`},
+		{"no header", "# c\n1,-2.5,\"3\",\n", `a.csv: line 2 has only numbers, want a header line`},
 		{"text", "x,y,z\n1,2,-9999m\n", `a.csv: line 2: z is "-9999m", want a number`},
 		{"quoted text", "x,y,z\n1,2,\" b \"\"c\"\" \"\n", `a.csv: line 2: z is "b \"c\"", want a number`},
 		{"decimal comma", "x,y,z\n1,2,3\n1,\"12,5\",3\n", `a.csv: line 3: y is "12,5", want a number with a decimal point, not a comma`},
@@ -41,7 +41,18 @@ func TestErrors(t *testing.T) {
 		{"line numbers", "# c\n\nx,y,z\n1,2,\"3\"\n\n\"\n\n\",5,6\n7,8,\"9\n\"\n", `a.csv: line 6: x is "\n\n", want a number`},
 		{"first of two", "x,y,z\na,2,3\n1,b,3\n", `a.csv: line 2: x is "a", want a number`},
 		{"open quote", "x,y,z,n\n1,2,3,\"a\nb\"\n1,2,3,\"c\n7,8,9,d\n", `a.csv: line 4 has a quote that is not closed, want a closing quote before the end of the file`},
-		{"stray quote", "x,y,z\n1,2,3\n4,5\" wide,6\n7,\"8\",9\n", `a.csv: line 3 has a quote that is not closed, want a closing quote before the end of the file`},
+		{"stray quote", "x,y,z\n1,2,3\n4,5\" wide,6\n7,\"8\",9\n", `a.csv: line 3: y has a quote within a field, want quotes around the whole field`},
+		{"quote behind a blank", "x,y,z\n1,2,a \"3\"\n", `a.csv: line 2: z has a quote within a field, want quotes around the whole field`},
+		{"text behind a quoted field", "x,y,z\n1,\"2\" m,3\n", `a.csv: line 2: y has a quote within a field, want quotes around the whole field`},
+		{"two quoted texts in a field", "x,y,z\n\"1\" \"2\",2,3\n", `a.csv: line 2: x has a quote within a field, want quotes around the whole field`},
+		{"quote of a later line", "x,y,z\n1,\"2,3\n4,5,6\n7,\"8,9\n", `a.csv: line 2: y has a quote within a field on line 4, want quotes around the whole field`},
+		{"quote in a field too many", "x,y,z\n1,2,3,4\"\n", `a.csv: line 2 has a quote within a field, want quotes around the whole field`},
+		{"quote within a word", "x y z\n\"1\"\t2 \"3\" \n1 2 3\"\n", `a.csv: line 3: z has a quote within a field, want quotes around the whole field`},
+		{"text behind a quoted word", "x y z\n1 \"2\"3 4\n", `a.csv: line 2: y has a quote within a field, want quotes around the whole field`},
+		{"quote within a field of the header", "# c\nx,y,5\" z\n1,2,3\n", `a.csv: line 2 has a quote within a field, want quotes around the whole field`},
+		{"quote within a header alone", "x,y,5\"", `a.csv: line 1 has a quote within a field, want quotes around the whole field`},
+		{"quote within a word of the header", "x y z\"\n1 2 3\n", `a.csv: line 1 has a quote within a field, want quotes around the whole field`},
+		{"carriage returns and a quoted header", "x,y,\"z\"\r1,2,\"3\"\r", `a.csv has lines that end in a carriage return alone, want LF or CR LF; convert its line ends first`},
 		{"open quote in the header", "# c\nx,y,\"z\n1,2,3\n", `a.csv: line 2 has a quote that is not closed, want a closing quote before the end of the file`},
 		{"open quote, long file", "x,y,z\n1,2,3\n4,\"5,6\n" + filler + filler, `a.csv: line 3 has a quote that is not closed within 16 MiB, want a closing quote`},
 		{"open quote in the header, long file", "x,\"y,z\n" + filler + filler, `a.csv: line 1 has a quote that is not closed within 16 MiB, want a closing quote`},
@@ -82,6 +93,15 @@ func TestErrorLineAcrossBlocks(t *testing.T) {
 		if got, want := errorOf("a.csv", in, Options{}, block), "a.csv: line 2104 has 2 fields, want 3"; got != want {
 			t.Errorf("blocks of %d: got %s, want %s", block, got, want)
 		}
+	}
+}
+
+func TestErrNoHeader(t *testing.T) {
+	if _, err := openText("a.csv", "1,2,3\n", Options{}, 0); !errors.Is(err, ErrNoHeader) || err.Error() != "a.csv: line 1 has only numbers, want a header line" {
+		t.Errorf("got %v", err)
+	}
+	if _, err := openText("a.csv", "1,2,3\n", Options{Names: []string{"x", "y", "z"}}, 0); err != nil {
+		t.Errorf("with names: got %v", err)
 	}
 }
 

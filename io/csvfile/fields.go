@@ -17,15 +17,16 @@ type separator byte
 const blanks separator = ' '
 
 // split locates the first len(spans) fields of a row and returns how many
-// fields it has. The row has no line end.
-func (s separator) split(row []byte, spans []span) int {
+// fields it has, and the first quote that is neither around a whole field nor
+// doubled within such quotes, or -1. The row has no line end.
+func (s separator) split(row []byte, spans []span) (count, stray int) {
 	switch {
 	case s == blanks:
 		return splitBlanks(row, spans)
 	case bytes.IndexByte(row, '"') >= 0:
 		return splitQuoted(row, byte(s), spans)
 	}
-	return splitPlain(row, byte(s), spans)
+	return splitPlain(row, byte(s), spans), -1
 }
 
 // splitPlain is split for a row without quotes.
@@ -44,45 +45,92 @@ func splitPlain(row []byte, sep byte, spans []span) int {
 }
 
 // splitQuoted is split for a row that may have quotes.
-func splitQuoted(row []byte, sep byte, spans []span) int {
-	count, begin, inside := 0, 0, false
-	for i, c := range row {
-		switch {
-		case c == '"':
-			inside = !inside
-		case c == sep && !inside:
-			place(spans, count, begin, i)
-			count++
-			begin = i + 1
+func splitQuoted(row []byte, sep byte, spans []span) (count, stray int) {
+	stray = -1
+	for begin := 0; ; count++ {
+		end, wrong := fieldEnd(row, begin, sep)
+		if stray < 0 {
+			stray = wrong
 		}
+		place(spans, count, begin, end)
+		if end == len(row) {
+			return count + 1, stray
+		}
+		begin = end + 1
 	}
-	place(spans, count, begin, len(row))
-	return count + 1
+}
+
+// fieldEnd returns where a field ends, and the quote in it that is wrong, or -1.
+func fieldEnd(row []byte, begin int, sep byte) (end, stray int) {
+	open := begin
+	for open < len(row) && isBlank(row[open]) && row[open] != sep {
+		open++
+	}
+	if open == len(row) || row[open] != '"' {
+		end = indexFrom(row, begin, sep)
+		if i := bytes.IndexByte(row[begin:end], '"'); i >= 0 {
+			return end, begin + i
+		}
+		return end, -1
+	}
+	quote := closing(row, open)
+	if quote < 0 {
+		return len(row), open
+	}
+	end = indexFrom(row, quote, sep)
+	if len(trim(row[quote+1:end])) > 0 {
+		return end, quote
+	}
+	return end, -1
+}
+
+// indexFrom finds a byte from a position on; the length where it is not there.
+func indexFrom(row []byte, from int, c byte) int {
+	if i := bytes.IndexByte(row[from:], c); i >= 0 {
+		return from + i
+	}
+	return len(row)
 }
 
 // splitBlanks is split for runs of blanks; those before the first field and
 // behind the last separate nothing.
-func splitBlanks(row []byte, spans []span) int {
-	count, begin, inside := 0, -1, false
-	for i, c := range row {
-		if c == '"' {
-			inside = !inside
+func splitBlanks(row []byte, spans []span) (count, stray int) {
+	stray = -1
+	for i := 0; ; count++ {
+		for i < len(row) && isBlank(row[i]) {
+			i++
 		}
-		blank := isBlank(c) && !inside
-		switch {
-		case begin < 0 && !blank:
-			begin = i
-		case begin >= 0 && blank:
-			place(spans, count, begin, i)
-			count++
-			begin = -1
+		if i == len(row) {
+			return count, stray
+		}
+		end, wrong := wordEnd(row, i)
+		if stray < 0 {
+			stray = wrong
+		}
+		place(spans, count, i, end)
+		i = end
+	}
+}
+
+// wordEnd is fieldEnd where blanks separate.
+func wordEnd(row []byte, begin int) (end, stray int) {
+	end, stray = begin, -1
+	if row[begin] == '"' {
+		quote := closing(row, begin)
+		if quote < 0 {
+			return len(row), begin
+		}
+		end = quote + 1
+		if end < len(row) && !isBlank(row[end]) {
+			stray = quote
 		}
 	}
-	if begin >= 0 {
-		place(spans, count, begin, len(row))
-		count++
+	for ; end < len(row) && !isBlank(row[end]); end++ {
+		if row[end] == '"' && stray < 0 {
+			stray = end
+		}
 	}
-	return count
+	return end, stray
 }
 
 // place sets span k where there is room for it.

@@ -34,7 +34,6 @@ type File struct {
 	path   string
 	source *source       // bytes of the file
 	text   io.ReadCloser // the same decompressed
-	in     io.Reader     // what of the text Next has not seen
 	codec  codec
 	divert bool
 
@@ -42,8 +41,9 @@ type File struct {
 	columns []cloud.Column
 
 	blockSize int    // bytes in a block, unless a row is longer
-	carry     []byte // text behind the last block
+	carry     []byte // text read, behind the last block
 	line      int64  // line number of the next row
+	ahead     int    // bytes of text before the rows that are still to be consumed
 	consumed  int64  // bytes of the file given to chunks
 
 	read    cloud.Request
@@ -54,8 +54,10 @@ type File struct {
 var _ cloud.Rewriter = (*File)(nil)
 
 // Open opens a file and reads its header. Errors name the file, and say what to
-// do where text is not UTF-8, lines end in CR alone, no separator or no header
-// line is found, or compressed data are damaged.
+// do where text is not UTF-8, lines end in CR alone, no separator is found, a
+// quote stands within a header's field, or compressed data are damaged. Where
+// the first row has only numbers and there are no Options.Names, the error wraps
+// ErrNoHeader.
 func Open(path string, o Options) (*File, error) {
 	s, err := openSource(path)
 	if err != nil {
@@ -85,24 +87,23 @@ func newFile(s *source, o Options) (*File, error) {
 
 // readHead sets the dialect and the columns, and leaves the rows to Next.
 func (f *File) readHead(names []string) error {
-	text, s, err := f.readSample()
+	s, err := f.readSample()
 	if err != nil {
 		return err
 	}
 	if f.head, err = newHead(f.path, s, names); err != nil {
 		return err
 	}
-	f.line = s.firstLine
-	rest := text[len(f.preamble):]
+	header := 0 // its length in the file
 	if !f.named {
-		f.line += int64(bytes.Count(f.header, lineFeed))
-		rest = rest[len(f.header)+len(f.lineEnd):]
-		f.line += int64(bytes.Count(f.lineEnd, lineFeed))
+		header = len(f.header) + len(f.lineEnd)
 	}
+	f.line = s.firstLine + int64(bytes.Count(s.text[:header], lineFeed))
+	f.ahead = len(f.preamble) + header
+	f.carry = bytes.Clone(s.text[header:]) // the head keeps what is before
 	for _, name := range f.names {
 		f.columns = append(f.columns, cloud.Column{Name: name, Type: "text"})
 	}
-	f.in = io.MultiReader(bytes.NewReader(rest), f.text)
 	return nil
 }
 

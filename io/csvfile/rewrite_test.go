@@ -153,7 +153,7 @@ func TestRewriteNames(t *testing.T) {
 }
 
 func TestTexts(t *testing.T) {
-	f, err := openText("a.csv", "x,y,z,views\n1,2,3, c1 c2 \n1,2,3,\"a \"\"b\"\"\"\"\"\n1,2,3,\"\"\n1,2,3, \" c;d\" \n1,2,3,5\" or 6\"\n", Options{}, 0)
+	f, err := openText("a.csv", "x,y,z,views\n1,2,3, c1 c2 \n1,2,3,\"a \"\"b\"\"\"\"\"\n1,2,3,\"\"\n1,2,3, \" c;d\" \n1,2,3,\"5\"\" or 6\"\"\"\n", Options{}, 0)
 	if err != nil {
 		t.Fatal(err)
 	}
