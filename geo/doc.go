@@ -35,9 +35,10 @@
 // 7e6 m they hold to the rounding of the result, 1e-9 m (TestPlaneFarFromOrigin,
 // TestTrajectoryPrecision). Polygons are tested with the coordinates as they stand;
 // the index gives the answer of the plain test over all edges
-// (TestFindAgainstPlainTest). UTC holds to the rounding of a time near 1.5e9 s,
-// 0.12 microseconds (TestPublishedPairs, TestTimeScaleRoundTrip). Gauges hold to the
-// rounding of their levels (TestGaugePrecision, TestGaugeAgainstCloudTimes), a
+// (TestFindAgainstPlainTest). Zones overlap from a tenth of a micrometre near 7e6 m
+// (TestOverlapsOfTriangles, TestOverlapsOfCells). UTC holds to the rounding of a time
+// near 1.5e9 s, 0.12 microseconds (TestPublishedPairs, TestTimeScaleRoundTrip). Gauges
+// hold to the rounding of their levels (TestGaugePrecision, TestGaugeAgainstCloudTimes), a
 // separation to 1e-12 m of a bilinear one (TestSeparationBilinear). Stations give the
 // water of the plain computation over all stations within 1e-10 (TestStationsPlain),
 // and the same to the bit whatever points came before (TestStationsChunk).

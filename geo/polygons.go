@@ -14,6 +14,7 @@ type document struct {
 	Type        string
 	Features    []json.RawMessage
 	Geometry    json.RawMessage
+	Properties  json.RawMessage
 	Coordinates json.RawMessage
 }
 
@@ -28,7 +29,7 @@ type document struct {
 // fewer than 4 positions, is not closed, or crosses itself. A ring may touch itself.
 // Holes may touch or overlap each other and the outline.
 func ParsePolygons(data []byte) ([]orb.Polygon, error) {
-	doc, err := parseDocument(bytes.TrimPrefix(data, []byte("\ufeff")))
+	doc, err := parseText(data)
 	if err != nil {
 		return nil, err
 	}
@@ -41,6 +42,11 @@ func ParsePolygons(data []byte) ([]orb.Polygon, error) {
 	return parsePolygonal(doc)
 }
 
+// parseText reads a GeoJSON text.
+func parseText(data []byte) (document, error) {
+	return parseDocument(bytes.TrimPrefix(data, []byte("\ufeff")))
+}
+
 // parseDocument reads one GeoJSON object.
 func parseDocument(data []byte) (document, error) {
 	var doc document
@@ -48,7 +54,7 @@ func parseDocument(data []byte) (document, error) {
 		return doc, fmt.Errorf("not GeoJSON: %w", err)
 	}
 	if doc.Type == "" {
-		return doc, errors.New(`not GeoJSON: no "type", want FeatureCollection, Feature, Polygon or MultiPolygon`)
+		return doc, errors.New(`not GeoJSON: no "type", want a FeatureCollection, a Feature or a geometry`)
 	}
 	return doc, nil
 }
@@ -71,14 +77,20 @@ func parseFeatures(features []json.RawMessage) ([]orb.Polygon, error) {
 
 // parseFeature returns the polygons of one feature.
 func parseFeature(data []byte) ([]orb.Polygon, error) {
-	doc, err := parseDocument(data)
+	doc, err := asFeature(data)
 	if err != nil {
 		return nil, err
 	}
-	if doc.Type != "Feature" {
-		return nil, fmt.Errorf("type is %q, want Feature", doc.Type)
-	}
 	return parseGeometry(doc.Geometry)
+}
+
+// asFeature reads a feature of a collection.
+func asFeature(data []byte) (document, error) {
+	doc, err := parseDocument(data)
+	if err == nil && doc.Type != "Feature" {
+		err = fmt.Errorf("type is %q, want Feature", doc.Type)
+	}
+	return doc, err
 }
 
 // parseGeometry returns the polygons of a feature's geometry.

@@ -71,3 +71,31 @@ rays.model     = "vertical"
 	fmt.Println(string(a) == string(b))
 	// Output: true
 }
+
+func ExampleJob_Wavelength() {
+	j, err := job.Parse("job.toml", []byte(`
+input.files   = ["raw/*.csv"]
+output.folder = "true"
+water         = { temperature = 12, salinity = 0 }
+surface.level = 31.2
+
+[[sensor]]
+name  = "laser"
+where = { point_source_id = [11, 12] }
+rays  = { model = "pulse" }
+
+[[sensor]]
+name = "images"
+rays = { model = "vertical" }
+`))
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	for _, s := range j.Sensors {
+		fmt.Println(s.Name, j.Wavelength(s), "nm")
+	}
+	// Output:
+	// laser 532 nm
+	// images 550 nm
+}
