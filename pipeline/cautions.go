@@ -26,8 +26,8 @@ func (t *tally) geometryCautions(s *survey) []string {
 		say("the polygons (x %.1f to %.1f, y %.1f to %.1f) do not meet the points (x %.1f to %.1f, y %.1f to %.1f); are both in one projected system?",
 			e.Min[0], e.Max[0], e.Min[1], e.Max[1], x.low, x.high, y.low, y.high)
 	}
-	if level := s.job.Surface.Level; level != nil {
-		cautions = append(cautions, s.levelCautions(*level, math.Max(x.high-x.low, y.high-y.low)*s.plan, z)...)
+	if s.surface.isConstant() {
+		cautions = append(cautions, s.levelCautions(*s.job.Surface.Level, math.Max(x.high-x.low, y.high-y.low)*s.plan, z)...)
 	}
 	return cautions
 }

@@ -2,6 +2,7 @@ package pipeline
 
 import (
 	"fmt"
+	"slices"
 	"strconv"
 	"strings"
 
@@ -16,94 +17,143 @@ const (
 	indexDecimals = 9
 	slopeDecimals = 9
 	angleDecimals = 5
+	waterDecimals = 4 // temperature and salinity that are interpolated
 )
 
 // layout is what one file's output gains, and where each column that differs
 // from row to row stands among the added ones (-1: it has no column of its own).
-// A row's class is its outcome.
+// A row's class tells its sensor and its outcome.
 type layout struct {
 	cloud.Layout
+	sensors                       []*sensor
 	depth, waterLevel, entryLevel int
 	slope                         [2]int
 	incidence, refraction         int
+	water, waterGroup             int
+	temperature, salinity, source int
 	origin                        [3]int
+	tracedOnly                    []int // columns by row that only traced points have
+	wateredOnly                   []int // the same for points whose water was looked up
 }
 
 // newLayout lays out the output of a file with these columns.
 func newLayout(s *survey, columns []cloud.Column, r *reading) (*layout, error) {
-	l := &layout{waterLevel: -1, entryLevel: -1, slope: [2]int{-1, -1}, incidence: -1, refraction: -1, origin: [3]int{-1, -1, -1}}
+	l := &layout{
+		sensors: s.sensors, depth: -1, waterLevel: -1, entryLevel: -1, slope: [2]int{-1, -1}, incidence: -1, refraction: -1,
+		water: -1, waterGroup: -1, temperature: -1, salinity: -1, source: -1, origin: [3]int{-1, -1, -1},
+	}
 	l.Decimals = s.job.Output.Decimals
-	l.Moved = make([]bool, correct.NumOutcomes)
-	l.Moved[correct.Corrected] = true
+	for range s.sensors {
+		for o := range correct.NumOutcomes {
+			l.Moved = append(l.Moved, o == correct.Corrected)
+		}
+	}
 	l.XYZ = r.xyz
 	for k, i := range r.xyz {
 		l.RawNames[k] = columns[i].Name + "_raw"
 	}
 	l.depth = l.byRow("depth", l.Decimals)
 	if s.job.Output.Provenance == job.Lean {
-		l.label("outcome", everyPoint, correct.Outcome.String)
+		l.addOutcome()
 	} else {
 		l.addSurface(s)
-		l.addOutcome(s)
-		l.addOptics(s)
-		if r.originByTime() {
-			l.addOrigins()
-		}
+		l.addOutcome()
+		l.addModel()
+		l.addAngles()
+		l.addIndices(s)
+		l.addWater(s)
+		l.addOrigins()
 	}
-	l.constantLabel("run", everyPoint, s.run[:receipt.ShortLength])
+	l.label("run", everyPoint, func(*sensor, correct.Outcome) string { return s.run[:receipt.ShortLength] })
 	return l, l.checkNames(columns)
 }
 
 func (l *layout) addSurface(s *survey) {
-	surface := s.job.Surface
-	switch {
-	case surface.Level != nil:
-		l.constant("water_level", levelKnown, *surface.Level)
-		l.constant("entry_level", solved, *surface.Level)
-	default:
+	f := &s.surface
+	if f.isConstant() {
+		l.constant("water_level", levelKnown, *s.job.Surface.Level)
+		l.constant("entry_level", solved, *s.job.Surface.Level)
+	} else {
 		l.waterLevel = l.byRow("water_level", l.Decimals)
 		l.entryLevel = l.byRow("entry_level", l.Decimals)
 	}
+	if f.curved || f.zoneLevel != nil {
+		l.slope[0] = l.tracedByRow("slope_x", slopeDecimals)
+		l.slope[1] = l.tracedByRow("slope_y", slopeDecimals)
+		return
+	}
 	slopeX, slopeY := 0.0, 0.0
-	if surface.Plane != nil {
-		slopeX, slopeY = surface.Plane.SlopeX, surface.Plane.SlopeY
+	if f.plane != nil {
+		slopeX, slopeY = f.plane.SlopeX, f.plane.SlopeY
 	}
 	l.constant("slope_x", traced, slopeX)
 	l.constant("slope_y", traced, slopeY)
 }
 
-func (l *layout) addOutcome(s *survey) {
-	l.label("outcome", everyPoint, correct.Outcome.String)
-	l.constantLabel("model", ruled, s.job.Rays.Model)
-	l.Added = append(l.Added, cloud.Added{Name: "ray_count", Type: cloud.Count, ByClass: noValue()})
-	if s.job.Rays.Model == job.Pulse {
-		l.Added[len(l.Added)-1].ByClass = byOutcome(traced, cloud.Value{Set: true, Number: 1, Text: "1"})
-	}
-	l.Added = append(l.Added, cloud.Added{Name: "view_source", Type: cloud.Label, ByClass: noValue()})
+func (l *layout) addOutcome() {
+	l.label("outcome", everyPoint, func(_ *sensor, o correct.Outcome) string { return o.String() })
 }
 
-func (l *layout) addOptics(s *survey) {
-	pulse := s.job.Rays.Model == job.Pulse
-	if pulse {
+func (l *layout) addModel() {
+	l.label("model", ruled, func(sn *sensor, _ correct.Outcome) string { return sn.Rays.Model })
+	l.byClass("ray_count", cloud.Count, func(sn *sensor, o correct.Outcome) cloud.Value {
+		return cloud.Value{Set: sn.isPulse() && traced(o), Number: 1, Text: "1"}
+	})
+	l.byClass("view_source", cloud.Label, func(*sensor, correct.Outcome) cloud.Value { return cloud.Value{} })
+}
+
+func (l *layout) addAngles() {
+	if l.hasPulse() {
 		l.incidence = l.byRow("incidence_deg", angleDecimals)
 		l.refraction = l.byRow("refraction_deg", angleDecimals)
-	} else {
-		l.Added = append(l.Added, cloud.Added{Name: "incidence_deg", ByClass: noValue()}, cloud.Added{Name: "refraction_deg", ByClass: noValue()})
+		return
 	}
-	l.index("n_air", s.optics.airPhase)
-	l.index("n_water", s.optics.waterPhase)
-	if pulse {
-		l.index("ng_air", s.optics.airGroup)
-		l.index("ng_water", s.optics.waterGroup)
-	}
-	l.constant("temperature", traced, s.job.Water.Temperature)
-	l.constant("salinity", traced, s.job.Water.Salinity)
-	l.constantLabel("water_source", traced, "job")
+	none := func(*sensor, correct.Outcome) cloud.Value { return cloud.Value{} }
+	l.byClass("incidence_deg", cloud.Float, none)
+	l.byClass("refraction_deg", cloud.Float, none)
 }
 
+func (l *layout) hasPulse() bool { return slices.ContainsFunc(l.sensors, (*sensor).isPulse) }
+
+func (l *layout) addIndices(s *survey) {
+	l.index("n_air", (*sensor).isAny, func(sn *sensor) float64 { return sn.airPhase })
+	if s.isConstantWater() {
+		l.index("n_water", (*sensor).isAny, func(sn *sensor) float64 { phase, _ := s.constantIndex(sn); return phase })
+	} else {
+		l.water = l.tracedByRow("n_water", indexDecimals)
+	}
+	if !l.hasPulse() {
+		return
+	}
+	l.index("ng_air", (*sensor).isPulse, func(sn *sensor) float64 { return sn.airGroup })
+	if s.isConstantWater() {
+		l.index("ng_water", (*sensor).isPulse, func(sn *sensor) float64 { _, group := s.constantIndex(sn); return group })
+	} else {
+		l.waterGroup = l.tracedByRow("ng_water", indexDecimals)
+	}
+}
+
+func (l *layout) addWater(s *survey) {
+	if s.isConstantWater() {
+		l.constant("temperature", traced, s.water.job.TemperatureC)
+		l.constant("salinity", traced, s.water.job.Salinity)
+		l.label("water_source", traced, func(*sensor, correct.Outcome) string { return s.water.sources[fromJob] })
+		return
+	}
+	l.temperature = l.byRow("temperature", waterDecimals)
+	l.salinity = l.byRow("salinity", waterDecimals)
+	l.source = len(l.Added)
+	l.Added = append(l.Added, cloud.Added{Name: "water_source", Type: cloud.Label, Names: s.water.sources})
+	l.wateredOnly = append(l.wateredOnly, l.temperature, l.salinity, l.source)
+}
+
+// addOrigins adds the origins that come from a trajectory.
 func (l *layout) addOrigins() {
+	if !slices.ContainsFunc(l.sensors, func(sn *sensor) bool { return sn.trajectory != nil }) {
+		return
+	}
 	for k, name := range []string{"origin_x", "origin_y", "origin_z"} {
-		l.origin[k] = l.byRow(name, l.Decimals)
+		l.origin[k] = l.tracedByRow(name, l.Decimals)
 	}
 }
 
@@ -128,47 +178,60 @@ func traced(o correct.Outcome) bool {
 	return o == correct.Corrected || o == correct.Grazing || o == correct.Unsolved
 }
 
+// watered points had their water looked up.
+func watered(o correct.Outcome) bool { return traced(o) || o == correct.OutOfRange }
+
 func (l *layout) byRow(name string, decimals int) int {
 	l.Added = append(l.Added, cloud.Added{Name: name, Decimals: decimals})
 	return len(l.Added) - 1
 }
 
+func (l *layout) tracedByRow(name string, decimals int) int {
+	column := l.byRow(name, decimals)
+	l.tracedOnly = append(l.tracedOnly, column)
+	return column
+}
+
+// byClass adds a column with one value for each sensor and outcome.
+func (l *layout) byClass(name string, t cloud.Type, value func(*sensor, correct.Outcome) cloud.Value) {
+	var values []cloud.Value
+	for _, sn := range l.sensors {
+		for o := range correct.NumOutcomes {
+			values = append(values, value(sn, o))
+		}
+	}
+	l.Added = append(l.Added, cloud.Added{Name: name, Type: t, ByClass: values})
+}
+
 // constant adds a number that is given, with the digits that give it back.
-func (l *layout) constant(name string, has outcomes, value float64) {
-	text := strconv.FormatFloat(value, 'f', -1, 64)
-	l.Added = append(l.Added, cloud.Added{Name: name, ByClass: byOutcome(has, cloud.Value{Set: true, Number: value, Text: text})})
-}
-
-// index adds a computed refractive index.
-func (l *layout) index(name string, value float64) {
-	text := strconv.FormatFloat(value, 'f', indexDecimals, 64)
-	l.Added = append(l.Added, cloud.Added{Name: name, ByClass: byOutcome(traced, cloud.Value{Set: true, Number: value, Text: text})})
-}
-
-func (l *layout) constantLabel(name string, has outcomes, text string) {
-	l.label(name, has, func(correct.Outcome) string { return text })
-}
-
-func (l *layout) label(name string, has outcomes, text func(correct.Outcome) string) {
-	values := noValue()
-	for o := range correct.NumOutcomes {
-		if has(o) {
-			values[o] = cloud.Value{Set: true, Text: text(o)}
+func (l *layout) constant(name string, has outcomes, number float64) {
+	v := cloud.Value{Set: true, Number: number, Text: strconv.FormatFloat(number, 'f', -1, 64)}
+	l.byClass(name, cloud.Float, func(_ *sensor, o correct.Outcome) cloud.Value {
+		if !has(o) {
+			return cloud.Value{}
 		}
-	}
-	l.Added = append(l.Added, cloud.Added{Name: name, Type: cloud.Label, ByClass: values})
+		return v
+	})
 }
 
-func noValue() []cloud.Value { return make([]cloud.Value, correct.NumOutcomes) }
-
-func byOutcome(has outcomes, v cloud.Value) []cloud.Value {
-	values := noValue()
-	for o := range correct.NumOutcomes {
-		if has(o) {
-			values[o] = v
+// index adds a computed refractive index of the sensors that have one.
+func (l *layout) index(name string, has func(*sensor) bool, index func(*sensor) float64) {
+	l.byClass(name, cloud.Float, func(sn *sensor, o correct.Outcome) cloud.Value {
+		if !traced(o) || !has(sn) {
+			return cloud.Value{}
 		}
-	}
-	return values
+		n := index(sn)
+		return cloud.Value{Set: true, Number: n, Text: strconv.FormatFloat(n, 'f', indexDecimals, 64)}
+	})
+}
+
+func (l *layout) label(name string, has outcomes, text func(*sensor, correct.Outcome) string) {
+	l.byClass(name, cloud.Label, func(sn *sensor, o correct.Outcome) cloud.Value {
+		if !has(o) {
+			return cloud.Value{}
+		}
+		return cloud.Value{Set: true, Text: text(sn, o)}
+	})
 }
 
 // checkNames refuses a file that has a column which its output would gain.

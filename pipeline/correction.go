@@ -5,80 +5,42 @@ import (
 	"slices"
 
 	"bentray/correct"
-	"bentray/geo"
 	"bentray/io/cloud"
-	"bentray/pipeline/job"
 )
-
-// workspace holds what correcting a chunk needs beyond the chunk itself. It goes
-// with the chunk from file to file, so that nothing is allocated a point.
-type workspace struct {
-	out         []correct.Outcome
-	raw, origin correct.XYZ
-	planes      correct.Planes
-	light       correct.Light
-	result      correct.Result
-	polygon     []int32
-
-	spare [8][]float64 // for results that have no column in the chunk
-}
 
 // correctChunk corrects the decoded rows of a chunk: it fills Class, XYZ and
 // Added, and adds to the tally. The stages come in the order of the outcomes'
 // precedence.
 func (s *survey) correctChunk(c *cloud.Chunk, r *reading, l *layout, w *workspace, t *tally) {
 	c.Resize(c.Rows, l.Layout)
-	w.prepare(c, l)
-	w.takeRaw(c, s)
+	w.prepare(c, l, s)
+	s.toScale(c, r)
+	s.takeRaw(w, c)
+	s.takeTimes(w, c, r)
 
 	correct.MarkInvalid(w.out, w.raw)
 	r.markNotSelected(w.out, c)
+	r.markNoRule(w, c)
 	s.markOutside(w, c)
-	s.fillPlanes(w, c, r)
+	s.fillZones(w, c.Numbers[0], c.Numbers[1])
+	s.surface.fill(w.planes, w.raw.X, w.raw.Y, w.utc, w.zone, s.ownLevels(w, c, r))
 	correct.MarkNoSurface(w.out, w.planes)
 	correct.MarkDry(w.out, &w.result, w.raw, w.planes)
-	s.bend(w, c, r)
+	s.bendSensors(w, c, r)
 
-	t.add(w, c, r)
-	s.toUnits(c, w)
+	t.add(w, c, r, s)
+	s.toUnits(c, l, w)
 }
 
-// prepare makes room for a chunk's rows. Results are written straight into the
-// chunk's columns, or to spare memory where it has no such column.
-func (w *workspace) prepare(c *cloud.Chunk, l *layout) {
-	w.out = cloud.Grow(w.out, c.Rows)
-	clear(w.out)
-	w.polygon = cloud.Grow(w.polygon, c.Rows)
-	for _, column := range []*[]float64{
-		&w.raw.X, &w.raw.Y, &w.raw.Z, &w.planes.Level, &w.planes.SlopeX, &w.planes.SlopeY, &w.light.Water, &w.light.WaterGroup,
-	} {
-		*column = cloud.Grow(*column, c.Rows)
-	}
-	w.result.XYZ = correct.XYZ{X: c.XYZ[0], Y: c.XYZ[1], Z: c.XYZ[2]}
-	for i, into := range []struct {
-		column int
-		result *[]float64
-	}{
-		{l.depth, &w.result.Depth},
-		{l.waterLevel, &w.result.WaterLevel},
-		{l.entryLevel, &w.result.EntryLevel},
-		{l.incidence, &w.result.IncidenceRad},
-		{l.refraction, &w.result.RefractionRad},
-		{l.origin[0], &w.origin.X},
-		{l.origin[1], &w.origin.Y},
-		{l.origin[2], &w.origin.Z},
-	} {
-		if into.column >= 0 {
-			*into.result = c.Added[into.column]
-			continue
-		}
-		w.spare[i] = cloud.Grow(w.spare[i], c.Rows)
-		*into.result = w.spare[i]
+// toScale brings times that are dates to the scale of the job's numbers.
+func (s *survey) toScale(c *cloud.Chunk, r *reading) {
+	if r.timestamps {
+		s.fromUTC(c.Numbers[r.time])
 	}
 }
 
 // takeRaw brings the raw coordinates to metres.
-func (w *workspace) takeRaw(c *cloud.Chunk, s *survey) {
+func (s *survey) takeRaw(w *workspace, c *cloud.Chunk) {
 	copy(w.raw.X, c.Numbers[0])
 	copy(w.raw.Y, c.Numbers[1])
 	copy(w.raw.Z, c.Numbers[2])
@@ -91,6 +53,36 @@ func (s *survey) scaleXYZ(p correct.XYZ, plan, height float64) {
 	scale(p.Z, height)
 }
 
+// takeTimes gives each row its UTC: of its own time or, in a cloud without times,
+// the one that the job names.
+func (s *survey) takeTimes(w *workspace, c *cloud.Chunk, r *reading) {
+	switch {
+	case !s.needsUTC():
+	case r.time >= 0:
+		for i, t := range c.Numbers[r.time] {
+			w.utc[i] = s.times.UTC(t)
+		}
+	case s.surface.at != nil:
+		fill(w.utc, *s.surface.at)
+	default:
+		fill(w.utc, math.NaN())
+	}
+}
+
+func (s *survey) needsUTC() bool {
+	return s.surface.timed || s.surface.grid != nil || s.water.stations != nil && s.water.stations.HasTimes()
+}
+
+// ownLevels returns the cloud's own water levels in metres, where it has them.
+func (s *survey) ownLevels(w *workspace, c *cloud.Chunk, r *reading) []float64 {
+	if r.level < 0 {
+		return nil
+	}
+	copy(w.column, c.Numbers[r.level])
+	scale(w.column, s.height)
+	return w.column
+}
+
 // markNotSelected sets NotSelected where a condition does not hold.
 func (r *reading) markNotSelected(out []correct.Outcome, c *cloud.Chunk) {
 	for _, w := range r.where {
@@ -99,6 +91,25 @@ func (r *reading) markNotSelected(out []correct.Outcome, c *cloud.Chunk) {
 				out[i] = correct.NotSelected
 			}
 		}
+	}
+}
+
+// markNoRule finds the first sensor whose conditions hold, and sets NoRule where
+// there is none.
+func (r *reading) markNoRule(w *workspace, c *cloud.Chunk) {
+	for i := range w.out {
+		w.sensor[i] = 0
+		if w.out[i] != correct.Corrected {
+			continue
+		}
+		k := slices.IndexFunc(r.sensors, func(where []condition) bool {
+			return !slices.ContainsFunc(where, func(w condition) bool { return !w.holds(c, i) })
+		})
+		if k < 0 {
+			w.out[i] = correct.NoRule
+			continue
+		}
+		w.sensor[i] = uint8(k)
 	}
 }
 
@@ -114,74 +125,27 @@ func (s *survey) markOutside(w *workspace, c *cloud.Chunk) {
 	if s.extent == nil {
 		return
 	}
-	s.extent.Find(w.polygon, c.Numbers[0], c.Numbers[1])
-	for i, polygon := range w.polygon {
+	s.extent.Find(w.zone, c.Numbers[0], c.Numbers[1])
+	for i, polygon := range w.zone {
 		if w.out[i] == correct.Corrected && polygon < 0 {
 			w.out[i] = correct.Outside
 		}
 	}
 }
 
-// fillPlanes asks the water surface for its plane at each point.
-func (s *survey) fillPlanes(w *workspace, c *cloud.Chunk, r *reading) {
-	p, surface := &w.planes, s.job.Surface
-	switch {
-	case surface.Level != nil:
-		geo.FillLevel(p.Level, p.SlopeX, p.SlopeY, *surface.Level*s.height)
-	case surface.Plane != nil:
-		s.plane().Fill(p.Level, p.SlopeX, p.SlopeY, w.raw.X, w.raw.Y)
-	default:
-		copy(p.Level, c.Numbers[r.level])
-		scale(p.Level, s.height)
-		clear(p.SlopeX)
-		clear(p.SlopeY)
-	}
-}
-
-func (s *survey) plane() geo.Plane {
-	p := s.job.Surface.Plane
-	return geo.Plane{Level: p.Level * s.height, AtX: p.At[0] * s.plan, AtY: p.At[1] * s.plan, SlopeX: p.SlopeX, SlopeY: p.SlopeY}
-}
-
-// bend runs the ray model.
-func (s *survey) bend(w *workspace, c *cloud.Chunk, r *reading) {
-	fill(w.light.Water, s.optics.waterPhase)
-	fill(w.light.WaterGroup, s.optics.waterGroup)
-	w.light.Air, w.light.RangeIndex = s.optics.airPhase, s.optics.ranges
-	if s.job.Rays.Model == job.Vertical {
-		correct.Vertical(&w.result, w.out, w.raw, w.planes, w.light)
-		return
-	}
-	if r.originByTime() {
-		if r.timestamps {
-			s.fromUTC(c.Numbers[r.time])
-		}
-		s.trajectory.At(w.origin.X, w.origin.Y, w.origin.Z, c.Numbers[r.time])
-	} else {
-		copy(w.origin.X, c.Numbers[r.origin[0]])
-		copy(w.origin.Y, c.Numbers[r.origin[1]])
-		copy(w.origin.Z, c.Numbers[r.origin[2]])
-		s.scaleXYZ(w.origin, s.plan, s.height)
-	}
-	correct.Pulse(&w.result, w.out, w.raw, w.origin, w.planes, w.light, s.job.Limits.MaxIncidence*radiansPerDegree)
-}
-
 const radiansPerDegree = math.Pi / 180
 
-// toUnits brings the results to the file's units and gives each row its class.
-// Origins stay only where a ray was traced from them.
-func (s *survey) toUnits(c *cloud.Chunk, w *workspace) {
+// toUnits brings the results to the file's units, gives each row its class, and
+// leaves empty what a row did not get to.
+func (s *survey) toUnits(c *cloud.Chunk, l *layout, w *workspace) {
 	for i, o := range w.out {
-		c.Class[i] = uint8(o)
+		c.Class[i] = w.sensor[i]*uint8(correct.NumOutcomes) + uint8(o)
 		if o != correct.Corrected {
 			c.XYZ[0][i], c.XYZ[1][i], c.XYZ[2][i] = c.Numbers[0][i], c.Numbers[1][i], c.Numbers[2][i]
 		} else if s.plan != 1 || s.height != 1 {
 			c.XYZ[0][i] /= s.plan
 			c.XYZ[1][i] /= s.plan
 			c.XYZ[2][i] /= s.height
-		}
-		if !traced(o) {
-			w.origin.X[i], w.origin.Y[i], w.origin.Z[i] = math.NaN(), math.NaN(), math.NaN()
 		}
 	}
 	s.scaleXYZ(w.origin, 1/s.plan, 1/s.height)
@@ -190,6 +154,20 @@ func (s *survey) toUnits(c *cloud.Chunk, w *workspace) {
 	}
 	scale(w.result.IncidenceRad, 1/radiansPerDegree)
 	scale(w.result.RefractionRad, 1/radiansPerDegree)
+	clearUnless(traced, l.tracedOnly, c, w.out)
+	clearUnless(watered, l.wateredOnly, c, w.out)
+}
+
+// clearUnless empties columns by row where an outcome has no value in them.
+func clearUnless(has outcomes, columns []int, c *cloud.Chunk, out []correct.Outcome) {
+	for _, column := range columns {
+		values := c.Added[column]
+		for i, o := range out {
+			if !has(o) {
+				values[i] = math.NaN()
+			}
+		}
+	}
 }
 
 func fill(column []float64, value float64) {

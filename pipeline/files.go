@@ -143,12 +143,42 @@ func checkOverInput(j *job.Job, in input, raw map[string]bool) error {
 	if raw[in.output] || sameFile(in.path, in.output) {
 		return callErrorf("%s: the output %s would overwrite an input; %s", j.Path, in.output, otherFolder)
 	}
-	for _, other := range []string{j.Path, j.Resolve(j.Rays.Trajectory), j.Resolve(j.Extent.Polygons)} {
+	for _, other := range otherFiles(j) {
 		if sameFile(other, in.output) {
 			return callErrorf("%s: the output %s would overwrite %s; %s", j.Path, in.output, other, otherFolder)
 		}
 	}
 	return nil
+}
+
+// otherFiles lists the files that a job reads beside its clouds, itself among them.
+func otherFiles(j *job.Job) []string {
+	names := []string{j.Extent.Polygons, j.Water.Zones, j.Water.Stations}
+	for _, sn := range j.Sensors {
+		names = append(names, sn.Rays.Trajectory)
+	}
+	if p := j.Surface.Plane; p != nil {
+		names = append(names, p.Waterline)
+	}
+	if p := j.Surface.Profile; p != nil {
+		names = append(names, p.Centreline, p.Levels)
+	}
+	if g := j.Surface.Grid; g != nil {
+		names = append(names, g.Points)
+	}
+	if g := j.Surface.Gauge; g != nil {
+		names = append(names, g.File)
+	}
+	if p := j.Surface.Separation; p != nil {
+		names = append(names, p.File)
+	}
+	paths := []string{j.Path}
+	for _, name := range names {
+		if name != "" {
+			paths = append(paths, j.Resolve(name))
+		}
+	}
+	return paths
 }
 
 // writes lists the files that an input may lead to.

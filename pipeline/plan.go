@@ -4,8 +4,10 @@ import (
 	"context"
 	"io"
 	"math"
+	"slices"
 	"time"
 
+	"bentray/correct"
 	"bentray/io/cloud"
 	"bentray/pipeline/job"
 )
@@ -13,16 +15,14 @@ import (
 // Plan is what a run of a job would do, as far as the job, the files beside it
 // and the head of every cloud tell. Lengths are in the job's units.
 type Plan struct {
-	Run        string // fingerprint
-	Files      []PlannedFile
-	LeftOut    int // matches that are outputs of earlier runs
-	Roles      []RoleColumn
-	Heads      Heads
-	Water      [2]float64      // index of water, phase and group, referred to vacuum
-	Air        [2]float64      // the same of air
-	Trajectory *TrajectoryInfo // nil where the job names none
-	Corners    [4]Corner       // of the heads' bounds, where the surface does not come from the cloud
-	Cautions   []string
+	Run      string // fingerprint
+	Files    []PlannedFile
+	LeftOut  int // matches that are outputs of earlier runs
+	Roles    []RoleColumn
+	Heads    Heads
+	Sensors  []PlannedSensor
+	Corners  [4]Corner // of the heads' bounds; NaN where the surface depends on the cloud or on time
+	Cautions []string
 }
 
 // PlannedFile is one file of a plan.
@@ -46,6 +46,22 @@ type Heads struct {
 	Outcomes map[string]int64
 }
 
+// PlannedSensor is one sensor of a plan; indices are phase and group, referred to
+// vacuum.
+type PlannedSensor struct {
+	Name, Model string
+	Wavelength  float64 // nm
+	Air         [2]float64
+	Water       [2]float64      // of the job's own water; NaN where it has none
+	Trajectory  *TrajectoryInfo // nil where the job names none
+}
+
+func (s *survey) planSensor(sn *sensor) PlannedSensor {
+	p := PlannedSensor{Name: sn.Name, Model: sn.Rays.Model, Wavelength: sn.wavelength, Air: [2]float64{sn.airPhase, sn.airGroup}, Trajectory: sn.info}
+	p.Water[0], p.Water[1] = s.constantIndex(sn)
+	return p
+}
+
 // TrajectoryInfo sums up the trajectory.
 type TrajectoryInfo struct {
 	Records int
@@ -65,14 +81,14 @@ func MakePlan(ctx context.Context, j *job.Job) (*Plan, error) {
 	if err != nil {
 		return nil, err
 	}
-	s, err := readSurvey(ctx, j)
+	s, err := readSurvey(ctx, j, inputs)
 	if err != nil {
 		return nil, err
 	}
 	p := &planner{survey: s, known: readHistory(j.Resolve(j.Output.Folder)), tally: newTally()}
-	p.plan = Plan{
-		Run: s.run, LeftOut: leftOut,
-		Water: [2]float64{s.optics.waterPhase, s.optics.waterGroup}, Air: [2]float64{s.optics.airPhase, s.optics.airGroup},
+	p.plan = Plan{Run: s.run, LeftOut: leftOut}
+	for _, sn := range s.sensors {
+		p.plan.Sensors = append(p.plan.Sensors, s.planSensor(sn))
 	}
 	for _, in := range inputs {
 		if err := ctx.Err(); err != nil {
@@ -181,7 +197,6 @@ func (p *planner) finish() {
 		h.Low[k], h.High[k] = b.low, b.high
 	}
 	p.corners()
-	p.plan.Trajectory = p.trajectoryInfo
 	p.plan.Cautions = t.cautions(p.survey)
 }
 
@@ -189,19 +204,21 @@ func (p *planner) finish() {
 func (p *planner) corners() {
 	x := []float64{p.tally.bounds[0].low, p.tally.bounds[0].high, p.tally.bounds[0].low, p.tally.bounds[0].high}
 	y := []float64{p.tally.bounds[1].low, p.tally.bounds[1].low, p.tally.bounds[1].high, p.tally.bounds[1].high}
-	level := make([]float64, 4)
-	switch {
-	case p.job.Surface.Level != nil:
-		fill(level, *p.job.Surface.Level)
-	case p.job.Surface.Plane != nil:
-		mx, my, slope := append([]float64{}, x...), append([]float64{}, y...), make([]float64, 4)
-		scale(mx, p.survey.plan)
-		scale(my, p.survey.plan)
-		p.plane().Fill(level, slope, make([]float64, 4), mx, my)
-		scale(level, 1/p.height)
-	default:
-		fill(level, math.NaN())
+	planes := correct.Planes{Level: make([]float64, 4), SlopeX: make([]float64, 4), SlopeY: make([]float64, 4)}
+	inMetres := func(v []float64) []float64 {
+		v = slices.Clone(v)
+		scale(v, p.survey.plan)
+		return v
 	}
+	utc := make([]float64, 4)
+	fill(utc, math.NaN())
+	if at := p.surface.at; at != nil {
+		fill(utc, *at)
+	}
+	none := []float64{math.NaN(), math.NaN(), math.NaN(), math.NaN()}
+	p.surface.fill(planes, inMetres(x), inMetres(y), utc, []int32{-1, -1, -1, -1}, none)
+	level := planes.Level
+	scale(level, 1/p.height)
 	for i := range p.plan.Corners {
 		p.plan.Corners[i] = Corner{x[i], y[i], level[i]}
 	}

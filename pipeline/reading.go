@@ -20,6 +20,7 @@ type reading struct {
 	origin     [3]int
 	level      int // the surface's column
 	where      []condition
+	sensors    [][]condition // by sensor
 }
 
 // condition selects the points whose value is one of a list.
@@ -40,6 +41,9 @@ func newReading(s *survey, columns []cloud.Column) (*reading, error) {
 	for _, i := range r.xyz {
 		r.number(i)
 	}
+	if err := r.findTime(s, columns); err != nil {
+		return nil, err
+	}
 	if err := r.findOrigins(s, columns); err != nil {
 		return nil, err
 	}
@@ -48,18 +52,59 @@ func newReading(s *survey, columns []cloud.Column) (*reading, error) {
 			return nil, err
 		}
 	}
-	return r, r.findConditions(j, columns)
+	if r.where, err = r.conditions(j, columns, j.Select.Where, "[select] where names it"); err != nil {
+		return nil, err
+	}
+	for _, sn := range s.sensors {
+		where, err := r.conditions(j, columns, sn.Where, fmt.Sprintf("where of sensor %q names it", sn.Name))
+		if err != nil {
+			return nil, err
+		}
+		r.sensors = append(r.sensors, where)
+	}
+	return r, nil
 }
 
-// findOrigins finds what gives a pulse its ray origin.
-func (r *reading) findOrigins(s *survey, columns []cloud.Column) (err error) {
-	switch {
-	case s.job.Rays.Model != job.Pulse:
+// findTime finds gps_time where something depends on it; it must be there where
+// nothing else tells the time.
+func (r *reading) findTime(s *survey, columns []cloud.Column) (err error) {
+	why := s.whyTime()
+	r.time = -1
+	if why == "" && s.job.Surface.Grid == nil && !s.surface.timed {
 		return nil
-	case s.trajectory != nil:
-		r.time, err = r.need(s.job, columns, "gps_time", "the trajectory is looked up by it")
-		r.timestamps = err == nil && isTimestamp(columns[r.request.Numbers[r.time]])
+	}
+	i, err := cloud.FindRole(columns, "gps_time", s.job.Input.Columns)
+	switch {
+	case err != nil:
 		return err
+	case i < 0 && why != "":
+		return missing(columns, "gps_time", why)
+	case i >= 0:
+		r.time, r.timestamps = r.number(i), isTimestamp(columns[i])
+	}
+	return nil
+}
+
+// whyTime says why a cloud must have times, or nothing.
+func (s *survey) whyTime() string {
+	for _, sn := range s.sensors {
+		if sn.Rays.Trajectory != "" {
+			return "the trajectory is looked up by it"
+		}
+	}
+	switch {
+	case s.surface.timed && s.surface.at == nil:
+		return "the gauge is looked up by it; or give [surface.gauge] at"
+	case s.water.stations != nil && s.water.stations.HasTimes() && s.surface.at == nil:
+		return "the stations are looked up by it"
+	}
+	return ""
+}
+
+// findOrigins finds what gives a pulse its ray origin, where no trajectory does.
+func (r *reading) findOrigins(s *survey, columns []cloud.Column) (err error) {
+	if !slices.ContainsFunc(s.sensors, func(sn *sensor) bool { return sn.isPulse() && sn.trajectory == nil }) {
+		return nil
 	}
 	for k, role := range []string{"origin_x", "origin_y", "origin_z"} {
 		if r.origin[k], err = r.need(s.job, columns, role, "a pulse needs its ray origin; or give [rays] trajectory"); err != nil {
@@ -69,22 +114,20 @@ func (r *reading) findOrigins(s *survey, columns []cloud.Column) (err error) {
 	return nil
 }
 
-// originByTime tells whether ray origins come from the trajectory.
-func (r *reading) originByTime() bool { return r.time >= 0 }
-
-func (r *reading) findConditions(j *job.Job, columns []cloud.Column) error {
-	for _, name := range slices.Sorted(maps.Keys(j.Select.Where)) {
-		values := j.Select.Where[name]
+// conditions turns a table column -> values into conditions.
+func (r *reading) conditions(j *job.Job, columns []cloud.Column, where map[string][]any, why string) ([]condition, error) {
+	var list []condition
+	for _, name := range slices.Sorted(maps.Keys(where)) {
 		i, err := cloud.FindRole(columns, name, j.Input.Columns)
 		if err != nil {
-			return err
+			return nil, err
 		}
 		if i < 0 {
-			return missing(columns, name, "[select] where names it")
+			return nil, missing(columns, name, why)
 		}
-		r.where = append(r.where, r.condition(i, values))
+		list = append(list, r.condition(i, where[name]))
 	}
-	return nil
+	return list, nil
 }
 
 // condition compares as numbers where all values are numbers, else as texts.
@@ -102,8 +145,11 @@ func (r *reading) condition(column int, values []any) condition {
 }
 
 func (r *reading) textCondition(column int, values []any) condition {
-	c := condition{column: len(r.request.Texts), texts: map[string]bool{}}
-	r.request.Texts = append(r.request.Texts, column)
+	c := condition{column: slices.Index(r.request.Texts, column), texts: map[string]bool{}}
+	if c.column < 0 {
+		c.column = len(r.request.Texts)
+		r.request.Texts = append(r.request.Texts, column)
+	}
 	for _, v := range values {
 		switch v := v.(type) {
 		case string:

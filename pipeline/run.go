@@ -60,7 +60,7 @@ func Run(ctx context.Context, j *job.Job, o Options) (*receipt.Summary, error) {
 	if err != nil {
 		return nil, err
 	}
-	s, err := readSurvey(ctx, j)
+	s, err := readSurvey(ctx, j, all)
 	if err != nil {
 		return nil, err
 	}

@@ -7,16 +7,12 @@ import (
 	"io/fs"
 	"os"
 	"path/filepath"
-	"slices"
 	"strings"
-	"time"
 
 	"github.com/paulmach/orb"
 
 	"bentray/correct"
-	"bentray/correct/medium"
 	"bentray/geo"
-	"bentray/io/cloud"
 	"bentray/pipeline/job"
 	"bentray/pipeline/receipt"
 )
@@ -36,47 +32,45 @@ type survey struct {
 	plan, height float64       // metres per unit of x, y and of z
 	times        geo.TimeScale // of the numbers in gps_time
 
-	optics     indices
-	trajectory *geo.Trajectory   // nil: origins come from the cloud
-	extent     *geo.PolygonIndex // nil: no limit; in the cloud's own units
+	sensors []*sensor
+	water   waters
+	surface waterSurface
+	zones   zones
+	extent  *geo.PolygonIndex // nil: no limit; in the cloud's own units
 
-	trajectoryInfo *TrajectoryInfo
-	extentBound    orb.Bound
-	cautions       []string // that hold for every file
+	extentBound orb.Bound
+	cautions    []string // that hold for every file
 }
 
-// indices are the refractive indices of a job, referred to vacuum.
-type indices struct {
-	waterPhase, waterGroup, airPhase, airGroup float64
-	ranges                                     float64 // the index that the raw ranges were made with
-}
-
-// readSurvey reads what the job names beside its clouds. Its errors are
-// CallErrors: nothing can be done without these files.
-func readSurvey(ctx context.Context, j *job.Job) (*survey, error) {
+// readSurvey reads what the job names beside its clouds, and of the clouds
+// themselves their surface points where the surface is made of them. Its errors
+// are CallErrors: nothing can be done without these files.
+func readSurvey(ctx context.Context, j *job.Job, clouds []input) (*survey, error) {
 	s := &survey{job: j}
 	if err := s.readUnits(); err != nil {
 		return nil, &CallError{err}
 	}
-	if err := s.readIndices(); err != nil {
-		return nil, &CallError{fmt.Errorf("%s: %w", j.Path, err)}
+	err := errors.Join(
+		s.readSensors(ctx),
+		s.auxiliaryFile(ctx, "extent", "[extent] polygons", j.Extent.Polygons, s.readExtent),
+		s.auxiliaryFile(ctx, "zones", "[water] zones", j.Water.Zones, s.readZones),
+		s.auxiliaryFile(ctx, "stations", "[water] stations", j.Water.Stations, s.readStations),
+		s.readSurface(ctx, clouds),
+	)
+	if ctx.Err() != nil {
+		return nil, ctx.Err()
 	}
-	if err := s.readFiles(ctx); err != nil {
+	if err != nil {
 		return nil, &CallError{err}
 	}
-	var err error
+	if err := s.readWaters(); err != nil {
+		return nil, &CallError{fmt.Errorf("%s: %w", j.Path, err)}
+	}
 	if s.settings, err = j.Settings(); err != nil {
 		return nil, err
 	}
 	s.run, err = receipt.Fingerprint(s.settings, s.auxiliary, correct.Version)
 	return s, err
-}
-
-func (s *survey) readFiles(ctx context.Context) error {
-	return errors.Join(
-		s.auxiliaryFile(ctx, "trajectory", "[rays] trajectory", s.job.Rays.Trajectory, s.readTrajectory),
-		s.auxiliaryFile(ctx, "extent", "[extent] polygons", s.job.Extent.Polygons, s.readExtent),
-	)
 }
 
 func (s *survey) readUnits() error {
@@ -102,71 +96,6 @@ func (s *survey) fromUTC(seconds []float64) {
 	for i, utc := range seconds {
 		seconds[i] = s.times.FromUTC(utc)
 	}
-}
-
-func (s *survey) readIndices() error {
-	j := s.job
-	formula, err := medium.ParseWaterFormula(j.Water.Formula)
-	if err != nil {
-		return err
-	}
-	water := medium.Water{TemperatureC: j.Water.Temperature, Salinity: j.Water.Salinity, PressureDbar: j.Water.PressureDbar}
-	air := medium.Air{TemperatureC: j.Air.Temperature, PressureHPa: j.Air.Pressure, HumidityPercent: j.Air.Humidity, CO2PPM: j.Air.CO2}
-	o := &s.optics
-	if o.waterPhase, o.waterGroup, err = formula.Index(water, j.Light.Wavelength); err != nil {
-		return err
-	}
-	if o.airPhase, o.airGroup, err = air.Index(j.Light.Wavelength); err != nil {
-		return err
-	}
-	o.ranges = o.airGroup
-	if j.Rays.RangeIndex != nil {
-		o.ranges = *j.Rays.RangeIndex
-	}
-	if !formula.Published(water, j.Light.Wavelength) {
-		s.cautions = append(s.cautions, fmt.Sprintf("the water (%g degrees C, salinity %g, %g nm) is outside the published range of %s; its index is an extension of the formula", water.TemperatureC, water.Salinity, j.Light.Wavelength, formula))
-	}
-	if j.Water.PressureDbar != 0 && !formula.UsesPressure() {
-		s.cautions = append(s.cautions, fmt.Sprintf("pressure_dbar = %g has no effect: %s has no pressure term", j.Water.PressureDbar, formula))
-	}
-	return nil
-}
-
-func (s *survey) readTrajectory(path string) error {
-	f, err := openTable(path)
-	if err != nil {
-		return err
-	}
-	defer f.Close()
-	columns, err := cloud.ReadNumbers(f, "gps_time", "x", "y", "z")
-	if err != nil {
-		return err
-	}
-	if i, _ := cloud.Find(f.Columns(), "gps_time"); isTimestamp(f.Columns()[i]) {
-		s.fromUTC(columns[0])
-	}
-	s.trajectoryInfo = s.describe(columns)
-	scale(columns[1], s.plan)
-	scale(columns[2], s.plan)
-	scale(columns[3], s.height)
-	s.trajectory, err = geo.NewTrajectory(columns[0], columns[1], columns[2], columns[3], s.job.Rays.MaxGap)
-	return err
-}
-
-// describe sums up a trajectory's columns gps_time, x, y, z, in the job's units.
-func (s *survey) describe(columns [][]float64) *TrajectoryInfo {
-	t := columns[0]
-	if len(t) == 0 {
-		return nil
-	}
-	info := &TrajectoryInfo{Records: len(t), Times: [2]time.Time{s.times.Time(t[0]), s.times.Time(t[len(t)-1])}}
-	for k, column := range columns[1:] {
-		info.Low[k], info.High[k] = slices.Min(column), slices.Max(column)
-	}
-	for i := 1; i < len(t); i++ {
-		info.Gap = max(info.Gap, t[i]-t[i-1])
-	}
-	return info
 }
 
 func (s *survey) readExtent(path string) error {

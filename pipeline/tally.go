@@ -5,8 +5,8 @@ import (
 	"math"
 
 	"bentray/correct"
+	"bentray/correct/medium"
 	"bentray/io/cloud"
-	"bentray/pipeline/job"
 )
 
 // tally counts what became of points. Its results do not depend on the order in
@@ -17,6 +17,8 @@ type tally struct {
 	bounds           [3]span // raw x, y, z in the file's units
 	times            span    // gps_time on the job's scale
 	depth, incidence span
+	water, group     span  // indices
+	extended         int64 // corrected points whose water is outside the formula's published range
 }
 
 // span is the least and the greatest of some numbers.
@@ -26,7 +28,7 @@ func emptySpan() span { return span{math.Inf(1), math.Inf(-1)} }
 
 func newTally() *tally {
 	e := emptySpan()
-	return &tally{bounds: [3]span{e, e, e}, times: e, depth: e, incidence: e}
+	return &tally{bounds: [3]span{e, e, e}, times: e, depth: e, incidence: e, water: e, group: e}
 }
 
 func (s *span) add(v float64) {
@@ -55,13 +57,18 @@ func (s *span) join(o span) {
 
 // add counts the points of a corrected chunk, whose results are in metres and
 // radians.
-func (t *tally) add(w *workspace, c *cloud.Chunk, r *reading) {
+func (t *tally) add(w *workspace, c *cloud.Chunk, r *reading, s *survey) {
 	for i, o := range w.out {
 		t.outcomes[o]++
 		switch {
 		case o == correct.Corrected:
 			t.depth.add(w.result.Depth[i])
 			t.incidence.add(w.result.IncidenceRad[i])
+			t.water.add(w.light.Water[i])
+			t.group.add(w.light.WaterGroup[i])
+			if !s.isConstantWater() && !s.isPublished(w, i) {
+				t.extended++
+			}
 		case o == correct.NoOrigin && math.IsNaN(w.origin.X[i]+w.origin.Y[i]+w.origin.Z[i]):
 			t.noPosition++
 		}
@@ -74,6 +81,12 @@ func (t *tally) add(w *workspace, c *cloud.Chunk, r *reading) {
 	}
 }
 
+// isPublished tells whether a point's water is one that its formula was published for.
+func (s *survey) isPublished(w *workspace, i int) bool {
+	water := medium.Water{TemperatureC: w.temperature[i], Salinity: w.salinity[i], PressureDbar: s.water.pressure}
+	return s.water.formula.Published(water, s.sensors[w.sensor[i]].wavelength)
+}
+
 func (t *tally) join(o *tally) {
 	for i, n := range o.outcomes {
 		t.outcomes[i] += n
@@ -83,6 +96,9 @@ func (t *tally) join(o *tally) {
 	}
 	t.noPosition += o.noPosition
 	t.times.join(o.times)
+	t.extended += o.extended
+	t.water.join(o.water)
+	t.group.join(o.group)
 	t.depth.join(o.depth)
 	t.incidence.join(o.incidence)
 }
@@ -112,9 +128,9 @@ func (t *tally) ranges(s *survey) map[string][2]float64 {
 		return ranges
 	}
 	ranges["depth"] = [2]float64{t.depth.low / s.height, t.depth.high / s.height}
-	ranges["n_water"] = [2]float64{s.optics.waterPhase, s.optics.waterPhase}
-	if s.job.Rays.Model == job.Pulse {
-		ranges["ng_water"] = [2]float64{s.optics.waterGroup, s.optics.waterGroup}
+	ranges["n_water"] = [2]float64{t.water.low, t.water.high}
+	if !t.incidence.isEmpty() {
+		ranges["ng_water"] = [2]float64{t.group.low, t.group.high}
 		ranges["incidence_deg"] = [2]float64{t.incidence.low / radiansPerDegree, t.incidence.high / radiansPerDegree}
 	}
 	return ranges
@@ -123,10 +139,13 @@ func (t *tally) ranges(s *survey) map[string][2]float64 {
 // advice says, for outcomes that are more often a fault of the job than of the
 // points, what to look at.
 var advice = map[correct.Outcome]string{
-	correct.Invalid:   "have no finite coordinates",
-	correct.NoSurface: "have no water surface: the surface column is empty there",
-	correct.Grazing:   "were seen at more than max_incidence from the surface normal",
-	correct.Unsolved:  "have no finite solution",
+	correct.Invalid:    "have no finite coordinates",
+	correct.NoSurface:  "have no water surface: it does not reach them in place or time, or its column is empty there",
+	correct.NoRule:     "match no sensor",
+	correct.NoWater:    "have no temperature and salinity: no zone or station gives them, in place or time",
+	correct.OutOfRange: "are in water outside the range of the index formula",
+	correct.Grazing:    "were seen at more than max_incidence from the surface normal",
+	correct.Unsolved:   "have no finite solution",
 }
 
 // cautions says what a person should look at before trusting the output.
@@ -137,6 +156,9 @@ func (t *tally) cautions(s *survey) []string {
 		if text := advice[correct.Outcome(o)]; n > 0 && text != "" {
 			cautions = append(cautions, fmt.Sprintf("%d of %d points %s", n, total, text))
 		}
+	}
+	if n := t.extended; n > 0 {
+		cautions = append(cautions, fmt.Sprintf("%d of %d points are in water outside the published range of %s; its index is an extension of the formula", n, total, s.water.formula))
 	}
 	if n := t.noPosition; n > 0 {
 		cautions = append(cautions, fmt.Sprintf("%d of %d points have no ray origin: %s", n, total, s.whyNoPosition()))
@@ -155,8 +177,10 @@ func (t *tally) cautions(s *survey) []string {
 
 // whyNoPosition says what leaves a point without ray origin.
 func (s *survey) whyNoPosition() string {
-	if s.trajectory == nil {
-		return "an origin column is empty there"
+	for _, sn := range s.sensors {
+		if sn.trajectory != nil {
+			return fmt.Sprintf("their times are outside the trajectory, or in a gap of it longer than max_gap (%g s)", sn.Rays.MaxGap)
+		}
 	}
-	return fmt.Sprintf("their times are outside the trajectory, or in a gap of it longer than max_gap (%g s)", s.job.Rays.MaxGap)
+	return "an origin column is empty there"
 }

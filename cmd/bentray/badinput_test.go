@@ -54,7 +54,7 @@ var wrongCalls = []badInput{
 	{name: "two columns for one role", old: `"raw/*.csv"]`, new: `"raw/*.csv"]` + "\ncolumns = { x = \"easting\", y = \"easting\" }", want: `job.toml:3: [input.columns] y is "easting", which line 3 has as x, want one role for a column`},
 	{name: "water missing", old: "[water]\ntemperature = 17.5\nsalinity = 34.9\n", new: "", want: `job.toml: [water] temperature is missing, want a number in degrees C
 job.toml: [water] salinity is missing, want a number (practical salinity; 0 for fresh water)`},
-	{name: "surface missing", old: "[surface]\nlevel = 0\n", new: "", want: `job.toml: [surface] has no water surface, want level, column or [surface.plane]`},
+	{name: "surface missing", old: "[surface]\nlevel = 0\n", new: "", want: `job.toml: [surface] has no water surface, want level, column, [surface.plane], [surface.profile], [surface.grid] or [surface.gauge], or [water] zones with levels`},
 	{name: "temperature out of range", old: "17.5", new: "35.1", want: `job.toml:6: [water] temperature is 35.1, want -2 to 35 degrees C for quan-fry`},
 	{name: "salinity out of range", old: "34.9", new: "45.5", want: `job.toml:7: [water] salinity is 45.5, want 0 to 45 for quan-fry`},
 	{name: "salt for the formula of fresh water", old: "34.9", new: "34.9\nformula = \"iapws\"", want: `job.toml:7: [water] salinity is 34.9, want 0 to 0.5 for iapws`},
@@ -65,7 +65,7 @@ job.toml: [water] salinity is missing, want a number (practical salinity; 0 for 
 	{name: "trajectory with a gap in a row", files: map[string]string{"flight.csv": "gps_time,x,y,z\n1,0,0,400\n2,0,,400\n"}, old: `"pulse"`, new: `"pulse"` + "\ntrajectory = \"flight.csv\"", want: `flight.csv: record 2: a value is not finite, want a time and a position`},
 	{name: "trajectory with a text", files: map[string]string{"flight.csv": "gps_time,x,y,z\n1,0,0,400\n2,0,high,400\n"}, old: `"pulse"`, new: `"pulse"` + "\ntrajectory = \"flight.csv\"", want: `flight.csv: line 3: y is "high", want a number`},
 	{name: "polygons missing", old: "[rays]", new: "[extent]\npolygons = \"water.geojson\"\n[rays]", want: `job.toml: [extent] polygons: water.geojson: no such file or directory`},
-	{name: "polygons are none", files: map[string]string{"water.geojson": "{}"}, old: "[rays]", new: "[extent]\npolygons = \"water.geojson\"\n[rays]", want: `water.geojson: not GeoJSON: no "type", want FeatureCollection, Feature, Polygon or MultiPolygon`},
+	{name: "polygons are none", files: map[string]string{"water.geojson": "{}"}, old: "[rays]", new: "[extent]\npolygons = \"water.geojson\"\n[rays]", want: `water.geojson: not GeoJSON: no "type", want a FeatureCollection, a Feature or a geometry`},
 }
 
 // badClouds fail alone: raw/a.csv is done beside them.

@@ -2,6 +2,7 @@ package main
 
 import (
 	"fmt"
+	"math"
 	"time"
 
 	"bentray/pipeline"
@@ -38,8 +39,7 @@ func (c *planCommand) Run(s *streams) error {
 	}
 	printFiles(s, p, j)
 	printRoles(s, p)
-	printMedia(s, p, j)
-	printTrajectory(s, p, j)
+	printSensors(s, p, j)
 	printHeads(s, p, j)
 	for _, caution := range p.Cautions {
 		fmt.Fprintln(s.out, "caution:", caution)
@@ -93,14 +93,23 @@ func printRoles(s *streams, p *pipeline.Plan) {
 	}
 }
 
-func printMedia(s *streams, p *pipeline.Plan, j *job.Job) {
-	fmt.Fprintf(s.out, "model    %s\n", j.Rays.Model)
-	fmt.Fprintf(s.out, "water    %g degrees C, salinity %g: phase %.6f, group %.6f at %g nm (%s)\n", j.Water.Temperature, j.Water.Salinity, p.Water[0], p.Water[1], j.Light.Wavelength, j.Water.Formula)
-	fmt.Fprintf(s.out, "air      %g degrees C, %g hPa, %g %%: phase %.6f, group %.6f\n", j.Air.Temperature, j.Air.Pressure, j.Air.Humidity, p.Air[0], p.Air[1])
+func printSensors(s *streams, p *pipeline.Plan, j *job.Job) {
+	for _, sn := range p.Sensors {
+		fmt.Fprintf(s.out, "model    %s%s, %g nm\n", sn.Model, quoted(sn.Name), sn.Wavelength)
+		if j.Water.Temperature != nil {
+			fmt.Fprintf(s.out, "water    %g degrees C, salinity %g: phase %.6f, group %.6f (%s)\n", *j.Water.Temperature, *j.Water.Salinity, sn.Water[0], sn.Water[1], j.Water.Formula)
+		}
+		fmt.Fprintf(s.out, "air      %g degrees C, %g hPa, %g %%: phase %.6f, group %.6f\n", j.Air.Temperature, j.Air.Pressure, j.Air.Humidity, sn.Air[0], sn.Air[1])
+		printTrajectory(s, sn.Trajectory, j)
+	}
+	for _, source := range []struct{ key, name string }{{"zones", j.Water.Zones}, {"stations", j.Water.Stations}} {
+		if source.name != "" {
+			fmt.Fprintf(s.out, "%-8s from %s\n", source.key, source.name)
+		}
+	}
 }
 
-func printTrajectory(s *streams, p *pipeline.Plan, j *job.Job) {
-	t := p.Trajectory
+func printTrajectory(s *streams, t *pipeline.TrajectoryInfo, j *job.Job) {
 	if t == nil {
 		return
 	}
@@ -124,19 +133,23 @@ func printHeads(s *streams, p *pipeline.Plan, j *job.Job) {
 	if !h.Times[0].IsZero() {
 		fmt.Fprintf(s.out, "         time %s to %s\n", h.Times[0].Format(time.RFC3339), h.Times[1].Format(time.RFC3339))
 	}
-	if j.Surface.Column != "" {
-		fmt.Fprintf(s.out, "surface  from column %s\n", j.Surface.Column)
-	} else {
-		for i, corner := range p.Corners {
-			head := ""
-			if i == 0 {
-				head = "surface"
-			}
-			fmt.Fprintf(s.out, "%-8s %.3f at %.1f, %.1f\n", head, corner.Level, corner.X, corner.Y)
-		}
-	}
+	printCorners(s, p, j)
 	for _, o := range outcomeRows(h.Outcomes) {
 		fmt.Fprintf(s.out, "         %-13s %12s  %5.1f %%\n", o.name, grouped(o.count), o.percent)
+	}
+}
+
+func printCorners(s *streams, p *pipeline.Plan, j *job.Job) {
+	if math.IsNaN(p.Corners[0].Level + p.Corners[1].Level + p.Corners[2].Level + p.Corners[3].Level) {
+		fmt.Fprintln(s.out, "surface  depends on place and time; bentray surface describes it")
+		return
+	}
+	for i, corner := range p.Corners {
+		head := ""
+		if i == 0 {
+			head = "surface"
+		}
+		fmt.Fprintf(s.out, "%-8s %.3f at %.1f, %.1f\n", head, corner.Level, corner.X, corner.Y)
 	}
 }
 

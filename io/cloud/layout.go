@@ -29,8 +29,9 @@ type Layout struct {
 type Added struct {
 	Name     string
 	Type     Type
-	Decimals int     // CSV decimals of a Float held by row
-	ByClass  []Value // by class; nil for a column held by row
+	Decimals int      // CSV decimals of a Float held by row
+	Names    []string // of a Label held by row: Chunk.Added holds positions in it
+	ByClass  []Value  // by class; nil for a column held by row
 }
 
 // Value is what the rows of one class have in a column. The zero Value is no

@@ -20,22 +20,43 @@ func ReadNumbers(r Rewriter, names ...string) ([][]float64, error) {
 		}
 		read.Numbers = append(read.Numbers, i)
 	}
+	numbers, _, err := ReadAll(r, read)
+	return numbers, err
+}
+
+// ReadAll reads the columns of a whole file, in the order of the request. It does
+// not close r.
+func ReadAll(r Rewriter, read Request) (numbers [][]float64, texts [][]string, err error) {
 	if err := r.Begin(read, Layout{}, nil); err != nil {
-		return nil, err
+		return nil, nil, err
 	}
-	table := make([][]float64, len(names))
+	numbers, texts = make([][]float64, len(read.Numbers)), make([][]string, len(read.Texts))
+	err = EachChunk(r, func(c *Chunk) {
+		for k := range numbers {
+			numbers[k] = append(numbers[k], c.Numbers[k]...)
+		}
+		for k := range texts {
+			for row := range c.Rows {
+				texts[k] = append(texts[k], string(c.Texts[k].At(row)))
+			}
+		}
+	})
+	return numbers, texts, err
+}
+
+// EachChunk reads a file, for which Begin was called, to its end and hands over
+// every decoded chunk. The chunk is valid until the function returns.
+func EachChunk(r Rewriter, do func(*Chunk)) error {
 	var c Chunk
 	for {
 		if err := r.Next(&c); err == io.EOF {
-			return table, nil
+			return nil
 		} else if err != nil {
-			return nil, err
+			return err
 		}
 		if err := r.Decode(&c); err != nil {
-			return nil, err
+			return err
 		}
-		for k := range names {
-			table[k] = append(table[k], c.Numbers[k]...)
-		}
+		do(&c)
 	}
 }

@@ -1,0 +1,100 @@
+package pipeline
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"slices"
+	"time"
+
+	"bentray/correct/medium"
+	"bentray/geo"
+	"bentray/io/cloud"
+	"bentray/pipeline/job"
+)
+
+// sensor is what made some of the points: its rays, and the air they came through.
+type sensor struct {
+	job.Sensor
+	wavelength         float64 // nm in vacuum
+	airPhase, airGroup float64
+	ranges             float64         // the index that the raw ranges were made with
+	trajectory         *geo.Trajectory // nil: origins come from the cloud, or are not needed
+	info               *TrajectoryInfo // nil without trajectory
+}
+
+// isPulse tells a sensor whose rays have an origin each.
+func (s *sensor) isPulse() bool { return s.Rays.Model == job.Pulse }
+
+func (s *sensor) isAny() bool { return true }
+
+// label names the sensor in a message; the only one has no name.
+func (s *sensor) label() string {
+	if s.Name == "" {
+		return ""
+	}
+	return fmt.Sprintf("sensor %q: ", s.Name)
+}
+
+func (s *survey) readSensors(ctx context.Context) error {
+	var faults []error
+	for _, js := range s.job.Sensors {
+		sn := &sensor{Sensor: js, wavelength: s.job.Wavelength(js)}
+		key := "[rays] trajectory"
+		if js.Name != "" {
+			key = fmt.Sprintf("[sensor.rays] trajectory of %q", js.Name)
+		}
+		faults = append(faults, sn.setAir(s.job), s.auxiliaryFile(ctx, "trajectory", key, js.Rays.Trajectory, func(path string) error {
+			return s.readTrajectory(sn, path)
+		}))
+		s.sensors = append(s.sensors, sn)
+	}
+	return errors.Join(faults...)
+}
+
+func (sn *sensor) setAir(j *job.Job) (err error) {
+	air := medium.Air{TemperatureC: j.Air.Temperature, PressureHPa: j.Air.Pressure, HumidityPercent: j.Air.Humidity, CO2PPM: j.Air.CO2}
+	sn.airPhase, sn.airGroup, err = air.Index(sn.wavelength)
+	sn.ranges = sn.airGroup
+	if sn.Rays.RangeIndex != nil {
+		sn.ranges = *sn.Rays.RangeIndex
+	}
+	return err
+}
+
+func (s *survey) readTrajectory(sn *sensor, path string) error {
+	f, err := openTable(path)
+	if err != nil {
+		return err
+	}
+	defer f.Close()
+	columns, err := cloud.ReadNumbers(f, "gps_time", "x", "y", "z")
+	if err != nil {
+		return err
+	}
+	if i, _ := cloud.Find(f.Columns(), "gps_time"); isTimestamp(f.Columns()[i]) {
+		s.fromUTC(columns[0])
+	}
+	sn.info = s.describe(columns)
+	scale(columns[1], s.plan)
+	scale(columns[2], s.plan)
+	scale(columns[3], s.height)
+	sn.trajectory, err = geo.NewTrajectory(columns[0], columns[1], columns[2], columns[3], sn.Rays.MaxGap)
+	return err
+}
+
+// describe sums up a trajectory's columns gps_time, x, y, z, in the job's units.
+func (s *survey) describe(columns [][]float64) *TrajectoryInfo {
+	t := columns[0]
+	if len(t) == 0 {
+		return nil
+	}
+	info := &TrajectoryInfo{Records: len(t), Times: [2]time.Time{s.times.Time(t[0]), s.times.Time(t[len(t)-1])}}
+	for k, column := range columns[1:] {
+		info.Low[k], info.High[k] = slices.Min(column), slices.Max(column)
+	}
+	for i := 1; i < len(t); i++ {
+		info.Gap = max(info.Gap, t[i]-t[i-1])
+	}
+	return info
+}

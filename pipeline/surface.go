@@ -1,0 +1,303 @@
+package pipeline
+
+import (
+	"context"
+	"crypto/sha256"
+	"encoding/binary"
+	"encoding/hex"
+	"errors"
+	"fmt"
+	"math"
+	"os"
+	"slices"
+
+	"bentray/correct"
+	"bentray/geo"
+	"bentray/io/cloud"
+	"bentray/pipeline/receipt"
+)
+
+// waterSurface says where the water is. It stands on one base, or on none where
+// zones or gauges hold the level; all in metres.
+type waterSurface struct {
+	level    float64 // constant
+	column   bool    // the cloud's own
+	plane    *geo.Plane
+	fit      *geo.PlaneFit // where the plane is fitted
+	profile  *geo.Profile
+	grid     *geo.Grid
+	constant bool // level is the base
+
+	zoneLevel  []float64 // by zone, NaN where it has none
+	gauges     *geo.Gauges
+	at         *float64 // UTC of clouds without times
+	separation *geo.Separation
+	curved     bool // planes differ from place to place
+	timed      bool // it depends on time
+}
+
+// isConstant tells that every point has the same level plane.
+func (f *waterSurface) isConstant() bool {
+	return f.constant && f.zoneLevel == nil && f.gauges == nil && f.separation == nil
+}
+
+// fill gives each plan position and time its plane of the water, with a level of
+// NaN where there is none. The zone of a point replaces the base. column holds the
+// cloud's own levels, where they are the base.
+func (f *waterSurface) fill(p correct.Planes, x, y, utc []float64, zone []int32, column []float64) {
+	switch {
+	case f.plane != nil:
+		f.plane.Fill(p.Level, p.SlopeX, p.SlopeY, x, y)
+	case f.profile != nil:
+		f.profile.Fill(p.Level, p.SlopeX, p.SlopeY, x, y)
+	case f.grid != nil:
+		f.grid.Fill(p.Level, p.SlopeX, p.SlopeY, x, y, utc)
+	case f.column:
+		geo.FillLevel(p.Level, p.SlopeX, p.SlopeY, 0)
+		copy(p.Level, column)
+	default:
+		geo.FillLevel(p.Level, p.SlopeX, p.SlopeY, f.level)
+	}
+	if f.zoneLevel != nil {
+		for i, z := range zone {
+			if z >= 0 && f.zoneLevel[z] == f.zoneLevel[z] {
+				p.Level[i], p.SlopeX[i], p.SlopeY[i] = f.zoneLevel[z], 0, 0
+			}
+		}
+	}
+	if f.gauges != nil {
+		f.gauges.Add(p.Level, x, y, utc)
+	}
+	if f.separation != nil {
+		f.separation.Add(p.Level, p.SlopeX, p.SlopeY, x, y)
+	}
+}
+
+// readSurface reads or fits the job's surface.
+func (s *survey) readSurface(ctx context.Context, clouds []input) error {
+	j, f := s.job.Surface, &s.surface
+	var err error
+	switch {
+	case j.Level != nil:
+		f.level, f.constant = *j.Level*s.height, true
+	case j.Column != "":
+		f.column = true
+	case j.Plane != nil && j.Plane.Waterline != "":
+		err = s.auxiliaryFile(ctx, "waterline", "[surface.plane] waterline", j.Plane.Waterline, s.readWaterline)
+	case j.Plane != nil:
+		f.plane = &geo.Plane{Level: *j.Plane.Level * s.height, AtX: j.Plane.At[0] * s.plan, AtY: j.Plane.At[1] * s.plan, SlopeX: *j.Plane.SlopeX, SlopeY: *j.Plane.SlopeY}
+	case j.Profile != nil:
+		f.curved = true
+		err = s.readProfile(ctx)
+	case j.Grid != nil:
+		f.curved = true
+		err = s.readGrid(ctx, clouds)
+	case j.Gauge != nil:
+		f.level = 0 // the gauge stands on its own zero
+	default:
+		f.level = math.NaN() // only zones have a level
+	}
+	return errors.Join(err, s.readOverSurface(ctx))
+}
+
+// readOverSurface reads what is added to the base.
+func (s *survey) readOverSurface(ctx context.Context) error {
+	j, f := s.job.Surface, &s.surface
+	var faults []error
+	if j.Gauge != nil {
+		f.timed, f.at = true, j.Gauge.At
+		faults = append(faults, s.auxiliaryFile(ctx, "gauge", "[surface.gauge] file", j.Gauge.File, s.readGauges))
+	}
+	if j.Separation != nil {
+		f.curved = true
+		faults = append(faults, s.auxiliaryFile(ctx, "separation", "[surface.separation] file", j.Separation.File, s.readSeparation))
+	}
+	for _, z := range s.zones.list {
+		f.zoneLevel = append(f.zoneLevel, z.Level*s.height)
+	}
+	return errors.Join(faults...)
+}
+
+// readXYZ reads the columns x, y, z of a table, in metres.
+func (s *survey) readXYZ(path string) (t *sheet, x, y, z []float64, err error) {
+	t, err = readSheet(path, sheetColumns{needed: []string{"x", "y", "z"}, optional: []string{timeColumn}})
+	if err != nil {
+		return nil, nil, nil, nil, err
+	}
+	x, y, z = t.numbers["x"], t.numbers["y"], t.numbers["z"]
+	s.scaleXYZ(correct.XYZ{X: x, Y: y, Z: z}, s.plan, s.height)
+	return t, x, y, z, nil
+}
+
+func (s *survey) readWaterline(path string) error {
+	_, x, y, z, err := s.readXYZ(path)
+	if err != nil {
+		return err
+	}
+	fit, err := geo.FitPlane(x, y, z)
+	if err != nil {
+		return err
+	}
+	s.surface.fit, s.surface.plane = &fit, &fit.Plane
+	return nil
+}
+
+func (s *survey) readProfile(ctx context.Context) error {
+	j := s.job.Surface.Profile
+	var lineX, lineY []float64
+	return errors.Join(
+		s.auxiliaryFile(ctx, "centreline", "[surface.profile] centreline", j.Centreline, func(path string) error {
+			data, err := os.ReadFile(path)
+			if err != nil {
+				return err
+			}
+			line, err := geo.ParseLine(data)
+			for _, p := range line {
+				lineX, lineY = append(lineX, p[0]*s.plan), append(lineY, p[1]*s.plan)
+			}
+			return err
+		}),
+		s.auxiliaryFile(ctx, "levels", "[surface.profile] levels", j.Levels, func(path string) error {
+			_, x, y, z, err := s.readXYZ(path)
+			if err == nil && lineX != nil {
+				s.surface.profile, err = geo.NewProfile(lineX, lineY, x, y, z, j.Reach*s.plan)
+			}
+			return err
+		}),
+	)
+}
+
+func (s *survey) readGrid(ctx context.Context, clouds []input) error {
+	if s.job.Surface.Grid.Points == "" {
+		return s.gridOfClouds(ctx, clouds)
+	}
+	return s.auxiliaryFile(ctx, "surface points", "[surface.grid] points", s.job.Surface.Grid.Points, func(path string) error {
+		t, x, y, z, err := s.readXYZ(path)
+		if err != nil {
+			return err
+		}
+		return s.makeGrid(x, y, z, t.utc)
+	})
+}
+
+func (s *survey) makeGrid(x, y, z, utc []float64) (err error) {
+	j := s.job.Surface.Grid
+	o := geo.GridOptions{Reach: j.Reach, Window: j.Window, Offset: j.Offset * s.height}
+	if j.Cell != nil {
+		o.Cell = *j.Cell * s.plan
+	}
+	s.surface.grid, err = geo.NewGrid(x, y, z, utc, o)
+	return err
+}
+
+func (s *survey) readGauges(path string) error {
+	t, err := readSheet(path, sheetColumns{needed: []string{timeColumn, "level"}, optional: []string{"x", "y"}, texts: []string{"name"}})
+	if err != nil {
+		return err
+	}
+	r := geo.GaugeRecords{UTC: t.utc, Level: t.numbers["level"], Name: t.texts["name"], X: t.numbers["x"], Y: t.numbers["y"]}
+	scale(r.Level, s.height)
+	scale(r.X, s.plan)
+	scale(r.Y, s.plan)
+	s.surface.curved = s.surface.curved || r.X != nil // the level differs between gauges
+	g := s.job.Surface.Gauge
+	s.surface.gauges, err = geo.NewGauges(r, g.Zero*s.height, g.MaxGap)
+	return err
+}
+
+func (s *survey) readSeparation(path string) error {
+	_, x, y, z, err := s.readXYZ(path)
+	if err != nil {
+		return err
+	}
+	s.surface.separation, err = geo.NewSeparation(x, y, z)
+	return err
+}
+
+// gridOfClouds makes the grid from the clouds' own surface points: all files of
+// the job are read, whichever of them a run does, so that tiles agree at their
+// seams. The points take part in the fingerprint.
+func (s *survey) gridOfClouds(ctx context.Context, clouds []input) error {
+	var x, y, z, utc []float64
+	unread := 0
+	for _, in := range clouds {
+		if err := ctx.Err(); err != nil {
+			return err
+		}
+		points, err := s.surfacePoints(in)
+		if err != nil {
+			unread++ // the file fails by itself when it is done
+			continue
+		}
+		x, y, z, utc = append(x, points[0]...), append(y, points[1]...), append(z, points[2]...), append(utc, points[3]...)
+	}
+	if unread > 0 {
+		s.cautions = append(s.cautions, fmt.Sprintf("%d of %d clouds could not be read for their surface points", unread, len(clouds)))
+	}
+	classes := s.job.Surface.Grid.Classes
+	if len(x) == 0 {
+		return fmt.Errorf("%s: [surface.grid] classes: no point of the clouds has a classification of %v", s.job.Path, classes)
+	}
+	s.auxiliary = append(s.auxiliary, receipt.Input{Use: "surface points", File: receipt.File{
+		Path: fmt.Sprintf("classification %v of %d clouds", classes, len(clouds)), Bytes: int64(32 * len(x)), SHA256: digest(x, y, z, utc),
+	}})
+	return s.makeGrid(x, y, z, utc)
+}
+
+// digest is the SHA-256 of columns of numbers.
+func digest(columns ...[]float64) string {
+	h := sha256.New()
+	for _, column := range columns {
+		_ = binary.Write(h, binary.LittleEndian, column) // a hash does not fail
+	}
+	return hex.EncodeToString(h.Sum(nil))
+}
+
+// surfacePoints returns x, y, z (m) and UTC (NaN without times) of a cloud's
+// points of the surface classes.
+func (s *survey) surfacePoints(in input) (points [4][]float64, err error) {
+	file, err := s.openCloud(in)
+	if err != nil {
+		return points, err
+	}
+	defer file.Close()
+	columns := file.Columns()
+	r := &reading{}
+	if r.xyz, err = cloud.Coordinates(columns, s.job.Input.Columns); err != nil {
+		return points, err
+	}
+	for _, i := range r.xyz {
+		r.number(i)
+	}
+	class, err := r.need(s.job, columns, "classification", "[surface.grid] classes looks at it")
+	if err != nil {
+		return points, err
+	}
+	if err := r.findTime(s, columns); err != nil {
+		return points, err
+	}
+	if err := file.Begin(r.request, cloud.Layout{}, nil); err != nil {
+		return points, err
+	}
+	return points, s.gather(file, r, class, &points)
+}
+
+// gather appends a cloud's surface points.
+func (s *survey) gather(file cloud.Rewriter, r *reading, class int, points *[4][]float64) error {
+	return cloud.EachChunk(file, func(c *cloud.Chunk) {
+		s.toScale(c, r)
+		for i, v := range c.Numbers[class] {
+			if !slices.Contains(s.job.Surface.Grid.Classes, int(v)) || v != math.Trunc(v) {
+				continue
+			}
+			utc := math.NaN()
+			if r.time >= 0 {
+				utc = s.times.UTC(c.Numbers[r.time][i])
+			}
+			points[0] = append(points[0], c.Numbers[0][i]*s.plan)
+			points[1] = append(points[1], c.Numbers[1][i]*s.plan)
+			points[2] = append(points[2], c.Numbers[2][i]*s.height)
+			points[3] = append(points[3], utc)
+		}
+	})
+}

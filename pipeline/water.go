@@ -1,0 +1,174 @@
+package pipeline
+
+import (
+	"fmt"
+	"math"
+	"os"
+
+	"github.com/paulmach/orb"
+
+	"bentray/correct"
+	"bentray/correct/medium"
+	"bentray/geo"
+)
+
+// waters says which water a point is in: its zone's, else the stations', else
+// the job's own.
+type waters struct {
+	formula  medium.WaterFormula
+	pressure float64
+	job      medium.Water // the job's own; NaN where it has none
+	stations *geo.Stations
+	sources  []string // names for the column water_source, by code
+}
+
+// Codes of sources; a zone's is firstZone plus its number.
+const (
+	fromJob = iota
+	fromStations
+	firstZone
+)
+
+// zones are waters with values of their own.
+type zones struct {
+	list    []geo.Zone
+	index   *geo.PolygonIndex // nil: no zones; in the cloud's own units
+	polygon []int32           // zone of each polygon of the index
+}
+
+// isConstant tells that all points have the job's own water.
+func (s *survey) isConstantWater() bool { return s.water.stations == nil && s.zones.index == nil }
+
+// constantIndex is the index of the job's own water for a sensor's light, which
+// was checked when the job was read.
+func (s *survey) constantIndex(sn *sensor) (phase, group float64) {
+	phase, group, _ = s.water.formula.Index(s.water.job, sn.wavelength)
+	return phase, group
+}
+
+func (s *survey) readZones(path string) error {
+	data, err := os.ReadFile(path)
+	if err != nil {
+		return err
+	}
+	if s.zones.list, err = geo.ParseZones(data); err != nil {
+		return err
+	}
+	var polygons []orb.Polygon
+	for i, z := range s.zones.list {
+		for _, polygon := range z.Polygons {
+			polygons = append(polygons, polygon)
+			s.zones.polygon = append(s.zones.polygon, int32(i))
+		}
+	}
+	s.zones.index = geo.NewPolygonIndex(polygons)
+	for _, pair := range geo.Overlaps(s.zones.list) {
+		s.cautions = append(s.cautions, fmt.Sprintf("zones %q and %q overlap: the smaller polygon wins", s.zones.list[pair[0]].Name, s.zones.list[pair[1]].Name))
+	}
+	return nil
+}
+
+func (s *survey) readStations(path string) error {
+	t, err := readSheet(path, sheetColumns{
+		needed: []string{"x", "y", "temperature", "salinity"}, optional: []string{timeColumn, "depth"}, texts: []string{"name"},
+	})
+	if err != nil {
+		return err
+	}
+	r := geo.StationRecords{
+		X: t.numbers["x"], Y: t.numbers["y"], Temperature: t.numbers["temperature"], Salinity: t.numbers["salinity"],
+		Name: t.texts["name"], UTC: t.utc, Depth: t.numbers["depth"],
+	}
+	scale(r.X, s.plan)
+	scale(r.Y, s.plan)
+	scale(r.Depth, s.height)
+	s.water.stations, err = geo.NewStations(r, s.job.Water.MaxGap)
+	return err
+}
+
+// readWaters checks the job's own water and names the sources.
+func (s *survey) readWaters() (err error) {
+	j, w := s.job, &s.water
+	if w.formula, err = medium.ParseWaterFormula(j.Water.Formula); err != nil {
+		return err
+	}
+	w.pressure = j.Water.PressureDbar
+	w.job = medium.Water{TemperatureC: math.NaN(), Salinity: math.NaN(), PressureDbar: w.pressure}
+	if j.Water.Temperature != nil {
+		w.job.TemperatureC, w.job.Salinity = *j.Water.Temperature, *j.Water.Salinity
+		for _, sn := range s.sensors {
+			if _, _, err := w.formula.Index(w.job, sn.wavelength); err != nil {
+				return err
+			}
+			if !w.formula.Published(w.job, sn.wavelength) && s.isConstantWater() {
+				s.cautions = append(s.cautions, fmt.Sprintf("the water (%g degrees C, salinity %g, %g nm) is outside the published range of %s; its index is an extension of the formula", w.job.TemperatureC, w.job.Salinity, sn.wavelength, w.formula))
+			}
+		}
+	}
+	if w.pressure != 0 && !w.formula.UsesPressure() {
+		s.cautions = append(s.cautions, fmt.Sprintf("pressure_dbar = %g has no effect: %s has no pressure term", w.pressure, w.formula))
+	}
+	w.sources = []string{"job", "stations"}
+	for _, z := range s.zones.list {
+		w.sources = append(w.sources, "zone "+z.Name)
+	}
+	return nil
+}
+
+// fillZones finds the zone of each raw point, -1 for none.
+func (s *survey) fillZones(w *workspace, x, y []float64) {
+	if s.zones.index == nil {
+		return
+	}
+	s.zones.index.Find(w.zone, x, y)
+	for i, polygon := range w.zone {
+		if polygon >= 0 {
+			w.zone[i] = s.zones.polygon[polygon]
+		}
+	}
+}
+
+// fillWater gives each point its temperature and salinity, NaN where there is
+// none, and says where they came from. Casts are averaged down to the depth.
+func (s *survey) fillWater(w *workspace, depth []float64) {
+	fill(w.temperature, s.water.job.TemperatureC)
+	fill(w.salinity, s.water.job.Salinity)
+	fill(w.source, fromJob)
+	if s.water.stations != nil {
+		s.water.stations.Fill(w.fromStations[0], w.fromStations[1], w.raw.X, w.raw.Y, w.utc, depth)
+		for i, t := range w.fromStations[0] {
+			if t == t {
+				w.temperature[i], w.salinity[i], w.source[i] = t, w.fromStations[1][i], fromStations
+			}
+		}
+	}
+	if s.zones.index == nil {
+		return
+	}
+	for i, zone := range w.zone {
+		if zone < 0 || math.IsNaN(s.zones.list[zone].Temperature) {
+			continue
+		}
+		w.temperature[i], w.salinity[i] = s.zones.list[zone].Temperature, s.zones.list[zone].Salinity
+		w.source[i] = float64(firstZone + zone)
+	}
+}
+
+// markWater sets NoWater and OutOfRange, and computes the indices of the others
+// for one sensor's light.
+func (s *survey) markWater(w *workspace, out []correct.Outcome, sn *sensor) {
+	for i := range out {
+		if out[i] != correct.Corrected {
+			continue
+		}
+		water := medium.Water{TemperatureC: w.temperature[i], Salinity: w.salinity[i], PressureDbar: s.water.pressure}
+		switch {
+		case math.IsNaN(water.TemperatureC):
+			out[i] = correct.NoWater
+		case !s.water.formula.Computed(water, sn.wavelength):
+			out[i] = correct.OutOfRange
+		default:
+			w.light.Water[i], w.light.WaterGroup[i], _ = s.water.formula.Index(water, sn.wavelength) // computed, so no error
+		}
+	}
+}
