@@ -106,7 +106,8 @@ func fillXYZ(p correct.XYZ, value float64) {
 }
 
 // meetSurface takes the plane of each point anew at its ray's entry, until the
-// entries no longer move. The planes end up at the raw positions.
+// entries no longer move. The planes end up at the raw positions. An entry that
+// has come to rest stays, so a point's result does not depend on its neighbours.
 func (s *survey) meetSurface(p *part, w *workspace) {
 	m := &w.meet
 	copy(m.lastX, w.raw.X)
@@ -119,6 +120,7 @@ func (s *survey) meetSurface(p *part, w *workspace) {
 				continue
 			}
 			moving = true
+			m.lastX[i], m.lastY[i] = m.x[i], m.y[i]
 			if try == meetTries-1 {
 				p.out[i] = correct.Unsolved
 			}
@@ -126,10 +128,8 @@ func (s *survey) meetSurface(p *part, w *workspace) {
 		if !moving {
 			return
 		}
-		copy(m.lastX, m.x)
-		copy(m.lastY, m.y)
-		s.surface.fill(p.planes, m.x, m.y, w.utc, w.zone, w.column)
-		p.planes.CarryToRaw(w.raw, m.x, m.y)
+		s.surface.fill(p.planes, m.lastX, m.lastY, w.utc, w.zone, w.column)
+		p.planes.CarryToRaw(w.raw, m.lastX, m.lastY)
 		correct.MarkNoSurface(p.out, p.planes)
 	}
 }
@@ -164,13 +164,16 @@ func (s *survey) throughWater(p *part, sn *sensor, w *workspace, model func()) {
 	w.light.Air, w.light.RangeIndex = sn.airPhase, sn.ranges
 	if s.isConstantWater() {
 		phase, group := s.constantIndex(sn)
-		fill(w.light.Water, phase)
-		fill(w.light.WaterGroup, group)
+		for i, o := range p.out {
+			if o != correct.NoRule {
+				w.light.Water[i], w.light.WaterGroup[i] = phase, group
+			}
+		}
 		model()
 		return
 	}
 	if !s.hasCasts() {
-		s.fillWater(w, nil)
+		s.fillWater(w, p.out, nil)
 		s.markWater(w, p.out, sn)
 		model()
 		return
@@ -180,31 +183,35 @@ func (s *survey) throughWater(p *part, sn *sensor, w *workspace, model func()) {
 
 func (s *survey) hasCasts() bool { return s.water.stations != nil && s.water.stations.HasDepths() }
 
-// throughCasts begins with the water down to the apparent depth.
+// throughCasts begins with the water down to the apparent depth. A depth that has
+// come to rest stays, and every try begins anew with what was grazing.
 func (s *survey) throughCasts(p *part, sn *sensor, w *workspace, model func()) {
 	depth := w.meet.depth
 	for i := range depth {
 		depth[i] = p.planes.Level[i] - w.raw.Z[i]
 	}
 	for try := range meetTries {
-		s.fillWater(w, depth)
+		s.fillWater(w, p.out, depth)
 		s.markWater(w, p.out, sn)
 		model()
 		moving := false
 		for i, o := range p.out {
-			if o != correct.Corrected {
+			if o != correct.Corrected || math.Abs(p.result.Depth[i]-depth[i]) < meetM {
 				continue
 			}
-			if math.Abs(p.result.Depth[i]-depth[i]) >= meetM {
-				moving = true
-				if try == meetTries-1 {
-					p.fail(i, correct.Unsolved)
-				}
-			}
+			moving = true
 			depth[i] = p.result.Depth[i]
+			if try == meetTries-1 {
+				p.fail(i, correct.Unsolved)
+			}
 		}
 		if !moving {
 			return
+		}
+		for i, o := range p.out {
+			if o == correct.Grazing {
+				p.out[i] = correct.Corrected
+			}
 		}
 	}
 }

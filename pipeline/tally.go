@@ -65,7 +65,9 @@ func (t *tally) add(w *workspace, c *cloud.Chunk, r *reading, s *survey) {
 			t.depth.add(w.result.Depth[i])
 			t.incidence.add(w.result.IncidenceRad[i])
 			t.water.add(w.light.Water[i])
-			t.group.add(w.light.WaterGroup[i])
+			if s.sensors[w.sensor[i]].isPulse() {
+				t.group.add(w.light.WaterGroup[i])
+			}
 			if !s.isConstantWater() && !s.isPublished(w, i) {
 				t.extended++
 			}

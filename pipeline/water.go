@@ -34,6 +34,7 @@ type zones struct {
 	list    []geo.Zone
 	index   *geo.PolygonIndex // nil: no zones; in the cloud's own units
 	polygon []int32           // zone of each polygon of the index
+	bound   orb.Bound
 }
 
 // isConstant tells that all points have the job's own water.
@@ -61,7 +62,7 @@ func (s *survey) readZones(path string) error {
 			s.zones.polygon = append(s.zones.polygon, int32(i))
 		}
 	}
-	s.zones.index = geo.NewPolygonIndex(polygons)
+	s.zones.index, s.zones.bound = geo.NewPolygonIndex(polygons), orb.MultiPolygon(polygons).Bound()
 	for _, pair := range geo.Overlaps(s.zones.list) {
 		s.cautions = append(s.cautions, fmt.Sprintf("zones %q and %q overlap: the smaller polygon wins", s.zones.list[pair[0]].Name, s.zones.list[pair[1]].Name))
 	}
@@ -129,29 +130,30 @@ func (s *survey) fillZones(w *workspace, x, y []float64) {
 }
 
 // fillWater gives each point its temperature and salinity, NaN where there is
-// none, and says where they came from. Casts are averaged down to the depth.
-func (s *survey) fillWater(w *workspace, depth []float64) {
-	fill(w.temperature, s.water.job.TemperatureC)
-	fill(w.salinity, s.water.job.Salinity)
-	fill(w.source, fromJob)
+// none, and says where they came from; points that are NoRule keep what they have.
+// Casts are averaged down to the depth.
+func (s *survey) fillWater(w *workspace, out []correct.Outcome, depth []float64) {
 	if s.water.stations != nil {
 		s.water.stations.Fill(w.fromStations[0], w.fromStations[1], w.raw.X, w.raw.Y, w.utc, depth)
-		for i, t := range w.fromStations[0] {
-			if t == t {
-				w.temperature[i], w.salinity[i], w.source[i] = t, w.fromStations[1][i], fromStations
-			}
+	}
+	for i, o := range out {
+		if o != correct.NoRule {
+			w.temperature[i], w.salinity[i], w.source[i] = s.waterOf(w, i)
 		}
 	}
-	if s.zones.index == nil {
-		return
-	}
-	for i, zone := range w.zone {
-		if zone < 0 || math.IsNaN(s.zones.list[zone].Temperature) {
-			continue
+}
+
+// waterOf returns the water of one point and the code of its source.
+func (s *survey) waterOf(w *workspace, i int) (temperature, salinity, source float64) {
+	if s.zones.index != nil && w.zone[i] >= 0 {
+		if z := &s.zones.list[w.zone[i]]; !math.IsNaN(z.Temperature) {
+			return z.Temperature, z.Salinity, float64(firstZone + w.zone[i])
 		}
-		w.temperature[i], w.salinity[i] = s.zones.list[zone].Temperature, s.zones.list[zone].Salinity
-		w.source[i] = float64(firstZone + zone)
 	}
+	if s.water.stations != nil && !math.IsNaN(w.fromStations[0][i]) {
+		return w.fromStations[0][i], w.fromStations[1][i], fromStations
+	}
+	return s.water.job.TemperatureC, s.water.job.Salinity, fromJob
 }
 
 // markWater sets NoWater and OutOfRange, and computes the indices of the others
