@@ -3,6 +3,8 @@ package pipeline
 import (
 	"fmt"
 	"math"
+
+	"github.com/paulmach/orb"
 )
 
 // Limits of what a plan takes for granted, in metres. Common practice, no source.
@@ -22,9 +24,17 @@ func (t *tally) geometryCautions(s *survey) []string {
 	if math.Max(math.Abs(x.low), math.Abs(x.high)) <= 180 && math.Max(math.Abs(y.low), math.Abs(y.high)) <= 90 {
 		say("all x lie within 180 and all y within 90: these look like degrees; coordinates must be projected lengths")
 	}
-	if e := s.extentBound; s.extent != nil && (e.Max[0] < x.low || e.Min[0] > x.high || e.Max[1] < y.low || e.Min[1] > y.high) {
-		say("the polygons (x %.1f to %.1f, y %.1f to %.1f) do not meet the points (x %.1f to %.1f, y %.1f to %.1f); are both in one projected system?",
-			e.Min[0], e.Max[0], e.Min[1], e.Max[1], x.low, x.high, y.low, y.high)
+	apart := func(what string, b orb.Bound) {
+		if b.Max[0] < x.low || b.Min[0] > x.high || b.Max[1] < y.low || b.Min[1] > y.high {
+			say("the %s (x %.1f to %.1f, y %.1f to %.1f) do not meet the points (x %.1f to %.1f, y %.1f to %.1f); are both in one projected system?",
+				what, b.Min[0], b.Max[0], b.Min[1], b.Max[1], x.low, x.high, y.low, y.high)
+		}
+	}
+	if s.extent != nil {
+		apart("polygons", s.extentBound)
+	}
+	if s.zones.index != nil {
+		apart("zones", s.zones.bound)
 	}
 	if s.surface.isConstant() {
 		cautions = append(cautions, s.levelCautions(*s.job.Surface.Level, math.Max(x.high-x.low, y.high-y.low)*s.plan, z)...)

@@ -62,7 +62,7 @@ func newLayout(s *survey, columns []cloud.Column, r *reading) (*layout, error) {
 		l.addAngles()
 		l.addIndices(s)
 		l.addWater(s)
-		l.addOrigins()
+		l.addOrigins(r)
 	}
 	l.label("run", everyPoint, func(*sensor, correct.Outcome) string { return s.run[:receipt.ShortLength] })
 	return l, l.checkNames(columns)
@@ -147,9 +147,10 @@ func (l *layout) addWater(s *survey) {
 	l.wateredOnly = append(l.wateredOnly, l.temperature, l.salinity, l.source)
 }
 
-// addOrigins adds the origins that come from a trajectory.
-func (l *layout) addOrigins() {
-	if !slices.ContainsFunc(l.sensors, func(sn *sensor) bool { return sn.trajectory != nil }) {
+// addOrigins adds the origins that come from a trajectory, unless the file has the
+// columns for sensors without one.
+func (l *layout) addOrigins(r *reading) {
+	if r.origin[0] >= 0 || !slices.ContainsFunc(l.sensors, func(sn *sensor) bool { return sn.trajectory != nil }) {
 		return
 	}
 	for k, name := range []string{"origin_x", "origin_y", "origin_z"} {

@@ -156,6 +156,19 @@ func (s *survey) toUnits(c *cloud.Chunk, l *layout, w *workspace) {
 	scale(w.result.RefractionRad, 1/radiansPerDegree)
 	clearUnless(traced, l.tracedOnly, c, w.out)
 	clearUnless(watered, l.wateredOnly, c, w.out)
+	s.clearGroups(c, l, w)
+}
+
+// clearGroups empties the group index of points that no pulse made.
+func (s *survey) clearGroups(c *cloud.Chunk, l *layout, w *workspace) {
+	if l.waterGroup < 0 || len(s.sensors) == 1 {
+		return
+	}
+	for i, k := range w.sensor {
+		if !s.sensors[k].isPulse() {
+			c.Added[l.waterGroup][i] = math.NaN()
+		}
+	}
 }
 
 // clearUnless empties columns by row where an outcome has no value in them.

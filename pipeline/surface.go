@@ -34,6 +34,8 @@ type waterSurface struct {
 	separation *geo.Separation
 	curved     bool // planes differ from place to place
 	timed      bool // it depends on time
+
+	source surfaceSource // what it was made from
 }
 
 // isConstant tells that every point has the same level plane.
@@ -76,6 +78,9 @@ func (f *waterSurface) fill(p correct.Planes, x, y, utc []float64, zone []int32,
 // readSurface reads or fits the job's surface.
 func (s *survey) readSurface(ctx context.Context, clouds []input) error {
 	j, f := s.job.Surface, &s.surface
+	if j.Gauge != nil {
+		f.timed, f.at = true, j.Gauge.At
+	}
 	var err error
 	switch {
 	case j.Level != nil:
@@ -105,7 +110,6 @@ func (s *survey) readOverSurface(ctx context.Context) error {
 	j, f := s.job.Surface, &s.surface
 	var faults []error
 	if j.Gauge != nil {
-		f.timed, f.at = true, j.Gauge.At
 		faults = append(faults, s.auxiliaryFile(ctx, "gauge", "[surface.gauge] file", j.Gauge.File, s.readGauges))
 	}
 	if j.Separation != nil {
@@ -139,6 +143,7 @@ func (s *survey) readWaterline(path string) error {
 		return err
 	}
 	s.surface.fit, s.surface.plane = &fit, &fit.Plane
+	s.surface.source.points(x, y, z)
 	return nil
 }
 
@@ -161,6 +166,8 @@ func (s *survey) readProfile(ctx context.Context) error {
 			_, x, y, z, err := s.readXYZ(path)
 			if err == nil && lineX != nil {
 				s.surface.profile, err = geo.NewProfile(lineX, lineY, x, y, z, j.Reach*s.plan)
+				s.surface.source.points(x, y, z)
+				s.surface.source.centreline(lineX, lineY, j.Reach*s.plan)
 			}
 			return err
 		}),
@@ -187,6 +194,7 @@ func (s *survey) makeGrid(x, y, z, utc []float64) (err error) {
 		o.Cell = *j.Cell * s.plan
 	}
 	s.surface.grid, err = geo.NewGrid(x, y, z, utc, o)
+	s.surface.source.area.add(x, y)
 	return err
 }
 
@@ -200,6 +208,7 @@ func (s *survey) readGauges(path string) error {
 	scale(r.X, s.plan)
 	scale(r.Y, s.plan)
 	s.surface.curved = s.surface.curved || r.X != nil // the level differs between gauges
+	s.surface.source.gauges = r
 	g := s.job.Surface.Gauge
 	s.surface.gauges, err = geo.NewGauges(r, g.Zero*s.height, g.MaxGap)
 	return err
@@ -210,6 +219,8 @@ func (s *survey) readSeparation(path string) error {
 	if err != nil {
 		return err
 	}
+	s.surface.source.separation.add(x, y)
+	s.surface.source.separationZ.addFinite(z)
 	s.surface.separation, err = geo.NewSeparation(x, y, z)
 	return err
 }
@@ -219,29 +230,34 @@ func (s *survey) readSeparation(path string) error {
 // seams. The points take part in the fingerprint.
 func (s *survey) gridOfClouds(ctx context.Context, clouds []input) error {
 	var x, y, z, utc []float64
-	unread := 0
+	var unread []error
 	for _, in := range clouds {
 		if err := ctx.Err(); err != nil {
 			return err
 		}
 		points, err := s.surfacePoints(in)
 		if err != nil {
-			unread++ // the file fails by itself when it is done
+			unread = append(unread, inFile(in.path, err)) // the file fails by itself when it is done
 			continue
 		}
 		x, y, z, utc = append(x, points[0]...), append(y, points[1]...), append(z, points[2]...), append(utc, points[3]...)
 	}
-	if unread > 0 {
-		s.cautions = append(s.cautions, fmt.Sprintf("%d of %d clouds could not be read for their surface points", unread, len(clouds)))
-	}
 	classes := s.job.Surface.Grid.Classes
-	if len(x) == 0 {
+	switch {
+	case len(unread) == len(clouds):
+		return fmt.Errorf("%s: [surface.grid] classes: none of the clouds can be read: %w", s.job.Path, unread[0])
+	case len(x) == 0:
 		return fmt.Errorf("%s: [surface.grid] classes: no point of the clouds has a classification of %v", s.job.Path, classes)
+	case len(unread) > 0:
+		s.cautions = append(s.cautions, fmt.Sprintf("%d of %d clouds could not be read for their surface points", len(unread), len(clouds)))
 	}
 	s.auxiliary = append(s.auxiliary, receipt.Input{Use: "surface points", File: receipt.File{
 		Path: fmt.Sprintf("classification %v of %d clouds", classes, len(clouds)), Bytes: int64(32 * len(x)), SHA256: digest(x, y, z, utc),
 	}})
-	return s.makeGrid(x, y, z, utc)
+	if err := s.makeGrid(x, y, z, utc); err != nil {
+		return fmt.Errorf("%s: [surface.grid] classes: %w", s.job.Path, err)
+	}
+	return nil
 }
 
 // digest is the SHA-256 of columns of numbers.
