@@ -35,6 +35,10 @@ func (f *planeFitter) finish() (PlaneFit, error) {
 		Residuals: f.r,
 		Sigma:     robustSigma(f.r, f.tmp, 3),
 		SetAside:  len(f.r) - int(s.n),
+		IsAside:   make([]bool, len(f.r)),
+	}
+	for i, r := range f.r {
+		fit.IsAside[i] = !(math.Abs(r) < cut)
 	}
 	det := s.uu*s.vv - s.uv*s.uv
 	fit.LevelSigma = math.Sqrt(unit / s.n)

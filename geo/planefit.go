@@ -37,6 +37,7 @@ type PlaneFit struct {
 	Residuals []float64 // z minus the plane, for each point as given, m
 	Sigma     float64   // 1-sigma of one point, m
 	SetAside  int       // points so far off that they have no weight
+	IsAside   []bool    // which these are
 
 	// 1-sigma of Level (m) and of the slopes; NaN for fewer than 4 points.
 	LevelSigma, SlopeXSigma, SlopeYSigma float64

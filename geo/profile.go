@@ -38,6 +38,7 @@ type ProfileFit struct {
 	Sigma     float64   // 1-sigma of one point, m
 	Beyond    int       // points beyond reach, not used
 	SetAside  int       // points so far off that they have no weight
+	IsAside   []bool    // which these are; false beyond reach
 	Knots     int       // levels between which the profile interpolates
 	Falling   bool      // the level falls along the line as given, or is constant
 }
@@ -97,6 +98,7 @@ type levelPoint struct {
 // project returns the level points within reach, sorted along the line.
 func (p *Profile) project(x, y, z []float64) ([]levelPoint, error) {
 	p.fit.Chainage, p.fit.Residuals = make([]float64, len(x)), make([]float64, len(x))
+	p.fit.IsAside = make([]bool, len(x))
 	var points []levelPoint
 	for i := range x {
 		if !isFinite(x[i], y[i], z[i]) {
@@ -132,6 +134,7 @@ func (p *Profile) regress(points []levelPoint) {
 		p.fit.Residuals[pt.number] = best.sign * best.r[i]
 		if best.weight[i] == 0 {
 			p.fit.SetAside++
+			p.fit.IsAside[pt.number] = true
 		}
 	}
 }

@@ -22,7 +22,7 @@ func (s *survey) correctChunk(c *cloud.Chunk, r *reading, l *layout, w *workspac
 	r.markNotSelected(w.out, c)
 	r.markNoRule(w, c)
 	s.markOutside(w, c)
-	s.fillZones(w, c.Numbers[0], c.Numbers[1])
+	s.fillZones(w.zone, c.Numbers[0], c.Numbers[1])
 	s.surface.fill(w.planes, w.raw.X, w.raw.Y, w.utc, w.zone, s.ownLevels(w, c, r))
 	correct.MarkNoSurface(w.out, w.planes)
 	correct.MarkDry(w.out, &w.result, w.raw, w.planes)

@@ -220,6 +220,7 @@ func (s *survey) readSeparation(path string) error {
 		return err
 	}
 	s.surface.source.separation.add(x, y)
+	s.surface.source.separationZ = emptySpan()
 	s.surface.source.separationZ.addFinite(z)
 	s.surface.separation, err = geo.NewSeparation(x, y, z)
 	return err

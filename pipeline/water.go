@@ -116,15 +116,16 @@ func (s *survey) readWaters() (err error) {
 	return nil
 }
 
-// fillZones finds the zone of each raw point, -1 for none.
-func (s *survey) fillZones(w *workspace, x, y []float64) {
+// fillZones finds the zone of each position in the cloud's own unit, -1 for none. It
+// does nothing where the job has no zones.
+func (s *survey) fillZones(zone []int32, x, y []float64) {
 	if s.zones.index == nil {
 		return
 	}
-	s.zones.index.Find(w.zone, x, y)
-	for i, polygon := range w.zone {
+	s.zones.index.Find(zone, x, y)
+	for i, polygon := range zone {
 		if polygon >= 0 {
-			w.zone[i] = s.zones.polygon[polygon]
+			zone[i] = s.zones.polygon[polygon]
 		}
 	}
 }
