@@ -59,8 +59,10 @@ func (p *part) scatter(w *workspace, sensor int) {
 // columns lists what a ray model writes.
 func (p *part) columns() [14][]float64 {
 	r := &p.result
-	return [14][]float64{r.X, r.Y, r.Z, r.Depth, r.WaterLevel, r.EntryLevel, r.IncidenceRad, r.RefractionRad,
-		p.origin.X, p.origin.Y, p.origin.Z, p.planes.Level, p.planes.SlopeX, p.planes.SlopeY}
+	return [14][]float64{
+		r.X, r.Y, r.Z, r.Depth, r.WaterLevel, r.EntryLevel, r.IncidenceRad, r.RefractionRad,
+		p.origin.X, p.origin.Y, p.origin.Z, p.planes.Level, p.planes.SlopeX, p.planes.SlopeY,
+	}
 }
 
 func (w *workspace) columns() [14][]float64 {

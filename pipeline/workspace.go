@@ -67,12 +67,21 @@ func (w *workspace) prepare(c *cloud.Chunk, l *layout, s *survey) {
 		column int
 		result *[]float64
 	}{
-		{l.depth, &w.result.Depth}, {l.waterLevel, &w.result.WaterLevel}, {l.entryLevel, &w.result.EntryLevel},
-		{l.slope[0], &w.planes.SlopeX}, {l.slope[1], &w.planes.SlopeY},
-		{l.incidence, &w.result.IncidenceRad}, {l.refraction, &w.result.RefractionRad},
-		{l.origin[0], &w.origin.X}, {l.origin[1], &w.origin.Y}, {l.origin[2], &w.origin.Z},
-		{l.temperature, &w.temperature}, {l.salinity, &w.salinity}, {l.source, &w.source},
-		{l.water, &w.light.Water}, {l.waterGroup, &w.light.WaterGroup},
+		{l.depth, &w.result.Depth},
+		{l.waterLevel, &w.result.WaterLevel},
+		{l.entryLevel, &w.result.EntryLevel},
+		{l.slope[0], &w.planes.SlopeX},
+		{l.slope[1], &w.planes.SlopeY},
+		{l.incidence, &w.result.IncidenceRad},
+		{l.refraction, &w.result.RefractionRad},
+		{l.origin[0], &w.origin.X},
+		{l.origin[1], &w.origin.Y},
+		{l.origin[2], &w.origin.Z},
+		{l.temperature, &w.temperature},
+		{l.salinity, &w.salinity},
+		{l.source, &w.source},
+		{l.water, &w.light.Water},
+		{l.waterGroup, &w.light.WaterGroup},
 	} {
 		if into.column >= 0 {
 			*into.result = c.Added[into.column]
