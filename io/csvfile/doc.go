@@ -29,9 +29,10 @@
 //
 // The header and every row keep their bytes, but for the fields x, y and z of
 // moved rows; behind them come the raw texts of x, y and z and the added
-// columns, in the input's separator (one space for blanks). Missing values are
-// empty, "" where blanks separate. A row keeps its line end. With Options.Names
-// the output gains a header line, because the added columns need names.
+// columns, in the input's separator (one space for blanks). Labels stand in
+// quotes where they need them. Missing values are empty, "" where blanks
+// separate. A row keeps its line end. With Options.Names the output gains a
+// header line, because the added columns need names.
 //
 // # Numbers
 //

@@ -22,6 +22,7 @@ type encoder struct {
 type piece struct {
 	column   int // in Chunk.Added
 	decimals int
+	names    [][]byte // of a label held by row, as fields; nil for numbers
 	byClass  [][]byte // by class: the run's fields, each with its separator in front
 }
 
@@ -81,7 +82,7 @@ func (f *File) addColumn(i int, a cloud.Added) error {
 	classes := len(f.layout.Moved)
 	switch {
 	case a.ByClass == nil && a.Type == cloud.Label:
-		return fmt.Errorf("column %q is a label held by row, want one by class", a.Name)
+		return f.addNames(i, a)
 	case a.ByClass == nil:
 		decimals := a.Decimals
 		if a.Type == cloud.Count {
@@ -125,8 +126,12 @@ func (f *File) headerOut() []byte {
 	return append(h, f.lineEnd...)
 }
 
-// Encode makes the output's bytes from Class, XYZ and Added.
+// Encode makes the output's bytes from Class, XYZ and Added. It fails where a
+// row's position in a label's names is none of them.
 func (f *File) Encode(c *cloud.Chunk) error {
+	if err := f.checkPositions(c); err != nil {
+		return fmt.Errorf("%s: %w", f.path, err)
+	}
 	b := c.Format.(*block)
 	out := b.out[:0]
 	for i := range b.rows[:c.Rows] {
@@ -159,7 +164,11 @@ func (f *File) appendRow(out []byte, b *block, c *cloud.Chunk, i int) []byte {
 			continue
 		}
 		out = append(out, byte(f.sep))
-		out = f.appendNumber(out, c.Added[p.column][i], p.decimals)
+		if v := c.Added[p.column][i]; p.names != nil && v == v {
+			out = append(out, p.names[int(v)]...)
+		} else {
+			out = f.appendNumber(out, v, p.decimals)
+		}
 	}
 	return append(out, b.text[r.end:r.next]...)
 }

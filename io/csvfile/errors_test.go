@@ -182,7 +182,7 @@ func TestBeginErrors(t *testing.T) {
 		{"a.csv: x, y and z are columns 0, 1 and 1, want three different ones", func(l *cloud.Layout, _ *cloud.Request) { l.XYZ[2] = 1 }},
 		{"a.csv: decimals of coordinates are 16, want 0 to 15", func(l *cloud.Layout, _ *cloud.Request) { l.Decimals = 16 }},
 		{`a.csv: decimals of "d" are -1, want 0 to 15`, func(l *cloud.Layout, _ *cloud.Request) { l.Added = []cloud.Added{{Name: "d", Decimals: -1}} }},
-		{`a.csv: column "d" is a label held by row, want one by class`, func(l *cloud.Layout, _ *cloud.Request) { l.Added = []cloud.Added{{Name: "d", Type: cloud.Label}} }},
+		{`a.csv: column "d" is a label held by row without names, want names, or one by class`, func(l *cloud.Layout, _ *cloud.Request) { l.Added = []cloud.Added{{Name: "d", Type: cloud.Label}} }},
 		{`a.csv: column "d" has values for 1 classes, want 2`, func(l *cloud.Layout, _ *cloud.Request) {
 			l.Added = []cloud.Added{{Name: "d", ByClass: make([]cloud.Value, 1)}}
 		}},

@@ -1,6 +1,7 @@
 package parquetfile
 
 import (
+	"fmt"
 	"io"
 	"testing"
 
@@ -109,6 +110,30 @@ func BenchmarkEncode(b *testing.B) {
 		}
 	}
 	b.ReportMetric(float64(b.Elapsed().Nanoseconds())/float64(b.N)/float64(c.Rows), "ns/row")
+}
+
+// BenchmarkLabels makes pages of a label held by row, in runs and without.
+func BenchmarkLabels(b *testing.B) {
+	for _, count := range []int{3, 300, 5000} {
+		b.Run(fmt.Sprint(count, " names"), func(b *testing.B) {
+			d, err := newNames(&cloud.Added{Names: labelNames(count), Type: cloud.Label})
+			if err != nil {
+				b.Fatal(err)
+			}
+			var e encoder
+			var g pages
+			positions := labelPositions(count, 1)[:pieceRows]
+			b.SetBytes(8 * pieceRows)
+			b.ReportAllocs()
+			for b.Loop() {
+				g.bytes, g.ends, g.stats = g.bytes[:0], g.ends[:0], g.stats[:0]
+				if err := e.labels(&g, positions, d); err != nil {
+					b.Fatal(err)
+				}
+			}
+			b.ReportMetric(float64(b.Elapsed().Nanoseconds())/float64(b.N)/pieceRows, "ns/row")
+		})
+	}
 }
 
 // BenchmarkRewrite copies a whole file with two workers.

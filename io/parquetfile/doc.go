@@ -34,7 +34,8 @@
 // New columns are OPTIONAL. Numbers by row are PLAIN and not compressed: the low
 // bits of a computed coordinate are noise, and snappy takes the time without
 // taking the bytes. Columns by class are dictionaries with run lengths, a few
-// bytes a page where all rows agree.
+// bytes a page where all rows agree. So are labels by row: every row group has
+// the dictionary of all names, and of each row as many bits as tell them apart.
 //
 // # Memory and damage
 //

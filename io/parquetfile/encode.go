@@ -14,8 +14,9 @@ import (
 type encoder struct {
 	levels []uint8
 	codes  []uint8
-	coded  []byte // levels, encoded
-	runs   []byte // codes, encoded
+	names  []uint32 // codes of a label held by row
+	coded  []byte   // levels, encoded
+	runs   []byte   // codes, encoded
 	merged []float64
 }
 
@@ -87,11 +88,17 @@ func (o *output) encodeCoordinate(c *cloud.Chunk, p *piece, k int) error {
 }
 
 func (o *output) encodeAdded(c *cloud.Chunk, p *piece, i int) error {
-	a := &o.layout.Added[i]
-	if a.ByClass != nil {
-		return p.work.classes(&p.pages, c.Class[:c.Rows], o.dictionaries[i])
+	a, d := &o.layout.Added[i], o.dictionaries[i]
+	var err error
+	switch {
+	case a.ByClass != nil:
+		return p.work.classes(&p.pages, c.Class[:c.Rows], d)
+	case a.Type == cloud.Label:
+		err = p.work.labels(&p.pages, c.Added[i][:c.Rows], d)
+	default:
+		err = p.work.numbers(&p.pages, c.Added[i][:c.Rows], a.Type, isNaN)
 	}
-	if err := p.work.numbers(&p.pages, c.Added[i][:c.Rows], a.Type, isNaN); err != nil {
+	if err != nil {
 		return fmt.Errorf("column %q: %w", a.Name, err)
 	}
 	return nil

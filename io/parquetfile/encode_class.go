@@ -11,13 +11,15 @@ import (
 	"github.com/xitongsys/parquet-go/parquet"
 )
 
-// dictionary holds the distinct values of a column by class.
+// dictionary holds the distinct values of a column by class, or the names of a
+// label held by row.
 type dictionary struct {
-	values [][]byte // PLAIN, texts without their length
-	page   []byte   // the dictionary page; empty where no class has a value
-	width  uint     // of a code
-	code   [256]uint8
-	set    [256]uint8 // 1 for classes that have a value
+	values     [][]byte // PLAIN, texts without their length
+	page       []byte   // the dictionary page; empty where no class has a value
+	width      uint     // of a code
+	code       [256]uint8
+	set        [256]uint8 // 1 for classes that have a value
+	byPosition []uint32   // codes of names; nil for a column by class
 }
 
 // newDictionary encodes the values of a column's classes; a number that is NaN
@@ -44,8 +46,7 @@ func newDictionary(a *cloud.Added) (*dictionary, error) {
 	if len(d.values) == 0 {
 		return d, nil
 	}
-	d.width = uint(max(bits.Len(uint(len(d.values)-1)), 1)) // some readers do not know width 0
-	return d, d.makePage(a.Type)
+	return d, d.makePage(a)
 }
 
 func plainValue(t cloud.Type, v cloud.Value) ([]byte, error) {
@@ -59,16 +60,18 @@ func plainValue(t cloud.Type, v cloud.Value) ([]byte, error) {
 	return binary.LittleEndian.AppendUint64(nil, math.Float64bits(v.Number)), nil
 }
 
-func (d *dictionary) makePage(t cloud.Type) (err error) {
+// makePage encodes the values, of which there is one at least.
+func (d *dictionary) makePage(a *cloud.Added) (err error) {
+	d.width = uint(max(bits.Len(uint(len(d.values)-1)), 1)) // some readers do not know width 0
 	var data []byte
 	for _, v := range d.values {
-		if t == cloud.Label {
+		if a.Type == cloud.Label {
 			data = binary.LittleEndian.AppendUint32(data, uint32(len(v)))
 		}
 		data = append(data, v...)
 	}
 	if len(data) > maxDictBytes {
-		return fmt.Errorf("the values of the classes have %d bytes, want at most %d", len(data), maxDictBytes)
+		return fmt.Errorf("column %q: the values have %d bytes, want at most %d", a.Name, len(data), maxDictBytes)
 	}
 	d.page, err = appendThrift(nil, &parquet.PageHeader{
 		Type:                 parquet.PageType_DICTIONARY_PAGE,
@@ -100,20 +103,25 @@ func (e *encoder) classes(g *pages, class []uint8, d *dictionary) error {
 			e.levels[i] = d.set[c]
 		}
 	}
-	e.coded = e.appendLevels(e.coded[:0], len(class), set)
 	e.runs = e.runs[:0]
 	switch {
 	case len(d.values) == 0:
 	case same:
-		e.runs = appendRun(append(e.runs, byte(d.width)), set, code)
+		e.runs = appendRun(append(e.runs, byte(d.width)), set, code, d.width)
 	default:
 		e.runs = appendRuns(append(e.runs, byte(d.width)), e.codesOf(class, d), d.width)
 	}
-	if err := g.header(d.encoding(), len(class), len(e.coded)+len(e.runs)); err != nil {
+	return e.codedPage(g, d, len(class), set, stats{})
+}
+
+// codedPage ends a page of codes: those in e.runs, of which set rows have one.
+func (e *encoder) codedPage(g *pages, d *dictionary, rows, set int, s stats) error {
+	e.coded = e.appendLevels(e.coded[:0], rows, set)
+	if err := g.header(d.encoding(), rows, len(e.coded)+len(e.runs)); err != nil {
 		return err
 	}
 	g.bytes = append(append(g.bytes, e.coded...), e.runs...)
-	g.close(stats{})
+	g.close(s)
 	return nil
 }
 

@@ -93,14 +93,18 @@ func (o *output) writeChunk(k int) (*parquet.ColumnChunk, error) {
 	return &parquet.ColumnChunk{FileOffset: start, MetaData: m}, nil
 }
 
-// describeAdded fills in what differs between columns by row and by class, and
-// writes the dictionary of the latter.
+// describeAdded fills in what differs between numbers by row and columns with a
+// dictionary, and writes the latter's.
 func (o *output) describeAdded(m *parquet.ColumnMetaData, a *cloud.Added, d *dictionary, k int) error {
 	if d == nil {
 		m.Statistics = o.stats[k].thrift(a.Type)
 		return nil
 	}
-	m.Statistics = d.stats(a, &o.counts)
+	if d.byPosition != nil {
+		m.Statistics = d.nameStats(o.stats[k])
+	} else {
+		m.Statistics = d.stats(a, &o.counts)
+	}
 	if len(d.page) == 0 {
 		return nil
 	}

@@ -14,7 +14,7 @@ import (
 type output struct {
 	file         *File
 	layout       cloud.Layout
-	dictionaries []*dictionary // by added column; nil where it goes by row
+	dictionaries []*dictionary // by added column; nil for numbers by row
 	schema       []*parquet.SchemaElement
 	paths        [][]string // of all columns, in the order of the row groups
 	groups       []*parquet.RowGroup
@@ -46,11 +46,14 @@ func newOutput(f *File, layout cloud.Layout, out io.Writer) (*output, error) {
 		if err := checkAdded(a, len(layout.Moved)); err != nil {
 			return nil, err
 		}
-		if a.ByClass == nil {
-			continue
-		}
 		var err error
-		if o.dictionaries[i], err = newDictionary(a); err != nil {
+		switch {
+		case a.ByClass != nil:
+			o.dictionaries[i], err = newDictionary(a)
+		case a.Type == cloud.Label:
+			o.dictionaries[i], err = newNames(a)
+		}
+		if err != nil {
 			return nil, err
 		}
 	}
@@ -62,8 +65,8 @@ func newOutput(f *File, layout cloud.Layout, out io.Writer) (*output, error) {
 
 func checkAdded(a *cloud.Added, classes int) error {
 	switch {
-	case a.ByClass == nil && a.Type == cloud.Label:
-		return fmt.Errorf("column %q is a text by row, want texts by class", a.Name)
+	case a.ByClass == nil && a.Type == cloud.Label && len(a.Names) == 0:
+		return fmt.Errorf("column %q is a text by row without names, want names, or texts by class", a.Name)
 	case a.ByClass != nil && len(a.ByClass) != classes:
 		return fmt.Errorf("column %q has %d classes, want %d", a.Name, len(a.ByClass), classes)
 	}

@@ -26,9 +26,9 @@ func (e *encoder) appendLevels(b []byte, rows, set int) []byte {
 	b = append(b, 0, 0, 0, 0)
 	switch set {
 	case rows:
-		b = appendRun(b, rows, 1)
+		b = appendRun(b, rows, uint8(1), 1)
 	case 0:
-		b = appendRun(b, rows, 0)
+		b = appendRun(b, rows, uint8(0), 1)
 	default:
 		b = appendRuns(b, e.levels[:rows], 1)
 	}
