@@ -264,3 +264,23 @@ func makeFolders(root string, inputs []input) error {
 	}
 	return nil
 }
+
+// CheckPicture refuses to write a picture over a file of the job, or in a file that
+// is named as something else. Its errors are *CallErrors.
+func CheckPicture(j *job.Job, path string) error {
+	if !strings.EqualFold(filepath.Ext(path), ".png") {
+		return callErrorf("picture is %q, want a name that ends in .png", path)
+	}
+	inputs := otherFiles(j)
+	if clouds, _, err := findInputs(j); err == nil { // a surface can be looked at before the clouds are there
+		for _, in := range clouds {
+			inputs = append(inputs, in.path)
+		}
+	}
+	for _, input := range inputs {
+		if filepath.Clean(path) == filepath.Clean(input) || sameFile(path, input) {
+			return callErrorf("the picture %s would overwrite %s, which the job reads; give another name", path, input)
+		}
+	}
+	return nil
+}

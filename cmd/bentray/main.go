@@ -40,6 +40,7 @@ type cli struct {
 	Plan    planCommand      `cmd:"" help:"Show what run would do, or a cloud's columns and a starting job."`
 	Index   indexCommand     `cmd:"" help:"Refractive index and speed of sound of given water and air."`
 	Ray     rayCommand       `cmd:"" help:"Bend one ray, step by step, for a check by hand."`
+	Surface surfaceCommand   `cmd:"" help:"Describe a job's water surface, and draw it."`
 	Demo    demoCommand      `cmd:"" help:"Write a small made-up survey with known truth, correct it and report."`
 	Version kong.VersionFlag `help:"Print the version and stop."`
 }

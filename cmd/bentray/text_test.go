@@ -51,7 +51,7 @@ func TestJoinNegatives(t *testing.T) {
 
 // Every command has a help that ends in an example and its exit codes.
 func TestHelp(t *testing.T) {
-	for _, command := range []string{"run", "plan", "index", "ray", "demo"} {
+	for _, command := range []string{"run", "plan", "index", "ray", "surface", "demo"} {
 		code, out, errs := call(t, command, "--help")
 		want(t, command, code, exitDone, errs, "")
 		example, codes := strings.Index(out, "bentray "+command+" "), strings.Index(out, "Exit codes: 0 ")

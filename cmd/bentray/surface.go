@@ -1,0 +1,217 @@
+package main
+
+import (
+	"errors"
+	"fmt"
+	"time"
+
+	"bentray/pipeline"
+	"bentray/pipeline/job"
+	"bentray/pipeline/picture"
+)
+
+type surfaceCommand struct {
+	Job string `arg:"" help:"The job file (TOML)."`
+	PNG string `name:"png" help:"Also draw the surface into this file." placeholder:"FILE"`
+}
+
+func (surfaceCommand) Help() string {
+	return `The water surface of a job is read or fitted as a run does, and described: its level and slopes, how well the points agree with it and how many are set aside, what zones, gauge and separation add. Errors behind ± are 1-sigma. With --png also a picture: a map of the level, and what there is to see of its fit and its course over time.
+
+Example:
+
+    bentray demo demo-out && bentray surface demo-out/river/river.toml --png surface.png
+
+Exit codes: 0 done; 1 the picture cannot be written; 64 the call or the job is wrong, nothing was written; 130 interrupted.`
+}
+
+// Run describes the surface.
+func (c *surfaceCommand) Run(s *streams) error {
+	j, err := loadJob(c.Job)
+	if err != nil {
+		return err
+	}
+	if c.PNG != "" {
+		if err := pipeline.CheckPicture(j, c.PNG); err != nil {
+			return err
+		}
+	}
+	r, err := pipeline.DescribeSurface(s.ctx, j)
+	if err != nil {
+		return err
+	}
+	p := surfacePrinter{s, r, j}
+	p.print()
+	if c.PNG == "" {
+		return nil
+	}
+	if err := picture.WriteSurface(c.PNG, r); err != nil {
+		if errors.Is(err, picture.ErrNothing) {
+			err = &pipeline.CallError{Err: fmt.Errorf("--png: %w", err)}
+		}
+		return err
+	}
+	p.row("picture", "%s", c.PNG)
+	return nil
+}
+
+// surfacePrinter writes a report as aligned text.
+type surfacePrinter struct {
+	*streams
+	r *pipeline.SurfaceReport
+	j *job.Job
+}
+
+// row writes one line.
+func (p *surfacePrinter) row(head, format string, args ...any) {
+	fmt.Fprintf(p.out, "%-10s %s\n", head, fmt.Sprintf(format, args...))
+}
+
+func (p *surfacePrinter) print() {
+	p.row("job", "%s%s", p.j.Path, quoted(p.j.Title))
+	p.base()
+	if z := p.r.Zones; z != nil {
+		p.zones(z)
+	}
+	if g := p.r.Gauge; g != nil {
+		p.gauge(g)
+	}
+	if sep := p.r.Separation; sep != nil {
+		p.row("separation", "%s, added, from %s", p.heights(sep.Range), p.j.Surface.Separation.File)
+		p.extent(sep.Extent)
+	}
+	p.overview()
+	for _, caution := range p.r.Cautions {
+		p.row("caution:", "%s", caution)
+	}
+}
+
+func (p *surfacePrinter) base() {
+	switch r := p.r; {
+	case r.Level != nil:
+		p.row("surface", "one level, %g %s", *r.Level, r.VerticalUnit)
+	case r.Column != "":
+		p.row("surface", "levels from the clouds' column %q", r.Column)
+	case r.Plane != nil:
+		p.plane(r.Plane)
+	case r.Profile != nil:
+		p.profile(r.Profile)
+	case r.Grid != nil:
+		p.grid(r.Grid)
+	case r.Gauge != nil:
+		p.row("surface", "level, as the gauge has it")
+	default:
+		p.row("surface", "in zones alone")
+	}
+}
+
+func (p *surfacePrinter) plane(r *pipeline.PlaneReport) {
+	if r.Fit == nil {
+		p.row("surface", "plane as given")
+	} else {
+		p.row("surface", "plane fitted to %s", p.j.Surface.Plane.Waterline)
+		p.fit(r.Fit)
+	}
+	p.row("level", "%.4f%s %s at x %.1f, y %.1f", r.Level, sigma("%.4f", r.LevelSigma), p.r.VerticalUnit, r.AtX, r.AtY)
+	p.row("slopes", "x %.7f%s, y %.7f%s", r.SlopeX, sigma("%.7f", r.SlopeXSigma), r.SlopeY, sigma("%.7f", r.SlopeYSigma))
+	if slope, bearing := r.Fall(); slope > 0 {
+		p.row("", "falls %.4f in 1000 towards %.1f degrees, clockwise from +y", 1000*slope, bearing)
+	}
+}
+
+// sigma writes a standard error, or nothing where it is not known.
+func sigma(format string, v float64) string {
+	if v != v {
+		return ""
+	}
+	return " ± " + fmt.Sprintf(format, v)
+}
+
+func (p *surfacePrinter) fit(f *pipeline.FitReport) {
+	p.row("points", "%s: %s used, %s set aside", grouped(int64(len(f.Points))), grouped(int64(f.Used)), grouped(int64(f.SetAside)))
+	unit := p.r.VerticalUnit
+	p.row("residuals", "rms %.4f %s, largest %.4f %s; 1-sigma of a point %.4f %s", f.RMS, unit, f.Largest, unit, f.Sigma, unit)
+	if f.SetAside > 0 {
+		p.row("", "up to %.3f %s of those set aside", f.Farthest, unit)
+	}
+}
+
+func (p *surfacePrinter) profile(r *pipeline.ProfileReport) {
+	course := "rising"
+	if r.Falling {
+		course = "falling"
+	}
+	p.row("surface", "profile along %s, levels from %s", p.j.Surface.Profile.Centreline, p.j.Surface.Profile.Levels)
+	p.fit(&r.Fit)
+	if r.Beyond > 0 {
+		p.row("", "%s beyond the reach of %g %s, not used", grouped(int64(r.Beyond)), r.Reach, p.r.Unit)
+	}
+	p.row("line", "%.1f %s long, as drawn the level is %s; %s", r.Length, p.r.Unit, course, plural(r.Knots, "knot"))
+	for i, end := range []pipeline.CurvePoint{r.First, r.Last} {
+		p.row([]string{"level", ""}[i], "%.4f%s %s at %.1f %s along the line", end.Level, sigma("%.4f", end.Sigma), p.r.VerticalUnit, end.Chainage, p.r.Unit)
+	}
+}
+
+func (p *surfacePrinter) grid(r *pipeline.GridReport) {
+	j := p.j.Surface.Grid
+	from := j.Points
+	if from == "" {
+		from = fmt.Sprintf("the clouds' points of classes %v", j.Classes)
+	}
+	p.row("surface", "grid through %s", from)
+	ignored := ""
+	if r.Ignored > 0 {
+		ignored = fmt.Sprintf("; %s without finite coordinates ignored", grouped(int64(r.Ignored)))
+	}
+	p.row("points", "%s used%s", grouped(int64(r.Points)), ignored)
+	p.extent(r.Extent)
+	p.row("cells", "%.3g %s wide; %s with a surface of their own, %s local fits", r.Cell, p.r.Unit, grouped(int64(r.Cells)), grouped(int64(r.Patches)))
+	p.row("", "gaps filled within %g cells, points within %g s", r.Reach, r.Window)
+	p.row("level", "%s, offset of %g %s included", p.heights(r.Level), r.Offset, p.r.VerticalUnit)
+	p.row("", "1-sigma of a cell %.4f %s (median)", r.Sigma, p.r.VerticalUnit)
+}
+
+func (p *surfacePrinter) zones(z *pipeline.ZonesReport) {
+	switch z.WithLevel {
+	case 0:
+		p.row("zones", "%d from %s, none with a level of its own", z.Count, p.j.Water.Zones)
+	default:
+		p.row("zones", "%d from %s, %d with a level of its own: %s", z.Count, p.j.Water.Zones, z.WithLevel, p.heights(z.Level))
+	}
+}
+
+func (p *surfacePrinter) gauge(g *pipeline.GaugeReport) {
+	p.row("gauge", "%s from %s, %s", plural(g.Records, "record"), p.j.Surface.Gauge.File, plural(len(g.Series), "gauge"))
+	p.row("", "%s to %s", g.From.Format(time.RFC3339), g.To.Format(time.RFC3339))
+	p.row("", "adds %s (zero at %g %s)", p.heights(g.Level), p.j.Surface.Gauge.Zero, p.r.VerticalUnit)
+	gaps := "none longer"
+	if g.Gaps > 0 {
+		gaps = fmt.Sprintf("%d longer, without a level", g.Gaps)
+	}
+	p.row("", "longest gap %g s; max_gap %g s, %s", g.LongestGap, g.MaxGap, gaps)
+}
+
+// overview says what the map shows, whether it is drawn or not.
+func (p *surfacePrinter) overview() {
+	m := p.r.Map
+	if m == nil {
+		return
+	}
+	at := ""
+	if m.At != nil {
+		at = " at " + m.At.Format(time.RFC3339)
+	}
+	p.row("altogether", "%s%s, at %d by %d places", p.heights(m.Level), at, len(m.X), len(m.Y))
+	p.extent(pipeline.Extent{X: pipeline.Range{Low: m.X[0], High: m.X[len(m.X)-1]}, Y: pipeline.Range{Low: m.Y[0], High: m.Y[len(m.Y)-1]}})
+}
+
+func (p *surfacePrinter) extent(e pipeline.Extent) {
+	p.row("", "x %.1f to %.1f, y %.1f to %.1f %s", e.X.Low, e.X.High, e.Y.Low, e.Y.High, p.r.Unit)
+}
+
+func (p *surfacePrinter) heights(r pipeline.Range) string {
+	if r.Low == r.High {
+		return fmt.Sprintf("%.4f %s", r.Low, p.r.VerticalUnit)
+	}
+	return fmt.Sprintf("%.4f to %.4f %s", r.Low, r.High, p.r.VerticalUnit)
+}
