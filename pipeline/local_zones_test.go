@@ -191,22 +191,30 @@ func TestWaterByPrecedence(t *testing.T) {
 		outcomes, sources  []string
 		temperature, level string // of all rows
 	}{
-		{"all", seaWater + zones + stations + surface,
+		{
+			"all", seaWater + zones + stations + surface,
 			[]string{"corrected", "corrected", "corrected", "corrected", "corrected", "corrected"},
 			[]string{"zone Warm", "stations", "stations", "job", "zone Warm", "stations"},
-			"20.0000 12.0000 12.0000 17.5000 20.0000 13.0000", "0.0000 1.5000 0.0000 0.0000 0.0000 0.0000"},
-		{"no constants", "[water]\n" + zones + stations + surface,
+			"20.0000 12.0000 12.0000 17.5000 20.0000 13.0000", "0.0000 1.5000 0.0000 0.0000 0.0000 0.0000",
+		},
+		{
+			"no constants", "[water]\n" + zones + stations + surface,
 			[]string{"corrected", "corrected", "corrected", "no_water", "corrected", "corrected"},
 			[]string{"zone Warm", "stations", "stations", "", "zone Warm", "stations"},
-			"20.0000 12.0000 12.0000  20.0000 13.0000", "0.0000 1.5000 0.0000  0.0000 0.0000"},
-		{"zones alone", "[water]\n" + zones + surface,
+			"20.0000 12.0000 12.0000  20.0000 13.0000", "0.0000 1.5000 0.0000  0.0000 0.0000",
+		},
+		{
+			"zones alone", "[water]\n" + zones + surface,
 			[]string{"corrected", "no_water", "no_water", "no_water", "corrected", "no_water"},
 			[]string{"zone Warm", "", "", "", "zone Warm", ""},
-			"20.0000    20.0000 ", "0.0000    0.0000 "},
-		{"levels from zones alone", seaWater + zones,
+			"20.0000    20.0000 ", "0.0000    0.0000 ",
+		},
+		{
+			"levels from zones alone", seaWater + zones,
 			[]string{"no_surface", "corrected", "no_surface", "no_surface", "no_surface", "no_surface"},
 			[]string{"", "job", "", "", "", ""},
-			" 17.5000    ", " 1.5000    "},
+			" 17.5000    ", " 1.5000    ",
+		},
 	} {
 		t.Run(test.name, func(t *testing.T) {
 			got := correctFiles(t, f, vertical+test.tables)
