@@ -1,0 +1,203 @@
+package pipeline
+
+import (
+	"bytes"
+	"fmt"
+	"maps"
+	"math"
+	"path/filepath"
+	"slices"
+	"strings"
+	"testing"
+)
+
+// Every outcome that local water brings, in order of precedence. Each row also fails
+// as many later tests as it can: the strip has a sensor, the extent is 0 to 200 in x,
+// zone Good from 100, zone Hot from 150.
+const localCloud = `x,y,z,class,strip,tide,origin_x,origin_y,origin_z
+nan,6,-10,9,z,,,,
+500,6,-10,9,z,,,,
+500,6,-10,2,z,,,,
+500,6,-10,2,a,,,,
+50,6,-10,2,a,,,,
+50,6,-10,2,b,,,,
+50,6,1.5,2,a,0.25,,,
+50,6,-10,2,a,0.25,,,
+50,6,-10,2,a,0.25,9000,6,400
+50,6,-10,2,b,0.25,9000,6,400
+160,6,-10,2,a,0.25,9000,6,400
+160,6,-10,2,b,0.25,9000,6,400
+110,6,-10,2,a,0.25,9000,6,400
+110,6,-10,2,a,0.25,110,6,400
+110,6,-10,2,b,0.25,,,
+`
+
+var localWant = []string{
+	"invalid", "not_selected", "no_rule", "outside", "no_surface", "no_surface", "dry", "no_origin",
+	"no_water", "no_water", "out_of_range", "out_of_range", "grazing", "corrected", "corrected",
+}
+
+const localJob = `[input]
+files = ["raw/*.csv"]
+[output]
+folder = "true"
+[select.where]
+class = [2]
+[extent]
+polygons = "water.geojson"
+[surface]
+column = "tide"
+[[sensor]]
+name = "laser"
+where.strip = ["a"]
+rays.model = "pulse"
+[[sensor]]
+name = "images"
+where.strip = ["b"]
+rays.model = "vertical"
+[water]
+`
+
+func band(name string, from, temperature float64) place {
+	return place{name, [][2]float64{{from, -50}, {from + 50, -50}, {from + 50, 50}, {from, 50}}, temperature, 30, nan}
+}
+
+// localColumns are added columns with the outcomes that have a value in them, for a
+// pulse by the letters of outcomeLetters and, besides, no_water w, out_of_range x.
+var localColumns = map[string]string{
+	"depth": "cd", "water_level": "cd", "entry_level": "c", "slope_x": "cg", "model": "cdgosuwx", "ray_count": "cg", "incidence_deg": "cg", "refraction_deg": "c",
+	"n_air": "cg", "n_water": "cg", "ng_air": "cg", "ng_water": "cg", "temperature": "cgx", "salinity": "cgx", "water_source": "cgx", "run": "acdgosuwx",
+}
+
+func TestLocalOutcomes(t *testing.T) {
+	f := files{"water.geojson": polygonOf(0, -50, 200, 50), "zones.geojson": zonesFile([]place{band("Good", 100, 12), band("Hot", 150, 36)})}
+	for _, format := range formats {
+		folder := t.TempDir()
+		f.write(t, folder)
+		files{"raw/a." + format: encode(t, format, localCloud)}.write(t, folder)
+		runJob(t, loadJob(t, folder, inFormat(localJob, format)+"zones = \"zones.geojson\"\n"), Options{})
+		got := decode(t, format, readFile(t, folder, "true/a."+format))
+		if outcomes := got.column(t, "outcome"); !slices.Equal(outcomes, localWant) {
+			t.Fatalf("%s: outcomes are %q, want %q", format, outcomes, localWant)
+		}
+		checkLocalColumns(t, got)
+		checkLocalReceipt(t, filepath.Join(folder, "true/a."+format))
+	}
+}
+
+func checkLocalColumns(t *testing.T, got table) {
+	t.Helper()
+	for i, outcome := range localWant {
+		letter := outcomeLetters[outcome] + map[string]string{"no_water": "w", "out_of_range": "x"}[outcome]
+		if letter == "" || got.text(t, i, "strip") == "b" {
+			continue
+		}
+		for name, has := range localColumns {
+			if is := got.text(t, i, name); (is != "") != strings.Contains(has, letter) {
+				t.Errorf("row %d (%s): %s is %q", i+1, outcome, name, is)
+			}
+		}
+	}
+	last := len(localWant) - 1 // images
+	if got.text(t, last, "ng_water") != "" || got.text(t, last, "water_source") != "zone Good" || got.text(t, last, "model") != "vertical" {
+		t.Errorf("the last row is %q", got.rows[last])
+	}
+	if hot := slices.Index(localWant, "out_of_range"); got.text(t, hot, "water_source") != "zone Hot" || got.number(t, hot, "temperature") != 36 {
+		t.Errorf("the row in hot water is %q", got.rows[hot])
+	}
+}
+
+func checkLocalReceipt(t *testing.T, output string) {
+	t.Helper()
+	r, counts := readReceipt(t, output), map[string]int64{}
+	for _, outcome := range localWant {
+		counts[outcome]++
+	}
+	if !maps.Equal(r.Outcomes, counts) {
+		t.Errorf("outcomes are %v, want %v", r.Outcomes, counts)
+	}
+	want := []string{
+		"1 of 15 points have no finite coordinates",
+		"1 of 15 points match no sensor",
+		"2 of 15 points have no water surface: it does not reach them in place or time, or its column is empty there",
+		"2 of 15 points have no temperature and salinity: no zone or station gives them, in place or time",
+		"2 of 15 points are in water outside the range of the index formula",
+		"1 of 15 points were seen at more than max_incidence from the surface normal",
+		"1 of 15 points have no ray origin: an origin column is empty there",
+	}
+	if !slices.Equal(r.Cautions, want) {
+		t.Errorf("cautions are\n%s, want\n%s", strings.Join(r.Cautions, "\n"), strings.Join(want, "\n"))
+	}
+}
+
+// Water beyond the published range of the formula is used and counted.
+func TestLocalWaterBeyondThePublishedRange(t *testing.T) {
+	folder := t.TempDir()
+	files{"raw/a.csv": localCloud, "water.geojson": polygonOf(0, -50, 200, 50), "zones.geojson": zonesFile([]place{band("Good", 100, 34)})}.write(t, folder)
+	runJob(t, loadJob(t, folder, localJob+"zones = \"zones.geojson\"\n"), Options{})
+	want := "2 of 15 points are in water outside the published range of quan-fry; its index is an extension of the formula"
+	if r := readReceipt(t, filepath.Join(folder, "true/a.csv")); !slices.Contains(r.Cautions, want) {
+		t.Errorf("cautions are %q, want %q", r.Cautions, want)
+	}
+}
+
+// With casts the water is looked up again for each try at the depth; a grazing point
+// keeps its angle.
+func TestGrazingThroughCasts(t *testing.T) {
+	f := files{
+		"raw/a.csv":    "x,y,z,origin_x,origin_y,origin_z\n0,0,-10,300,0,90\n0,0,-10,0,0,400\n",
+		"stations.csv": "x,y,temperature,salinity,depth\n5,6,20,1,0\n5,6,4,9,20\n",
+	}
+	got := correctFiles(t, f, pulseJob+"[water]\nstations = \"stations.csv\"\n[surface]\nlevel = 0\n")
+	if outcomes := got.column(t, "outcome"); !slices.Equal(outcomes, []string{"grazing", "corrected"}) {
+		t.Fatalf("outcomes are %q, want grazing and corrected", outcomes)
+	}
+	near(t, 0, "incidence_deg", got.number(t, 0, "incidence_deg"), math.Atan(3)*180/math.Pi, 0.6e-5)
+}
+
+// localSurvey is 30 000 points of two sensors among zones, casts over time and a tide.
+func localSurvey(t *testing.T) (f files, jobText string) {
+	t.Helper()
+	r := newRand(16)
+	var b bytes.Buffer
+	b.WriteString("x,y,z,strip,gps_time,origin_x,origin_y,origin_z\n")
+	for i := range 30_000 {
+		x, y := 400*r.Float64(), 400*r.Float64()
+		row(&b, exact(x), exact(y), exact(2-16*r.Float64()), []string{"a", "b", "c"}[i%3], exact(1.9e9+4000*r.Float64()), exact(x+100*r.Float64()), exact(y), "400")
+	}
+	f = files{
+		"raw/a.csv": b.String(), "zones.geojson": zonesFile(twoZones), "casts.csv": stationFile(probes(), true),
+		"gauge.csv": fmt.Sprintf("time,level,x,y\n%[1]d,0,0,0\n%[1]d,1,400,400\n%[2]d,1,0,0\n%[2]d,2,400,400\n", 1_900_000_000, 1_900_003_600),
+	}
+	jobText = inUTC(strings.Replace(localJob[:strings.Index(localJob, "[select")]+localJob[strings.Index(localJob, "[[sensor"):], "[water]\n", "", 1))
+	return f, jobText + "[water]\nzones = \"zones.geojson\"\nstations = \"casts.csv\"\nmax_gap = 1000\n[surface.gauge]\nfile = \"gauge.csv\"\n"
+}
+
+func TestLocalSameBytesForAnyWorkers(t *testing.T) {
+	f, jobText := localSurvey(t)
+	cloud := f["raw/a.csv"]
+	delete(f, "raw/a.csv")
+	for _, format := range formats {
+		folder := t.TempDir()
+		f.write(t, folder)
+		data := cloud
+		if format == "parquet" {
+			data = parquetOf(t, cloud, 7000, nil)
+		}
+		files{"raw/a." + format: data}.write(t, folder)
+		var want map[string]string
+		for _, workers := range []int{1, 2, 7} {
+			output := fmt.Sprintf("true%d", workers)
+			text := strings.Replace(strings.Replace(jobText, `"true"`, `"`+output+`"`, 1), "raw/*.csv", "raw/*."+format, 1)
+			s := runJob(t, loadJob(t, folder, text), Options{Workers: workers})
+			got := outputs(t, filepath.Join(folder, output))
+			if want == nil {
+				want = got
+			}
+			same(t, fmt.Sprintf("%s, %d workers", format, workers), got, want)
+			if s.Outcomes["corrected"] < 10_000 || s.Outcomes["no_rule"] != 10_000 || s.Outcomes["dry"] == 0 || s.Outcomes["no_surface"] == 0 {
+				t.Errorf("%s: outcomes are %v", format, s.Outcomes)
+			}
+		}
+	}
+}
