@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"slices"
 
 	"github.com/paulmach/orb"
 )
@@ -13,7 +14,7 @@ import (
 // the units of the text; heights and properties are left aside.
 //
 // It is an error if the text is not GeoJSON or holds no line or several; if the line
-// has fewer than 2 positions, or one with fewer than 2 numbers or a number beyond 1e12.
+// has fewer than 2 different positions, or one with fewer than 2 numbers or a number beyond 1e12.
 func ParseLine(data []byte) ([]orb.Point, error) {
 	doc, err := parseText(data)
 	if err != nil {
@@ -54,6 +55,9 @@ func parseLineString(coordinates []byte) ([]orb.Point, error) {
 		if !(math.Abs(p[0]) <= maxCoordinate && math.Abs(p[1]) <= maxCoordinate) {
 			return nil, fmt.Errorf("position %d is %v, want finite projected coordinates", i+1, p)
 		}
+	}
+	if !slices.ContainsFunc(line, func(p orb.Point) bool { return p != line[0] }) {
+		return nil, fmt.Errorf("all %d positions of the line are %v, want at least 2 different ones", len(line), line[0])
 	}
 	return line, nil
 }

@@ -36,6 +36,7 @@ func TestParseLineRefuses(t *testing.T) {
 		{"no coordinates", `{"type":"LineString"}`, `no "coordinates"`},
 		{"no positions", line(`[]`), `line has 0 positions, want at least 2`},
 		{"one position", line(`[[1,2]]`), `line has 1 positions, want at least 2`},
+		{"one place", line(`[[1,2],[1,2],[1,2]]`), `all 3 positions of the line are [1 2], want at least 2 different ones`},
 		{"one number", line(`[[0,0],[1]]`), `position 2 of the coordinates has one number, want x and y`},
 		{"null", line(`[[0,0],null]`), `coordinates hold null, want numbers`},
 		{"too large", line(`[[0,0],[1e13,0]]`), `position 2 is [1e+13 0], want finite projected coordinates`},

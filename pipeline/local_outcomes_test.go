@@ -201,3 +201,20 @@ func TestLocalSameBytesForAnyWorkers(t *testing.T) {
 		}
 	}
 }
+
+// Water from a station may be outside the formula's range, which is known by then
+// only: the points that it reaches are counted, and say what they would have.
+func TestStationsOutOfRange(t *testing.T) {
+	f := files{
+		"raw/a.csv":    "x,y,z,origin_x,origin_y,origin_z\n0,0,-10,0,0,400\n900,0,-10,900,0,400\n",
+		"stations.csv": "x,y,temperature,salinity\n0,0,35.5,30\n900,0,20,30\n",
+	}
+	got := correctFiles(t, f, pulseJob+"[water]\nstations = \"stations.csv\"\n[surface]\nlevel = 0\n")
+	for name, want := range map[string][]string{
+		"outcome": {"out_of_range", "corrected"}, "temperature": {"35.5000", "20.0000"}, "water_source": {"stations", "stations"}, "depth": {"", got.text(t, 1, "depth")},
+	} {
+		if is := got.column(t, name); !slices.Equal(is, want) {
+			t.Errorf("%s is %q, want %q", name, is, want)
+		}
+	}
+}

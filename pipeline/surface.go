@@ -204,6 +204,9 @@ func (s *survey) readGauges(path string) error {
 		return err
 	}
 	r := geo.GaugeRecords{UTC: t.utc, Level: t.numbers["level"], Name: t.texts["name"], X: t.numbers["x"], Y: t.numbers["y"]}
+	if (r.X == nil) != (r.Y == nil) {
+		return errors.New("there is only one of the columns x and y, want both or neither")
+	}
 	scale(r.Level, s.height)
 	scale(r.X, s.plan)
 	scale(r.Y, s.plan)

@@ -160,7 +160,7 @@ func want(t *testing.T, what string, gotCode, wantCode int, got, wantText string
 }
 
 func TestWrongCallsWriteNothing(t *testing.T) {
-	for _, c := range wrongCalls {
+	for _, c := range slices.Concat(wrongCalls, wrongLocalCalls) {
 		t.Run(c.name, func(t *testing.T) {
 			c.lay(t)
 			before := listing(t)
