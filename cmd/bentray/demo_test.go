@@ -102,31 +102,77 @@ func TestDemoMeetsItsTruth(t *testing.T) {
 	if code := run(t.Context(), []string{"demo", folder}, &stdout, &stderr); code != exitDone || stderr.Len() > 0 {
 		t.Fatalf("exit code is %d with %q on stderr, want 0 and nothing", code, &stderr)
 	}
-	for _, want := range []string{"200 000 points in 5 tiles (3 CSV, 2 Parquet)", "all bands", "What is left is rounding", "bentray plan " + filepath.Join(folder, "survey.toml")} {
+	for _, want := range []string{"200 000 points in 5 tiles (3 CSV, 2 Parquet)", "all bands", "What is left is rounding", "Otterlode reach", "points in 2 tiles (1 CSV, 1 Parquet)", "bentray plan " + filepath.Join(folder, "survey.toml")} {
 		if !strings.Contains(stdout.String(), want) {
 			t.Errorf("the report lacks %q:\n%s", want, &stdout)
 		}
 	}
 	counts := map[string]int{}
 	for _, name := range []string{"tile_01.csv", "tile_02.parquet", "tile_03.csv", "tile_04.parquet", "cross_line/tile_05.csv"} {
-		checkTile(t, folder, name, counts)
+		if raw := checkTile(t, folder, name, 0.001, counts); raw < 3 {
+			t.Errorf("%s: the largest raw error is %g m, want metres", name, raw)
+		}
 	}
-	total := 0
+	if total := sum(counts); total != 200_000 || counts["invalid"] != 5 || len(counts) != 5 {
+		t.Errorf("outcomes are %v, want 200000 points, 5 of them invalid", counts)
+	}
+	wantEach(t, counts, "corrected", "outside", "dry", "no_origin")
+	river := map[string]int{}
+	for _, name := range []string{"upper.csv", "lower.parquet"} {
+		if raw := checkTile(t, filepath.Join(folder, "river"), name, 0.002, river); raw < 1 {
+			t.Errorf("%s: the largest raw error is %g m, want more than a metre", name, raw)
+		}
+		checkSources(t, filepath.Join(folder, "river", "corrected", name))
+	}
+	if total := sum(river); total < 50_000 || len(river) != 3 {
+		t.Errorf("outcomes of the river are %v, want 50000 points or more in three", river)
+	}
+	wantEach(t, river, "corrected", "dry", "no_surface")
+}
+
+func sum(counts map[string]int) (total int) {
 	for _, n := range counts {
 		total += n
 	}
-	if total != 200_000 || counts["invalid"] != 5 || len(counts) != 5 {
-		t.Errorf("outcomes are %v, want 200000 points, 5 of them invalid", counts)
-	}
-	for _, outcome := range []string{"corrected", "outside", "dry", "no_origin"} {
+	return total
+}
+
+func wantEach(t *testing.T, counts map[string]int, outcomes ...string) {
+	t.Helper()
+	for _, outcome := range outcomes {
 		if counts[outcome] < 1000 {
 			t.Errorf("%d points are %s, want 1000 at least", counts[outcome], outcome)
 		}
 	}
 }
 
-// checkTile holds an output against its truth and its raw tile, and counts outcomes.
-func checkTile(t *testing.T, folder, name string, counts map[string]int) {
+// checkSources holds each corrected point's water against that which the pulse went
+// through, which the remark names.
+func checkSources(t *testing.T, path string) {
+	t.Helper()
+	at, rows := readTable(t, path)
+	seen := map[string]int{}
+	for i, row := range rows {
+		if row[at["outcome"]] != "corrected" {
+			continue
+		}
+		want := "zone " + row[at["remark"]]
+		if row[at["remark"]] == "river" {
+			want = "job"
+		}
+		if got := row[at["water_source"]]; got != want {
+			t.Fatalf("%s: row %d has its water from %q, want %q", path, i+1, got, want)
+		}
+		seen[want]++
+	}
+	if len(seen) < 2 {
+		t.Errorf("%s: the waters are %v, want two or more", path, seen)
+	}
+}
+
+// checkTile holds an output against its truth, within a limit (m), and its raw tile.
+// It counts outcomes and returns the largest raw error of the corrected points.
+func checkTile(t *testing.T, folder, name string, limitM float64, counts map[string]int) (rawErrorM float64) {
 	t.Helper()
 	at, rows := readTable(t, filepath.Join(folder, "corrected", name))
 	_, truth := readTable(t, filepath.Join(folder, "truth", strings.TrimSuffix(name, filepath.Ext(name))+".csv"))
@@ -134,7 +180,6 @@ func checkTile(t *testing.T, folder, name string, counts map[string]int) {
 	if len(rows) != len(truth) || len(rows) != len(raw) {
 		t.Fatalf("%s: %d rows, want %d as the truth and %d as the raw tile", name, len(rows), len(truth), len(raw))
 	}
-	rawErrorM := 0.0
 	for i, row := range rows {
 		outcome := row[at["outcome"]]
 		counts[outcome]++
@@ -147,14 +192,12 @@ func checkTile(t *testing.T, folder, name string, counts map[string]int) {
 			}
 			continue
 		}
-		if d := farthest(t, row, truth[i]); !(d < 0.001) {
-			t.Fatalf("%s: row %d lies %g m from the truth, want less than 1 mm", name, i+1, d)
+		if d := farthest(t, row, truth[i]); !(d < limitM) {
+			t.Fatalf("%s: row %d lies %g m from the truth, want less than %g m", name, i+1, d, limitM)
 		}
 		rawErrorM = max(rawErrorM, farthest(t, raw[i], truth[i]))
 	}
-	if rawErrorM < 3 {
-		t.Errorf("%s: the largest raw error is %g m, want metres", name, rawErrorM)
-	}
+	return rawErrorM
 }
 
 func TestDemoRefusesAForeignFolder(t *testing.T) {

@@ -17,6 +17,10 @@ import (
 // decimals of output and truth come on top.
 const RoundingM = 0.001
 
+// FitM is the most that rounding and the fitted waterline leave together, in m: the
+// level of the river is known to some tenths of a millimetre.
+const FitM = 0.002
+
 // Comparison is a corrected survey held against the truth.
 type Comparison struct {
 	Points     int64
@@ -24,12 +28,13 @@ type Comparison struct {
 	Unexpected int64  // points with another outcome than the simulation gives them
 	Bands      []Band // of the corrected points, by depth from 0 down
 	All        Band   // all corrected points
+	limitM     float64
 }
 
 // Compare reads the outputs and the truth of a survey. It is an error where a
 // file cannot be read, or has not a row for each row of the truth.
 func Compare(s *Survey) (*Comparison, error) {
-	c := &Comparison{Outcomes: map[string]int64{}}
+	c := &Comparison{Outcomes: map[string]int64{}, limitM: s.LimitM}
 	var b bands
 	for _, name := range s.Tiles {
 		if err := c.compareTile(&b, below(s.Corrected, name), below(s.Truth, truthName(name))); err != nil {
@@ -41,13 +46,13 @@ func Compare(s *Survey) (*Comparison, error) {
 }
 
 // Verify returns an error where the correction does not meet the truth: another
-// outcome than the simulation's, or an error above RoundingM.
+// outcome than the simulation's, or an error above the survey's LimitM.
 func (c *Comparison) Verify() error {
 	if c.Unexpected > 0 {
 		return fmt.Errorf("%d of %d points have another outcome than the simulation gives them", c.Unexpected, c.Points)
 	}
-	if most := max(c.All.Corrected.ZMax, c.All.Corrected.PlanMax); !(most <= RoundingM) {
-		return fmt.Errorf("a corrected point lies %.4f m from the truth, want %g m at most", most, RoundingM)
+	if most := max(c.All.Corrected.ZMax, c.All.Corrected.PlanMax); !(most <= c.limitM) {
+		return fmt.Errorf("a corrected point lies %.4f m from the truth, want %g m at most", most, c.limitM)
 	}
 	return nil
 }

@@ -45,6 +45,11 @@ func flightLines() []*flightLine {
 		{number: 4, from: at(widthM, 460), heading: west},
 		{number: 5, from: at(mouthX, -10), heading: north, folder: "cross_line"},
 	}
+	return flown(lines)
+}
+
+// flown gives lines their records.
+func flown(lines []*flightLine) []*flightLine {
 	for _, l := range lines {
 		for i := range lineS*recordsPerS + 1 {
 			l.position = append(l.position, l.flown(float64(i)/recordsPerS).round(1e3))

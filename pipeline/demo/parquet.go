@@ -33,7 +33,7 @@ func (c *columns) add(s *shot) {
 	n := s.numbers()
 	c.intensity, c.returnNumber = append(c.intensity, n[0]), append(c.returnNumber, n[1])
 	c.classification, c.pointSourceID = append(c.classification, n[2]), append(c.pointSourceID, n[3])
-	c.remark = append(c.remark, remark(s.bed.x, s.bed.y))
+	c.remark = append(c.remark, s.remark)
 }
 
 // bytes is the Parquet file, with the columns in the order of a CSV tile.

@@ -37,8 +37,12 @@ func truthName(tile string) string {
 // newTiles returns the tiles of the lines to and fro, cut from west to east, and
 // that of the line across. Half of the lines' tiles are Parquet.
 func newTiles() []*tile {
+	return namedTiles("tile_01.csv", "tile_02.parquet", "tile_03.csv", "tile_04.parquet", path.Join("cross_line", "tile_05.csv"))
+}
+
+func namedTiles(names ...string) []*tile {
 	var tiles []*tile
-	for _, name := range []string{"tile_01.csv", "tile_02.parquet", "tile_03.csv", "tile_04.parquet", path.Join("cross_line", "tile_05.csv")} {
+	for _, name := range names {
 		tiles = append(tiles, &tile{name: name, truth: []byte(truthColumns)})
 	}
 	return tiles
@@ -75,10 +79,10 @@ func (s *shot) appendRow(b []byte) []byte {
 		b = strconv.AppendInt(append(b, ','), int64(n), 10)
 	}
 	b = append(b, ',')
-	if text := remark(s.bed.x, s.bed.y); strings.Contains(text, ",") {
-		b = append(append(append(b, '"'), text...), '"')
+	if strings.Contains(s.remark, ",") {
+		b = append(append(append(b, '"'), s.remark...), '"')
 	} else {
-		b = append(b, text...)
+		b = append(b, s.remark...)
 	}
 	return append(b, '\n')
 }
@@ -86,7 +90,7 @@ func (s *shot) appendRow(b []byte) []byte {
 // numbers are intensity, return_number, classification and point_source_id.
 func (s *shot) numbers() [4]int32 {
 	class, returnNumber := int32(classGround), int32(1)
-	if s.bed.z < levelM {
+	if s.depth > 0 {
 		class, returnNumber = classBathymetry, 2
 	}
 	return [4]int32{int32(s.intensity), returnNumber, class, int32(s.line)}
@@ -95,7 +99,7 @@ func (s *shot) numbers() [4]int32 {
 // appendTruth appends the row of the truth.
 func (s *shot) appendTruth(b []byte) []byte {
 	b = appendVec(b, s.bed, 4)
-	b = appendNumber(append(b, ','), levelM-s.bed.z, 4)
+	b = appendNumber(append(b, ','), s.depth, 4)
 	b = append(append(b, ','), s.outcome...)
 	return append(b, '\n')
 }

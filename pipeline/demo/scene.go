@@ -10,6 +10,8 @@ const (
 	levelM  = 0.42        // elevation of the water surface
 )
 
+var coveSurface = plane{at: vec{cornerX, cornerY, levelM}}
+
 // The shape of the bed, in metres from the corner.
 const (
 	mouthX, mouthY         = 300.0, 0.0   // the deepest place, in the middle of the mouth

@@ -2,6 +2,7 @@ package demo
 
 import (
 	"math"
+	"strconv"
 	"testing"
 	"time"
 
@@ -114,4 +115,13 @@ func TestTrajectoryGivesOrigins(t *testing.T) {
 	if missing == 0 {
 		t.Error("no pulse is in the gap")
 	}
+}
+
+func number(t *testing.T, text string) float64 {
+	t.Helper()
+	v, err := strconv.ParseFloat(text, 64)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return v
 }

@@ -21,7 +21,9 @@ type shot struct {
 	apparent  vec // in millimetres, as the file has it
 	lost      bool
 	intensity int
-	outcome   string // what the correction should say
+	outcome   string  // what the correction should say
+	depth     float64 // of the bed, m; below 0 on land
+	remark    string
 }
 
 // shooter fires the pulses of a survey. Equal seeds give equal pulses.
@@ -32,7 +34,7 @@ type shooter struct {
 }
 
 func newShooter() (*shooter, error) {
-	l, err := surveyLight()
+	l, err := newLight(waterTemperatureC, salinity)
 	if err != nil {
 		return nil, err
 	}
@@ -46,32 +48,39 @@ func (s *shooter) fire(l *flightLine, pulse int) shot {
 	origin := l.origin(pulse)
 	bed := s.aim(l, origin, pulse)
 	shot := shot{
-		timeUS:    l.startS()*1e6 + int64(pulse)*1e6/pulsesPerS,
-		line:      l.number,
-		bed:       bed,
-		apparent:  s.light.apparent(origin, bed).round(1e3),
-		lost:      pulse%lostEvery == lostEvery/2,
-		intensity: s.intensity(bed),
+		timeUS:   l.startS()*1e6 + int64(pulse)*1e6/pulsesPerS,
+		line:     l.number,
+		bed:      bed,
+		apparent: s.light.apparent(coveSurface, origin, bed).round(1e3),
+		lost:     pulse%lostEvery == lostEvery/2,
+		depth:    levelM - bed.z,
+		remark:   remark(bed.x, bed.y),
 	}
+	shot.intensity = intensity(s.random, shot.depth)
 	shot.outcome = s.outcome(&shot, l.hasOrigin(pulse))
 	return shot
 }
 
 // aim returns the place that a pulse finds, some way to the left or right.
 func (s *shooter) aim(l *flightLine, origin vec, pulse int) vec {
-	part := (float64(pulse%sweepPulses) + 0.5) / sweepPulses
-	if pulse/sweepPulses%2 == 1 {
-		part = 1 - part
-	}
-	offNadirDeg := edgeDeg*(2*part-1) + jitterDeg*(2*s.random.Float64()-1)
-	bed := origin.plus((origin.z-levelM)*math.Tan(offNadirDeg*math.Pi/180), l.heading.left())
+	bed := origin.plus((origin.z-levelM)*sweep(s.random, pulse), l.heading.left())
 	bed.z = bedZ(bed.x, bed.y)
 	return bed
 }
 
+// sweep returns how far to the left a pulse goes over how far down.
+func sweep(random *rand.Rand, pulse int) float64 {
+	part := (float64(pulse%sweepPulses) + 0.5) / sweepPulses
+	if pulse/sweepPulses%2 == 1 {
+		part = 1 - part
+	}
+	offNadirDeg := edgeDeg*(2*part-1) + jitterDeg*(2*random.Float64()-1)
+	return math.Tan(offNadirDeg * math.Pi / 180)
+}
+
 // intensity fades with depth.
-func (s *shooter) intensity(bed vec) int {
-	return int(300+1500*math.Exp(-max(levelM-bed.z, 0)/4)) + s.random.IntN(100)
+func intensity(random *rand.Rand, depth float64) int {
+	return int(300+1500*math.Exp(-max(depth, 0)/4)) + random.IntN(100)
 }
 
 // outcome names what should become of a shot. The first that applies.

@@ -24,7 +24,7 @@ func (v vec) round(scale float64) vec {
 // light holds the indices of air and water, referred to vacuum.
 type light struct{ airPhase, airGroup, waterPhase, waterGroup float64 }
 
-// The media of the survey, as its job file states them.
+// The media of the cove, as its job file states them; the air is the river's too.
 const (
 	waterTemperatureC = 17.5
 	salinity          = 34.9
@@ -33,9 +33,9 @@ const (
 	wavelengthNM      = 532.0 // in vacuum; the job's default for a laser
 )
 
-// surveyLight returns the indices at the survey.
-func surveyLight() (l light, err error) {
-	water := medium.Water{TemperatureC: waterTemperatureC, Salinity: salinity}
+// newLight returns the indices at the survey, in a water of its own.
+func newLight(waterC, salinity float64) (l light, err error) {
+	water := medium.Water{TemperatureC: waterC, Salinity: salinity}
 	if l.waterPhase, l.waterGroup, err = medium.QuanFry.Index(water, wavelengthNM); err != nil {
 		return l, err
 	}
@@ -45,19 +45,41 @@ func surveyLight() (l light, err error) {
 	return l, err
 }
 
-// entry returns where light from an origin above the water to a point of the bed
-// below it enters the level surface.
-func (l light) entry(origin, bed vec) vec {
-	way := bed.minus(origin)
-	across := math.Hypot(way.x, way.y)
-	if across == 0 {
-		return vec{origin.x, origin.y, levelM}
-	}
-	share := l.entryOffset(origin.z-levelM, levelM-bed.z, across) / across
-	return vec{origin.x + share*way.x, origin.y + share*way.y, levelM}
+// plane is a plane water surface through a point, with its slopes to the east and
+// to the north.
+type plane struct {
+	at             vec
+	slopeX, slopeY float64
 }
 
-// entryOffset returns how far from the origin, in plan, light enters: the s of least
+// z returns the elevation of the surface at a plan position.
+func (p plane) z(x, y float64) float64 {
+	return p.at.z + p.slopeX*(x-p.at.x) + p.slopeY*(y-p.at.y)
+}
+
+// up returns the unit normal of the surface.
+func (p plane) up() vec {
+	n := vec{-p.slopeX, -p.slopeY, 1}
+	return vec{}.plus(1/n.length(), n)
+}
+
+// entry returns where light from an origin above the water to a point of the bed
+// below it enters the surface: on the line between the feet of both, for light stays
+// in one plane with the surface's normal.
+func (l light) entry(surface plane, origin, bed vec) vec {
+	up := surface.up()
+	above := (origin.z - surface.z(origin.x, origin.y)) * up.z
+	below := (surface.z(bed.x, bed.y) - bed.z) * up.z
+	from := origin.plus(-above, up)
+	way := bed.plus(below, up).minus(from)
+	across := way.length()
+	if across == 0 {
+		return from
+	}
+	return from.plus(l.entryOffset(above, below, across)/across, way)
+}
+
+// entryOffset returns how far from the origin's foot light enters: the s of least
 //
 //	airPhase sqrt(height^2 + s^2) + waterPhase sqrt(depth^2 + (across - s)^2)
 //
@@ -91,11 +113,11 @@ func (l light) entryOffset(height, depth, across float64) float64 {
 // apparent returns where a cloud that knows nothing of water has a point of the
 // bed: straight on behind the entry, as far as the pulse's travel time in the
 // water would reach in air. A point on land is where it is.
-func (l light) apparent(origin, bed vec) vec {
-	if bed.z >= levelM {
+func (l light) apparent(surface plane, origin, bed vec) vec {
+	if bed.z >= surface.z(bed.x, bed.y) {
 		return bed
 	}
-	entry := l.entry(origin, bed)
+	entry := l.entry(surface, origin, bed)
 	in := entry.minus(origin)
 	return entry.plus(bed.minus(entry).length()*l.waterGroup/l.airGroup/in.length(), in)
 }

@@ -16,9 +16,9 @@ func near(t *testing.T, what string, got, want, tol float64) {
 	}
 }
 
-// rays calls f with random rays: 100 to 600 m of height, up to 30 m of depth and
-// up to 60 degrees off nadir.
-func rays(t *testing.T, f func(l light, origin, bed vec)) {
+// rays calls f with random rays: 100 to 600 m of height, up to 30 m of depth, up to
+// 60 degrees off nadir, and a surface that slopes by up to 0.2.
+func rays(t *testing.T, f func(l light, surface plane, origin, bed vec)) {
 	t.Helper()
 	t.Logf("seed %d", seed)
 	r := rand.New(rand.NewPCG(seed, 1))
@@ -26,7 +26,11 @@ func rays(t *testing.T, f func(l light, origin, bed vec)) {
 		l := light{1.00027, 1.00028, 1.33 + 0.02*r.Float64(), 1.35 + 0.02*r.Float64()}
 		height, depth := 100+500*r.Float64(), 30*r.Float64()+1e-6
 		away, turn := height*math.Tan(r.Float64()*math.Pi/3), 2*math.Pi*r.Float64()
-		f(l, vec{away * math.Cos(turn), away * math.Sin(turn), levelM + height}, vec{z: levelM - depth})
+		slope, side := 0.2*r.Float64(), 2*math.Pi*r.Float64()
+		surface := plane{vec{3, -4, levelM}, slope * math.Cos(side), slope * math.Sin(side)}
+		origin := vec{x: away * math.Cos(turn), y: away * math.Sin(turn)}
+		origin.z = surface.z(origin.x, origin.y) + height
+		f(l, surface, origin, vec{z: surface.z(0, 0) - depth})
 	}
 }
 
@@ -46,25 +50,35 @@ func snellEntry(l light, height, depth, across float64) float64 {
 	return height * math.Tan(low)
 }
 
+// The angles are taken between the rays and the normal, so that this holds on
+// slopes too: Snell's law, one plane with the normal, and the entry that
+// snellEntry finds, as far from the foot of the origin.
 func TestEntryIsOfLeastPath(t *testing.T) {
-	rays(t, func(l light, origin, bed vec) {
-		entry := l.entry(origin, bed)
-		near(t, "entry's elevation", entry.z, levelM, 0)
+	rays(t, func(l light, surface plane, origin, bed vec) {
+		entry, up := l.entry(surface, origin, bed), surface.up()
+		near(t, "entry's elevation", entry.z, surface.z(entry.x, entry.y), 1e-9)
 		in, out := entry.minus(origin), bed.minus(entry)
-		sinIn := math.Hypot(in.x, in.y) / in.length()
-		sinOut := math.Hypot(out.x, out.y) / out.length()
+		sinIn, sinOut := cross(in, up).length()/in.length(), cross(out, up).length()/out.length()
 		if out.length() > 0.01 { // below, rounding is most of the angle in the water
 			near(t, "Snell's law", l.airPhase*sinIn, l.waterPhase*sinOut, 1e-9)
 		}
-		near(t, "the volume of origin, entry, bed and normal", in.x*out.y-in.y*out.x, 0, 1e-9)
-		across, height, depth := math.Hypot(origin.x, origin.y), origin.z-levelM, levelM-bed.z
-		near(t, "entry", math.Hypot(in.x, in.y), snellEntry(l, height, depth, across), 1e-9)
+		n := cross(in, out)
+		near(t, "the volume of origin, entry, bed and normal", n.x*up.x+n.y*up.y+n.z*up.z, 0, 1e-8)
+		height, depth := -dot(in, up), -dot(out, up)
+		across := cross(bed.minus(origin), up).length()
+		near(t, "entry", cross(in, up).length(), snellEntry(l, height, depth, across), 1e-9)
 	})
 }
 
+func dot(a, b vec) float64 { return a.x*b.x + a.y*b.y + a.z*b.z }
+
+func cross(a, b vec) vec {
+	return vec{a.y*b.z - a.z*b.y, a.z*b.x - a.x*b.z, a.x*b.y - a.y*b.x}
+}
+
 func TestApparentPoint(t *testing.T) {
-	rays(t, func(l light, origin, bed vec) {
-		entry, apparent := l.entry(origin, bed), l.apparent(origin, bed)
+	rays(t, func(l light, surface plane, origin, bed vec) {
+		entry, apparent := l.entry(surface, origin, bed), l.apparent(surface, origin, bed)
 		in, all := entry.minus(origin), apparent.minus(origin)
 		near(t, "path time", all.length()*l.airGroup, in.length()*l.airGroup+bed.minus(entry).length()*l.waterGroup, 1e-9)
 		near(t, "way off the straight ray", all.plus(-all.length()/in.length(), in).length(), 0, 1e-9)
@@ -86,7 +100,7 @@ func TestApparentPointLimits(t *testing.T) {
 		{"the waterline is land", l, vec{-60, 7, levelM}, vec{-60, 7, levelM}},
 	} {
 		t.Run(c.name, func(t *testing.T) {
-			near(t, "distance", c.light.apparent(origin, c.bed).minus(c.want).length(), 0, 1e-10)
+			near(t, "distance", c.light.apparent(coveSurface, origin, c.bed).minus(c.want).length(), 0, 1e-10)
 		})
 	}
 }

@@ -13,8 +13,11 @@ import (
 	"bentray/pipeline/job"
 )
 
-// Title is that of the survey's job, and what a folder of the survey is known by.
-const Title = "Lantern Cove, a made-up survey"
+// Titles of the surveys' jobs, which their folders are known by.
+const (
+	Title      = "Lantern Cove, a made-up survey"
+	RiverTitle = "Otterlode reach, a made-up river"
+)
 
 // The files of a survey's folder.
 const (
@@ -28,52 +31,72 @@ const (
 
 // Survey is a survey that was written.
 type Survey struct {
+	Title      string
 	Job        string   // the job file
 	Trajectory string   // the positions of the laser
-	Polygons   string   // the extent of the water
+	Polygons   string   // the extent of the water, or the zones of the river
+	Waterline  string   // of the river, else empty
+	Gauge      string   // of the river, else empty
 	Raw        string   // the folder of the raw tiles
 	Corrected  string   // the folder that the job writes to
 	Truth      string   // the folder of the truth, row by row as the tiles
 	Tiles      []string // names below Raw and Corrected, with slashes; below Truth all end in .csv
 	Points     int64    // rows of all tiles
+	LimitM     float64  // the most that a right correction leaves of an error, m
 }
 
-// Write writes the survey into a folder, which it makes where it is not there.
-// It does not run the job.
+// Write writes both surveys into a folder, which it makes where it is not there:
+// the cove, and in a folder of its own below it the river. It does not run their jobs.
 //
-// Errors: a *pipeline.CallError where the folder holds anything but this survey,
-// which is written again, and nothing was touched; else those of the file system.
-func Write(folder string) (*Survey, error) {
-	if err := checkFolder(folder); err != nil {
-		return nil, &pipeline.CallError{Err: err}
+// Errors: a *pipeline.CallError where the folder, or the river's, holds anything but
+// these surveys, which are written again, and nothing was touched; else those of the
+// file system.
+func Write(folder string) (cove, river *Survey, err error) {
+	cove, river = newSurvey(folder), newRiver(filepath.Join(folder, riverFolder))
+	for _, s := range []*Survey{cove, river} {
+		if err := checkFolder(s); err != nil {
+			return nil, nil, &pipeline.CallError{Err: err}
+		}
 	}
-	s, lines := newSurvey(folder), flightLines()
+	if err := cove.writeCove(); err != nil {
+		return nil, nil, err
+	}
+	return cove, river, river.writeRiver()
+}
+
+func (s *Survey) writeCove() error {
+	lines := flightLines()
 	tiles, err := fill(lines)
 	if err != nil {
-		return nil, err
+		return err
 	}
 	if err := s.makeFolders(tiles); err != nil {
-		return nil, err
+		return err
 	}
 	// The job file comes first: a folder with it can be written again.
-	err = errors.Join(
+	return errors.Join(
 		atomicfile.Write(s.Job, jobText()),
 		atomicfile.Write(s.Polygons, polygonText()),
 		atomicfile.Write(s.Trajectory, trajectoryText(lines)),
+		s.writeTiles(tiles),
 	)
+}
+
+// writeTiles writes clouds and truth, and takes their names.
+func (s *Survey) writeTiles(tiles []*tile) (err error) {
 	for _, t := range tiles {
 		s.Tiles = append(s.Tiles, t.name)
 		s.Points += int64(t.rows)
 		err = errors.Join(err, t.write(below(s.Raw, t.name)), atomicfile.Write(below(s.Truth, truthName(t.name)), t.truth))
 	}
-	return s, err
+	return err
 }
 
 func newSurvey(folder string) *Survey {
 	in := func(name string) string { return filepath.Join(folder, name) }
 	return &Survey{
-		Job: in(jobFile), Trajectory: in(trajectoryFile), Polygons: in(polygonFile),
-		Raw: in(rawFolder), Corrected: in(outputFolder), Truth: in(truthFolder),
+		Title: Title, Job: in(jobFile), Trajectory: in(trajectoryFile), Polygons: in(polygonFile),
+		Raw: in(rawFolder), Corrected: in(outputFolder), Truth: in(truthFolder), LimitM: RoundingM,
 	}
 }
 
@@ -81,7 +104,8 @@ func newSurvey(folder string) *Survey {
 func below(folder, name string) string { return filepath.Join(folder, filepath.FromSlash(name)) }
 
 // checkFolder refuses a folder that is something else's.
-func checkFolder(folder string) error {
+func checkFolder(s *Survey) error {
+	folder := filepath.Dir(s.Job)
 	entries, err := os.ReadDir(folder)
 	switch {
 	case errors.Is(err, fs.ErrNotExist):
@@ -91,8 +115,8 @@ func checkFolder(folder string) error {
 	case len(entries) == 0:
 		return nil
 	}
-	j, err := job.Load(filepath.Join(folder, jobFile))
-	if err != nil || j.Title != Title {
+	j, err := job.Load(s.Job)
+	if err != nil || j.Title != s.Title {
 		return fmt.Errorf("%s: the folder is not empty and holds no survey of this demo, want a new or an empty one; nothing was written", folder)
 	}
 	return nil
