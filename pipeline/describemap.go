@@ -50,25 +50,27 @@ func (s *survey) mapLevels() *LevelMap {
 	return m
 }
 
-// mapArea is where the base is known; else where separation, zones or extent are.
-// Zones with levels of their own belong to it in any case.
+// mapArea is where the points of the base lie; where it has none, where there is a
+// separation, else the extent, else several gauges. Zones with levels of their own
+// belong to it in any case.
 func (s *survey) mapArea() area {
-	a := s.surface.source.area
+	source := &s.surface.source
+	a := source.area
+	if !a.used {
+		a = source.separation
+	}
+	if !a.used && s.extent != nil {
+		a = s.areaOf(s.extentBound.Min, s.extentBound.Max)
+	}
+	if !a.used {
+		a.add(source.gauges.X, source.gauges.Y)
+	}
 	for i := range s.zones.list {
 		if z := &s.zones.list[i]; !math.IsNaN(z.Level) {
 			for _, polygon := range z.Polygons {
 				a.join(s.areaOf(polygon.Bound().Min, polygon.Bound().Max))
 			}
 		}
-	}
-	if !a.used {
-		a = s.surface.source.separation
-	}
-	if !a.used && s.surface.source.gauges.X != nil {
-		a.add(s.surface.source.gauges.X, s.surface.source.gauges.Y)
-	}
-	if !a.used && s.extent != nil {
-		a = s.areaOf(s.extentBound.Min, s.extentBound.Max)
 	}
 	return a
 }

@@ -112,19 +112,19 @@ func (p *surfacePrinter) plane(r *pipeline.PlaneReport) {
 		p.row("surface", "plane fitted to %s", p.j.Surface.Plane.Waterline)
 		p.fit(r.Fit)
 	}
-	p.row("level", "%.4f%s %s at x %.1f, y %.1f", r.Level, sigma("%.4f", r.LevelSigma), p.r.VerticalUnit, r.AtX, r.AtY)
-	p.row("slopes", "x %.7f%s, y %.7f%s", r.SlopeX, sigma("%.7f", r.SlopeXSigma), r.SlopeY, sigma("%.7f", r.SlopeYSigma))
+	p.row("level", "%.4f%s %s at x %.1f, y %.1f", r.Level, sigma(r.LevelSigma, 4), p.r.VerticalUnit, r.AtX, r.AtY)
+	p.row("slopes", "x %s%s, y %s%s", fixed(r.SlopeX, 7), sigma(r.SlopeXSigma, 7), fixed(r.SlopeY, 7), sigma(r.SlopeYSigma, 7))
 	if slope, bearing := r.Fall(); slope > 0 {
 		p.row("", "falls %.4f in 1000 towards %.1f degrees, clockwise from +y", 1000*slope, bearing)
 	}
 }
 
 // sigma writes a standard error, or nothing where it is not known.
-func sigma(format string, v float64) string {
+func sigma(v float64, decimals int) string {
 	if v != v {
 		return ""
 	}
-	return " ± " + fmt.Sprintf(format, v)
+	return " ± " + fixed(v, decimals)
 }
 
 func (p *surfacePrinter) fit(f *pipeline.FitReport) {
@@ -148,7 +148,7 @@ func (p *surfacePrinter) profile(r *pipeline.ProfileReport) {
 	}
 	p.row("line", "%.1f %s long, as drawn the level is %s; %s", r.Length, p.r.Unit, course, plural(r.Knots, "knot"))
 	for i, end := range []pipeline.CurvePoint{r.First, r.Last} {
-		p.row([]string{"level", ""}[i], "%.4f%s %s at %.1f %s along the line", end.Level, sigma("%.4f", end.Sigma), p.r.VerticalUnit, end.Chainage, p.r.Unit)
+		p.row([]string{"level", ""}[i], "%.4f%s %s at %.1f %s along the line", end.Level, sigma(end.Sigma, 4), p.r.VerticalUnit, end.Chainage, p.r.Unit)
 	}
 }
 
