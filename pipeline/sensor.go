@@ -28,14 +28,6 @@ func (s *sensor) isPulse() bool { return s.Rays.Model == job.Pulse }
 
 func (s *sensor) isAny() bool { return true }
 
-// label names the sensor in a message; the only one has no name.
-func (s *sensor) label() string {
-	if s.Name == "" {
-		return ""
-	}
-	return fmt.Sprintf("sensor %q: ", s.Name)
-}
-
 func (s *survey) readSensors(ctx context.Context) error {
 	var faults []error
 	for _, js := range s.job.Sensors {
