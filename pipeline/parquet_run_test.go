@@ -60,6 +60,21 @@ func TestSameParquetBytesForAnyWorkers(t *testing.T) {
 	same(t, "redo", outputs(t, filepath.Join(folder, "true2")), want)
 }
 
+// A plan knows the rows of a Parquet file without reading them.
+func TestPlanCountsParquetRows(t *testing.T) {
+	folder := mixedFleet(t)
+	p, err := MakePlan(t.Context(), mixedJob(t, folder, "true"))
+	if err != nil {
+		t.Fatal(err)
+	}
+	want := map[string]int64{"none.parquet": 0, "part/many.parquet": 5_000, "part/wide.parquet": 140_000, "plain.csv": 700}
+	for _, f := range p.Files {
+		if f.Err != nil || !f.Exact || f.Points != want[f.Output] {
+			t.Errorf("%s has %d points (exactly %t, %v), want %d", f.Output, f.Points, f.Exact, f.Err, want[f.Output])
+		}
+	}
+}
+
 // One job treats a cloud alike in both formats: the same outcomes, and the same
 // numbers but for the rounding to text.
 func TestBothFormatsAgree(t *testing.T) {
