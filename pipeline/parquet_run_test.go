@@ -165,8 +165,10 @@ func TestParquetThatCannotBeDone(t *testing.T) {
 		"a codec that cannot be read": {withFooter(t, parquetOf(t, tiny, 0, nil), func(meta *parquet.FileMetaData) {
 			meta.RowGroups[0].Columns[2].MetaData.Codec = parquet.CompressionCodec_LZ4_RAW
 		}), `column "z", row group 1: is compressed with LZ4_RAW, want none, SNAPPY, GZIP or ZSTD`},
-		"an output again": {correctParquet(t, parquetOf(t, tiny, 0, nil), parquetJob()),
-			`the file already has a column "x_raw", which bentray would add; rename it there, or take the raw cloud if this file is an output`},
+		"an output again": {
+			correctParquet(t, parquetOf(t, tiny, 0, nil), parquetJob()),
+			`the file already has a column "x_raw", which bentray would add; rename it there, or take the raw cloud if this file is an output`,
+		},
 	} {
 		t.Run(name, func(t *testing.T) {
 			if got := failParquet(t, c.data, parquetJob()); got != c.want {

@@ -20,8 +20,13 @@ func goodParquet(t *testing.T, rows int) string {
 	}
 	var b bytes.Buffer
 	err := parquetfile.WriteTable(&b, []parquetfile.Column{
-		{Name: "x", Values: same(5)}, {Name: "y", Values: same(6)}, {Name: "z", Values: same(-10)},
-		{Name: "origin_x", Values: same(5)}, {Name: "origin_y", Values: same(6)}, {Name: "origin_z", Values: same(400)}, {Name: "gps_time", Values: same(1)},
+		{Name: "x", Values: same(5)},
+		{Name: "y", Values: same(6)},
+		{Name: "z", Values: same(-10)},
+		{Name: "origin_x", Values: same(5)},
+		{Name: "origin_y", Values: same(6)},
+		{Name: "origin_z", Values: same(400)},
+		{Name: "gps_time", Values: same(1)},
 	}, 2)
 	if err != nil {
 		t.Fatal(err)
