@@ -8,8 +8,8 @@ import (
 	"bentray/io/parquetfile"
 )
 
-// goodParquet is goodCloud as Parquet, of some rows.
-func goodParquet(t *testing.T, rows int) string {
+// goodParquet is goodCloud as Parquet, of some rows in groups of some.
+func goodParquet(t *testing.T, rows, groupRows int) string {
 	t.Helper()
 	same := func(v float64) []float64 {
 		list := make([]float64, rows)
@@ -27,7 +27,7 @@ func goodParquet(t *testing.T, rows int) string {
 		{Name: "origin_y", Values: same(6)},
 		{Name: "origin_z", Values: same(400)},
 		{Name: "gps_time", Values: same(1)},
-	}, 2)
+	}, groupRows)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -41,7 +41,7 @@ func overwrite(text string, at int, with string) string {
 
 // Damaged and foreign Parquet files fail alone, by name, in a plan as in a run.
 func TestBadParquetFailsAlone(t *testing.T) {
-	good := goodParquet(t, 5)
+	good := goodParquet(t, 5, 2)
 	for _, c := range []struct{ name, data, want string }{
 		{name: "empty", data: "", want: `raw/b.parquet: has 0 bytes, want a Parquet file`},
 		{name: "text", data: goodCloud + goodCloud, want: `raw/b.parquet: begins with "x,y,", want "PAR1" as in every Parquet file`},
