@@ -54,3 +54,19 @@ func (s *survey) openCloud(in input) (cloud.Rewriter, error) {
 // isTimestamp tells a column of dates and times, which are read as UTC seconds
 // since 1970 whatever the scale of the job's numbers.
 func isTimestamp(c cloud.Column) bool { return strings.Contains(c.Type, "TIMESTAMP") }
+
+// cautionsOf returns what the file itself gives cause to say, once it has begun.
+func cautionsOf(file cloud.Rewriter) []string {
+	if f, ok := file.(*parquetfile.File); ok {
+		return f.Cautions()
+	}
+	return nil
+}
+
+// rowsOf returns how many rows a file says it has, where its format says so.
+func rowsOf(file cloud.Rewriter) (rows int64, known bool) {
+	if f, ok := file.(*parquetfile.File); ok {
+		return f.Rows(), true
+	}
+	return 0, false
+}

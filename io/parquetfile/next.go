@@ -32,9 +32,9 @@ type piece struct {
 	work        encoder
 }
 
-func (f *File) beginReading(read cloud.Request, write cloud.Layout, writing bool) error {
+func (f *File) beginReading(read cloud.Request, write cloud.Layout, laidOut bool) error {
 	var xyz []int
-	if writing {
+	if laidOut {
 		xyz = write.XYZ[:]
 	}
 	for _, i := range xyz {

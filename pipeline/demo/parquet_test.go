@@ -105,9 +105,13 @@ func readParquet(t *testing.T, path string) [][]string {
 func TestCompareParquet(t *testing.T) {
 	nan := math.NaN()
 	output := []parquetfile.Column{
-		{Name: "x", Values: []float64{0, 0, nan, 9}}, {Name: "y", Values: []float64{0, 0, nan, 9}}, {Name: "z", Values: []float64{-1, -3.0005, nan, 9}},
+		{Name: "x", Values: []float64{0, 0, nan, 9}},
+		{Name: "y", Values: []float64{0, 0, nan, 9}},
+		{Name: "z", Values: []float64{-1, -3.0005, nan, 9}},
 		{Name: "outcome", Values: []string{"corrected", "corrected", "invalid", "dry"}},
-		{Name: "x_raw", Values: []float64{3, 0, nan, 9}}, {Name: "y_raw", Values: []float64{4, 0, nan, 9}}, {Name: "z_raw", Values: []float64{-3, -4, nan, 9}},
+		{Name: "x_raw", Values: []float64{3, 0, nan, 9}},
+		{Name: "y_raw", Values: []float64{4, 0, nan, 9}},
+		{Name: "z_raw", Values: []float64{-3, -4, nan, 9}},
 	}
 	text, err := Compare(smallSurvey(t, smallOutput, smallTruth))
 	if err != nil {
@@ -125,8 +129,13 @@ func TestCompareParquet(t *testing.T) {
 	for name, columns := range map[string][]parquetfile.Column{
 		"a column that is gone": output[:6],
 		"a row too few": {
-			{Name: "x", Values: []float64{0}}, {Name: "y", Values: []float64{0}}, {Name: "z", Values: []float64{-1}}, {Name: "outcome", Values: []string{"corrected"}},
-			{Name: "x_raw", Values: []float64{3}}, {Name: "y_raw", Values: []float64{4}}, {Name: "z_raw", Values: []float64{-3}},
+			{Name: "x", Values: []float64{0}},
+			{Name: "y", Values: []float64{0}},
+			{Name: "z", Values: []float64{-1}},
+			{Name: "outcome", Values: []string{"corrected"}},
+			{Name: "x_raw", Values: []float64{3}},
+			{Name: "y_raw", Values: []float64{4}},
+			{Name: "z_raw", Values: []float64{-3}},
 		},
 	} {
 		if c, err := Compare(parquetSurvey(t, columns, 0)); err == nil {
