@@ -17,12 +17,10 @@ require (
 	golang.org/x/sys v0.50.0
 	golang.org/x/term v0.45.0
 	gonum.org/v1/gonum v0.17.0
-	pgregory.net/rapid v1.3.0
 )
 
 require (
 	github.com/mitchellh/colorstring v0.0.0-20190213212951-d06e56a500db // indirect
 	github.com/rivo/uniseg v0.4.7 // indirect
-	go.mongodb.org/mongo-driver/v2 v2.5.0 // indirect
 	golang.org/x/tools v0.30.0 // indirect
 )
