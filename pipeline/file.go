@@ -33,7 +33,7 @@ func (r *runner) rewrite(ctx context.Context, in input) (*finished, error) {
 	if err != nil {
 		return nil, inFile(in.path, err)
 	}
-	file, err := r.openCloud(in)
+	file, err := r.openCloud(in, in.output)
 	if err != nil {
 		return nil, err
 	}

@@ -36,13 +36,14 @@ func openTable(path string) (cloud.Rewriter, error) {
 }
 
 // openCloud opens a cloud of the job. A Parquet output carries the settings that
-// made it in its key-value metadata.
-func (s *survey) openCloud(in input) (cloud.Rewriter, error) {
+// made it in its key-value metadata. The output is empty where nothing is written,
+// for then its folder need not be there.
+func (s *survey) openCloud(in input, output string) (cloud.Rewriter, error) {
 	i := &s.job.Input
 	file, err := open(in.path,
 		csvfile.Options{Names: i.CSV.Names, Divert: i.BadRows == job.Divert},
 		parquetfile.Options{
-			Coarse: i.Coarse, Unit: s.plan, ScratchDir: filepath.Dir(in.output),
+			Coarse: i.Coarse, Unit: s.plan, Output: output, Version: Version,
 			Metadata: map[string]string{"bentray.program": Program, "bentray.run": s.run, "bentray.job": string(s.settings)},
 		})
 	if errors.Is(err, csvfile.ErrNoHeader) {

@@ -188,3 +188,23 @@ func TestDamageInTheLastGroup(t *testing.T) {
 		t.Errorf("the error is %s, want it to begin with %s", got, want)
 	}
 }
+
+// A plan reads pages that do not stay in memory though there is no folder of
+// outputs yet.
+func TestPlanOfGiantPages(t *testing.T) {
+	list := make([]float64, 530_000) // of 8 bytes: more than 4 MiB
+	for i := range list {
+		list[i] = -1
+	}
+	var columns []parquetfile.Column
+	for _, name := range []string{"x", "y", "z", "origin_x", "origin_y", "origin_z"} {
+		columns = append(columns, parquetfile.Column{Name: name, Values: list})
+	}
+	temporary := t.TempDir()
+	t.Setenv("TMPDIR", temporary)
+	p := planOf(t, files{"raw/a.parquet": tableOf(t, 0, columns...)}, tinyJob(`"raw/*.parquet"`, "true"))
+	if f := p.Files[0]; f.Err != nil || f.Points != 530_000 {
+		t.Errorf("%d points (%v), want 530000", f.Points, f.Err)
+	}
+	same(t, "the folder of temporary files", snapshot(t, temporary), map[string]string{})
+}

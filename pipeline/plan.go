@@ -106,7 +106,7 @@ func (p *planner) file(ctx context.Context, in input) {
 
 // head corrects a file's first rows as a run would.
 func (p *planner) head(in input, f *PlannedFile) error {
-	file, err := p.openCloud(in)
+	file, err := p.openCloud(in, "")
 	if err != nil {
 		return err
 	}

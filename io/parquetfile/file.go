@@ -15,10 +15,11 @@ import (
 
 // Options say how a file is read and written. The zero value is ready to use.
 type Options struct {
-	Coarse     bool              // accept FLOAT coordinates whose step exceeds 1 mm
-	Unit       float64           // metres per unit of the coordinates, for that step; 0 means 1
-	Metadata   map[string]string // written as key-value metadata, in place of the input's entries of these keys
-	ScratchDir string            // folder of scratch files, best that of the output; empty means the system's
+	Coarse   bool              // accept FLOAT coordinates whose step exceeds 1 mm
+	Unit     float64           // metres per unit of the coordinates, for that step; 0 means 1
+	Metadata map[string]string // written as key-value metadata, in place of the input's entries of these keys
+	Output   string            // path of the output, for scratch files in its folder; empty: in the system's folder of temporary files
+	Version  string            // of the program, for the name of the writer; empty: none is given
 }
 
 // File is a Parquet file that is being copied: a cloud.Rewriter.

@@ -38,7 +38,7 @@ func newOutput(f *File, layout cloud.Layout, out io.Writer) (*output, error) {
 		layout:       layout,
 		dictionaries: make([]*dictionary, len(layout.Added)),
 		writer:       bufio.NewWriterSize(out, 64<<10),
-		scratch:      scratch{folder: f.options.ScratchDir},
+		scratch:      scratch{beside: f.options.Output},
 		buffer:       make([]byte, 1<<20),
 	}
 	for i := range layout.Added {
