@@ -36,13 +36,14 @@ func openTable(path string) (cloud.Rewriter, error) {
 }
 
 // openCloud opens a cloud of the job. A Parquet output carries the settings that
-// made it in its key-value metadata.
-func (s *survey) openCloud(in input) (cloud.Rewriter, error) {
+// made it in its key-value metadata. The output is empty where nothing is written,
+// for then its folder need not be there.
+func (s *survey) openCloud(in input, output string) (cloud.Rewriter, error) {
 	i := &s.job.Input
 	file, err := open(in.path,
 		csvfile.Options{Names: i.CSV.Names, Divert: i.BadRows == job.Divert},
 		parquetfile.Options{
-			Coarse: i.Coarse, Unit: s.plan, ScratchDir: filepath.Dir(in.output),
+			Coarse: i.Coarse, Unit: s.plan, Output: output, Version: Version,
 			Metadata: map[string]string{"bentray.program": Program, "bentray.run": s.run, "bentray.job": string(s.settings)},
 		})
 	if errors.Is(err, csvfile.ErrNoHeader) {
@@ -54,3 +55,19 @@ func (s *survey) openCloud(in input) (cloud.Rewriter, error) {
 // isTimestamp tells a column of dates and times, which are read as UTC seconds
 // since 1970 whatever the scale of the job's numbers.
 func isTimestamp(c cloud.Column) bool { return strings.Contains(c.Type, "TIMESTAMP") }
+
+// cautionsOf returns what the file itself gives cause to say, once it has begun.
+func cautionsOf(file cloud.Rewriter) []string {
+	if f, ok := file.(*parquetfile.File); ok {
+		return f.Cautions()
+	}
+	return nil
+}
+
+// rowsOf returns how many rows a file says it has, where its format says so.
+func rowsOf(file cloud.Rewriter) (rows int64, known bool) {
+	if f, ok := file.(*parquetfile.File); ok {
+		return f.Rows(), true
+	}
+	return 0, false
+}

@@ -149,8 +149,17 @@ func TestCoarseCoordinates(t *testing.T) {
 	if got := failParquet(t, cloud(16384.5), parquetJob()); got != want {
 		t.Errorf("the error is %s, want %s", got, want)
 	}
-	accepted := readParquet(t, correctParquet(t, cloud(16384.5), strings.Replace(parquetJob(), "[output]", "coarse = true\n[output]", 1)))
+	if p := planOf(t, files{"raw/a.parquet": cloud(16384.5)}, parquetJob()); p.Files[0].Err == nil || !strings.HasSuffix(p.Files[0].Err.Error(), want) {
+		t.Errorf("the plan says %v, want %s", p.Files[0].Err, want)
+	}
+	coarse := strings.Replace(parquetJob(), "[output]", "coarse = true\n[output]", 1)
+	accepted := readParquet(t, correctParquet(t, cloud(16384.5), coarse))
 	near(t, 0, "x", accepted.number(t, 0, "x"), 16384.5, 1e-11)
+	const caution = `coordinates in column "x" are FLOAT, of some 7 digits; take the cloud with DOUBLE ones if there is one`
+	p := planOf(t, files{"raw/a.parquet": cloud(16384.5), "raw/b.parquet": cloud(5)}, coarse)
+	if n := len(p.Cautions); n == 0 || p.Cautions[n-1] != caution || slices.Index(p.Cautions, caution) != n-1 {
+		t.Errorf("the plan's cautions are %q, want one about FLOAT", p.Cautions)
+	}
 	// In feet the same step is below 1 mm.
 	feet := readParquet(t, correctParquet(t, cloud(16384.5), strings.Replace(parquetJob(), "[output]", "unit = \"ft\"\n[output]", 1)))
 	near(t, 0, "x", feet.number(t, 0, "x"), 16384.5, 1e-11)

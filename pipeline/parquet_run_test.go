@@ -7,6 +7,8 @@ import (
 	"strings"
 	"testing"
 
+	"github.com/xitongsys/parquet-go/parquet"
+
 	"bentray/io/parquetfile"
 	"bentray/pipeline/job"
 )
@@ -56,6 +58,21 @@ func TestSameParquetBytesForAnyWorkers(t *testing.T) {
 	}
 	runJob(t, mixedJob(t, folder, "true2"), Options{Workers: 3, Redo: true})
 	same(t, "redo", outputs(t, filepath.Join(folder, "true2")), want)
+}
+
+// A plan knows the rows of a Parquet file without reading them.
+func TestPlanCountsParquetRows(t *testing.T) {
+	folder := mixedFleet(t)
+	p, err := MakePlan(t.Context(), mixedJob(t, folder, "true"))
+	if err != nil {
+		t.Fatal(err)
+	}
+	want := map[string]int64{"none.parquet": 0, "part/many.parquet": 5_000, "part/wide.parquet": 140_000, "plain.csv": 700}
+	for _, f := range p.Files {
+		if f.Err != nil || !f.Exact || f.Points != want[f.Output] {
+			t.Errorf("%s has %d points (exactly %t, %v), want %d", f.Output, f.Points, f.Exact, f.Err, want[f.Output])
+		}
+	}
 }
 
 // One job treats a cloud alike in both formats: the same outcomes, and the same
@@ -145,8 +162,13 @@ func TestParquetThatCannotBeDone(t *testing.T) {
 		"no z":                    {named("x,y,up"), "no column for z; the columns are x, y, up, origin_x, origin_y, origin_z; name it in [input.columns]"},
 		"degrees":                 {named("lon,lat,z"), `no column for x, and "lon" holds degrees; project the cloud first, its coordinates must be lengths`},
 		"a raw copy there":        {parquetOf(t, "x,y,z,origin_x,origin_y,origin_z,Z_raw\n5,6,-10,5,6,400,1\n", 0, nil), `the file already has a column "Z_raw", which bentray would add; rename it there, or take the raw cloud if this file is an output`},
-		"an output again": {correctParquet(t, parquetOf(t, tiny, 0, nil), parquetJob()),
-			`the file already has a column "x_raw", which bentray would add; rename it there, or take the raw cloud if this file is an output`},
+		"a codec that cannot be read": {withFooter(t, parquetOf(t, tiny, 0, nil), func(meta *parquet.FileMetaData) {
+			meta.RowGroups[0].Columns[2].MetaData.Codec = parquet.CompressionCodec_LZ4_RAW
+		}), `column "z", row group 1: is compressed with LZ4_RAW, want none, SNAPPY, GZIP or ZSTD`},
+		"an output again": {
+			correctParquet(t, parquetOf(t, tiny, 0, nil), parquetJob()),
+			`the file already has a column "x_raw", which bentray would add; rename it there, or take the raw cloud if this file is an output`,
+		},
 	} {
 		t.Run(name, func(t *testing.T) {
 			if got := failParquet(t, c.data, parquetJob()); got != c.want {
@@ -154,4 +176,35 @@ func TestParquetThatCannotBeDone(t *testing.T) {
 			}
 		})
 	}
+}
+
+// Damage far behind the head is found before the file gets its name.
+func TestDamageInTheLastGroup(t *testing.T) {
+	good, _ := manifold(t)
+	chunk := chunksOf(t, good, "z")[3]
+	at := strings.Index(good, chunk)
+	bad := good[:at] + strings.Repeat("\xff", 16) + good[at+16:]
+	if got, want := failParquet(t, bad, parquetJob()), `column "z", row group 4: `; !strings.HasPrefix(got, want) {
+		t.Errorf("the error is %s, want it to begin with %s", got, want)
+	}
+}
+
+// A plan reads pages that do not stay in memory though there is no folder of
+// outputs yet.
+func TestPlanOfGiantPages(t *testing.T) {
+	list := make([]float64, 530_000) // of 8 bytes: more than 4 MiB
+	for i := range list {
+		list[i] = -1
+	}
+	var columns []parquetfile.Column
+	for _, name := range []string{"x", "y", "z", "origin_x", "origin_y", "origin_z"} {
+		columns = append(columns, parquetfile.Column{Name: name, Values: list})
+	}
+	temporary := t.TempDir()
+	t.Setenv("TMPDIR", temporary)
+	p := planOf(t, files{"raw/a.parquet": tableOf(t, 0, columns...)}, tinyJob(`"raw/*.parquet"`, "true"))
+	if f := p.Files[0]; f.Err != nil || f.Points != 530_000 {
+		t.Errorf("%d points (%v), want 530000", f.Points, f.Err)
+	}
+	same(t, "the folder of temporary files", snapshot(t, temporary), map[string]string{})
 }

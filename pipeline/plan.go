@@ -103,10 +103,11 @@ func MakePlan(ctx context.Context, j *job.Job) (*Plan, error) {
 // planner gathers a plan.
 type planner struct {
 	*survey
-	plan  Plan
-	slot  slot
-	tally *tally
-	known history
+	plan    Plan
+	slot    slot
+	tally   *tally
+	known   history
+	ofFiles []string // cautions of the files themselves
 }
 
 func (p *planner) file(ctx context.Context, in input) {
@@ -120,7 +121,7 @@ func (p *planner) file(ctx context.Context, in input) {
 
 // head corrects a file's first rows as a run would.
 func (p *planner) head(in input, f *PlannedFile) error {
-	file, err := p.openCloud(in)
+	file, err := p.openCloud(in, "")
 	if err != nil {
 		return err
 	}
@@ -139,6 +140,11 @@ func (p *planner) head(in input, f *PlannedFile) error {
 	if err := file.Begin(r.request, l.Layout, nil); err != nil {
 		return err
 	}
+	for _, text := range cautionsOf(file) {
+		if !slices.Contains(p.ofFiles, text) {
+			p.ofFiles = append(p.ofFiles, text)
+		}
+	}
 	c := &p.slot.chunk
 	if err := file.Next(c); err == io.EOF {
 		f.Exact = true
@@ -156,6 +162,9 @@ func (p *planner) head(in input, f *PlannedFile) error {
 // count takes the points of a file's first chunk, and where that was not all
 // estimates from them how many the file has.
 func (f *PlannedFile) count(c *cloud.Chunk, file cloud.Rewriter, bytes int64) error {
+	if f.Points, f.Exact = rowsOf(file); f.Exact {
+		return nil
+	}
 	f.Points = int64(c.Rows)
 	share := float64(c.Consumed) / float64(max(bytes, 1))
 	err := file.Next(c)
@@ -197,7 +206,7 @@ func (p *planner) finish() {
 		h.Low[k], h.High[k] = b.low, b.high
 	}
 	p.corners()
-	p.plan.Cautions = t.cautions(p.survey)
+	p.plan.Cautions = append(t.cautions(p.survey), p.ofFiles...)
 }
 
 // corners asks the surface at the corners of the bounds.

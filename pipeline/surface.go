@@ -276,7 +276,7 @@ func digest(columns ...[]float64) string {
 // surfacePoints returns x, y, z (m) and UTC (NaN without times) of a cloud's
 // points of the surface classes.
 func (s *survey) surfacePoints(in input) (points [4][]float64, err error) {
-	file, err := s.openCloud(in)
+	file, err := s.openCloud(in, "")
 	if err != nil {
 		return points, err
 	}

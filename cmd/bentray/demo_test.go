@@ -7,6 +7,7 @@ import (
 	"math"
 	"os"
 	"path/filepath"
+	"regexp"
 	"slices"
 	"strconv"
 	"strings"
@@ -107,6 +108,7 @@ func TestDemoMeetsItsTruth(t *testing.T) {
 			t.Errorf("the report lacks %q:\n%s", want, &stdout)
 		}
 	}
+	checkReadme(t, stdout.String())
 	counts := map[string]int{}
 	for _, name := range []string{"tile_01.csv", "tile_02.parquet", "tile_03.csv", "tile_04.parquet", "cross_line/tile_05.csv"} {
 		if raw := checkTile(t, folder, name, 0.001, counts); raw < 3 {
@@ -167,6 +169,23 @@ func checkSources(t *testing.T, path string) {
 	}
 	if len(seen) < 2 {
 		t.Errorf("%s: the waters are %v, want two or more", path, seen)
+	}
+}
+
+// checkReadme wants the session that README.md shows to be what the demo prints,
+// but for how long it took.
+func checkReadme(t *testing.T, printed string) {
+	t.Helper()
+	text, err := os.ReadFile("../../README.md")
+	if err != nil {
+		t.Fatal(err)
+	}
+	_, behind, _ := strings.Cut(string(text), "The first command prints")
+	_, behind, _ = strings.Cut(behind, "```\n")
+	session, _, found := strings.Cut(behind, "```\n")
+	seconds := regexp.MustCompile(`in [0-9.]+ s\n`)
+	if !found || !strings.HasPrefix(seconds.ReplaceAllString(printed, "in - s\n"), seconds.ReplaceAllString(session, "in - s\n")) {
+		t.Errorf("README.md shows\n%s\nand the demo prints\n%s", session, printed)
 	}
 }
 

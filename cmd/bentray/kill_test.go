@@ -18,11 +18,11 @@ import (
 	"time"
 )
 
-// fleet lays a job of several files, each of some tens of milliseconds' work,
-// and with rows to divert.
+// fleet lays a job of several files, each of some tens of milliseconds' work:
+// CSV with rows to divert, and Parquet.
 func fleet(t *testing.T) {
 	t.Helper()
-	badInput{old: `"raw/*.csv"]`, new: "\"raw/**/*.csv\"]\nbad_rows = \"divert\""}.lay(t)
+	badInput{old: `"raw/*.csv"]`, new: "\"raw/**/*.csv\", \"raw/**/*.parquet\"]\nbad_rows = \"divert\""}.lay(t)
 	for i := range 4 {
 		var b bytes.Buffer
 		b.WriteString("x,y,z,origin_x,origin_y,origin_z,note\n")
@@ -32,6 +32,7 @@ func fleet(t *testing.T) {
 		b.WriteString("ragged\n")
 		put(t, fmt.Sprintf("raw/part%d/t%d.csv", i%2, i), b.String())
 	}
+	put(t, "raw/part0/t4.parquet", goodParquet(t, 20000, 5000))
 }
 
 // results is what runs leave in a folder: its files but for the times in a

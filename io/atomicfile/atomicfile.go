@@ -33,8 +33,7 @@ const writebackStep = 16 << 20
 
 // Create begins a file that will stand at the path. Its folder must exist.
 func Create(path string) (*File, error) {
-	temporary := filepath.Join(filepath.Dir(path), prefix+tag(path)+"-"+rand.Text()[:12])
-	f, err := os.OpenFile(temporary, os.O_WRONLY|os.O_CREATE|os.O_EXCL, 0o666)
+	f, err := os.OpenFile(temporary(path), os.O_WRONLY|os.O_CREATE|os.O_EXCL, 0o666)
 	if err != nil {
 		return nil, fmt.Errorf("%s: cannot begin the file: %w", path, cause(err))
 	}
@@ -139,6 +138,11 @@ func (s *Sweeper) Sweep() (int, error) {
 		}
 	}
 	return swept, nil
+}
+
+// temporary makes up a name beside a target by which a Sweeper knows it.
+func temporary(target string) string {
+	return filepath.Join(filepath.Dir(target), prefix+tag(target)+"-"+rand.Text()[:12])
 }
 
 // tag names a target within its folder, shortly, for names may be as long as a

@@ -5,7 +5,6 @@ import (
 	"math"
 	"os"
 	"path/filepath"
-	"strings"
 	"testing"
 
 	"bentray/io/cloud"
@@ -43,7 +42,7 @@ func TestGiantPages(t *testing.T) {
 	for k := range 6 {
 		layout.Added = append(layout.Added, cloud.Added{Name: fmt.Sprint("more", k)})
 	}
-	o := Options{ScratchDir: folder}
+	o := Options{Output: filepath.Join(folder, "out.parquet")}
 	out, err := rewrite(path, o, cloud.Request{Numbers: []int{0, 1, 2}}, layout, 2, func(c *cloud.Chunk) {
 		clear(c.Class)
 		for k := range c.Added {
@@ -61,9 +60,9 @@ func TestGiantPages(t *testing.T) {
 	if left, err := os.ReadDir(folder); err != nil || len(left) != 0 {
 		t.Errorf("the scratch folder holds %v (%v), want nothing", left, err)
 	}
-	gone := Options{ScratchDir: filepath.Join(folder, "gone")}
-	if _, _, err := readAll(path, gone, cloud.Request{Numbers: []int{0}}); err == nil || !strings.Contains(err.Error(), `column "x", row group 1: no scratch file: `) {
-		t.Errorf("without a scratch folder: got error %v, want one", err)
+	gone := Options{Output: filepath.Join(folder, "gone", "out.parquet")}
+	if _, _, err := readAll(path, gone, cloud.Request{Numbers: []int{0}}); err == nil || err.Error() != path+": a scratch file failed: no such file or directory" {
+		t.Errorf("without a scratch folder: got error %v, want one that names no column", err)
 	}
 	made := filepath.Join(t.TempDir(), "out.parquet")
 	if err := os.WriteFile(made, out, 0o600); err != nil {

@@ -1,6 +1,7 @@
 package parquetfile
 
 import (
+	"errors"
 	"fmt"
 
 	"bentray/io/cloud"
@@ -62,7 +63,12 @@ func (c *cursor) begin(group int) error {
 	return nil
 }
 
+// fail says where in the input an error is.
 func (c *cursor) fail(err error) error {
+	var scratch *scratchError
+	if errors.As(err, &scratch) {
+		return fmt.Errorf("%s: %w", c.file.path, err)
+	}
 	return fmt.Errorf("%s: column %q, row group %d: %w", c.file.path, c.leaf.name, c.group+1, err)
 }
 

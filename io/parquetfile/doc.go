@@ -55,14 +55,16 @@ const (
 
 	maxFooterBytes = 64 << 20  // footer as stored
 	maxListItems   = 1 << 20   // elements of one list in footer or page header
-	maxSmallItems  = 1 << 19   // structures and strings in footer or page header, and
-	itemBytes      = 12        // one more for so many bytes: a chunk's description has 6 in 100
+	thriftBase     = 8 << 20   // memory of what is read of footer or page header, and
+	thriftTimes    = 16        // so many times its bytes more
 	maxHeaderBytes = 1 << 20   // header of one page
 	maxPageBytes   = 128 << 20 // one page, compressed or not
 	maxDictBytes   = 32 << 20  // one dictionary page, decompressed
 	maxTextBytes   = 64 << 20  // texts of one column in one piece
 	maxSchemaItems = 1 << 16   // columns and groups of a schema
 	maxDepth       = 32        // levels of a nested schema
+	maxPathBytes   = 64 << 10  // name of a column, with those of its groups
+	maxPathsBytes  = 16 << 20  // names of all columns
 
 	spillBytes = 4 << 20  // decompressed size above which a page of numbers goes to a scratch file
 	heldBytes  = 32 << 20 // new pages of a row group that are kept in memory

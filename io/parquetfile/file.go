@@ -15,10 +15,11 @@ import (
 
 // Options say how a file is read and written. The zero value is ready to use.
 type Options struct {
-	Coarse     bool              // accept FLOAT coordinates whose step exceeds 1 mm
-	Unit       float64           // metres per unit of the coordinates, for that step; 0 means 1
-	Metadata   map[string]string // written as key-value metadata, in place of the input's entries of these keys
-	ScratchDir string            // folder of scratch files, best that of the output; empty means the system's
+	Coarse   bool              // accept FLOAT coordinates whose step exceeds 1 mm
+	Unit     float64           // metres per unit of the coordinates, for that step; 0 means 1
+	Metadata map[string]string // written as key-value metadata, in place of the input's entries of these keys
+	Output   string            // path of the output, for scratch files in its folder; empty: in the system's folder of temporary files
+	Version  string            // of the program, for the name of the writer; empty: none is given
 }
 
 // File is a Parquet file that is being copied: a cloud.Rewriter.
@@ -34,7 +35,7 @@ type File struct {
 	cautions []string
 	groups   []*parquet.RowGroup
 
-	raw     []*cursor // x, y, z; none where the file is only read
+	raw     []*cursor // x, y, z; none where there is no layout
 	numbers []source
 	texts   []*cursor
 	group   int   // the group of the next piece
@@ -107,23 +108,30 @@ func (f *File) Columns() []cloud.Column { return f.columns }
 // Rows returns the number of rows of the file.
 func (f *File) Rows() int64 { return f.meta.NumRows }
 
-// Cautions says what of the input the output cannot repeat: names of logical
-// types that are younger than this program.
+// Cautions says what of the input the output cannot repeat, which are names of
+// logical types that are younger than this program, and after Begin which
+// coordinates are FLOAT.
 func (f *File) Cautions() []string { return f.cautions }
 
 // Begin fixes what is decoded and what is written. It finds columns that cannot
 // be read, and coordinates that are too coarse by the file's statistics, before
-// anything is written. Numbers and coordinates must be of a type that stands
-// for a number, texts of a BYTE_ARRAY type.
+// anything is written; a layout that has classes is held to that without a
+// writer too. Numbers and coordinates must be of a type that stands for a
+// number, texts of a BYTE_ARRAY type.
 func (f *File) Begin(read cloud.Request, write cloud.Layout, out io.Writer) error {
-	if err := f.beginReading(read, write, out != nil); err != nil {
+	if err := f.beginReading(read, write, out != nil || write.Moved != nil); err != nil {
 		return err
-	}
-	if out == nil {
-		return nil
 	}
 	if err := f.checkStep(); err != nil {
 		return err
+	}
+	for _, c := range f.raw {
+		if c.leaf.kind == floats {
+			f.cautions = append(f.cautions, fmt.Sprintf("coordinates in column %q are FLOAT, of some 7 digits; take the cloud with DOUBLE ones if there is one", c.leaf.name))
+		}
+	}
+	if out == nil {
+		return nil
 	}
 	var err error
 	if f.out, err = newOutput(f, write, out); err != nil {

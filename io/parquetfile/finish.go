@@ -14,12 +14,19 @@ import (
 
 // createdBy names the writer in the form that readers take apart: some of them
 // judge the statistics of a file by it.
-const createdBy = "bentray version 1.0.0"
+func createdBy(version string) *string {
+	name := "bentray"
+	if version != "" {
+		name += " version " + version
+	}
+	return &name
+}
 
 // stale lists metadata of other writers that describe the columns: they would
 // hide the new ones.
 var stale = []string{
 	"ARROW:schema", "pandas", "org.apache.spark.sql.parquet.row.metadata", "parquet.avro.schema", "avro.schema",
+	"iceberg.schema", "parquet.proto.descriptor", // these two from memory
 }
 
 var physicalTypes = map[cloud.Type]parquet.Type{
@@ -129,14 +136,13 @@ func (o *output) metadata() []*parquet.KeyValue {
 // Finish writes the footer.
 func (f *File) Finish() error {
 	o := f.out
-	writer := createdBy
 	meta := &parquet.FileMetaData{
 		Version:          f.meta.Version,
 		Schema:           o.schema,
 		NumRows:          f.meta.NumRows,
 		RowGroups:        o.groups,
 		KeyValueMetadata: o.metadata(),
-		CreatedBy:        &writer,
+		CreatedBy:        createdBy(f.options.Version),
 	}
 	if meta.RowGroups == nil {
 		meta.RowGroups = []*parquet.RowGroup{}

@@ -6,6 +6,7 @@ import (
 	"os"
 	"path/filepath"
 	"runtime"
+	"slices"
 	"strings"
 	"testing"
 
@@ -120,32 +121,61 @@ func TestFooterLies(t *testing.T) {
 				m.Schema = append(m.Schema[:1], append([]*parquet.SchemaElement{{Name: "g", NumChildren: pointer(int32(1))}}, m.Schema[1:]...)...)
 			}
 		}, "nested more than 32 deep"},
+		{"long name", func(m *parquet.FileMetaData) { m.Schema[1].Name = strings.Repeat("v", 64<<10+1) }, "the name of a column has 65537 bytes, want at most 65536"},
+		{"long names of groups", func(m *parquet.FileMetaData) {
+			for range 2 {
+				group := &parquet.SchemaElement{Name: strings.Repeat("g", 40<<10), NumChildren: pointer(int32(1))}
+				m.Schema = slices.Insert(m.Schema, 1, group)
+			}
+		}, "the name of a column has 81921 bytes"},
+		{"one long name for many columns", func(m *parquet.FileMetaData) {
+			group := &parquet.SchemaElement{Name: strings.Repeat("g", 60<<10), NumChildren: pointer(int32(1000))}
+			m.Schema = append(m.Schema[:1], group)
+			for range 1000 {
+				m.Schema = append(m.Schema, &parquet.SchemaElement{Name: "v", Type: pointer(parquet.Type_DOUBLE)})
+			}
+		}, "the names of the columns have more than 16777216 bytes"},
 	}
 	for _, c := range cases {
 		t.Run(c.name, func(t *testing.T) { refuse(t, buildFile(t, []built{simple()}, []int{100}, c.change), c.words) })
 	}
 }
 
-// TestFooterBomb refuses a footer of very many empty structures before they
-// have taken the memory that they could.
+// TestFooterBomb refuses footers whose parts take far more memory than bytes
+// before they have taken it.
 func TestFooterBomb(t *testing.T) {
 	const entries = 1 << 20
-	b := []byte{0x15, 2, 0x19, 0x0c, 0x16, 0, 0x19, 0x0c, 0x19, 0xfc} // version, schema, rows, groups, metadata
-	b = binary.AppendUvarint(b, entries)
-	for range entries {
-		b = append(b, 0x18, 0, 0) // an empty key
+	list := func(head []byte, element ...byte) []byte {
+		return append(binary.AppendUvarint(head, entries), bytes.Repeat(element, entries)...)
 	}
-	b = append(b, 0)
-	file := append([]byte("PAR1"), b...)
-	file = append(binary.LittleEndian.AppendUint32(file, uint32(len(b))), "PAR1"...)
-	path := writeFile(t, file)
-	var err error
-	n := allocated(func() { _, err = Open(path, Options{}) })
-	if want := "holds more structures than its size lets expect"; err == nil || !strings.Contains(err.Error(), want) {
-		t.Errorf("got error %v, want %q", err, want)
+	// Fields by their step and type: version, schema, rows, groups, metadata.
+	start := []byte{0x15, 2, 0x19, 0x0c, 0x16, 0, 0x19}
+	in := func(b ...byte) []byte { return append(slices.Clone(start), b...) }
+	cases := []struct {
+		name   string
+		footer []byte
+	}{
+		{"empty keys", list(in(0x0c, 0x19, 0xfc), 0x18, 0, 0)},
+		{"column chunks", list(in(0x1c, 0x19, 0xfc), 0x26, 0, 0)},
+		{"encodings", list(in(0x1c, 0x19, 0x1c, 0x26, 0, 0x1c, 0x15, 0, 0x19, 0xf5), 0)},
+		{"names of paths", list(in(0x1c, 0x19, 0x1c, 0x26, 0, 0x1c, 0x15, 0, 0x19, 0x05, 0x19, 0xf8), 0)},
+		{"a list that is not there", binary.AppendUvarint(in(0x1c, 0x19, 0x1c, 0x26, 0, 0x1c, 0x15, 0, 0x19, 0xf5), entries-1)},
 	}
-	if n > 200<<20 {
-		t.Errorf("allocated %d bytes for a footer of %d", n, len(b))
+	for _, c := range cases {
+		t.Run(c.name, func(t *testing.T) {
+			b := append(c.footer, 0)
+			file := append([]byte("PAR1"), b...)
+			file = append(binary.LittleEndian.AppendUint32(file, uint32(len(b))), "PAR1"...)
+			path := writeFile(t, file)
+			var err error
+			n := allocated(func() { _, err = Open(path, Options{}) })
+			if err == nil || !strings.Contains(err.Error(), "the footer is damaged") {
+				t.Errorf("got error %v, want a damaged footer", err)
+			}
+			if most := uint64(8<<20 + 17*len(file)); n > most {
+				t.Errorf("allocated %d bytes for a footer of %d, want at most %d", n, len(b), most)
+			}
+		})
 	}
 }
 

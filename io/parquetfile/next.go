@@ -32,9 +32,9 @@ type piece struct {
 	work        encoder
 }
 
-func (f *File) beginReading(read cloud.Request, write cloud.Layout, writing bool) error {
+func (f *File) beginReading(read cloud.Request, write cloud.Layout, laidOut bool) error {
 	var xyz []int
-	if writing {
+	if laidOut {
 		xyz = write.XYZ[:]
 	}
 	for _, i := range xyz {
@@ -76,7 +76,7 @@ func (f *File) newCursor(i int, text bool) (*cursor, error) {
 	case !text && isText:
 		return nil, fmt.Errorf("%s: column %q is %s, want a number (DOUBLE, FLOAT, INT32, INT64 or TIMESTAMP)", f.path, l.name, l.typ)
 	}
-	c := &cursor{file: f, leaf: l, index: i, scratch: scratch{folder: f.options.ScratchDir}}
+	c := &cursor{file: f, leaf: l, index: i, scratch: scratch{beside: f.options.Output}}
 	for g := range f.groups {
 		if err := c.begin(g); err != nil {
 			return nil, err

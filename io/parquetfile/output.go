@@ -38,7 +38,7 @@ func newOutput(f *File, layout cloud.Layout, out io.Writer) (*output, error) {
 		layout:       layout,
 		dictionaries: make([]*dictionary, len(layout.Added)),
 		writer:       bufio.NewWriterSize(out, 64<<10),
-		scratch:      scratch{folder: f.options.ScratchDir},
+		scratch:      scratch{beside: f.options.Output},
 		buffer:       make([]byte, 1<<20),
 	}
 	for i := range layout.Added {
@@ -105,8 +105,8 @@ func (o *output) beginGroup(group int) error {
 			return err
 		}
 		start := o.at
-		if err := o.copy(s); err != nil {
-			return fmt.Errorf("column %q, row group %d: %w", o.file.leaves[i].name, group+1, err)
+		if err := o.copy(s, i, group); err != nil {
+			return err
 		}
 		o.copied = append(o.copied, span{start, o.at})
 	}
@@ -118,12 +118,12 @@ func (o *output) beginGroup(group int) error {
 	return nil
 }
 
-// copy appends bytes of the input.
-func (o *output) copy(s span) error {
+// copy appends bytes of the input, a column's chunk of a group.
+func (o *output) copy(s span, column, group int) error {
 	for s.start < s.end {
 		b := o.buffer[:min(int64(len(o.buffer)), s.end-s.start)]
 		if err := readAt(o.file.input, b, s.start); err != nil {
-			return err
+			return fmt.Errorf("column %q, row group %d: %w", o.file.leaves[column].name, group+1, err)
 		}
 		if err := o.write(b); err != nil {
 			return err

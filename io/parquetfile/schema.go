@@ -63,6 +63,7 @@ type walker struct {
 	elements []*parquet.SchemaElement
 	next     int
 	leaves   []leaf
+	bytes    int // of all paths
 }
 
 // leavesOf lists the stored columns in the order in which row groups hold them.
@@ -74,16 +75,21 @@ func leavesOf(elements []*parquet.SchemaElement) ([]leaf, error) {
 		return nil, fmt.Errorf("the schema has %d elements, want at most %d", len(elements), maxSchemaItems)
 	}
 	w := walker{elements: elements, next: 1}
-	if err := w.children(*elements[0].NumChildren, nil, 1); err != nil {
+	if err := w.children(*elements[0].NumChildren, nil, 0, 1); err != nil {
 		return nil, err
 	}
 	if w.next != len(elements) {
 		return nil, fmt.Errorf("the schema has %d elements, want %d as its groups say", len(elements), w.next)
 	}
+	for i := range w.leaves {
+		w.leaves[i].name = strings.Join(w.leaves[i].path, ".")
+	}
 	return w.leaves, nil
 }
 
-func (w *walker) children(count int32, parents []string, depth int) error {
+// children walks through a group's elements. The names of its parents have the
+// given bytes, with a dot behind each.
+func (w *walker) children(count int32, parents []string, bytes, depth int) error {
 	if depth > maxDepth {
 		return fmt.Errorf("the schema is nested more than %d deep", maxDepth)
 	}
@@ -92,10 +98,13 @@ func (w *walker) children(count int32, parents []string, depth int) error {
 			return fmt.Errorf("the schema has %d elements, want more as its groups say", len(w.elements))
 		}
 		e := w.elements[w.next]
+		if err := w.checkPath(bytes + len(e.Name)); err != nil {
+			return err
+		}
 		path := append(parents[:len(parents):len(parents)], e.Name)
 		w.next++
 		if e.Type == nil {
-			if err := w.children(e.GetNumChildren(), path, depth+1); err != nil {
+			if err := w.children(e.GetNumChildren(), path, bytes+len(e.Name)+1, depth+1); err != nil {
 				return err
 			}
 			continue
@@ -108,9 +117,21 @@ func (w *walker) children(count int32, parents []string, depth int) error {
 	return nil
 }
 
+// checkPath bounds the names that leaves will have: a group's name stands in
+// those of all its leaves.
+func (w *walker) checkPath(bytes int) error {
+	w.bytes += bytes
+	switch {
+	case bytes > maxPathBytes:
+		return fmt.Errorf("the name of a column has %d bytes, want at most %d", bytes, maxPathBytes)
+	case w.bytes > maxPathsBytes:
+		return fmt.Errorf("the names of the columns have more than %d bytes", maxPathsBytes)
+	}
+	return nil
+}
+
 func newLeaf(e *parquet.SchemaElement, element int, path []string) leaf {
 	l := leaf{
-		name:     strings.Join(path, "."),
 		typ:      typeName(e),
 		path:     path,
 		physical: *e.Type,

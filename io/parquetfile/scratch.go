@@ -6,20 +6,17 @@ import (
 	"io"
 	"math"
 	"os"
+	"path/filepath"
 
+	"bentray/io/atomicfile"
 	"bentray/io/cloud"
 )
-
-// ScratchPattern matches the names of scratch files, as path.Match has it. On
-// Unix a scratch file loses its name as soon as it is made.
-const ScratchPattern = ".bentray-*.scratch"
 
 // scratch is a file without a name, made when it is first written to. It holds
 // either the numbers of one page, read once in order, or whole buffers.
 type scratch struct {
-	folder  string
-	file    *os.File
-	named   bool
+	beside  string // a path in the folder where it is made
+	file    *atomicfile.Scratch
 	written int64
 	read    int64
 	numbers []float64
@@ -35,14 +32,24 @@ func (s *scratch) rewind() {
 
 func (s *scratch) write(b []byte) error {
 	if s.file == nil {
-		f, err := os.CreateTemp(s.folder, ScratchPattern)
-		if err != nil {
-			return fmt.Errorf("no scratch file: %w", err)
+		if err := s.make(); err != nil {
+			return &scratchError{err}
 		}
-		s.file, s.named = f, os.Remove(f.Name()) != nil
 	}
 	n, err := s.file.WriteAt(b, s.written)
 	s.written += int64(n)
+	if err != nil {
+		return &scratchError{err}
+	}
+	return nil
+}
+
+func (s *scratch) make() (err error) {
+	target := s.beside
+	if target == "" {
+		target = filepath.Join(os.TempDir(), "bentray")
+	}
+	s.file, err = atomicfile.NewScratch(target)
 	return err
 }
 
@@ -54,7 +61,7 @@ func (s *scratch) readAt(b []byte, off int64) error {
 	if err == io.EOF {
 		err = io.ErrUnexpectedEOF
 	}
-	return fmt.Errorf("scratch file: %w", err)
+	return &scratchError{err}
 }
 
 // writeNumbers appends at most a block of the size that rewind made.
@@ -83,11 +90,13 @@ func (s *scratch) close() error {
 		return nil
 	}
 	err := s.file.Close()
-	if s.named {
-		if removed := os.Remove(s.file.Name()); err == nil {
-			err = removed
-		}
-	}
 	s.file = nil
 	return err
 }
+
+// scratchError is a failure that the input has no part in.
+type scratchError struct{ err error }
+
+func (e *scratchError) Error() string { return fmt.Sprintf("a scratch file failed: %v", e.err) }
+
+func (e *scratchError) Unwrap() error { return e.err }

@@ -24,7 +24,7 @@ type Column struct {
 // give equal bytes.
 //
 // Errors: a column of another type or length, a name that is there twice, a
-// page beyond 128 MiB, and those of the writer.
+// page beyond 64 MiB, and those of the writer.
 func WriteTable(w io.Writer, columns []Column, groupRows int) error {
 	t := &tableWriter{writer: w, columns: columns}
 	if err := t.describe(); err != nil {
@@ -62,10 +62,10 @@ type tableWriter struct {
 
 // describe checks the columns and makes the schema.
 func (t *tableWriter) describe() error {
-	count, writer := int32(len(t.columns)), createdBy
+	count := int32(len(t.columns))
 	t.meta = parquet.FileMetaData{
 		Version: 1, Schema: []*parquet.SchemaElement{{Name: "table", NumChildren: &count}},
-		RowGroups: []*parquet.RowGroup{}, CreatedBy: &writer,
+		RowGroups: []*parquet.RowGroup{}, CreatedBy: createdBy(""),
 	}
 	taken := map[string]bool{}
 	for i, c := range t.columns {

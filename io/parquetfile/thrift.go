@@ -14,39 +14,64 @@ var limits = &thrift.TConfiguration{
 	MaxContainerSize: maxListItems,
 }
 
-// thrifty is a protocol that counts what takes more memory than bytes. Without
-// it 64 MiB of empty structures would take gigabytes.
+// What the parts of a structure take in memory, about: lists take room for their
+// elements at once, as long as those are said to be, and a structure of one byte
+// may have twenty pointers.
+const (
+	structBytes  = 128
+	elementBytes = 24
+	stringBytes  = 24 // beside its characters
+)
+
+// thrifty is a protocol that adds up the memory for what it reads. Without it
+// 64 MiB of empty structures would take gigabytes.
 type thrifty struct {
 	thrift.TProtocol
-	left int // structures and strings that may still be read
+	left int // bytes that may still be taken
 }
 
 func (p *thrifty) ReadStructBegin(ctx context.Context) (string, error) {
-	if err := p.count(); err != nil {
+	if err := p.take(structBytes); err != nil {
 		return "", err
 	}
 	return p.TProtocol.ReadStructBegin(ctx)
 }
 
-func (p *thrifty) ReadString(ctx context.Context) (string, error) {
-	if err := p.count(); err != nil {
-		return "", err
+func (p *thrifty) ReadListBegin(ctx context.Context) (thrift.TType, int, error) {
+	t, n, err := p.TProtocol.ReadListBegin(ctx)
+	if err == nil {
+		err = p.take(n * elementBytes)
 	}
-	return p.TProtocol.ReadString(ctx)
+	return t, n, err
 }
 
-func (p *thrifty) count() error {
-	if p.left == 0 {
-		return fmt.Errorf("it holds more structures than its size lets expect")
+func (p *thrifty) ReadString(ctx context.Context) (string, error) {
+	s, err := p.TProtocol.ReadString(ctx)
+	if err == nil {
+		err = p.take(stringBytes + len(s))
 	}
-	p.left--
+	return s, err
+}
+
+func (p *thrifty) ReadBinary(ctx context.Context) ([]byte, error) {
+	b, err := p.TProtocol.ReadBinary(ctx)
+	if err == nil {
+		err = p.take(stringBytes + len(b))
+	}
+	return b, err
+}
+
+func (p *thrifty) take(bytes int) error {
+	if p.left -= bytes; p.left < 0 {
+		return fmt.Errorf("it holds more than its size lets expect")
+	}
 	return nil
 }
 
 // readThrift reads a structure from the beginning of b and returns its length.
 func readThrift(b []byte, s thrift.TStruct) (int, error) {
 	buffer := &thrift.TMemoryBuffer{Buffer: bytes.NewBuffer(b)}
-	p := &thrifty{thrift.NewTCompactProtocolConf(buffer, limits), maxSmallItems + len(b)/itemBytes}
+	p := &thrifty{thrift.NewTCompactProtocolConf(buffer, limits), thriftBase + thriftTimes*len(b)}
 	if err := s.Read(context.Background(), p); err != nil {
 		return 0, err
 	}

@@ -86,6 +86,7 @@ func TestParseFaults(t *testing.T) {
 		{"broken pattern", `["raw/*.csv"]`, `["raw/[a.csv"]`, `job.toml:2: [input] files item 1 is "raw/[a.csv", want a pattern whose brackets and braces are closed`},
 		{"unit", "files", "unit = 'yd'\nfiles", `job.toml:2: [input] unit is "yd", want "m", "ft" or "us-ft"`},
 		{"vertical unit", "files", "vertical_unit = ''\nfiles", `job.toml:2: [input] vertical_unit is "", want "m", "ft" or "us-ft"`},
+		{"coarse", "files", "coarse = 1\nfiles", `job.toml:2: [input] coarse is a number, want true or false`},
 		{"bad rows", "files", "bad_rows = 'skip'\nfiles", `job.toml:2: [input] bad_rows is "skip", want "stop" or "divert"`},
 		{"time", "files", "time = 'gps'\nfiles", `job.toml:2: [input] time is "gps", want "gps-adjusted", "gps-week" or "utc"`},
 		{"no week", "files", "time = 'gps-week'\nfiles", `job.toml:1: [input] week is missing, want a whole number from 1, because of time = "gps-week"`},

@@ -54,7 +54,7 @@ func TestLoadReadsEveryKey(t *testing.T) {
 	want := &Job{
 		Title: "Lantern Cove, spring flight",
 		Input: Input{
-			Files: []string{"raw/**/*.parquet", "raw/*.csv"}, Unit: "us-ft", VerticalUnit: "ft", BadRows: "divert",
+			Files: []string{"raw/**/*.parquet", "raw/*.csv"}, Unit: "us-ft", VerticalUnit: "ft", BadRows: "divert", Coarse: true,
 			Time: "gps-week", Week: ptr(2397),
 			Columns: map[string]string{"x": "easting", "y": "northing"},
 			CSV:     CSV{Header: false, Names: []string{"easting", "northing", "z", "gps_time", "classification"}},
