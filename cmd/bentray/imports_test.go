@@ -28,7 +28,7 @@ var mayImport = map[string][]string{
 	"io/atomicfile":          {},
 	"io/cloud":               {},
 	"io/csvfile":             {"io/cloud"},
-	"io/parquetfile":         {"io/cloud"},
+	"io/parquetfile":         {"io/cloud", "io/atomicfile"},
 	"io/parquetfile/interop": {},
 }
 

@@ -24,6 +24,7 @@ type cursor struct {
 	levels  hybrid
 	spilled bool // the page at hand lies in scratch
 	scratch scratch
+	few     cloud.Texts // on their way to it
 	hasDict bool
 	dict    cloud.Texts
 
@@ -155,6 +156,9 @@ func spread(dst []float64, levels []uint64, set int) {
 // takeTexts decodes rows of the page at hand.
 func (c *cursor) takeTexts(t *cloud.Texts, rows int) error {
 	c.left -= rows
+	if c.spilled {
+		return c.scratch.readTexts(t, rows)
+	}
 	if !c.hasNull {
 		return c.words.next(t, rows)
 	}

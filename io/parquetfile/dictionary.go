@@ -9,7 +9,7 @@ import (
 )
 
 // readDictionary reads the values that later pages of the chunk refer to.
-func (c *cursor) readDictionary(h *parquet.PageHeader) error {
+func (c *cursor) readDictionary(h *parquet.PageHeader, packed, open *[]byte) error {
 	d := h.DictionaryPageHeader
 	switch {
 	case d == nil:
@@ -23,7 +23,7 @@ func (c *cursor) readDictionary(h *parquet.PageHeader) error {
 	case d.NumValues < 0:
 		return fmt.Errorf("the dictionary has %d values", d.NumValues)
 	}
-	data, err := c.load(h, 0, c.codec != parquet.CompressionCodec_UNCOMPRESSED, &c.file.packed, &c.open)
+	data, err := c.load(h, 0, c.codec != parquet.CompressionCodec_UNCOMPRESSED, packed, open)
 	if err != nil {
 		return err
 	}

@@ -41,7 +41,13 @@
 //
 // The caps below bound every allocation by a file, whatever its headers say.
 // Pages above spillBytes are decoded to a scratch file, one at a time in the
-// whole process, and new pages above heldBytes wait in another. Sizes are
+// whole process, and new pages above heldBytes wait in another. So pages take
+// at most 128 MiB in the process (the giant one, as stored and as opened) and
+// twice that until its memory is collected; a file 4 MiB for the page as stored,
+// and for each column that is read 4 MiB for its page (16 MiB for indices of
+// texts), the dictionary decoded and 32 MiB for texts on their way to a scratch
+// file; a piece its numbers, 32 MiB of texts and its new pages; an output 32 MiB
+// of new pages. Sizes are
 // checked before anything is decompressed, by the codecs' own functions (the
 // wrappers that come with the format's structures take no limit and fail on
 // damaged gzip data by panic). A checksum is verified where a page has one,
@@ -53,19 +59,25 @@ package parquetfile
 const (
 	pieceRows = 64 << 10 // most rows of a chunk
 
-	maxFooterBytes = 64 << 20  // footer as stored
-	maxListItems   = 1 << 20   // elements of one list in footer or page header
-	thriftBase     = 8 << 20   // memory of what is read of footer or page header, and
-	thriftTimes    = 16        // so many times its bytes more
-	maxHeaderBytes = 1 << 20   // header of one page
-	maxPageBytes   = 128 << 20 // one page, compressed or not
-	maxDictBytes   = 32 << 20  // one dictionary page, decompressed
-	maxTextBytes   = 64 << 20  // texts of one column in one piece
-	maxSchemaItems = 1 << 16   // columns and groups of a schema
-	maxDepth       = 32        // levels of a nested schema
-	maxPathBytes   = 64 << 10  // name of a column, with those of its groups
-	maxPathsBytes  = 16 << 20  // names of all columns
+	maxFooterBytes = 64 << 20 // footer as stored
+	maxListItems   = 1 << 20  // elements of one list in footer or page header
+	thriftBase     = 8 << 20  // memory of what is read of footer or page header, and
+	thriftTimes    = 16       // so many times its bytes more
+	maxHeaderBytes = 1 << 20  // header of one page
+	maxPageBytes   = 64 << 20 // one page, compressed or not
+	maxDictBytes   = 32 << 20 // one dictionary page, decompressed
+	maxTextBytes   = 32 << 20 // texts of all columns in one piece
+	maxIndexBytes  = 16 << 20 // one page of indices of texts
+	maxSchemaItems = 1 << 16  // columns and groups of a schema
+	maxDepth       = 32       // levels of a nested schema
+	maxPathBytes   = 64 << 10 // name of a column, with those of its groups
+	maxPathsBytes  = 16 << 20 // names of all columns
 
-	spillBytes = 4 << 20  // decompressed size above which a page of numbers goes to a scratch file
+	textRows     = 256      // rows of texts that are decoded at a time
+	cutTextBytes = 16 << 20 // texts of all columns with which a piece ends
+
+	maxSpilledTexts = 1 << 30 // texts of one page in a scratch file
+
+	spillBytes = 4 << 20  // size, compressed or not, above which a page goes to a scratch file
 	heldBytes  = 32 << 20 // new pages of a row group that are kept in memory
 )

@@ -62,8 +62,8 @@ func TestPageLies(t *testing.T) {
 		{"no header", double, []byte{0xff, 0xff, 0xff}, "a page header is damaged"},
 		{"compressed size", double, pageOf(t, plain, 800, 100, eight)[:700], "a page says it has 800 bytes, want at most"},
 		{"page size", double, pageOf(t, plain, 900, 100, eight), "a page that is not compressed has 800 bytes, want 900"},
-		{"huge page", double, pageOf(t, plain, 1<<30, 100, eight), "want at most 134217728; write the file with smaller pages"},
-		{"too large for its values", double, pageOf(t, plain, 100<<20, 100, eight), "a page of 100 values has 104857600 bytes, want at most 67136"},
+		{"huge page", double, pageOf(t, plain, 1<<30, 100, eight), "want at most 67108864; write the file with smaller pages"},
+		{"too large for its values", double, pageOf(t, plain, 50<<20, 100, eight), "a page of 100 values has 52428800 bytes, want at most 67136"},
 		{"negative size", double, pageOf(t, plain, -1, 100, eight), "a page has 800 bytes, -1 decompressed"},
 		{"too many values", double, pageOf(t, plain, 800, 101, eight), "a page has 101 values, want at most the 100"},
 		{"negative values", double, pageOf(t, plain, 800, -1, eight), "a page has -1 values"},
@@ -127,7 +127,7 @@ func TestTextLies(t *testing.T) {
 		{"prefix", parquet.Encoding_DELTA_BYTE_ARRAY, nil, append(length(append([]int64{5}, make([]int64, 99)...)...), length(make([]int64, 100)...)...), "takes 5 bytes from the one before, which has 0"},
 		{"no suffixes", parquet.Encoding_DELTA_BYTE_ARRAY, nil, length(make([]int64, 100)...), "a length is damaged"},
 		{"dictionary texts", parquet.Encoding_RLE_DICTIONARY, dictOf(t, 1000, []byte{0, 0, 0, 0}), []byte{0, 200, 1}, "the dictionary of 1000 texts has 4 bytes"},
-		{"one long text, 100 times", parquet.Encoding_RLE_DICTIONARY, dictOf(t, 1, long), []byte{0, 200, 1}, "are longer than 67108864 bytes"},
+		{"one long text, 100 times", parquet.Encoding_RLE_DICTIONARY, dictOf(t, 1, long), []byte{0, 200, 1}, "are longer than 33554432 bytes"},
 		{"numbers' encoding", parquet.Encoding_BYTE_STREAM_SPLIT, nil, make([]byte, 100), "BYTE_ARRAY values are encoded as BYTE_STREAM_SPLIT"},
 	}
 	for _, e := range cases {

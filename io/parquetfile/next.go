@@ -97,11 +97,14 @@ func (f *File) Next(c *cloud.Chunk) error {
 	}
 	p := pieceOf(c)
 	total := f.groups[f.group].NumRows
-	rows := f.pieceSize(total)
+	rows, err := f.decodeTexts(c, f.pieceSize(total))
+	if err != nil {
+		return err
+	}
 	p.group, p.first, p.last = f.group, f.done == 0, f.done+rows == total
 	c.Rows, c.Rejects = int(rows), c.Rejects[:0]
 	c.Consumed = f.share(f.before+f.done+rows) - f.share(f.before+f.done)
-	if err := f.decode(c, p); err != nil {
+	if err := f.decodeNumbers(c, p); err != nil {
 		return err
 	}
 	f.done += rows
@@ -145,7 +148,42 @@ func (f *File) share(rows int64) int64 {
 	return int64(float64(f.size) * (float64(rows) / float64(f.meta.NumRows)))
 }
 
-func (f *File) decode(c *cloud.Chunk, p *piece) error {
+// decodeTexts decodes the texts of the next rows, at most so many, and returns
+// of how many: of fewer where they are long.
+func (f *File) decodeTexts(c *cloud.Chunk, most int64) (rows int64, err error) {
+	if len(c.Texts) != len(f.texts) {
+		c.Texts = make([]cloud.Texts, len(f.texts))
+	}
+	for k := range c.Texts {
+		c.Texts[k].Reset()
+	}
+	if len(c.Texts) == 0 {
+		return most, nil
+	}
+	for bytes := 0; rows < most && bytes < cutTextBytes; {
+		n := min(textRows, most-rows)
+		if bytes, err = f.decodeFewTexts(c, int(n)); err != nil {
+			return 0, err
+		}
+		rows += n
+	}
+	return rows, nil
+}
+
+// decodeFewTexts appends a few rows and returns the bytes of all columns.
+func (f *File) decodeFewTexts(c *cloud.Chunk, rows int) (bytes int, err error) {
+	for k, cursor := range f.texts {
+		if err := cursor.readTexts(&c.Texts[k], rows); err != nil {
+			return 0, err
+		}
+		if bytes += len(c.Texts[k].Bytes); bytes > maxTextBytes {
+			return 0, cursor.fail(fmt.Errorf("the texts of %d rows are longer than %d bytes", len(c.Texts[k].Ends), maxTextBytes))
+		}
+	}
+	return bytes, nil
+}
+
+func (f *File) decodeNumbers(c *cloud.Chunk, p *piece) error {
 	for k, cursor := range f.raw {
 		p.raw[k] = cloud.Grow(p.raw[k], c.Rows)
 		if err := cursor.readNumbers(p.raw[k]); err != nil {
@@ -155,20 +193,14 @@ func (f *File) decode(c *cloud.Chunk, p *piece) error {
 			return err
 		}
 	}
-	if len(c.Numbers) != len(f.numbers) || len(c.Texts) != len(f.texts) {
-		c.Numbers, c.Texts = make([][]float64, len(f.numbers)), make([]cloud.Texts, len(f.texts))
+	if len(c.Numbers) != len(f.numbers) {
+		c.Numbers = make([][]float64, len(f.numbers))
 	}
 	for k, s := range f.numbers {
 		c.Numbers[k] = cloud.Grow(c.Numbers[k], c.Rows)
 		if s.cursor == nil {
 			copy(c.Numbers[k], p.raw[s.raw])
 		} else if err := s.cursor.readNumbers(c.Numbers[k]); err != nil {
-			return err
-		}
-	}
-	for k, cursor := range f.texts {
-		c.Texts[k].Reset()
-		if err := cursor.readTexts(&c.Texts[k], c.Rows); err != nil {
 			return err
 		}
 	}

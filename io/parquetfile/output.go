@@ -39,7 +39,7 @@ func newOutput(f *File, layout cloud.Layout, out io.Writer) (*output, error) {
 		dictionaries: make([]*dictionary, len(layout.Added)),
 		writer:       bufio.NewWriterSize(out, 64<<10),
 		scratch:      scratch{beside: f.options.Output},
-		buffer:       make([]byte, 1<<20),
+		buffer:       make([]byte, 1<<20), // any page of a piece fits
 	}
 	for i := range layout.Added {
 		a := &layout.Added[i]
@@ -194,7 +194,7 @@ func (o *output) writePages(k int) error {
 		if h.bytes != nil {
 			b = h.bytes[from:to]
 		} else {
-			b = room(b, to-from)
+			b = b[:to-from]
 			if err := o.scratch.readAt(b, h.spot+int64(from)); err != nil {
 				return err
 			}

@@ -63,7 +63,7 @@ func (c *cursor) load(h *parquet.PageHeader, plain int, compressed bool, packed,
 	if !compressed {
 		packed = open
 	}
-	*packed = room(*packed, stored)
+	room(packed, stored)
 	if err := readAt(c.file.input, *packed, c.span.start); err != nil {
 		return nil, err
 	}
@@ -77,7 +77,7 @@ func (c *cursor) load(h *parquet.PageHeader, plain int, compressed bool, packed,
 		}
 		return *packed, nil
 	}
-	*open = room(*open, size)
+	room(open, size)
 	copy(*open, (*packed)[:plain])
 	if size == plain {
 		return *open, nil // some writers store nothing, others a codec's empty frame
@@ -85,13 +85,19 @@ func (c *cursor) load(h *parquet.PageHeader, plain int, compressed bool, packed,
 	return *open, c.file.inflater.inflate((*open)[plain:], (*packed)[plain:], c.codec)
 }
 
-// room returns a slice of n bytes, reusing b where it is large enough. What it
-// makes is a little larger, as the next page may be.
-func room(b []byte, n int) []byte {
-	if cap(b) < n {
-		return make([]byte, n, n+n/8)
+// room makes b a slice of n bytes, the same memory where that is large enough.
+// New memory is a little larger, as the next page may be, but not where it is much.
+func room(b *[]byte, n int) {
+	if cap(*b) >= n {
+		*b = (*b)[:n]
+		return
 	}
-	return b[:n]
+	spare := n / 8
+	if n > spillBytes {
+		spare = 0
+	}
+	*b = nil // before the new memory is taken
+	*b = make([]byte, n, n+spare)
 }
 
 // bodyV1 opens a data page of version 1: levels lie before the values, with

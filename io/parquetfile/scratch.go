@@ -1,6 +1,7 @@
 package parquetfile
 
 import (
+	"bufio"
 	"encoding/binary"
 	"fmt"
 	"io"
@@ -13,7 +14,7 @@ import (
 )
 
 // scratch is a file without a name, made when it is first written to. It holds
-// either the numbers of one page, read once in order, or whole buffers.
+// either the numbers or texts of one page, read once in order, or whole buffers.
 type scratch struct {
 	beside  string // a path in the folder where it is made
 	file    *atomicfile.Scratch
@@ -21,13 +22,15 @@ type scratch struct {
 	read    int64
 	numbers []float64
 	bytes   []byte
+	reader  *bufio.Reader // of texts
+	head    [4]byte
 }
 
 // rewind forgets what the file holds and makes room for a block of numbers.
 func (s *scratch) rewind() {
 	s.written, s.read = 0, 0
 	s.numbers = cloud.Grow(s.numbers, 8*block)
-	s.bytes = room(s.bytes, 8*len(s.numbers))
+	room(&s.bytes, 8*len(s.numbers))
 }
 
 func (s *scratch) write(b []byte) error {

@@ -16,10 +16,17 @@ type words interface {
 // appendText adds one text to a piece's column, which has a cap: a dictionary
 // lets a small file ask for any length.
 func appendText(t *cloud.Texts, s []byte) error {
-	if len(t.Bytes)+len(s) > maxTextBytes {
-		return fmt.Errorf("the texts of %d rows are longer than %d bytes", len(t.Ends)+1, maxTextBytes)
+	if err := checkText(t, len(s)); err != nil {
+		return err
 	}
 	t.Append(s)
+	return nil
+}
+
+func checkText(t *cloud.Texts, n int) error {
+	if len(t.Bytes)+n > maxTextBytes {
+		return fmt.Errorf("the texts of %d rows are longer than %d bytes", len(t.Ends)+1, maxTextBytes)
+	}
 	return nil
 }
 
