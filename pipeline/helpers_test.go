@@ -32,7 +32,7 @@ humidity = 60
 type files map[string]string
 
 // write puts the files below a folder.
-func (f files) write(t *testing.T, folder string) {
+func (f files) write(t testing.TB, folder string) {
 	t.Helper()
 	for name, text := range f {
 		path := filepath.Join(folder, filepath.FromSlash(name))
@@ -46,7 +46,7 @@ func (f files) write(t *testing.T, folder string) {
 }
 
 // loadJob writes a job file into the folder and reads it.
-func loadJob(t *testing.T, folder, text string) *job.Job {
+func loadJob(t testing.TB, folder, text string) *job.Job {
 	t.Helper()
 	files{"job.toml": text}.write(t, folder)
 	j, err := job.Load(filepath.Join(folder, "job.toml"))
@@ -57,7 +57,7 @@ func loadJob(t *testing.T, folder, text string) *job.Job {
 }
 
 // runJob does a job of which no file may fail.
-func runJob(t *testing.T, j *job.Job, o Options) *receipt.Summary {
+func runJob(t testing.TB, j *job.Job, o Options) *receipt.Summary {
 	t.Helper()
 	summary, err := Run(context.Background(), j, o)
 	if err != nil {

@@ -155,6 +155,26 @@ func TestGrazingThroughCasts(t *testing.T) {
 	near(t, 0, "incidence_deg", got.number(t, 0, "incidence_deg"), math.Atan(3)*180/math.Pi, 0.6e-5)
 }
 
+// Each of two sensors has its own depth through one cast, and the mean water down to
+// it: what the second does leaves the first alone.
+func TestSensorsThroughCasts(t *testing.T) {
+	cast := [][3]float64{{0, 24, 2}, {6, 18, 8}, {20, 4, 30}}
+	f := files{
+		"raw/a.csv":    "x,y,z,class,strip,origin_x,origin_y,origin_z\n0,0,-10,2,a,80,0,400\n0,0,-10,2,b,,,\n0,0,-3,2,a,80,0,400\n",
+		"stations.csv": "x,y,temperature,salinity,depth\n5,6,24,2,0\n5,6,18,8,6\n5,6,4,30,20\n",
+	}
+	job := strings.NewReplacer("[extent]\npolygons = \"water.geojson\"\n", "", "column = \"tide\"", "level = 0", "[output]\n", "[output]\ndecimals = 9\n").Replace(localJob)
+	got := correctFiles(t, f, job+"stations = \"stations.csv\"\n")
+	for i, shift := range []float64{-1, 1, -1} { // a laser's bed rises, an image's falls
+		depth := got.number(t, i, "depth")
+		if raw := -got.number(t, i, "z_raw"); (depth-raw)*shift < 0.1 {
+			t.Errorf("row %d: depth is %g, apparent %g", i, depth, raw)
+		}
+		near(t, i, "temperature", got.number(t, i, "temperature"), mean(cast, depth)[0], 0.51e-4)
+		near(t, i, "salinity", got.number(t, i, "salinity"), mean(cast, depth)[1], 0.51e-4)
+	}
+}
+
 // localSurvey is 30 000 points of two sensors among zones, casts over time and a tide.
 func localSurvey(t *testing.T) (f files, jobText string) {
 	t.Helper()

@@ -95,8 +95,8 @@ func TestGridWindowParts(t *testing.T) {
 	pass := func(start float64) func(float64) float64 {
 		return func(x float64) float64 { return start + x/60 }
 	}
-	surface, bed := c.flyOver(r, 40_000, pass(1.9e9))
-	surface2, bed2 := c.flyOver(r, 40_000, pass(1.9e9+40))
+	surface, bed := c.flyOver(r, 30_000, pass(1.9e9))
+	surface2, bed2 := c.flyOver(r, 30_000, pass(1.9e9+40))
 	cloud := together(append(surface, surface2...), append(bed, bed2...))
 	for _, test := range []struct {
 		window string

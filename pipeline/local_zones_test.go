@@ -75,9 +75,9 @@ var twoZones = []place{
 }
 
 // zonedShots fires n pulses, each through the water of the zone of its raw point, or
-// outside through the standard sea at 0.42 m.
+// outside through the standard sea, which slopes.
 func zonedShots(t *testing.T, r *rand.Rand, n int, places []place) []shot {
-	outside := scene{surface: still(0.42, 0, 0), sea: standardSea(t)}
+	outside := scene{surface: still(0.42, 0.004, -0.003), sea: standardSea(t)}
 	waters := []scene{outside}
 	for _, p := range places {
 		waters = append(waters, scene{surface: still(p.level, 0, 0), sea: seaOf(t, p.temperature, p.salinity)})
@@ -92,14 +92,15 @@ func zonedShots(t *testing.T, r *rand.Rand, n int, places []place) []shot {
 	return shots
 }
 
-// Two zones with their own water and level, and the job's own outside: exact to the
+// Two zones with their own water and level, and the job's own outside, whose plane
+// slopes as no zone does: exact to the
 // written decimals, and every point names its zone.
 func TestTwoZones(t *testing.T) {
 	shots := zonedShots(t, newRand(4), 3000, twoZones)
 	for _, format := range formats {
 		folder := t.TempDir()
 		files{"raw/a." + format: encode(t, format, cloudOf(shots, 40, nil)), "zones.geojson": zonesFile(twoZones)}.write(t, folder)
-		runJob(t, loadJob(t, folder, inFormat(pulseJob+seaWater+"zones = \"zones.geojson\"\n[surface]\nlevel = 0.42\n", format)), Options{})
+		runJob(t, loadJob(t, folder, inFormat(pulseJob+seaWater+"zones = \"zones.geojson\"\n[surface.plane]\nlevel = 0.42\nat = [0, 0]\nslope_x = 0.004\nslope_y = -0.003\n", format)), Options{})
 		got := decode(t, format, readFile(t, folder, "true/a."+format))
 		compareShots(t, got, shots, fourDecimals)
 		for i, s := range shots {

@@ -81,7 +81,7 @@ func mixSensors(t *testing.T) *mixed {
 }
 
 // seaAt is the standard sea in light of another wavelength.
-func seaAt(t *testing.T, nm float64) (w sea) {
+func seaAt(t testing.TB, nm float64) (w sea) {
 	t.Helper()
 	air := medium.StandardAir()
 	air.TemperatureC, air.HumidityPercent = 18, 60
