@@ -109,6 +109,9 @@ func (f *File) Next(c *cloud.Chunk) error {
 	}
 	f.done += rows
 	if p.last {
+		if err := f.endGroup(); err != nil {
+			return err
+		}
 		f.group, f.done, f.before = f.group+1, 0, f.before+total
 	}
 	return nil
@@ -131,6 +134,16 @@ func (f *File) beginGroup() error {
 	for _, c := range f.cursors() {
 		if err := c.begin(f.group); err != nil {
 			return err
+		}
+	}
+	return nil
+}
+
+// endGroup wants nothing behind the last row of the columns that are read.
+func (f *File) endGroup() error {
+	for _, c := range f.cursors() {
+		if err := c.end(); err != nil {
+			return c.fail(err)
 		}
 	}
 	return nil
