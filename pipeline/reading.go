@@ -44,7 +44,7 @@ func newReading(s *survey, columns []cloud.Column) (*reading, error) {
 		return nil, err
 	}
 	if j.Surface.Column != "" {
-		if r.level, err = r.need(j, columns, j.Surface.Column, "[surface] column names it"); err != nil {
+		if r.level, err = r.needLength(s, columns, j.Surface.Column, "[surface] column names it", s.height); err != nil {
 			return nil, err
 		}
 	}
@@ -58,11 +58,15 @@ func (r *reading) findOrigins(s *survey, columns []cloud.Column) (err error) {
 		return nil
 	case s.trajectory != nil:
 		r.time, err = r.need(s.job, columns, "gps_time", "the trajectory is looked up by it")
-		r.timestamps = err == nil && isTimestamp(columns[r.request.Numbers[r.time]])
+		if err == nil {
+			r.timestamps = isTimestamp(columns[r.request.Numbers[r.time]])
+			r.request.Steps[r.time] = finestTime
+		}
 		return err
 	}
+	units := [3]float64{s.plan, s.plan, s.height}
 	for k, role := range []string{"origin_x", "origin_y", "origin_z"} {
-		if r.origin[k], err = r.need(s.job, columns, role, "a pulse needs its ray origin; or give [rays] trajectory"); err != nil {
+		if r.origin[k], err = r.needLength(s, columns, role, "a pulse needs its ray origin; or give [rays] trajectory", units[k]); err != nil {
 			return err
 		}
 	}
@@ -120,7 +124,7 @@ func (r *reading) number(column int) int {
 	if i := slices.Index(r.request.Numbers, column); i >= 0 {
 		return i
 	}
-	r.request.Numbers = append(r.request.Numbers, column)
+	r.request.Numbers, r.request.Steps = append(r.request.Numbers, column), append(r.request.Steps, 0)
 	return len(r.request.Numbers) - 1
 }
 
@@ -134,6 +138,16 @@ func (r *reading) need(j *job.Job, columns []cloud.Column, name, why string) (in
 		return -1, missing(columns, name, why)
 	}
 	return r.number(i), nil
+}
+
+// needLength asks for a column of lengths in a unit of so many metres.
+func (r *reading) needLength(s *survey, columns []cloud.Column, name, why string, unit float64) (int, error) {
+	n, err := r.need(s.job, columns, name, why)
+	if err != nil {
+		return -1, err
+	}
+	r.request.Steps[n] = finestLength / unit
+	return n, checkLength(columns[r.request.Numbers[n]])
 }
 
 func missing(columns []cloud.Column, name, why string) error {
