@@ -30,9 +30,14 @@ func open(path string, csv csvfile.Options, parquet parquetfile.Options) (cloud.
 	return nil, fmt.Errorf("%s: unknown kind of file %q, want .parquet, or .csv .tsv .txt .xyz or .asc (these also with .gz or .zst)", path, filepath.Ext(path))
 }
 
-// openTable opens a file that goes with clouds, or a cloud of which nothing is known.
+// openTable opens a cloud of which nothing is known.
 func openTable(path string) (cloud.Rewriter, error) {
 	return open(path, csvfile.Options{}, parquetfile.Options{})
+}
+
+// openBeside opens a file that goes with the clouds of the job.
+func (s *survey) openBeside(path string) (cloud.Rewriter, error) {
+	return open(path, csvfile.Options{}, parquetfile.Options{Coarse: s.job.Input.Coarse})
 }
 
 // openCloud opens a cloud of the job. A Parquet output carries the settings that
@@ -50,6 +55,21 @@ func (s *survey) openCloud(in input, output string) (cloud.Rewriter, error) {
 		err = fmt.Errorf("%w; name the columns in [input.csv] names", err)
 	}
 	return file, err
+}
+
+// The coarsest steps of stored numbers that go into a correction, unless the job
+// takes them: a FLOAT has 24 bits.
+const (
+	finestLength = 0.001 // m
+	finestTime   = 0.001 // s; a sensor moves some centimetres in it
+)
+
+// checkLength refuses columns that hold no lengths by their type.
+func checkLength(c cloud.Column) error {
+	if isTimestamp(c) || c.Type == "BOOLEAN" {
+		return fmt.Errorf("column %q is %s, want a length (DOUBLE, FLOAT, INT32 or INT64)", c.Name, c.Type)
+	}
+	return nil
 }
 
 // isTimestamp tells a column of dates and times, which are read as UTC seconds

@@ -145,7 +145,7 @@ func TestCoarseCoordinates(t *testing.T) {
 	}
 	fine := readParquet(t, correctParquet(t, cloud(16383.5), parquetJob()))
 	near(t, 0, "x", fine.number(t, 0, "x"), 16383.5, 1e-11)
-	const want = `column "x" is FLOAT, whose step at 16384.5 is 0.002 m, want at most 0.001 m; store it as DOUBLE or accept this with coarse = true in [input]`
+	const want = `column "x" is FLOAT, whose step at 16384.5 is 0.002, want at most 0.001; store it as DOUBLE or accept this with coarse = true in [input]`
 	if got := failParquet(t, cloud(16384.5), parquetJob()); got != want {
 		t.Errorf("the error is %s, want %s", got, want)
 	}

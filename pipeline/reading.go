@@ -48,7 +48,7 @@ func newReading(s *survey, columns []cloud.Column) (*reading, error) {
 		return nil, err
 	}
 	if j.Surface.Column != "" {
-		if r.level, err = r.need(j, columns, j.Surface.Column, "[surface] column names it"); err != nil {
+		if r.level, err = r.needLength(s, columns, j.Surface.Column, "[surface] column names it", s.height); err != nil {
 			return nil, err
 		}
 	}
@@ -81,6 +81,7 @@ func (r *reading) findTime(s *survey, columns []cloud.Column) (err error) {
 		return missing(columns, "gps_time", why)
 	case i >= 0:
 		r.time, r.timestamps = r.number(i), isTimestamp(columns[i])
+		r.request.Steps[r.time] = finestTime
 	}
 	return nil
 }
@@ -106,8 +107,9 @@ func (r *reading) findOrigins(s *survey, columns []cloud.Column) (err error) {
 	if !slices.ContainsFunc(s.sensors, func(sn *sensor) bool { return sn.isPulse() && sn.trajectory == nil }) {
 		return nil
 	}
+	units := [3]float64{s.plan, s.plan, s.height}
 	for k, role := range []string{"origin_x", "origin_y", "origin_z"} {
-		if r.origin[k], err = r.need(s.job, columns, role, "a pulse needs its ray origin; or give [rays] trajectory"); err != nil {
+		if r.origin[k], err = r.needLength(s, columns, role, "a pulse needs its ray origin; or give [rays] trajectory", units[k]); err != nil {
 			return err
 		}
 	}
@@ -166,7 +168,7 @@ func (r *reading) number(column int) int {
 	if i := slices.Index(r.request.Numbers, column); i >= 0 {
 		return i
 	}
-	r.request.Numbers = append(r.request.Numbers, column)
+	r.request.Numbers, r.request.Steps = append(r.request.Numbers, column), append(r.request.Steps, 0)
 	return len(r.request.Numbers) - 1
 }
 
@@ -180,6 +182,16 @@ func (r *reading) need(j *job.Job, columns []cloud.Column, name, why string) (in
 		return -1, missing(columns, name, why)
 	}
 	return r.number(i), nil
+}
+
+// needLength asks for a column of lengths in a unit of so many metres.
+func (r *reading) needLength(s *survey, columns []cloud.Column, name, why string, unit float64) (int, error) {
+	n, err := r.need(s.job, columns, name, why)
+	if err != nil {
+		return -1, err
+	}
+	r.request.Steps[n] = finestLength / unit
+	return n, checkLength(columns[r.request.Numbers[n]])
 }
 
 func missing(columns []cloud.Column, name, why string) error {

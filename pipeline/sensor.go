@@ -55,14 +55,21 @@ func (sn *sensor) setAir(j *job.Job) (err error) {
 }
 
 func (s *survey) readTrajectory(sn *sensor, path string) error {
-	f, err := openTable(path)
+	f, err := s.openBeside(path)
 	if err != nil {
 		return err
 	}
 	defer f.Close()
-	columns, err := cloud.ReadNumbers(f, "gps_time", "x", "y", "z")
+	steps := []float64{finestTime, finestLength / s.plan, finestLength / s.plan, finestLength / s.height}
+	columns, err := cloud.ReadNumbersWithin(f, steps, "gps_time", "x", "y", "z")
 	if err != nil {
 		return err
+	}
+	for _, name := range []string{"x", "y", "z"} {
+		i, _ := cloud.Find(f.Columns(), name)
+		if err := checkLength(f.Columns()[i]); err != nil {
+			return err
+		}
 	}
 	if i, _ := cloud.Find(f.Columns(), "gps_time"); isTimestamp(f.Columns()[i]) {
 		s.fromUTC(columns[0])

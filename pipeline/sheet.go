@@ -26,8 +26,8 @@ type sheetColumns struct{ needed, optional, texts []string }
 const timeColumn = "time"
 
 // readSheet reads a sheet.
-func readSheet(path string, want sheetColumns) (*sheet, error) {
-	f, err := openTable(path)
+func (s *survey) readSheet(path string, want sheetColumns) (*sheet, error) {
+	f, err := s.openBeside(path)
 	if err != nil {
 		return nil, err
 	}
@@ -47,6 +47,11 @@ func readSheet(path string, want sheetColumns) (*sheet, error) {
 			read.Texts, texts = append(read.Texts, i), append(texts, name)
 		default:
 			read.Numbers, numbers = append(read.Numbers, i), append(numbers, name)
+			step, isLength := s.finestOf(name)
+			read.Steps = append(read.Steps, step)
+			if isLength {
+				return checkLength(columns[i])
+			}
 		}
 		return nil
 	}
@@ -77,6 +82,18 @@ func readSheet(path string, want sheetColumns) (*sheet, error) {
 		tb.texts[name] = t[k]
 	}
 	return tb, tb.setTimes()
+}
+
+// finestOf returns the coarsest step that a column of a sheet may be stored in, in
+// the job's unit, and whether it holds lengths; 0 is any.
+func (s *survey) finestOf(name string) (step float64, isLength bool) {
+	switch name {
+	case "x", "y":
+		return finestLength / s.plan, true
+	case "z", "level", "depth":
+		return finestLength / s.height, true
+	}
+	return 0, false
 }
 
 // isText tells a column that is stored as text: in CSV every one.

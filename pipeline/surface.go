@@ -124,7 +124,7 @@ func (s *survey) readOverSurface(ctx context.Context) error {
 
 // readXYZ reads the columns x, y, z of a table, in metres.
 func (s *survey) readXYZ(path string) (t *sheet, x, y, z []float64, err error) {
-	t, err = readSheet(path, sheetColumns{needed: []string{"x", "y", "z"}, optional: []string{timeColumn}})
+	t, err = s.readSheet(path, sheetColumns{needed: []string{"x", "y", "z"}, optional: []string{timeColumn}})
 	if err != nil {
 		return nil, nil, nil, nil, err
 	}
@@ -199,7 +199,7 @@ func (s *survey) makeGrid(x, y, z, utc []float64) (err error) {
 }
 
 func (s *survey) readGauges(path string) error {
-	t, err := readSheet(path, sheetColumns{needed: []string{timeColumn, "level"}, optional: []string{"x", "y"}, texts: []string{"name"}})
+	t, err := s.readSheet(path, sheetColumns{needed: []string{timeColumn, "level"}, optional: []string{"x", "y"}, texts: []string{"name"}})
 	if err != nil {
 		return err
 	}

@@ -70,7 +70,7 @@ func (s *survey) readZones(path string) error {
 }
 
 func (s *survey) readStations(path string) error {
-	t, err := readSheet(path, sheetColumns{
+	t, err := s.readSheet(path, sheetColumns{
 		needed: []string{"x", "y", "temperature", "salinity"}, optional: []string{timeColumn, "depth"}, texts: []string{"name"},
 	})
 	if err != nil {

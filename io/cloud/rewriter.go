@@ -12,6 +12,7 @@ type Column struct {
 // Chunk.Numbers and Chunk.Texts have the same order.
 type Request struct {
 	Numbers []int
+	Steps   []float64 // by Numbers, or nil: the coarsest step in which a binary format may store them, in their own unit; 0 is any
 	Texts   []int
 }
 

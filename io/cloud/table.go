@@ -9,7 +9,12 @@ import (
 // go with a cloud (a trajectory, say). It returns one slice a name, all of one
 // length, in the file's units; NaN for empty or null. It does not close r.
 func ReadNumbers(r Rewriter, names ...string) ([][]float64, error) {
-	var read Request
+	return ReadNumbersWithin(r, nil, names...)
+}
+
+// ReadNumbersWithin is ReadNumbers with the Steps of a Request.
+func ReadNumbersWithin(r Rewriter, steps []float64, names ...string) ([][]float64, error) {
+	read := Request{Steps: steps}
 	for _, name := range names {
 		i, err := Find(r.Columns(), name)
 		if err != nil {

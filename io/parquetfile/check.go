@@ -1,6 +1,7 @@
 package parquetfile
 
 import (
+	"cmp"
 	"fmt"
 	"slices"
 
@@ -10,6 +11,12 @@ import (
 // span is a run of bytes in the file.
 type span struct{ start, end int64 }
 
+// place is where a chunk lies, and which it is.
+type place struct {
+	span
+	column, group int
+}
+
 // checkGroups proves that the footer describes a file that can be copied: every
 // chunk is there, is what the schema says, lies before the footer and shares no
 // byte with another. It returns the groups that have rows.
@@ -18,7 +25,7 @@ func checkGroups(meta *parquet.FileMetaData, leaves []leaf, footer int64) ([]*pa
 	if err != nil {
 		return nil, err
 	}
-	var spans []span
+	var places []place
 	for g, group := range groups {
 		if len(group.Columns) != len(leaves) {
 			return nil, fmt.Errorf("row group %d has %d columns, want %d as in the schema", g+1, len(group.Columns), len(leaves))
@@ -31,10 +38,10 @@ func checkGroups(meta *parquet.FileMetaData, leaves []leaf, footer int64) ([]*pa
 			if err != nil {
 				return nil, fmt.Errorf("column %q, row group %d: %w", leaves[i].name, g+1, err)
 			}
-			spans = append(spans, s)
+			places = append(places, place{s, i, g})
 		}
 	}
-	return groups, checkOverlap(spans)
+	return groups, checkOverlap(places, leaves)
 }
 
 // filledGroups returns the groups that have rows, whose sum must be the file's.
@@ -97,14 +104,17 @@ func chunkSpan(m *parquet.ColumnMetaData, footer int64) (span, error) {
 
 // checkOverlap refuses chunks that share bytes: a small file could stand for
 // any amount of data.
-func checkOverlap(spans []span) error {
-	slices.SortFunc(spans, func(a, b span) int { return int(min(max(a.start-b.start, -1), 1)) })
-	end := int64(0)
-	for _, s := range spans {
-		if s.start < end && s.end > s.start {
-			return fmt.Errorf("two column chunks share the bytes from %d to %d", s.start, min(end, s.end))
+func checkOverlap(places []place, leaves []leaf) error {
+	slices.SortStableFunc(places, func(a, b place) int { return cmp.Compare(a.start, b.start) })
+	var last place
+	for _, p := range places {
+		if p.start < last.end && p.end > p.start {
+			return fmt.Errorf("column %q, row group %d: shares the bytes from %d to %d with column %q of row group %d",
+				leaves[p.column].name, p.group+1, p.start, min(last.end, p.end), leaves[last.column].name, last.group+1)
 		}
-		end = max(end, s.end)
+		if p.end > last.end {
+			last = p
+		}
 	}
 	return nil
 }

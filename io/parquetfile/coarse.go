@@ -10,10 +10,18 @@ import (
 // their rounding is lost in any survey's own noise.
 const finestStep = 0.001
 
-// checkStep refuses FLOAT coordinates whose statistics show a step that is too
+// finestStep returns it in the unit of the coordinates.
+func (o *Options) finestStep() float64 {
+	if o.Unit == 0 {
+		return finestStep
+	}
+	return finestStep / o.Unit
+}
+
+// checkStep refuses FLOAT columns whose statistics show a step that is too
 // coarse; where there are none it is found while decoding.
 func (f *File) checkStep() error {
-	for _, c := range f.raw {
+	for _, c := range f.cursors() {
 		if c.leaf.kind != floats {
 			continue
 		}
@@ -36,10 +44,10 @@ func (f *File) checkStep() error {
 	return nil
 }
 
-// checkDecodedStep refuses FLOAT coordinates with a value whose distance to the
-// next FLOAT exceeds the finest step.
+// checkDecodedStep refuses FLOAT columns with a value whose distance to the next
+// FLOAT exceeds the step that was asked for.
 func (c *cursor) checkDecodedStep(values []float64) error {
-	if c.leaf.kind != floats || c.file.options.Coarse {
+	if c.leaf.kind != floats || c.step == 0 || c.file.options.Coarse {
 		return nil
 	}
 	largest := 0.0
@@ -48,13 +56,9 @@ func (c *cursor) checkDecodedStep(values []float64) error {
 			largest = a
 		}
 	}
-	unit := c.file.options.Unit
-	if unit == 0 {
-		unit = 1
-	}
-	if step := floatStep(largest) * unit; step > finestStep {
-		return fmt.Errorf("%s: column %q is FLOAT, whose step at %g is %.2g m, want at most %g m; store it as DOUBLE or accept this with coarse = true in [input]",
-			c.file.path, c.leaf.name, largest, step, finestStep)
+	if step := floatStep(largest); step > c.step {
+		return fmt.Errorf("%s: column %q is FLOAT, whose step at %g is %.2g, want at most %.2g; store it as DOUBLE or accept this with coarse = true in [input]",
+			c.file.path, c.leaf.name, largest, step, c.step)
 	}
 	return nil
 }

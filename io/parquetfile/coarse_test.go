@@ -46,3 +46,20 @@ func TestCoarse(t *testing.T) {
 		}
 	}
 }
+
+// TestNoCoordinates refuses x, y and z of a type that cannot be a length.
+func TestNoCoordinates(t *testing.T) {
+	for _, c := range []built{
+		{typ: parquet.Type_BOOLEAN, values: []any{true, false}},
+		{typ: parquet.Type_INT64, mark: converted(parquet.ConvertedType_TIMESTAMP_MILLIS), values: []any{int64(1), int64(2)}},
+	} {
+		c.name = "y"
+		columns := survey(2)
+		columns[2] = c
+		path := buildFile(t, columns, []int{2}, nil)
+		_, err := rewrite(path, Options{}, cloud.Request{}, surveyLayout(), 1, fillSurvey)
+		if err == nil || !strings.Contains(err.Error(), `column "y" is `) || !strings.Contains(err.Error(), "want a coordinate (DOUBLE, FLOAT, INT32 or INT64)") {
+			t.Errorf("got error %v, want the column and its type refused", err)
+		}
+	}
+}

@@ -17,9 +17,10 @@ type cursor struct {
 	index   int // of the column
 	group   int
 	codec   parquet.CompressionCodec
-	span    span  // of the chunk, as far as it is not read
-	unpaged int64 // rows of the group in pages to come
-	left    int   // rows of the page at hand
+	span    span    // of the chunk, as far as it is not read
+	unpaged int64   // rows of the group in pages to come
+	left    int     // rows of the page at hand
+	step    float64 // coarsest of a FLOAT; 0 is any
 	hasNull bool
 	levels  hybrid
 	spilled bool // the page at hand lies in scratch

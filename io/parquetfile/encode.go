@@ -118,7 +118,8 @@ func (e *encoder) numbers(g *pages, list []float64, t cloud.Type, isNull func(fl
 	if s.nulls > 0 {
 		set = e.dropNulls(list, isNull)
 	}
-	s.nulls = int64(len(list) - len(set))
+	nulls := int64(len(list) - len(set))
+	s.nulls, s.nans = nulls, s.nulls-nulls
 	e.coded = e.appendLevels(e.coded, len(list), len(set))
 	size := 8
 	if t == cloud.Count {

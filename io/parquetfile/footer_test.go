@@ -139,7 +139,8 @@ func TestNewStatistics(t *testing.T) {
 		nulls       int64
 		least, most []byte
 	}{
-		{"z", 4, float(-49.0 / 8 * 1.25), float(math.Copysign(0, 1))},
+		{"z", 4, nil, nil},
+		{"y", 0, float(1953), float(2000)}, // rows 49 and 0; row 49 is moved by 2
 		{"depth", 14 + 7, float(2), float(49.0 / 8)},
 		{"rays", 14 + 7, []byte{16, 0, 0, 0}, []byte{49, 0, 0, 0}},
 		{"outcome", 7, []byte("corrected"), []byte("dry")},
@@ -152,6 +153,18 @@ func TestNewStatistics(t *testing.T) {
 		if *s.NullCount != c.nulls || !slices.Equal(s.MinValue, c.least) || !slices.Equal(s.MaxValue, c.most) {
 			t.Errorf("%s: %d nulls, %x to %x, want %d, %x to %x", c.name, *s.NullCount, s.MinValue, s.MaxValue, c.nulls, c.least, c.most)
 		}
+	}
+}
+
+// TestNaNStatistics wants no range of a column that holds NaN, and the other
+// columns' ranges untouched.
+func TestNaNStatistics(t *testing.T) {
+	m := rewritten(t, 50, Options{}, nil)
+	if s := chunkOf(t, m, "z").Statistics; s.MinValue != nil || s.MaxValue != nil {
+		t.Errorf("z, with 3 NaN, runs over %x to %x, want no range", s.MinValue, s.MaxValue)
+	}
+	if s := chunkOf(t, m, "x").Statistics; s.MinValue == nil || s.MaxValue == nil {
+		t.Error("x, without NaN, has no range")
 	}
 }
 

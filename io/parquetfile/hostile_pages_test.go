@@ -71,6 +71,8 @@ func TestPageLies(t *testing.T) {
 		{"too few values", double, pageOf(t, plain, 792, 99, eight[:792]), "the pages end 1 rows before the group does"},
 		{"bytes missing", double, page(plain, eight[:792]...), "100 values have 792 bytes, want 800"},
 		{"split bytes missing", double, page(split, eight[:792]...), "100 values have 792 bytes, want 800"},
+		{"garbage behind", double, join(pageOf(t, plain, 800, 100, eight), []byte("garbage")), "behind the last row: a page header is damaged"},
+		{"a page behind", double, join(pageOf(t, plain, 800, 100, eight), pageOf(t, plain, 8, 1, eight[:8])), "behind the last row: a page has 1 values, want at most the 0"},
 		{"page type", double, thriftBytes(t, &parquet.PageHeader{Type: 9}), "a page is of type 9, which is unknown"},
 		{"no data header", double, thriftBytes(t, &parquet.PageHeader{Type: parquet.PageType_DATA_PAGE}), "a data page lacks its own header"},
 		{"no data header, version 2", double, thriftBytes(t, &parquet.PageHeader{Type: parquet.PageType_DATA_PAGE_V2}), "a data page lacks its own header"},
@@ -105,6 +107,23 @@ func TestPageLies(t *testing.T) {
 			refuse(t, path, c.words)
 			refuse(t, path, `column "v", row group 1: `)
 		})
+	}
+}
+
+// TestPagesWithoutRows passes over pages of indexes, and empty pages, wherever
+// they lie.
+func TestPagesWithoutRows(t *testing.T) {
+	c := built{name: "v", typ: parquet.Type_DOUBLE, required: true}
+	index := append(thriftBytes(t, &parquet.PageHeader{
+		Type: parquet.PageType_INDEX_PAGE, UncompressedPageSize: 9, CompressedPageSize: 9, IndexPageHeader: parquet.NewIndexPageHeader(),
+	}), "123456789"...)
+	empty := pageOf(t, parquet.Encoding_PLAIN, 0, 0, nil)
+	one := pageOf(t, parquet.Encoding_PLAIN, 8, 1, plainBytes([]any{1.5}))
+	two := pageOf(t, parquet.Encoding_PLAIN, 8, 1, plainBytes([]any{2.5}))
+	file := chunkFile(t, c, 2, bytes.Join([][]byte{index, one, empty, index, two, empty, index}, nil))
+	numbers, _, err := readBytes(file, Options{}, cloud.Request{Numbers: []int{0}})
+	if err != nil || len(numbers[0]) != 2 || numbers[0][0] != 1.5 || numbers[0][1] != 2.5 {
+		t.Errorf("got %v (%v), want 1.5 and 2.5", numbers, err)
 	}
 }
 

@@ -107,7 +107,7 @@ func TestFooterLies(t *testing.T) {
 		{"two groups, one chunk", func(m *parquet.FileMetaData) {
 			m.RowGroups = append(m.RowGroups, m.RowGroups[0])
 			m.NumRows = 200
-		}, "two column chunks share the bytes from 4 to"},
+		}, `column "v", row group 2: shares the bytes from 4 to`},
 		{"another file", func(m *parquet.FileMetaData) { m.RowGroups[0].Columns[0].FilePath = pointer("b.parquet") }, `lies in another file, "b.parquet"`},
 		{"encrypted column", func(m *parquet.FileMetaData) { m.RowGroups[0].Columns[0].EncryptedColumnMetadata = []byte{1} }, "is encrypted"},
 		{"encrypted", func(m *parquet.FileMetaData) {

@@ -4,7 +4,6 @@ import (
 	"fmt"
 	"io"
 	"math"
-	"slices"
 
 	"bentray/io/cloud"
 )
@@ -32,59 +31,6 @@ type piece struct {
 	work        encoder
 }
 
-func (f *File) beginReading(read cloud.Request, write cloud.Layout, laidOut bool) error {
-	var xyz []int
-	if laidOut {
-		xyz = write.XYZ[:]
-	}
-	for _, i := range xyz {
-		c, err := f.newCursor(i, false)
-		if err != nil {
-			return err
-		}
-		f.raw = append(f.raw, c)
-	}
-	for _, i := range read.Numbers {
-		if k := slices.Index(xyz, i); k >= 0 {
-			f.numbers = append(f.numbers, source{raw: k})
-			continue
-		}
-		c, err := f.newCursor(i, false)
-		if err != nil {
-			return err
-		}
-		f.numbers = append(f.numbers, source{cursor: c})
-	}
-	for _, i := range read.Texts {
-		c, err := f.newCursor(i, true)
-		if err != nil {
-			return err
-		}
-		f.texts = append(f.texts, c)
-	}
-	return nil
-}
-
-// newCursor prepares to read a column, after checks that need no data.
-func (f *File) newCursor(i int, text bool) (*cursor, error) {
-	l := &f.leaves[i]
-	switch isText := l.kind == texts; {
-	case l.kind == opaque:
-		return nil, fmt.Errorf("%s: column %q is %s, want a flat column of DOUBLE, FLOAT, INT32, INT64, TIMESTAMP or text; it can only be copied", f.path, l.name, l.typ)
-	case text && !isText:
-		return nil, fmt.Errorf("%s: column %q is %s, want a text (BYTE_ARRAY)", f.path, l.name, l.typ)
-	case !text && isText:
-		return nil, fmt.Errorf("%s: column %q is %s, want a number (DOUBLE, FLOAT, INT32, INT64 or TIMESTAMP)", f.path, l.name, l.typ)
-	}
-	c := &cursor{file: f, leaf: l, index: i, scratch: scratch{beside: f.options.Output}}
-	for g := range f.groups {
-		if err := c.begin(g); err != nil {
-			return nil, err
-		}
-	}
-	return c, nil
-}
-
 // Next decodes the next rows of a row group, at most 64 Ki and all of one group.
 func (f *File) Next(c *cloud.Chunk) error {
 	if f.group == len(f.groups) {
@@ -109,6 +55,9 @@ func (f *File) Next(c *cloud.Chunk) error {
 	}
 	f.done += rows
 	if p.last {
+		if err := f.endGroup(); err != nil {
+			return err
+		}
 		f.group, f.done, f.before = f.group+1, 0, f.before+total
 	}
 	return nil
@@ -131,6 +80,16 @@ func (f *File) beginGroup() error {
 	for _, c := range f.cursors() {
 		if err := c.begin(f.group); err != nil {
 			return err
+		}
+	}
+	return nil
+}
+
+// endGroup wants nothing behind the last row of the columns that are read.
+func (f *File) endGroup() error {
+	for _, c := range f.cursors() {
+		if err := c.end(); err != nil {
+			return c.fail(err)
 		}
 	}
 	return nil
@@ -200,7 +159,12 @@ func (f *File) decodeNumbers(c *cloud.Chunk, p *piece) error {
 		c.Numbers[k] = cloud.Grow(c.Numbers[k], c.Rows)
 		if s.cursor == nil {
 			copy(c.Numbers[k], p.raw[s.raw])
-		} else if err := s.cursor.readNumbers(c.Numbers[k]); err != nil {
+			continue
+		}
+		if err := s.cursor.readNumbers(c.Numbers[k]); err != nil {
+			return err
+		}
+		if err := s.cursor.checkDecodedStep(c.Numbers[k]); err != nil {
 			return err
 		}
 	}

@@ -13,13 +13,13 @@ import (
 // stats are what a column chunk says about its numbers. least > most where
 // there is none.
 type stats struct {
-	nulls       int64
+	nulls, nans int64
 	least, most float64
 }
 
 var noStats = stats{least: math.Inf(1), most: math.Inf(-1)}
 
-// statsOf finds the range of numbers; NaN counts as null.
+// statsOf finds the range of numbers; every NaN counts as a null.
 func statsOf(list []float64) stats {
 	s := noStats
 	least, most := s.least, s.most
@@ -40,14 +40,16 @@ func statsOf(list []float64) stats {
 
 func (s *stats) merge(t stats) {
 	s.nulls += t.nulls
+	s.nans += t.nans
 	s.least, s.most = min(s.least, t.least), max(s.most, t.most)
 }
 
-// thrift writes the statistics of numbers. A zero is written with the sign that
+// thrift writes the statistics of numbers. Where there is a NaN there is no range:
+// readers that order NaN above all numbers would skip it by its end. A zero is written with the sign that
 // includes both zeros, as the format asks.
 func (s stats) thrift(t cloud.Type) *parquet.Statistics {
 	out := &parquet.Statistics{NullCount: &s.nulls}
-	if s.least > s.most {
+	if s.nans > 0 || s.least > s.most {
 		return out
 	}
 	if t == cloud.Count {

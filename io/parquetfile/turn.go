@@ -32,6 +32,20 @@ func (c *cursor) needPage() error {
 	return nil
 }
 
+// end reads what follows the last row, which may be pages without rows alone.
+func (c *cursor) end() error {
+	for c.span.start < c.span.end {
+		h, err := c.readHeader()
+		if err != nil {
+			return fmt.Errorf("behind the last row: %w", err)
+		}
+		if err := c.turn(h); err != nil {
+			return fmt.Errorf("behind the last row: %w", err)
+		}
+	}
+	return nil
+}
+
 func (c *cursor) turn(h *parquet.PageHeader) error {
 	isGiant := max(h.UncompressedPageSize, h.CompressedPageSize) > spillBytes
 	switch h.Type {

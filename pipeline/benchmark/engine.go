@@ -46,13 +46,14 @@ var ofSurvey = setting{
 
 // task is one call of the script; see engine.mjs.
 type task struct {
-	Do      string  `json:"do"`
-	Format  string  `json:"format,omitempty"`
-	Input   string  `json:"input"`
-	Output  string  `json:"output"`
-	Every   int64   `json:"every,omitempty"`
-	Threads int     `json:"threads"`
-	Setting setting `json:"setting"`
+	Do        string  `json:"do"`
+	Format    string  `json:"format,omitempty"`
+	Input     string  `json:"input"`
+	Output    string  `json:"output"`
+	GroupRows int64   `json:"groupRows,omitempty"` // of a converted survey; 0 leaves them to the engine
+	Every     int64   `json:"every,omitempty"`
+	Threads   int     `json:"threads"`
+	Setting   setting `json:"setting"`
 }
 
 // installEngine puts the package and the script into folder. An error means

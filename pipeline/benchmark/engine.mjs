@@ -2,9 +2,9 @@
 //
 //   node engine.mjs '{"do": "correct", "format": "csv", "input": ..., "output": ..., "threads": 2, "setting": {...}}'
 //
-// "convert" turns the survey from CSV into Parquet, "sample" writes every
-// "every"-th row of a Parquet file and its last one as CSV. Prints
-// {"seconds": of the query}.
+// "convert" turns the survey from CSV into Parquet, in row groups of about
+// "groupRows" rows where that is given; "sample" writes every "every"-th row of
+// a Parquet file and its last one as CSV. Prints {"seconds": of the query}.
 //
 // What is made easy for the engine: the types of all columns are given, so
 // nothing is sniffed; columns that are only copied are read and written as text;
@@ -73,9 +73,11 @@ const into = {
   parquet: "(FORMAT parquet)",
 };
 
+const converted = call.groupRows ? `(FORMAT parquet, ROW_GROUP_SIZE ${call.groupRows})` : into.parquet;
+
 const statements = {
   correct: () => `COPY (${correction(call.input, call.format, call.setting)}) TO ${quote(call.output)} ${into[call.format]}`,
-  convert: () => `COPY (SELECT * FROM ${csvSource(call.input, (name) => types[name])}) TO ${quote(call.output)} ${into.parquet}`,
+  convert: () => `COPY (SELECT * FROM ${csvSource(call.input, (name) => types[name])}) TO ${quote(call.output)} ${converted}`,
   sample: () => `COPY (
     SELECT * EXCLUDE file_row_number FROM read_parquet(${quote(call.input)}, file_row_number = true)
     WHERE file_row_number % ${call.every} = 0 OR file_row_number = (SELECT count(*) - 1 FROM read_parquet(${quote(call.input)}))

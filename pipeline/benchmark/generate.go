@@ -77,17 +77,17 @@ func appendNumber(b []byte, v float64, scale int64, digits int) []byte {
 	return b
 }
 
-// writeJob writes the job that corrects folder/survey.FORMAT into
-// folder/bentray-FORMAT, and returns its path.
-func writeJob(folder, format string) (string, error) {
-	path := filepath.Join(folder, "job-"+format+".toml")
+// writeJob writes the job that corrects the file input of folder into
+// folder/bentray-NAME, and returns its path.
+func writeJob(folder, input, name string) (string, error) {
+	path := filepath.Join(folder, "job-"+name+".toml")
 	text := fmt.Sprintf(`title = "Gannet Sound, benchmark flight"
 
 [input]
-files = ["survey.%s"]
+files = [%q]
 
 [output]
-folder     = "bentray-%[1]s"
+folder     = %q
 provenance = "full"
 
 [water]
@@ -99,6 +99,6 @@ level = %g
 
 [rays]
 model = "pulse"
-`, format, temperatureC, salinityPSU, levelM)
+`, input, "bentray-"+name, temperatureC, salinityPSU, levelM)
 	return path, os.WriteFile(path, []byte(text), 0o644)
 }

@@ -119,7 +119,7 @@ func (o options) measure(format, program string, sql *engine) (*result, error) {
 	if err != nil {
 		return nil, err
 	}
-	job, err := writeJob(o.dir, format)
+	job, err := writeJob(o.dir, filepath.Base(input), format)
 	if err != nil {
 		return nil, err
 	}
@@ -144,9 +144,14 @@ func (o options) measure(format, program string, sql *engine) (*result, error) {
 	if sql == nil {
 		return r, nil
 	}
-	total := summary(engine)
-	r.engine = &total
-	r.checkedRows, err = compareOutputs(sql, format, filepath.Join(outFolder, "survey."+format), outEngine)
+	sum := summary(engine)
+	r.engine = &sum
+	if r.checkedRows, err = compareOutputs(sql, format, filepath.Join(outFolder, "survey."+format), outEngine); err != nil {
+		return nil, err
+	}
+	if format == "parquet" {
+		r.giants, err = o.measureGiants(program, sql)
+	}
 	return r, err
 }
 
@@ -169,17 +174,19 @@ func runEngine(sql *engine, format, input, output string) (usage, error) {
 	return sql.run(task{Do: "correct", Format: format, Input: input, Output: output})
 }
 
-// compareOutputs compares every 997th row (a prime, so that it falls on no
-// rhythm of the data). Of Parquet files the engine writes that sample as CSV.
-func compareOutputs(sql *engine, format, bentray, engine string) (int64, error) {
-	const every = 997
+// sampleEvery is a prime, so that a sample falls on no rhythm of the data.
+const sampleEvery = 997
+
+// compareOutputs compares a sample of two outputs' rows. Of Parquet files the
+// engine writes it as CSV.
+func compareOutputs(sql *engine, format, a, b string) (int64, error) {
 	if format == "csv" {
-		return compare(bentray, engine, every)
+		return compare(a, b, sampleEvery)
 	}
-	folder := filepath.Dir(engine)
-	samples := []string{filepath.Join(folder, "sample-bentray.csv"), filepath.Join(folder, "sample-engine.csv")}
-	for i, path := range []string{bentray, engine} {
-		if _, err := sql.run(task{Do: "sample", Input: path, Output: samples[i], Every: every}); err != nil {
+	folder := filepath.Dir(b)
+	samples := []string{filepath.Join(folder, "sample-a.csv"), filepath.Join(folder, "sample-b.csv")}
+	for i, path := range []string{a, b} {
+		if _, err := sql.run(task{Do: "sample", Input: path, Output: samples[i], Every: sampleEvery}); err != nil {
 			return 0, err
 		}
 	}

@@ -44,13 +44,20 @@ func peakMiB(r *syscall.Rusage) float64 {
 	return float64(r.Maxrss) / (1 << 10)
 }
 
-// summary is the median of the times and the highest peak.
-func summary(runs []usage) usage {
+// total is what a program's runs came to: the medians of their times, the
+// highest peak, and the seconds of the fastest run, which the machine's other
+// work disturbed least.
+type total struct {
+	usage
+	best float64
+}
+
+func summary(runs []usage) total {
 	var seconds, cpu, peak []float64
 	for _, r := range runs {
 		seconds, cpu, peak = append(seconds, r.seconds), append(cpu, r.cpuSeconds), append(peak, r.peakMiB)
 	}
-	return usage{seconds: median(seconds), cpuSeconds: median(cpu), peakMiB: slices.Max(peak)}
+	return total{usage{seconds: median(seconds), cpuSeconds: median(cpu), peakMiB: slices.Max(peak)}, slices.Min(seconds)}
 }
 
 func median(v []float64) float64 {

@@ -8,8 +8,13 @@ import (
 )
 
 func TestFloorsAndPeakAreHeld(t *testing.T) {
-	fast := usage{seconds: 2, peakMiB: 100}
-	slow := &usage{seconds: 7, peakMiB: 700} // 3.5 times as long
+	took := func(seconds float64) *total { return &total{usage: usage{seconds: seconds}, best: 1} }
+	fast := total{usage{seconds: 2, peakMiB: 100}, 1.9}
+	slow := &total{usage{seconds: 7, peakMiB: 700}, 1} // 3.5 times as long
+	giants := []giantResult{
+		{shape{1, 5e6, 5e6}, 9, total{usage: usage{peakMiB: 512}}},
+		{shape{5, 1e6, 1e6}, 9, total{usage: usage{peakMiB: 512.6}}},
+	}
 	for _, c := range []struct {
 		name   string
 		result result
@@ -17,12 +22,19 @@ func TestFloorsAndPeakAreHeld(t *testing.T) {
 		fault  string
 	}{
 		{"csv above its floor", result{format: "csv", bentray: fast, engine: slow}, true, ""},
-		{"csv below its floor", result{format: "csv", bentray: fast, engine: &usage{seconds: 5.9}}, true, "csv: 2.95 times"},
-		{"floor turned off", result{format: "csv", bentray: fast, engine: &usage{seconds: 5.9}}, false, ""},
-		{"parquet above its floor", result{format: "parquet", bentray: fast, engine: &usage{seconds: 5.9}}, true, ""},
-		{"parquet below its floor", result{format: "parquet", bentray: fast, engine: &usage{seconds: 3}}, true, "parquet: 1.50 times"},
+		{"csv below its floor", result{format: "csv", bentray: fast, engine: took(5.9)}, true, "csv: 2.95 times"},
+		{"floor turned off", result{format: "csv", bentray: fast, engine: took(5.9)}, false, ""},
+		{"parquet above its floor", result{format: "parquet", bentray: fast, engine: took(5.9)}, true, ""},
+		{"parquet below its floor", result{format: "parquet", bentray: fast, engine: took(3)}, true, "parquet: 1.50 times"},
 		{"no engine", result{format: "csv", bentray: fast}, true, ""},
-		{"peak", result{format: "csv", bentray: usage{seconds: 1, peakMiB: 513}, engine: slow}, false, "peak memory is 513 MiB"},
+		{"peak", result{format: "csv", bentray: total{usage: usage{seconds: 1, peakMiB: 513}}, engine: slow}, false, "peak memory is 513 MiB"},
+		{"giants at the limit", result{format: "parquet", bentray: fast, giants: giants[:1]}, true, ""},
+		{
+			"peak of a giant",
+			result{format: "parquet", bentray: fast, giants: giants},
+			false,
+			"parquet, 5 groups, pages of 1000000: peak memory is 513 MiB",
+		},
 	} {
 		t.Run(c.name, func(t *testing.T) {
 			err := c.result.check(c.floor)
@@ -36,11 +48,17 @@ func TestFloorsAndPeakAreHeld(t *testing.T) {
 func TestReportShowsSpeedAndRatio(t *testing.T) {
 	r := result{
 		format: "csv", rows: 5e6, inputBytes: 440e6, workers: 2, runs: 3, checkedRows: 5016,
-		bentray: usage{2, 3.5, 100}, engine: &usage{7, 13, 700},
+		bentray: total{usage{2, 3.5, 100}, 1.5}, engine: &total{usage{7, 13, 700}, 6},
+		giants: []giantResult{{shape{1, 5e6, 4e6}, 110e6, total{usage{2.5, 4, 300}, 2.25}}},
 	}
 	var out strings.Builder
 	r.print(&out)
-	for _, want := range []string{"2500000  220.0   3.50       100", "714286   62.9  13.00       700", "ratio engine/bentray 3.50 (floor 3)"} {
+	for _, want := range []string{
+		"bentray     2.00  1.50   2500000  220.0   3.50       100",
+		"engine     7.00  6.00    714286   62.9  13.00       700",
+		"bentray, 1 group, pages of 4000000     2.50  2.25   2000000   44.0   4.00       300",
+		"ratio engine/bentray 3.50 by median (floor 3), 4.00 by best; outputs agree on 5016 rows",
+	} {
 		if !strings.Contains(out.String(), want) {
 			t.Errorf("report lacks %q:\n%s", want, out.String())
 		}
@@ -49,8 +67,8 @@ func TestReportShowsSpeedAndRatio(t *testing.T) {
 
 func TestSummary(t *testing.T) {
 	got := summary([]usage{{3, 9, 50}, {1, 7, 90}, {2, 8, 70}})
-	if want := (usage{2, 8, 90}); got != want {
-		t.Errorf("summary is %v, want %v: medians of the times, the highest peak", got, want)
+	if want := (total{usage{2, 8, 90}, 1}); got != want {
+		t.Errorf("summary is %v, want %v: medians of the times, the highest peak, the best seconds", got, want)
 	}
 	if m := median([]float64{4, 1}); m != 2.5 {
 		t.Errorf("median of 4 and 1 is %v, want 2.5", m)

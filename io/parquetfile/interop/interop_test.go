@@ -186,7 +186,7 @@ func added(in, out string) []string {
 		list = append(list, "select count(*) from "+rows+"o."+column+" is distinct from ("+strings.ReplaceAll(rule, "MOVED", moved)+")")
 	}
 	slices.Sort(list)
-	for _, filter := range []string{"depth > 7", "outcome = 'dry'", "outcome = 'invalid'", "n_water is null", "run = 'x'", "ray_count = 5", "z < -14", "nothing is not null"} {
+	for _, filter := range []string{"depth > 7", "outcome = 'dry'", "outcome = 'invalid'", "n_water is null", "run = 'x'", "ray_count = 5", "z < -14", "nothing is not null", "z > 100", "x > 1e9", "isnan(z)"} {
 		// The second count comes from a table, which has no statistics of ours.
 		list = append(list, fmt.Sprintf("select (select count(*) from %s where %s) - (select count(*) from copy where %s)", out, filter, filter))
 	}
