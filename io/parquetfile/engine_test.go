@@ -112,15 +112,7 @@ func TestEngineCopy(t *testing.T) {
 			if err != nil {
 				t.Fatal(err)
 			}
-			made := filepath.Join(t.TempDir(), "out.parquet")
-			if err := os.WriteFile(made, out, 0o600); err != nil {
-				t.Fatal(err)
-			}
-			f, err := Open(made, Options{})
-			if err != nil {
-				t.Fatal(err)
-			}
-			defer f.Close()
+			f, made := reopen(t, out)
 			checkCopies(t, path, f)
 			wanted := rows[:f.Rows()]
 			z := make([]any, len(wanted))

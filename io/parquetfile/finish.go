@@ -160,6 +160,25 @@ func (f *File) Finish() error {
 	return o.writer.Flush()
 }
 
+// checkFooter refuses an output whose footer would be too long, before it is
+// written: the footer has about what the input's has, and the new chunks' words.
+func (o *output) checkFooter() error {
+	const chunkBytes = 60 // of a chunk's words without its name
+	f := o.file
+	chunks := 0
+	for _, path := range o.paths[len(f.leaves):] {
+		chunks += chunkBytes + len(path[0])
+	}
+	size := int(f.size-tailBytes-f.footer) + len(f.groups)*chunks
+	for key, value := range f.options.Metadata {
+		size += len(key) + len(value)
+	}
+	if size > maxFooterBytes {
+		return fmt.Errorf("the output's footer would have about %d bytes, want at most %d; split the file or write larger row groups", size, maxFooterBytes)
+	}
+	return nil
+}
+
 // sealed returns the end of a file: its description, with length and magic.
 func sealed(meta *parquet.FileMetaData) ([]byte, error) {
 	footer, err := appendThrift(nil, meta)

@@ -25,15 +25,7 @@ func rewritten(t *testing.T, rows int, o Options, change func(*parquet.FileMetaD
 	if err != nil {
 		t.Fatal(err)
 	}
-	made := filepath.Join(t.TempDir(), "out.parquet")
-	if err := os.WriteFile(made, out, 0o600); err != nil {
-		t.Fatal(err)
-	}
-	f, err := Open(made, Options{})
-	if err != nil {
-		t.Fatal(err)
-	}
-	defer f.Close()
+	f, _ := reopen(t, out)
 	return f.meta
 }
 
@@ -194,6 +186,12 @@ func TestOldStatistics(t *testing.T) {
 	if s := chunkOf(t, m, "x_raw").Statistics; string(s.Min) != "a" || string(s.MaxValue) != "y" {
 		t.Errorf("statistics of a number are %v, want all of them", s)
 	}
+	m = rewritten(t, 50, Options{}, func(m *parquet.FileMetaData) {
+		chunkOf(t, m, "class").Statistics = &old
+	})
+	if s := chunkOf(t, m, "class").Statistics; s.Min != nil || s.Max != nil || string(s.MaxValue) != "y" {
+		t.Errorf("statistics of an unsigned number are %v, want the newer min and max alone", s)
+	}
 	m = rewritten(t, 50, Options{}, func(m *parquet.FileMetaData) { set(m); m.ColumnOrders = nil })
 	if s := chunkOf(t, m, "note").Statistics; s.MinValue != nil || s.MaxValue != nil {
 		t.Errorf("statistics without an order are %v, want no min and max", s)
@@ -205,6 +203,7 @@ func TestOldStatistics(t *testing.T) {
 func TestUnknownType(t *testing.T) {
 	columns := survey(9)
 	columns[0].mark = logical(&parquet.LogicalType{STRING: parquet.NewStringType()})
+	columns[0].stats = &parquet.Statistics{MinValue: []byte("a"), MaxValue: []byte("z"), NullCount: pointer(int64(0))}
 	b := buildBytes(t, columns, []int{9}, nil)
 	at := len(b) - 8 - int(binary.LittleEndian.Uint32(b[len(b)-8:]))
 	at += bytes.Index(b[at:], []byte("note"))
@@ -225,8 +224,13 @@ func TestUnknownType(t *testing.T) {
 	if len(f.Cautions()) != 1 || f.Columns()[0].Type != "BYTE_ARRAY "+unknownType {
 		t.Errorf("cautions %q, columns %v, want one caution on note", f.Cautions(), f.Columns())
 	}
-	if _, err := rewrite(path, Options{}, cloud.Request{Numbers: []int{1, 2, 3}}, surveyLayout(), 1, fillSurvey); err != nil {
-		t.Error(err)
+	out, err := rewrite(path, Options{}, cloud.Request{Numbers: []int{1, 2, 3}}, surveyLayout(), 1, fillSurvey)
+	if err != nil {
+		t.Fatal(err)
+	}
+	made, _ := reopen(t, out)
+	if s := chunkOf(t, made.meta, "note").Statistics; s.MinValue != nil || s.MaxValue != nil || s.NullCount == nil {
+		t.Errorf("statistics of an unknown type are %v, want the nulls alone: its order is unknown too", s)
 	}
 }
 

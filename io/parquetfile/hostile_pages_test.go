@@ -78,6 +78,10 @@ func TestPageLies(t *testing.T) {
 		{"no data header, version 2", double, thriftBytes(t, &parquet.PageHeader{Type: parquet.PageType_DATA_PAGE_V2}), "a data page lacks its own header"},
 		{"no dictionary header", double, thriftBytes(t, &parquet.PageHeader{Type: parquet.PageType_DICTIONARY_PAGE}), "a dictionary page lacks its own header"},
 		{"levels, version 2", double, thriftBytes(t, &parquet.PageHeader{Type: parquet.PageType_DATA_PAGE_V2, DataPageHeaderV2: &parquet.DataPageHeaderV2{DefinitionLevelsByteLength: 9}}), "0 and 9 bytes of levels, want at most its 0"},
+		{"nulls, version 2", optional, append(thriftBytes(t, &parquet.PageHeader{
+			Type: parquet.PageType_DATA_PAGE_V2, UncompressedPageSize: 803, CompressedPageSize: 803,
+			DataPageHeaderV2: &parquet.DataPageHeaderV2{NumValues: 100, NumNulls: 3, NumRows: 100, DefinitionLevelsByteLength: 3},
+		}), append([]byte{200, 1, 1}, eight...)...), "a page has 0 nulls, want 3 as it says"},
 		{"levels missing", optional, page(plain, 1, 0), "the data end before the values do"},
 		{"levels too long", optional, page(plain, 99, 0, 0, 0, 1), "99 bytes of levels, want at most its 1"},
 		{"empty run", optional, page(plain, 2, 0, 0, 0, 0, 1), "a run has 0 values"},

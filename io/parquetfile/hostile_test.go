@@ -101,6 +101,7 @@ func TestFooterLies(t *testing.T) {
 		{"another name", func(m *parquet.FileMetaData) { meta(m).PathInSchema = []string{"w"} }, `is called "[w]" there`},
 		{"size", func(m *parquet.FileMetaData) { meta(m).TotalCompressedSize = 1 << 62 }, "want it between 4 and the footer"},
 		{"negative size", func(m *parquet.FileMetaData) { meta(m).TotalCompressedSize = -5 }, "want it between 4 and the footer"},
+		{"decompressed size", func(m *parquet.FileMetaData) { meta(m).TotalUncompressedSize = -1 }, `column "v", row group 1: has a decompressed size of -1 bytes`},
 		{"place", func(m *parquet.FileMetaData) { meta(m).DataPageOffset = 2 }, "lies at byte 2"},
 		{"short chunk", func(m *parquet.FileMetaData) { meta(m).TotalCompressedSize = 30 }, `column "v", row group 1: a page says it has`},
 		{"empty chunk", func(m *parquet.FileMetaData) { meta(m).TotalCompressedSize = 0 }, "the pages end 100 rows before the group does"},

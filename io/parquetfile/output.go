@@ -60,6 +60,9 @@ func newOutput(f *File, layout cloud.Layout, out io.Writer) (*output, error) {
 	if err := o.makeSchema(); err != nil {
 		return nil, err
 	}
+	if err := o.checkFooter(); err != nil {
+		return nil, err
+	}
 	return o, o.write([]byte(magic))
 }
 

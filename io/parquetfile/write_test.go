@@ -25,6 +25,21 @@ func rewrite(path string, o Options, read cloud.Request, layout cloud.Layout, wo
 	return out.Bytes(), err
 }
 
+// reopen opens what was written, under a path of its own, until the test ends.
+func reopen(t *testing.T, out []byte) (f *File, path string) {
+	t.Helper()
+	path = filepath.Join(t.TempDir(), "out.parquet")
+	if err := os.WriteFile(path, out, 0o600); err != nil {
+		t.Fatal(err)
+	}
+	f, err := Open(path, Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	t.Cleanup(func() { f.Close() })
+	return f, path
+}
+
 // rewriteTo is rewrite for an open file.
 func rewriteTo(out io.Writer, f *File, read cloud.Request, layout cloud.Layout, workers int, fill func(*cloud.Chunk)) error {
 	if err := f.Begin(read, layout, out); err != nil {
@@ -92,16 +107,8 @@ func TestRewrite(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	made := filepath.Join(t.TempDir(), "out.parquet")
-	if err := os.WriteFile(made, out, 0o600); err != nil {
-		t.Fatal(err)
-	}
+	f, made := reopen(t, out)
 	checkOutput(t, made, wantSurvey(in))
-	f, err := Open(made, Options{})
-	if err != nil {
-		t.Fatal(err)
-	}
-	defer f.Close()
 	var names []string
 	for _, c := range f.Columns() {
 		names = append(names, c.Name)
@@ -217,18 +224,10 @@ func TestNoRows(t *testing.T) {
 		if err != nil {
 			t.Fatal(err)
 		}
-		made := filepath.Join(t.TempDir(), "out.parquet")
-		if err := os.WriteFile(made, out, 0o600); err != nil {
-			t.Fatal(err)
-		}
-		f, err := Open(made, Options{})
-		if err != nil {
-			t.Fatal(err)
-		}
+		f, _ := reopen(t, out)
 		if len(f.Columns()) != 15 || f.Rows() != 0 {
 			t.Errorf("the output has %d columns and %d rows, want 15 and 0", len(f.Columns()), f.Rows())
 		}
-		f.Close()
 	}
 }
 
