@@ -25,9 +25,16 @@ func createOutput(path string) (*output, error) {
 	return &output{File: f, hash: sha256.New()}, nil
 }
 
+// Write hashes and writes side by side: both are in the order of the file, and
+// one after the other they would take longer than all the rest.
 func (o *output) Write(p []byte) (int, error) {
+	hashed := make(chan struct{})
+	go func() {
+		o.hash.Write(p)
+		close(hashed)
+	}()
 	n, err := o.File.Write(p)
-	o.hash.Write(p[:n])
+	<-hashed
 	o.bytes += int64(n)
 	return n, err
 }

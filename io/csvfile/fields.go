@@ -2,6 +2,8 @@ package csvfile
 
 import (
 	"bytes"
+	"encoding/binary"
+	"math/bits"
 	"strings"
 )
 
@@ -29,19 +31,28 @@ func (s separator) split(row []byte, spans []span) (count, stray int) {
 	return splitPlain(row, byte(s), spans), -1
 }
 
-// splitPlain is split for a row without quotes.
+// splitPlain is split for a row without quotes. It looks at eight bytes at once:
+// a byte of word is 0 where the text has the separator, and in hits just those
+// bytes have their high bit set.
 func splitPlain(row []byte, sep byte, spans []span) int {
-	begin := 0
-	for k := range spans {
-		i := bytes.IndexByte(row[begin:], sep)
-		if i < 0 {
-			spans[k] = span{uint32(begin), uint32(len(row))}
-			return k + 1
+	const ones, low7 = 0x0101010101010101, 0x7f7f7f7f7f7f7f7f
+	count, begin, i := 0, 0, 0
+	for ; i+8 <= len(row); i += 8 {
+		word := binary.LittleEndian.Uint64(row[i:]) ^ ones*uint64(sep)
+		for hits := ^((word&low7 + low7) | word | low7); hits != 0; hits &= hits - 1 {
+			end := i + bits.TrailingZeros64(hits)/8
+			place(spans, count, begin, end)
+			count, begin = count+1, end+1
 		}
-		spans[k] = span{uint32(begin), uint32(begin + i)}
-		begin += i + 1
 	}
-	return len(spans) + 1 + bytes.Count(row[begin:], []byte{sep})
+	for ; i < len(row); i++ {
+		if row[i] == sep {
+			place(spans, count, begin, i)
+			count, begin = count+1, i+1
+		}
+	}
+	place(spans, count, begin, len(row))
+	return count + 1
 }
 
 // splitQuoted is split for a row that may have quotes.
