@@ -46,6 +46,8 @@ fuzz:
 	$(GO) test $(FUZZ) -fuzz FuzzFile ./io/parquetfile
 	$(GO) test $(FUZZ) -fuzz FuzzParse ./pipeline/job
 	$(GO) test $(FUZZ) -fuzz FuzzParsePolygons ./geo
+	$(GO) test $(FUZZ) -fuzz FuzzParseZones ./geo
+	$(GO) test $(FUZZ) -fuzz FuzzParseLine ./geo
 
 demo:
 	$(GO) run ./cmd/bentray demo demo-out
