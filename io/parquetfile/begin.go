@@ -63,7 +63,7 @@ func (f *File) newCursor(i int, text bool) (*cursor, error) {
 	l := &f.leaves[i]
 	switch isText := l.kind == texts; {
 	case l.kind == opaque:
-		return nil, fmt.Errorf("%s: column %q is %s, want a flat column of DOUBLE, FLOAT, INT32, INT64, TIMESTAMP or text; it can only be copied", f.path, l.name, l.typ)
+		return nil, fmt.Errorf("%s: column %q is %s, want a flat column of DOUBLE, FLOAT, INT32, INT64, TIMESTAMP or text; it can only be copied; store it as DOUBLE or text", f.path, l.name, l.typ)
 	case text && !isText:
 		return nil, fmt.Errorf("%s: column %q is %s, want a text (BYTE_ARRAY)", f.path, l.name, l.typ)
 	case !text && isText:

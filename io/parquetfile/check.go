@@ -75,7 +75,7 @@ func checkChunk(chunk *parquet.ColumnChunk, l *leaf, rows int64) error {
 	case m.Type != l.physical:
 		return fmt.Errorf("is stored as %s, want %s as in the schema", m.Type, l.physical)
 	case !slices.Equal(m.PathInSchema, l.path):
-		return fmt.Errorf("is called %q there, want the schema's order", clip(fmt.Sprint(m.PathInSchema)))
+		return fmt.Errorf("is called %q there, not as in the schema; the file is damaged", clip(fmt.Sprint(m.PathInSchema)))
 	case l.flat && m.NumValues != rows:
 		return fmt.Errorf("has %d values, want %d as the group has rows", m.NumValues, rows)
 	case m.TotalUncompressedSize < 0:

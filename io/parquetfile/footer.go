@@ -31,7 +31,7 @@ func readFooter(r io.ReaderAt, size int64) (*parquet.FileMetaData, int64, error)
 	}
 	meta := parquet.NewFileMetaData()
 	if _, err := readThrift(footer, meta); err != nil {
-		return nil, 0, fmt.Errorf("the footer is damaged: %w", err)
+		return nil, 0, fmt.Errorf("the footer is damaged, fetch the file again (%w)", err)
 	}
 	if meta.EncryptionAlgorithm != nil {
 		return nil, 0, errEncrypted
@@ -60,7 +60,7 @@ func footerLength(r io.ReaderAt, size int64) (int64, error) {
 		return 0, fmt.Errorf("begins with %q, want %q as in every Parquet file", begin, magic)
 	}
 	if end != magic {
-		return 0, fmt.Errorf("ends with %q, want %q; the file is cut short", end, magic)
+		return 0, fmt.Errorf("ends with %q, want %q; the file is cut short, or has bytes behind its end", end, magic)
 	}
 	length := int64(binary.LittleEndian.Uint32(tail[:]))
 	if most := min(size-tailBytes-int64(len(magic)), maxFooterBytes); length > most {

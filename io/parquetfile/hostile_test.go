@@ -72,7 +72,7 @@ func TestNotParquet(t *testing.T) {
 	}{
 		{"empty", nil, "has 0 bytes, want a Parquet file"},
 		{"text", []byte("x,y,z\n1,2,3\n"), `begins with "x,y,", want "PAR1"`},
-		{"cut", good[:len(good)-5], "want \"PAR1\"; the file is cut short"},
+		{"cut", good[:len(good)-5], "want \"PAR1\"; the file is cut short, or has bytes"},
 		{"encrypted", replace(-4, "PARE"), "is encrypted"},
 		{"long footer", replace(-8, "\xff\xff\xff\x7f"), "says its footer has 2147483647 bytes, want at most"},
 		{"short footer", replace(-8, "\x05\x00\x00\x00"), "the footer is damaged"},
