@@ -62,7 +62,7 @@ func newLayout(s *survey, columns []cloud.Column, r *reading) (*layout, error) {
 		l.addAngles()
 		l.addIndices(s)
 		l.addWater(s)
-		l.addOrigins(r)
+		l.addOrigins(s, columns)
 	}
 	l.label("run", everyPoint, func(*sensor, correct.Outcome) string { return s.run[:receipt.ShortLength] })
 	return l, l.checkNames(columns)
@@ -147,15 +147,26 @@ func (l *layout) addWater(s *survey) {
 	l.wateredOnly = append(l.wateredOnly, l.temperature, l.salinity, l.source)
 }
 
-// addOrigins adds the origins that come from a trajectory, unless the file has the
-// columns for sensors without one.
-func (l *layout) addOrigins(r *reading) {
-	if r.origin[0] >= 0 || !slices.ContainsFunc(l.sensors, func(sn *sensor) bool { return sn.trajectory != nil }) {
+// addOrigins adds the origins that come from a trajectory, unless the file has
+// columns of origins: those stay as they are, used or not.
+func (l *layout) addOrigins(s *survey, columns []cloud.Column) {
+	if hasOriginColumns(s.job, columns) || !slices.ContainsFunc(l.sensors, func(sn *sensor) bool { return sn.trajectory != nil }) {
 		return
 	}
-	for k, name := range []string{"origin_x", "origin_y", "origin_z"} {
+	for k, name := range originRoles {
 		l.origin[k] = l.tracedByRow(name, l.Decimals)
 	}
+}
+
+var originRoles = [3]string{"origin_x", "origin_y", "origin_z"}
+
+func hasOriginColumns(j *job.Job, columns []cloud.Column) bool {
+	for _, role := range originRoles {
+		if i, err := cloud.FindRole(columns, role, j.Input.Columns); err != nil || i < 0 {
+			return false
+		}
+	}
+	return true
 }
 
 // The outcomes that a column has a value for.

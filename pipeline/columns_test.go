@@ -293,3 +293,21 @@ func TestExtentInFeet(t *testing.T) {
 		t.Errorf("outcomes are %q, want %q", got, want)
 	}
 }
+
+// With a trajectory the cloud's own origin columns stay as they are, and do not
+// decide.
+func TestTrajectoryBesideOriginColumns(t *testing.T) {
+	folder := t.TempDir()
+	cloud := "x,y,z,gps_time,origin_x,origin_y,origin_z\n500000,6000000,-10,0.5,1,2,3\n"
+	files{"raw/a.csv": cloud, "flight.csv": "gps_time,x,y,z\n0,500000,6000000,400\n1,500000,6000000,400\n"}.write(t, folder)
+	runJob(t, loadJob(t, folder, tinyJob(`"raw/*.csv"`, "true")+"trajectory = \"flight.csv\"\n"), Options{})
+	got := readTable(t, readFile(t, folder, "true/a.csv"))
+	if o := got.text(t, 0, "outcome"); o != "corrected" {
+		t.Errorf("the point is %s, want it corrected from the trajectory", o)
+	}
+	for name, want := range map[string]string{"origin_x": "1", "origin_y": "2", "origin_z": "3"} {
+		if v := got.text(t, 0, name); v != want {
+			t.Errorf("%s is %s, want %s as in the file", name, v, want)
+		}
+	}
+}

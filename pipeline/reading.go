@@ -108,7 +108,7 @@ func (r *reading) findOrigins(s *survey, columns []cloud.Column) (err error) {
 		return nil
 	}
 	units := [3]float64{s.plan, s.plan, s.height}
-	for k, role := range []string{"origin_x", "origin_y", "origin_z"} {
+	for k, role := range originRoles {
 		if r.origin[k], err = r.needLength(s, columns, role, "a pulse needs its ray origin; or give [rays] trajectory", units[k]); err != nil {
 			return err
 		}
