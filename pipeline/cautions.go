@@ -33,11 +33,13 @@ func (t *tally) geometryCautions(s *survey) []string {
 	if s.extent != nil {
 		apart("polygons", s.extentBound)
 	}
-	if s.zones.index != nil {
-		apart("zones", s.zones.bound)
+	if b := s.zones.bound; s.zones.index != nil && math.Max(math.Abs(b.Min[0]), math.Abs(b.Max[0])) <= 180 && math.Max(math.Abs(b.Min[1]), math.Abs(b.Max[1])) <= 90 {
+		apart("zones", b) // elsewhere a tile may well lie outside all zones
 	}
 	if s.surface.isConstant() {
 		cautions = append(cautions, s.levelCautions(*s.job.Surface.Level, math.Max(x.high-x.low, y.high-y.low)*s.plan, z)...)
+	} else if t.depth.low > levelRise && !t.depth.isEmpty() {
+		say("no corrected point lies within %g m of the water's surface: far for a shallow cloud; are surface and cloud in one vertical reference?", float64(levelRise))
 	}
 	return cautions
 }

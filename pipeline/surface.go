@@ -109,6 +109,9 @@ func (s *survey) readSurface(ctx context.Context, clouds []input) error {
 func (s *survey) readOverSurface(ctx context.Context) error {
 	j, f := s.job.Surface, &s.surface
 	var faults []error
+	if j.Grid != nil && j.Grid.Classes != nil && (j.Gauge != nil || j.Separation != nil) {
+		s.cautions = append(s.cautions, "a gauge or separation is added to a grid of the clouds' own surface points, which hold the tide and the vertical reference already")
+	}
 	if j.Gauge != nil {
 		faults = append(faults, s.auxiliaryFile(ctx, "gauge", "[surface.gauge] file", j.Gauge.File, s.readGauges))
 	}
