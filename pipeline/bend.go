@@ -207,7 +207,7 @@ func (s *survey) throughCasts(p *part, sn *sensor, w *workspace, model func()) {
 				p.fail(i, correct.Unsolved)
 			}
 		}
-		if !moving {
+		if !moving || try == meetTries-1 {
 			return
 		}
 		for i, o := range p.out {

@@ -119,8 +119,10 @@ func (s *survey) readOverSurface(ctx context.Context) error {
 		f.curved = true
 		faults = append(faults, s.auxiliaryFile(ctx, "separation", "[surface.separation] file", j.Separation.File, s.readSeparation))
 	}
-	for _, z := range s.zones.list {
-		f.zoneLevel = append(f.zoneLevel, z.Level*s.height)
+	if slices.ContainsFunc(s.zones.list, func(z geo.Zone) bool { return z.Level == z.Level }) {
+		for _, z := range s.zones.list {
+			f.zoneLevel = append(f.zoneLevel, z.Level*s.height)
+		}
 	}
 	return errors.Join(faults...)
 }

@@ -120,6 +120,9 @@ func (s *survey) readWaters() (err error) {
 // does nothing where the job has no zones.
 func (s *survey) fillZones(zone []int32, x, y []float64) {
 	if s.zones.index == nil {
+		for i := range zone {
+			zone[i] = -1
+		}
 		return
 	}
 	s.zones.index.Find(zone, x, y)
@@ -162,6 +165,9 @@ func (s *survey) waterOf(w *workspace, i int) (temperature, salinity, source flo
 func (s *survey) markWater(w *workspace, out []correct.Outcome, sn *sensor) {
 	for i := range out {
 		if out[i] != correct.Corrected {
+			if out[i] != correct.NoRule { // else it is another sensor's
+				w.light.Water[i], w.light.WaterGroup[i] = math.NaN(), math.NaN()
+			}
 			continue
 		}
 		water := medium.Water{TemperatureC: w.temperature[i], Salinity: w.salinity[i], PressureDbar: s.water.pressure}
