@@ -130,7 +130,7 @@ func (s *survey) meetSurface(p *part, w *workspace) {
 		if !moving {
 			return
 		}
-		s.surface.fill(p.planes, m.lastX, m.lastY, w.utc, w.zone, w.column)
+		s.surface.fill(p.planes, m.lastX, m.lastY, w.moments, w.zone, w.column)
 		p.planes.CarryToRaw(w.raw, m.lastX, m.lastY)
 		correct.MarkNoSurface(p.out, p.planes)
 	}
@@ -140,7 +140,7 @@ func (s *survey) meetSurface(p *part, w *workspace) {
 func (s *survey) takeTrueLevels(p *part, w *workspace) {
 	m, r := &w.meet, &p.result
 	flat := correct.Planes{Level: m.depth, SlopeX: m.lastX, SlopeY: m.lastY}
-	s.surface.fill(flat, r.X, r.Y, w.utc, w.zone, w.column)
+	s.surface.fill(flat, r.X, r.Y, w.moments, w.zone, w.column)
 	for i, o := range p.out {
 		switch {
 		case o != correct.Corrected:

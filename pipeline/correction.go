@@ -23,7 +23,7 @@ func (s *survey) correctChunk(c *cloud.Chunk, r *reading, l *layout, w *workspac
 	r.markNoRule(w, c)
 	s.markOutside(w, c)
 	s.fillZones(w.zone, c.Numbers[0], c.Numbers[1])
-	s.surface.fill(w.planes, w.raw.X, w.raw.Y, w.utc, w.zone, s.ownLevels(w, c, r))
+	s.surface.fill(w.planes, w.raw.X, w.raw.Y, w.moments, w.zone, s.ownLevels(w, c, r))
 	correct.MarkNoSurface(w.out, w.planes)
 	correct.MarkDry(w.out, &w.result, w.raw, w.planes)
 	s.bendSensors(w, c, r)
@@ -58,15 +58,19 @@ func (s *survey) scaleXYZ(p correct.XYZ, plan, height float64) {
 func (s *survey) takeTimes(w *workspace, c *cloud.Chunk, r *reading) {
 	switch {
 	case !s.needsUTC():
+		return
 	case r.time >= 0:
 		for i, t := range c.Numbers[r.time] {
-			w.utc[i] = s.times.UTC(t)
+			w.own[i] = s.times.UTC(t)
 		}
-	case s.surface.at != nil:
-		fill(w.utc, *s.surface.at)
 	default:
-		fill(w.utc, math.NaN())
+		fill(w.own, math.NaN())
 	}
+	if r.time < 0 && s.surface.at != nil {
+		fill(w.utc, *s.surface.at)
+		return
+	}
+	copy(w.utc, w.own)
 }
 
 func (s *survey) needsUTC() bool {

@@ -111,7 +111,7 @@ func (s *survey) sample(m *LevelMap) {
 		fill(ownY, row/s.plan)
 		planes := correct.Planes{Level: make([]float64, n), SlopeX: make([]float64, n), SlopeY: make([]float64, n)}
 		s.fillZones(zone, ownX, ownY)
-		base.fill(planes, m.X, y, none, zone, none)
+		base.fill(planes, m.X, y, moments{none, none}, zone, none)
 		if s.surface.gauges != nil {
 			s.surface.gauges.Add(planes.Level, m.X, y, at)
 		}

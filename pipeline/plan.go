@@ -225,7 +225,7 @@ func (p *planner) corners() {
 		fill(utc, *at)
 	}
 	none := []float64{math.NaN(), math.NaN(), math.NaN(), math.NaN()}
-	p.surface.fill(planes, inMetres(x), inMetres(y), utc, []int32{-1, -1, -1, -1}, none)
+	p.surface.fill(planes, inMetres(x), inMetres(y), moments{none, utc}, []int32{-1, -1, -1, -1}, none)
 	level := planes.Level
 	scale(level, 1/p.height)
 	for i := range p.plan.Corners {

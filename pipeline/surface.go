@@ -46,14 +46,14 @@ func (f *waterSurface) isConstant() bool {
 // fill gives each plan position and time its plane of the water, with a level of
 // NaN where there is none. The zone of a point replaces the base. column holds the
 // cloud's own levels, where they are the base.
-func (f *waterSurface) fill(p correct.Planes, x, y, utc []float64, zone []int32, column []float64) {
+func (f *waterSurface) fill(p correct.Planes, x, y []float64, t moments, zone []int32, column []float64) {
 	switch {
 	case f.plane != nil:
 		f.plane.Fill(p.Level, p.SlopeX, p.SlopeY, x, y)
 	case f.profile != nil:
 		f.profile.Fill(p.Level, p.SlopeX, p.SlopeY, x, y)
 	case f.grid != nil:
-		f.grid.Fill(p.Level, p.SlopeX, p.SlopeY, x, y, utc)
+		f.grid.Fill(p.Level, p.SlopeX, p.SlopeY, x, y, t.own)
 	case f.column:
 		geo.FillLevel(p.Level, p.SlopeX, p.SlopeY, 0)
 		copy(p.Level, column)
@@ -68,7 +68,7 @@ func (f *waterSurface) fill(p correct.Planes, x, y, utc []float64, zone []int32,
 		}
 	}
 	if f.gauges != nil {
-		f.gauges.Add(p.Level, x, y, utc)
+		f.gauges.Add(p.Level, x, y, t.utc)
 	}
 	if f.separation != nil {
 		f.separation.Add(p.Level, p.SlopeX, p.SlopeY, x, y)

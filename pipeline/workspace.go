@@ -12,7 +12,7 @@ type workspace struct {
 	out    []correct.Outcome
 	sensor []uint8 // which one; 0 where none
 	zone   []int32 // which one; -1 for none
-	utc    []float64
+	moments
 
 	raw, origin correct.XYZ
 	planes      correct.Planes
@@ -27,6 +27,12 @@ type workspace struct {
 	meet meeting
 
 	spare [16][]float64 // for results that have no column in the chunk
+}
+
+// moments are the times of points, UTC seconds since 1970, NaN for none.
+type moments struct {
+	own []float64 // the cloud's
+	utc []float64 // the same or, in a cloud without times, the one that the job names
 }
 
 // part is a chunk's points for one sensor: those of the others are not Corrected
@@ -51,7 +57,7 @@ func (w *workspace) prepare(c *cloud.Chunk, l *layout, s *survey) {
 	w.out = cloud.Grow(w.out, n)
 	clear(w.out)
 	w.sensor, w.zone = cloud.Grow(w.sensor, n), cloud.Grow(w.zone, n)
-	growAll(n, &w.utc, &w.raw.X, &w.raw.Y, &w.raw.Z, &w.planes.Level, &w.column)
+	growAll(n, &w.own, &w.utc, &w.raw.X, &w.raw.Y, &w.raw.Z, &w.planes.Level, &w.column)
 	if !s.isConstantWater() {
 		growAll(n, &w.fromStations[0], &w.fromStations[1])
 	}
