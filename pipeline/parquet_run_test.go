@@ -1,7 +1,6 @@
 package pipeline
 
 import (
-	"fmt"
 	"path/filepath"
 	"slices"
 	"strings"
@@ -11,6 +10,7 @@ import (
 
 	"bentray/io/parquetfile"
 	"bentray/pipeline/job"
+	"bentray/pipeline/receipt"
 )
 
 // mixedFleet is a survey of CSV and Parquet clouds with a Parquet trajectory;
@@ -40,19 +40,7 @@ func mixedJob(t *testing.T, folder, output string) *job.Job {
 
 func TestSameParquetBytesForAnyWorkers(t *testing.T) {
 	folder := mixedFleet(t)
-	var want map[string]string
-	for _, workers := range []int{1, 2, 7} {
-		output := fmt.Sprintf("true%d", workers)
-		s := runJob(t, mixedJob(t, folder, output), Options{Workers: workers})
-		got := outputs(t, filepath.Join(folder, output))
-		if want == nil {
-			want = got
-		}
-		same(t, fmt.Sprintf("%d workers", workers), got, want)
-		if s.Rows.Read != 145_700 || s.Rows.Written != 145_700 || s.Done != 4 {
-			t.Errorf("%d workers: rows %+v in %d files, want 145700 in 4", workers, s.Rows, s.Done)
-		}
-	}
+	want := sameForWorkers(t, folder, mixedJob, receipt.Rows{Read: 145_700, Written: 145_700}, 4)
 	if s := runJob(t, mixedJob(t, folder, "true2"), Options{}); s.Fresh != 4 {
 		t.Errorf("a second run finds %d files fresh, want 4", s.Fresh)
 	}

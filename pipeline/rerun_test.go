@@ -12,6 +12,7 @@ import (
 	"time"
 
 	"bentray/pipeline/job"
+	"bentray/pipeline/receipt"
 )
 
 // fleet is a survey of several files below raw/, of which one is of several
@@ -45,21 +46,30 @@ func fleetText(output string) string {
 		"[surface]\nlevel = 0.42\n[extent]\npolygons = \"water.geojson\"\n[rays]\nmodel = \"pulse\"\ntrajectory = \"flight.csv\"\n"
 }
 
-func TestSameBytesForAnyWorkers(t *testing.T) {
-	folder := fleet(t)
+// sameForWorkers runs a job with 1, 2 and 7 workers, each into a folder of its own
+// (true1, true2, true7), wants the same bytes and these rows and files each time, and
+// returns what they wrote.
+func sameForWorkers(t *testing.T, folder string, jobTo func(*testing.T, string, string) *job.Job, rows receipt.Rows, files int) map[string]string {
+	t.Helper()
 	var want map[string]string
 	for _, workers := range []int{1, 2, 7} {
 		output := fmt.Sprintf("true%d", workers)
-		s := runJob(t, fleetJob(t, folder, output), Options{Workers: workers})
+		s := runJob(t, jobTo(t, folder, output), Options{Workers: workers})
 		got := outputs(t, filepath.Join(folder, output))
 		if want == nil {
 			want = got
 		}
 		same(t, fmt.Sprintf("%d workers", workers), got, want)
-		if s.Rows.Read != 40793 || s.Rows.Diverted != 2 || s.Rows.Written != 40791 || s.Done != 5 {
-			t.Errorf("%d workers: rows %+v in %d files, want 40793 read, 2 of them diverted, in 5", workers, s.Rows, s.Done)
+		if s.Rows != rows || s.Done != files {
+			t.Errorf("%d workers: rows %+v in %d files, want %+v in %d", workers, s.Rows, s.Done, rows, files)
 		}
 	}
+	return want
+}
+
+func TestSameBytesForAnyWorkers(t *testing.T) {
+	folder := fleet(t)
+	want := sameForWorkers(t, folder, fleetJob, receipt.Rows{Read: 40793, Written: 40791, Diverted: 2}, 5)
 	runJob(t, fleetJob(t, folder, "true2"), Options{Workers: 3, Redo: true})
 	same(t, "redo", outputs(t, filepath.Join(folder, "true2")), want)
 }

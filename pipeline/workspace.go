@@ -65,7 +65,7 @@ func (w *workspace) prepare(c *cloud.Chunk, l *layout, s *survey) {
 		m := &w.meet
 		growAll(n, &m.x, &m.y, &m.lastX, &m.lastY, &m.depth)
 	}
-	if len(s.sensors) > 1 || s.surface.curved {
+	if len(s.sensors) > 1 {
 		w.part.prepare(n)
 	}
 	w.result.XYZ = correct.XYZ{X: c.XYZ[0], Y: c.XYZ[1], Z: c.XYZ[2]}
