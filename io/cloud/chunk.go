@@ -69,6 +69,15 @@ func (t *Texts) Reset() {
 	t.Bytes, t.Ends = t.Bytes[:0], t.Ends[:0]
 }
 
+// Cut keeps the first rows.
+func (t *Texts) Cut(rows int) {
+	end := 0
+	if rows > 0 {
+		end = t.Ends[rows-1]
+	}
+	t.Bytes, t.Ends = t.Bytes[:end], t.Ends[:rows]
+}
+
 // Reject is a row that could not be read.
 type Reject struct {
 	Line   int64  // first line of the row in the file, from 1

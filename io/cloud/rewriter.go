@@ -14,6 +14,7 @@ type Request struct {
 	Numbers []int
 	Steps   []float64 // by Numbers, or nil: the coarsest step in which a binary format may store them, in their own unit; 0 is any
 	Texts   []int
+	Checks  []func(text []byte) error // by Texts, or nil: what a text must hold, where it is not nil; an error makes the row one that cannot be read. Called side by side
 }
 
 // Rewriter copies one file, with other coordinates and more columns.

@@ -99,16 +99,33 @@ func (f *File) decodeRow(c *cloud.Chunk, b *block, text []byte, begin int, loneR
 		}
 		c.Numbers[k][c.Rows] = v
 	}
-	for k, column := range f.read.Texts {
-		t := &c.Texts[k]
-		t.Bytes = appendContent(t.Bytes, b.fields[column].of(text))
-		t.Ends = append(t.Ends, len(t.Bytes))
+	if bad := f.decodeTexts(c, b, text); bad != nil {
+		return bad
 	}
 	if f.out != nil {
 		r := &b.rows[c.Rows]
 		for k, column := range f.layout.XYZ {
 			field := b.fields[column]
 			r.xyz[k] = span{uint32(begin) + field.begin, uint32(begin) + field.end}
+		}
+	}
+	return nil
+}
+
+// decodeTexts appends a row's texts, or nothing where a check refuses one.
+func (f *File) decodeTexts(c *cloud.Chunk, b *block, text []byte) *cloud.RowError {
+	for k, column := range f.read.Texts {
+		t := &c.Texts[k]
+		t.Bytes = appendContent(t.Bytes, b.fields[column].of(text))
+		t.Ends = append(t.Ends, len(t.Bytes))
+		if f.read.Checks == nil || f.read.Checks[k] == nil {
+			continue
+		}
+		if err := f.read.Checks[k](t.At(c.Rows)); err != nil {
+			for cut := range c.Texts[:k+1] {
+				c.Texts[cut].Cut(c.Rows)
+			}
+			return &cloud.RowError{Path: f.path, Column: shorten(f.columns[column].Name), Err: err}
 		}
 	}
 	return nil

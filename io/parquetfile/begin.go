@@ -34,6 +34,7 @@ func (f *File) beginReading(read cloud.Request, write cloud.Layout, laidOut bool
 		}
 		f.numbers = append(f.numbers, source{cursor: c})
 	}
+	f.checks = read.Checks
 	for _, i := range read.Texts {
 		c, err := f.newCursor(i, true)
 		if err != nil {

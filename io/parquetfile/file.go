@@ -38,6 +38,7 @@ type File struct {
 	raw     []*cursor // x, y, z; none where there is no layout
 	numbers []source
 	texts   []*cursor
+	checks  []func([]byte) error // by texts
 	group   int   // the group of the next piece
 	done    int64 // rows of it that were handed out
 	before  int64 // rows of the groups before it

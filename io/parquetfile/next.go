@@ -26,6 +26,7 @@ type source struct {
 type piece struct {
 	group       int
 	first, last bool         // of its group
+	before      int64        // rows of the file before it
 	raw         [3][]float64 // x, y, z as read, safe from changes of the chunk's numbers
 	pages       pages
 	work        encoder
@@ -48,6 +49,7 @@ func (f *File) Next(c *cloud.Chunk) error {
 		return err
 	}
 	p.group, p.first, p.last = f.group, f.done == 0, f.done+rows == total
+	p.before = f.before + f.done
 	c.Rows, c.Rejects = int(rows), c.Rejects[:0]
 	c.Consumed = f.share(f.before+f.done+rows) - f.share(f.before+f.done)
 	if err := f.decodeNumbers(c, p); err != nil {
@@ -63,8 +65,22 @@ func (f *File) Next(c *cloud.Chunk) error {
 	return nil
 }
 
-// Decode has nothing left to do: Next has decoded the chunk.
-func (f *File) Decode(*cloud.Chunk) error { return nil }
+// Decode checks the chunk's texts where the request says so; Next has decoded it.
+// The first that is refused is the error, a *cloud.RowError.
+func (f *File) Decode(c *cloud.Chunk) error {
+	for k, check := range f.checks {
+		if check == nil {
+			continue
+		}
+		for i := range c.Rows {
+			if err := check(c.Texts[k].At(i)); err != nil {
+				row := c.Format.(*piece).before + int64(i) + 1
+				return &cloud.RowError{Path: f.path, Row: row, Column: f.leaves[f.texts[k].index].name, Err: err}
+			}
+		}
+	}
+	return nil
+}
 
 // pieceOf returns the chunk's own piece, made at its first use.
 func pieceOf(c *cloud.Chunk) *piece {
