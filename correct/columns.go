@@ -74,6 +74,12 @@ func (r *Result) keep(i int, raw optics.Vec) {
 	r.IncidenceRad[i], r.RefractionRad[i] = nan, nan
 }
 
+// keepDry is keep for a point on the ray origin's side of the surface.
+func (r *Result) keepDry(i int, raw optics.Vec, level float64) {
+	r.keep(i, raw)
+	r.WaterLevel[i], r.Depth[i] = level, level-raw.Z
+}
+
 // isFinite reports whether x is neither NaN nor infinite.
 func isFinite(x float64) bool { return math.Abs(x) <= math.MaxFloat64 }
 

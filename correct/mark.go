@@ -36,9 +36,23 @@ func MarkDry(out []Outcome, dst *Result, raw XYZ, s Planes) {
 			continue
 		}
 		out[i] = Dry
-		dst.keep(i, raw.at(i))
-		dst.WaterLevel[i] = s.Level[i]
-		dst.Depth[i] = s.Level[i] - raw.Z[i]
+		dst.keepDry(i, raw.at(i), s.Level[i])
+	}
+}
+
+// MarkWet is MarkDry for cameras under water: it sets Dry where the raw point is on
+// the water's side of the surface at its plan position, or exactly on it. Depth is positive
+// or 0 there.
+func MarkWet(out []Outcome, dst *Result, raw XYZ, s Planes) {
+	dst.mustHave(len(out))
+	raw.mustHave(len(out))
+	s.mustHave(len(out))
+	for i := range out {
+		if out[i] != Corrected || !(raw.Z[i] <= s.Level[i]) {
+			continue
+		}
+		out[i] = Dry
+		dst.keepDry(i, raw.at(i), s.Level[i])
 	}
 }
 

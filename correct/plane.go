@@ -16,6 +16,9 @@ func (s Planes) around(i int, z float64) plane {
 	return plane{s.Level[i], s.Level[i] - z, s.SlopeX[i], s.SlopeY[i]}
 }
 
+// isFinite reports whether there is a surface.
+func (p plane) isFinite() bool { return isFinite(p.level) && isFinite(p.slopeX) && isFinite(p.slopeY) }
+
 // climb returns how much the surface rises from the raw plan position to that
 // position moved by v.
 func (p plane) climb(v optics.Vec) float64 { return p.slopeX*v.X + p.slopeY*v.Y }

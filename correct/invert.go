@@ -1,0 +1,71 @@
+package correct
+
+import "bentray/correct/optics"
+
+// Newton's method ends when its last full step is shorter than doneM, metres; what it
+// leaves is of the order of that step's square. Usual are 3 steps.
+const (
+	doneM       = 1e-7
+	newtonSteps = 30
+)
+
+// invert returns the point, relative to the raw one, whose refracted rays the survey's
+// triangulation intersected at the raw point: with the rays traced to it the gradient
+// of the triangulation's cost vanishes at the raw point. Three equations, Newton's
+// method with exact derivatives.
+func (s *MultiviewSolver) invert(from optics.Vec, rule Residual) (optics.Vec, bool) {
+	p := from
+	for range newtonSteps {
+		g, by := s.gradient(p, rule)
+		step, ok := by.solve(g)
+		if !ok {
+			return p, false
+		}
+		share := s.share(p, step)
+		p = p.Sub(step.Scale(share))
+		if share == 1 && step.Norm() < doneM {
+			return p, true
+		}
+	}
+	return p, false
+}
+
+// gradient traces the rays to p and returns the gradient of the cost at the raw point
+// and the derivative of that gradient by p.
+func (s *MultiviewSolver) gradient(p optics.Vec, rule Residual) (g optics.Vec, by matrix) {
+	for k := range s.sights {
+		r := &s.sights[k]
+		depth := r.trace(&s.boundary, p)
+		var e optics.Vec
+		var byV matrix
+		switch v := r.near(); rule {
+		case Image:
+			e, byV = r.image(v)
+		case Angle:
+			e, byV = r.angle(v)
+		default:
+			e, byV = r.equal(v)
+		}
+		g = g.Add(e)
+		spread, gradient := r.change(&s.boundary, depth)
+		by.x = by.x.Sub(byV.x.Scale(spread))
+		by.y = by.y.Sub(byV.y.Scale(spread))
+		by.z = by.z.Sub(byV.z.Scale(spread))
+		by.addOuter(byV.times(r.up), r.up.Scale(spread))
+		by.addOuter(byV.times(r.run), gradient)
+	}
+	return g, by
+}
+
+// share returns how much of a step, to be taken back from p, keeps p beyond all
+// planes: all of it, or nine tenths of the way to the first plane.
+func (s *MultiviewSolver) share(p, step optics.Vec) float64 {
+	share := 1.0
+	for k := range s.sights {
+		r := &s.sights[k]
+		if depth, rise := r.depth(p), -r.up.Dot(step); share*rise >= depth {
+			share = 0.9 * depth / rise
+		}
+	}
+	return share
+}

@@ -1,0 +1,255 @@
+package correct
+
+import (
+	"math"
+	"slices"
+
+	"bentray/correct/optics"
+)
+
+// Solve is how Multiview undoes the refraction of intersected rays.
+type Solve uint8
+
+// The ways to solve.
+const (
+	// Invert finds the point whose refracted rays, prolonged straight from the cameras, the
+	// triangulation intersected at the raw point. Exact for the Residual it had.
+	Invert Solve = iota
+	// Intersect refracts each raw ray at the surface and intersects them again.
+	Intersect
+	// Average keeps the plan position and takes the mean of the depths that each raw
+	// ray gives by itself.
+	Average
+)
+
+// Bundle is what a MultiviewSolver must know beside the raw points: the rays of each,
+// the water surface where they cross it, and the indices.
+type Bundle struct {
+	Views
+	Cameras *Cameras
+	// Planes has one plane per ray: the elevation at the raw plan position of the ray's
+	// point, and the slopes.
+	Planes Planes
+	// Light has the indices: Air, and Water for each point. The others are not read.
+	Light    Light
+	Solve    Solve
+	Residual Residual // of the triangulation that made the raw points; Invert alone reads it
+	// FromWater says that the cameras are under water and the points in the air.
+	FromWater bool
+	// Warm says that dst holds points near the solutions to start from, such as those of the
+	// same points under planes that differ a little. Invert alone reads it.
+	Warm bool
+	// MaxIncidenceRad is the largest angle between ray and surface normal on
+	// the camera's side, 0 to pi/2.
+	MaxIncidenceRad float64
+}
+
+func (b *Bundle) mustHave(n int) {
+	b.Views.mustHave(n)
+	b.Planes.mustHave(len(b.Camera))
+	b.Cameras.XYZ.mustHave(len(b.Cameras.X))
+	mustHave(n, b.Light.Water)
+	if b.Residual == Image && b.Solve == Invert && len(b.Cameras.Rotation) != len(b.Cameras.X) {
+		panic(errRotations)
+	}
+}
+
+const errRotations = "correct: the image residual needs the rotation of each camera"
+
+// MultiviewSolver corrects points that a triangulation intersected from images. The zero
+// value is ready; it holds room for the rays of one point, so each goroutine
+// needs its own.
+type MultiviewSolver struct {
+	sights   []sight
+	boundary optics.Boundary
+}
+
+// Solve corrects the points whose indices are listed, or all where points is nil, and
+// leaves all others in dst and out as they are. Of the listed ones it takes those that are
+// Corrected. It writes all columns of dst: WaterLevel is that of the plane of the
+// point's first ray at the true plan position, EntryLevel, IncidenceRad and RefractionRad are
+// means over the rays. A point that is not Corrected keeps its raw position. New
+// outcomes:
+//   - NoSurface: a ray has no surface.
+//   - NoOrigin: see MarkNoCameras.
+//   - FewRays: fewer than two rays.
+//   - Grazing: a ray's incidence is not within b.MaxIncidenceRad, or a raw ray is totally
+//     reflected. IncidenceRad is written all the same. Invert looks at the rays of
+//     the solution, and at the raw rays where there is none.
+//   - Unsolved: the rays are parallel or too nearly so, a camera of the image residual
+//     looks away from the point, the method did not converge to a point beyond the surface, an
+//     index is not positive and finite, or the result is not finite.
+//
+// dst.XYZ may be the raw columns themselves, once; a Warm start needs them apart.
+// Columns of other lengths than these panic: one value per point (len(out)), one
+// plane per ray.
+func (s *MultiviewSolver) Solve(dst *Result, out []Outcome, points []int32, raw XYZ, b *Bundle) {
+	dst.mustHave(len(out))
+	raw.mustHave(len(out))
+	b.mustHave(len(out))
+	if points == nil {
+		for i := range out {
+			s.point(dst, out, i, raw, b)
+		}
+		return
+	}
+	for _, i := range points {
+		s.point(dst, out, int(i), raw, b)
+	}
+}
+
+// point corrects point i.
+func (s *MultiviewSolver) point(dst *Result, out []Outcome, i int, raw XYZ, b *Bundle) {
+	if out[i] == Dry {
+		return
+	}
+	point, last := raw.at(i), dst.at(i)
+	dst.keep(i, point)
+	if out[i] != Corrected {
+		return
+	}
+	if out[i] = s.gather(i, point, b); out[i] != Corrected {
+		return
+	}
+	p, o := s.solve(i, last.Sub(point), b)
+	near, far, widest := s.incidence(o)
+	if !(widest <= b.MaxIncidenceRad) || o == Grazing {
+		out[i], dst.IncidenceRad[i] = Grazing, near
+		return
+	}
+	if out[i] = o; o == Corrected {
+		dst.IncidenceRad[i], dst.RefractionRad[i] = near, far
+		out[i] = s.put(dst, i, point, p, b)
+	}
+}
+
+// gather fills s.sights with the rays of point i.
+func (s *MultiviewSolver) gather(i int, point optics.Vec, b *Bundle) Outcome {
+	from, to := b.of(i)
+	s.sights = slices.Grow(s.sights[:0], to-from)[:to-from]
+	facing := true
+	for k := range s.sights {
+		if !b.sight(&s.sights[k], from+k, point) {
+			return NoSurface
+		}
+		facing = facing && s.sights[k].isFacing()
+	}
+	switch {
+	case to-from < 2:
+		return FewRays
+	case !facing:
+		return NoOrigin
+	}
+	return Corrected
+}
+
+// sight fills r with the geometry of ray k, of a point. It is false where the ray has no
+// surface.
+func (b *Bundle) sight(r *sight, k int, point optics.Vec) bool {
+	surface := b.Planes.around(k, point.Z)
+	r.look(b.Cameras.at(int(b.Camera[k])).Sub(point), surface, b.FromWater)
+	return surface.isFinite()
+}
+
+// boundary returns the surface at point i, from the cameras' side.
+func (b *Bundle) boundary(i int) optics.Boundary {
+	if b.FromWater {
+		return optics.NewBoundary(b.Light.Water[i], b.Light.Air)
+	}
+	return optics.NewBoundary(b.Light.Air, b.Light.Water[i])
+}
+
+// solve returns the true point relative to the raw one. from is where a warm start begins.
+// Where there is no solution the outcome is Unsolved, or Grazing where a raw ray
+// is totally reflected.
+func (s *MultiviewSolver) solve(i int, from optics.Vec, b *Bundle) (optics.Vec, Outcome) {
+	if !b.Light.hasPhase(i) {
+		return optics.Vec{}, Unsolved
+	}
+	s.boundary = b.boundary(i)
+	var p optics.Vec
+	ok := true
+	switch b.Solve {
+	case Invert:
+		p, ok = s.invertFrom(i, from, b)
+	case Intersect:
+		p, ok = s.intersect()
+	default:
+		p, ok = s.average()
+	}
+	if ok && s.areBeyond(p) {
+		return p, Corrected
+	}
+	if s.isReflected() {
+		return p, Grazing
+	}
+	return p, Unsolved
+}
+
+// invertFrom inverts from the best start there is: the last solution, the
+// intersection of the refracted raw rays, or n times the depth.
+func (s *MultiviewSolver) invertFrom(i int, from optics.Vec, b *Bundle) (optics.Vec, bool) {
+	first := b.Start[i]
+	for k := range s.sights {
+		if !s.sights[k].aimFor(b.Residual, b.Cameras, b.Camera[int(first)+k]) {
+			return optics.Vec{}, false
+		}
+	}
+	if !b.Warm || !s.areBeyond(from) {
+		if p, ok := s.intersect(); ok && s.areBeyond(p) {
+			from = p
+		} else {
+			from = s.straightDown()
+		}
+	}
+	if !s.areBeyond(from) {
+		return from, false
+	}
+	return s.invert(from, b.Residual)
+}
+
+// isReflected reports whether a raw ray is totally reflected, or does not come down to its
+// plane at all.
+func (s *MultiviewSolver) isReflected() bool {
+	for k := range s.sights {
+		if r := &s.sights[k]; !r.bend(&s.boundary) {
+			return true
+		}
+	}
+	return false
+}
+
+// incidence returns the mean angles of the rays from their normals on both sides, and
+// the largest on the camera's: of the solved rays, or of the raw ones.
+func (s *MultiviewSolver) incidence(o Outcome) (near, far, widest float64) {
+	for k := range s.sights {
+		r := &s.sights[k]
+		i, t := r.rawIncidenceRad(), math.NaN()
+		if o == Corrected {
+			i, t = r.angles()
+		}
+		near, far, widest = near+i, far+t, max(widest, i)
+	}
+	n := float64(len(s.sights))
+	return near / n, far / n, widest
+}
+
+// put writes where point i is and how deep, and returns its final outcome.
+func (s *MultiviewSolver) put(dst *Result, i int, point, p optics.Vec, b *Bundle) Outcome {
+	from, _ := b.of(i)
+	end, first := point.Add(p), b.Planes.around(from, point.Z)
+	level, entry := first.levelAt(p), 0.0
+	for k := range s.sights {
+		surface := b.Planes.around(from+k, point.Z)
+		entry += surface.level - first.level + surface.climb(s.sights[k].entry())
+	}
+	depth := level - end.Z
+	if !isFiniteVec(end) || !isFinite(depth) {
+		dst.keep(i, point)
+		return Unsolved
+	}
+	dst.X[i], dst.Y[i], dst.Z[i] = end.X, end.Y, end.Z
+	dst.Depth[i], dst.WaterLevel[i] = depth, level
+	dst.EntryLevel[i] = first.level + entry/float64(len(s.sights))
+	return Corrected
+}
