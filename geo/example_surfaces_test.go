@@ -53,7 +53,9 @@ func ExampleNewGrid() {
 		px, py := float64(i%30), float64(i/30)
 		x, y, z, t = append(x, px), append(y, py), append(z, 2+0.002*px), append(t, 100+px/60)
 	}
-	water, err := geo.NewGrid(x, y, z, t, geo.GridOptions{Cell: 3, Offset: 0.05})
+	var points geo.SurfacePoints
+	points.Add(x, y, z, t)
+	water, err := geo.NewGrid(&points, geo.GridOptions{Cell: 3, Offset: 0.05})
 	if err != nil {
 		fmt.Println(err)
 		return

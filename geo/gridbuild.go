@@ -14,31 +14,11 @@ const maxCell = 1 << 40
 // later where a few points lie very far from each other.
 const maxCellTrials = 50
 
-// surfacePoint is a surface point with its cell.
-type surfacePoint struct {
-	col, row   int
-	x, y, z, t float64
-}
-
-// compare orders points by cell, then by value, so that no sum depends on the order
-// in which the points came.
-func (p surfacePoint) compare(q surfacePoint) int {
-	if p.row != q.row {
-		return cmp.Compare(p.row, q.row)
-	}
-	if p.col != q.col {
-		return cmp.Compare(p.col, q.col)
-	}
-	if p.x != q.x {
-		return cmp.Compare(p.x, q.x)
-	}
-	return cmp.Or(cmp.Compare(p.y, q.y), cmp.Compare(p.z, q.z), cmp.Compare(p.t, q.t))
-}
-
 // gridBuilder makes a Grid.
 type gridBuilder struct {
 	options GridOptions
-	points  []surfacePoint // sorted
+	points  *SurfacePoints
+	order   []uint32 // numbers of the points, cell by cell, in a cell by value
 	cells   []cellRun
 	places  [][2]int   // column and row of each node
 	slots   *cellTable // number of a cell's run plus 1
@@ -48,26 +28,11 @@ type gridBuilder struct {
 	part    []sample
 }
 
-// cellRun is a cell with points, points[first:end].
+// cellRun is a cell with points, those that order[first:end] names.
 type cellRun struct{ col, row, first, end int }
 
-// take keeps the points with finite coordinates; a time that is not finite is none.
-func (b *gridBuilder) take(x, y, z, t []float64) {
-	b.points = make([]surfacePoint, 0, len(x))
-	for i := range x {
-		if !isFinite(x[i], y[i], z[i]) {
-			continue
-		}
-		p := surfacePoint{x: x[i], y: y[i], z: z[i], t: math.NaN()}
-		if t != nil && isFinite(t[i]) {
-			p.t = t[i]
-		}
-		b.points = append(b.points, p)
-	}
-}
-
-// build makes the grid from what was taken of n points.
-func (b *gridBuilder) build(n int) (*Grid, error) {
+// build makes the grid.
+func (b *gridBuilder) build() (*Grid, error) {
 	b.grid = &Grid{options: b.options, perMetre: 1 / b.options.Cell}
 	b.fitter.radius = patchRadius * b.options.Cell
 	if err := b.sortCells(); err != nil {
@@ -76,48 +41,73 @@ func (b *gridBuilder) build(n int) (*Grid, error) {
 	b.addNodes()
 	if len(b.grid.nodes) == 0 {
 		return nil, fmt.Errorf("no cell of %v m has enough of the %d surface points near it, want %d points around it: take larger cells",
-			b.options.Cell, len(b.points), minPlane)
+			b.options.Cell, b.points.held, minPlane)
 	}
 	b.addGaps()
-	b.describe(n)
+	b.describe()
 	return b.grid, nil
 }
 
-// sortCells sorts the points into cells and makes the tables.
+// cellOf returns the cell of a position.
+func (b *gridBuilder) cellOf(x, y float64) (col, row int) {
+	return int(math.Floor(x / b.options.Cell)), int(math.Floor(y / b.options.Cell))
+}
+
+// sortCells makes the tables and sorts the points into cells.
 func (b *gridBuilder) sortCells() error {
-	low, high := [2]float64{math.Inf(1), math.Inf(1)}, [2]float64{math.Inf(-1), math.Inf(-1)}
-	for i := range b.points {
-		p := &b.points[i]
-		col, row := math.Floor(p.x/b.options.Cell), math.Floor(p.y/b.options.Cell)
-		if !(math.Abs(col) < maxCell && math.Abs(row) < maxCell) {
-			return fmt.Errorf("surface point at %v %v m is too far away for cells of %v m", p.x, p.y, b.options.Cell)
+	low, high := b.points.Bounds()
+	for _, corner := range [][2]float64{low, high} {
+		if far := max(math.Abs(corner[0]), math.Abs(corner[1])); !(far/b.options.Cell < maxCell) {
+			return fmt.Errorf("surface points reach out to %v %v m, too far away for cells of %v m", corner[0], corner[1], b.options.Cell)
 		}
-		p.col, p.row = int(col), int(row)
-		low = [2]float64{min(low[0], col), min(low[1], row)}
-		high = [2]float64{max(high[0], col), max(high[1], row)}
 	}
-	slices.SortFunc(b.points, surfacePoint.compare)
 	margin := patchRadius + int(b.options.Reach)
-	var err error
+	left, bottom := b.cellOf(low[0], low[1])
+	right, top := b.cellOf(high[0], high[1])
 	for _, table := range []**cellTable{&b.slots, &b.grid.table} {
-		*table, err = newCellTable(int(low[0])-margin, int(low[1])-margin, int(high[0])+margin, int(high[1])+margin)
-		if err != nil {
+		var err error
+		if *table, err = newCellTable(left-margin, bottom-margin, right+margin, top+margin); err != nil {
 			return err
 		}
 	}
-	b.runs()
+	b.countCells()
+	b.fillCells()
 	return nil
 }
 
-// runs finds the run of points of each cell.
-func (b *gridBuilder) runs() {
-	for i := range b.points {
-		p := &b.points[i]
-		if i == 0 || p.col != b.points[i-1].col || p.row != b.points[i-1].row {
-			b.cells = append(b.cells, cellRun{col: p.col, row: p.row, first: i})
-			*b.slots.at(p.col, p.row) = int32(len(b.cells))
+// countCells finds the cells with points, row by row, and how many each holds: its
+// run is then empty, and as long as the next one leaves room.
+func (b *gridBuilder) countCells() {
+	b.points.each(func(_ uint32, p *surfacePoint) {
+		col, row := b.cellOf(p.x, p.y)
+		slot := b.slots.at(col, row)
+		if *slot == 0 {
+			b.cells = append(b.cells, cellRun{col: col, row: row})
+			*slot = int32(len(b.cells))
 		}
-		b.cells[len(b.cells)-1].end = i + 1
+		b.cells[*slot-1].end++
+	})
+	slices.SortFunc(b.cells, func(a, c cellRun) int { return cmp.Or(cmp.Compare(a.row, c.row), cmp.Compare(a.col, c.col)) })
+	first := 0
+	for k := range b.cells {
+		run := &b.cells[k]
+		*b.slots.at(run.col, run.row) = int32(k + 1)
+		count := run.end
+		run.first, run.end = first, first
+		first += count
+	}
+}
+
+// fillCells puts each point's number into the run of its cell, sorted by value.
+func (b *gridBuilder) fillCells() {
+	b.order = make([]uint32, b.points.held)
+	b.points.each(func(number uint32, p *surfacePoint) {
+		run := &b.cells[*b.slots.at(b.cellOf(p.x, p.y))-1]
+		b.order[run.end] = number
+		run.end++
+	})
+	for _, run := range b.cells {
+		slices.SortFunc(b.order[run.first:run.end], func(p, q uint32) int { return b.points.at(p).compare(b.points.at(q)) })
 	}
 }
 
@@ -157,14 +147,14 @@ func (b *gridBuilder) isInner(place [2]int) bool {
 	return true
 }
 
-// describe takes the grid's numbers, of n points.
-func (b *gridBuilder) describe(n int) {
+// describe takes the grid's numbers.
+func (b *gridBuilder) describe() {
 	sigmas := make([]float64, len(b.grid.patches))
 	for i := range sigmas {
 		sigmas[i] = b.grid.patches[i].sigma
 	}
 	b.grid.stats = GridStats{
-		Cell: b.options.Cell, Used: len(b.points), Ignored: n - len(b.points),
+		Cell: b.options.Cell, Used: b.points.held, Ignored: b.points.given - b.points.held,
 		Cells: len(b.grid.nodes), Patches: len(sigmas), Sigma: median(sigmas),
 	}
 }
@@ -172,23 +162,19 @@ func (b *gridBuilder) describe(n int) {
 // defaultCell returns the side (m) of the cells that hold pointsPerCell points on
 // average, empty cells left out. It starts with the rectangle around the points and
 // comes closer with the points that the cells in use hold.
-func defaultCell(points []surfacePoint) float64 {
-	low, high := points[0], points[0]
-	for _, p := range points {
-		low.x, low.y = min(low.x, p.x), min(low.y, p.y)
-		high.x, high.y = max(high.x, p.x), max(high.y, p.y)
-	}
-	long := max(high.x-low.x, high.y-low.y)
+func defaultCell(points *SurfacePoints) float64 {
+	low, high := points.Bounds()
+	long := max(high[0]-low[0], high[1]-low[1])
 	if long == 0 {
 		return 1 // any cell holds them all
 	}
 	cell := long
 	for range maxCellTrials {
 		used := map[[2]int]struct{}{}
-		for _, p := range points {
-			used[[2]int{int((p.x - low.x) / cell), int((p.y - low.y) / cell)}] = struct{}{}
-		}
-		share := pointsPerCell / (float64(len(points)) / float64(len(used)))
+		points.each(func(_ uint32, p *surfacePoint) {
+			used[[2]int{int((p.x - low[0]) / cell), int((p.y - low[1]) / cell)}] = struct{}{}
+		})
+		share := pointsPerCell / (float64(points.held) / float64(len(used)))
 		cell = min(cell*math.Sqrt(share), long)
 		if math.Abs(share-1) < 0.02 {
 			break

@@ -117,8 +117,8 @@ func (b *gridBuilder) gather(col, row int) {
 				continue
 			}
 			run := &b.cells[slot-1]
-			for i := run.first; i < run.end; i++ {
-				p := &b.points[i]
+			for _, number := range b.order[run.first:run.end] {
+				p := b.points.at(number)
 				u, v := p.x-x, p.y-y
 				if u*u+v*v < b.fitter.radius*b.fitter.radius {
 					b.near = append(b.near, sample{u, v, p.z, p.t})

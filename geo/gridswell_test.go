@@ -124,7 +124,7 @@ func TestGridSwell(t *testing.T) {
 		oneSided bool
 	}{{"2 % upwards", 0.02, true}, {"2 % both ways", 0.02, false}, {"15 % upwards", 0.15, true}} {
 		x, y, z, _ := testSwell.points(rng, 40_000, tc.blunders, tc.oneSided, still)
-		g, err := NewGrid(x, y, z, nil, GridOptions{})
+		g, err := gridOf(x, y, z, nil, GridOptions{})
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -145,7 +145,7 @@ func TestGridWavelength(t *testing.T) {
 		pz, _, _ := testSwell.at(px, py, 0)
 		x, y, z = append(x, px), append(y, py), append(z, pz)
 	}
-	g, err := NewGrid(x, y, z, nil, GridOptions{Cell: testSwell.length / 15})
+	g, err := gridOf(x, y, z, nil, GridOptions{Cell: testSwell.length / 15})
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -163,11 +163,11 @@ func TestGridTwoPasses(t *testing.T) {
 	x, y, z, at := testSwell.points(rng, 40_000, 0.02, true, pass(4.1e8))
 	x2, y2, z2, at2 := testSwell.points(rng, 40_000, 0.02, true, pass(4.1e8+40))
 	x, y, z, at = append(x, x2...), append(y, y2...), append(z, z2...), append(at, at2...)
-	g, err := NewGrid(x, y, z, at, GridOptions{Cell: 4})
+	g, err := gridOf(x, y, z, at, GridOptions{Cell: 4})
 	if err != nil {
 		t.Fatal(err)
 	}
-	mixed, err := NewGrid(x, y, z, at, GridOptions{Cell: 4, Window: math.Inf(1)})
+	mixed, err := gridOf(x, y, z, at, GridOptions{Cell: 4, Window: math.Inf(1)})
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -189,7 +189,7 @@ func TestGridTwoPasses(t *testing.T) {
 func TestGridSigma(t *testing.T) {
 	rng := newRand(t, 74)
 	x, y, z, _ := testSwell.points(rng, 40_000, 0.02, true, still)
-	g, err := NewGrid(x, y, z, nil, GridOptions{})
+	g, err := gridOf(x, y, z, nil, GridOptions{})
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -212,7 +212,7 @@ func TestGridSigma(t *testing.T) {
 func TestGridSlopeChoice(t *testing.T) {
 	rng := newRand(t, 75)
 	x, y, z, _ := testSwell.points(rng, 40_000, 0.02, true, still)
-	g, err := NewGrid(x, y, z, nil, GridOptions{})
+	g, err := gridOf(x, y, z, nil, GridOptions{})
 	if err != nil {
 		t.Fatal(err)
 	}

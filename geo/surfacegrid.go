@@ -115,10 +115,9 @@ type GridStats struct {
 // Stats returns the numbers that describe the grid.
 func (g *Grid) Stats() GridStats { return g.stats }
 
-// NewGrid returns the surface through the surface points x, y, z (m) with the times
-// t (s, NaN where a point has none; nil where none has). The slices have one length
-// (otherwise it panics) and are not kept. All points of a survey belong into one
-// grid; their order does not matter, not even for the last bit.
+// NewGrid returns the surface through surface points. All points of a survey belong
+// into one grid; their order does not matter, not even for the last bit. The points
+// are not kept.
 //
 // The patch of a cell is a quadratic z(x, y), weighted with (1 - d^2/r^2)^2 for a
 // distance d below r, two cells, and reweighted with Tukey's biweight about the
@@ -138,27 +137,23 @@ func (g *Grid) Stats() GridStats { return g.stats }
 // 0.25 m and 6 s at 60 m/s by 0.004.
 //
 // It takes some 2 to 4 microseconds a surface point, much the same for any cell;
-// meanwhile 100 bytes a point, afterwards 90 bytes a patch, 1 KiB for each tile of
-// 16 by 16 cells in use and 4 bytes, 16 MiB at most, for each tile of the rectangle
-// around the points.
+// meanwhile some 8 bytes a point beside the points themselves, afterwards 90 bytes a
+// patch, 1 KiB for each tile of 16 by 16 cells in use and 4 bytes, 16 MiB at most, for
+// each tile of the rectangle around the points.
 //
 // Errors: options as of Validate; no cell with enough points; points too far apart.
-func NewGrid(x, y, z, t []float64, options GridOptions) (*Grid, error) {
-	if len(y) != len(x) || len(z) != len(x) || t != nil && len(t) != len(x) {
-		panic(errLengths)
-	}
+func NewGrid(points *SurfacePoints, options GridOptions) (*Grid, error) {
 	if err := options.Validate(); err != nil {
 		return nil, err
 	}
-	b := gridBuilder{options: options.withDefaults()}
-	b.take(x, y, z, t)
-	if len(b.points) == 0 {
-		return nil, fmt.Errorf("none of %d surface points has finite coordinates, want at least %d", len(x), minPlane)
+	if err := points.check(); err != nil {
+		return nil, err
 	}
+	b := gridBuilder{options: options.withDefaults(), points: points}
 	if options.Cell == 0 {
-		b.options.Cell = defaultCell(b.points)
+		b.options.Cell = defaultCell(points)
 	}
-	return b.build(len(x))
+	return b.build()
 }
 
 // Fill fills a chunk with the surface: its level (m), offset included, and slopes at

@@ -16,10 +16,17 @@ func scattered(rng *rand.Rand, n int, side float64, f func(u, v float64) float64
 	return x, y, z
 }
 
+// gridOf is the grid of points given as columns.
+func gridOf(x, y, z, t []float64, options GridOptions) (*Grid, error) {
+	var points SurfacePoints
+	points.Add(x, y, z, t)
+	return NewGrid(&points, options)
+}
+
 // mustGrid returns a grid that must not fail.
 func mustGrid(t testing.TB, x, y, z, at []float64, options GridOptions) *Grid {
 	t.Helper()
-	g, err := NewGrid(x, y, z, at, options)
+	g, err := gridOf(x, y, z, at, options)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -51,11 +58,27 @@ func TestGridExact(t *testing.T) {
 	}
 }
 
+// inParts is points given in parts that are joined, some of them empty or more than a
+// block long.
+func inParts(rng *rand.Rand, x, y, z, t []float64) *SurfacePoints {
+	var all SurfacePoints
+	for len(x) > 0 {
+		var part SurfacePoints
+		for range rng.IntN(3) {
+			n := min(rng.IntN(5000), len(x))
+			part.Add(x[:n], y[:n], z[:n], t[:n])
+			x, y, z, t = x[n:], y[n:], z[n:], t[n:]
+		}
+		all.Join(&part)
+	}
+	return &all
+}
+
 // TestGridOrder: the order of points, as when files are read in another order or cut
 // in other tiles, changes no bit.
 func TestGridOrder(t *testing.T) {
 	rng := newRand(t, 112)
-	x, y, z, at := testSwell.points(rng, 4000, 0.02, true, pass(4.1e8))
+	x, y, z, at := testSwell.points(rng, 12_000, 0.02, true, pass(4.1e8))
 	for i := range x {
 		switch {
 		case i%7 == 0:
@@ -73,7 +96,10 @@ func TestGridOrder(t *testing.T) {
 		for _, i := range rng.Perm(len(x)) {
 			x2, y2, z2, at2 = append(x2, x[i]), append(y2, y[i]), append(z2, z[i]), append(at2, at[i])
 		}
-		other := mustGrid(t, x2, y2, z2, at2, options)
+		other, err := NewGrid(inParts(rng, x2, y2, z2, at2), options)
+		if err != nil {
+			t.Fatal(err)
+		}
 		if g.Stats() != other.Stats() {
 			t.Errorf("stats %+v, want %+v", other.Stats(), g.Stats())
 		}
@@ -187,15 +213,15 @@ func TestGridRefuses(t *testing.T) {
 		{"all options wrong", x, y, z, GridOptions{Cell: -1, Reach: 51, Window: -2, Offset: math.NaN()}, []string{"cell is -1 m", "reach is 51 cells, want 0 to 50", "window is -2 s", "offset is NaN m"}},
 		{"options NaN", x, y, z, GridOptions{Cell: math.NaN(), Reach: math.NaN(), Window: math.NaN()}, []string{"cell is NaN", "reach is NaN", "window is NaN"}},
 	} {
-		_, err := NewGrid(tc.x, tc.y, tc.z, nil, tc.options)
+		_, err := gridOf(tc.x, tc.y, tc.z, nil, tc.options)
 		if err == nil {
 			t.Errorf("%s: no error", tc.name)
 			continue
 		}
 		wantError(t, err, tc.words...)
 	}
-	mustPanic(t, func() { _, _ = NewGrid(x, y, z[:1], nil, GridOptions{}) })
-	mustPanic(t, func() { _, _ = NewGrid(x, y, z, z[:1], GridOptions{}) })
+	mustPanic(t, func() { _, _ = gridOf(x, y, z[:1], nil, GridOptions{}) })
+	mustPanic(t, func() { _, _ = gridOf(x, y, z, z[:1], GridOptions{}) })
 	g := mustGrid(t, x, y, z, nil, GridOptions{})
 	mustPanic(t, func() { g.Fill(x, y, z, x, y, z[:1]) })
 	mustPanic(t, func() { g.Fill(x, y, z, x, y[:1], nil) })

@@ -69,7 +69,7 @@ func BenchmarkNewGrid(b *testing.B) {
 			}
 			b.ReportAllocs()
 			for b.Loop() {
-				if _, err := NewGrid(x, y, z, at, GridOptions{}); err != nil {
+				if _, err := gridOf(x, y, z, at, GridOptions{}); err != nil {
 					b.Fatal(err)
 				}
 			}
@@ -81,7 +81,7 @@ func BenchmarkNewGrid(b *testing.B) {
 // BenchmarkGridFill asks for positions in any order, among patches and in gaps.
 func BenchmarkGridFill(b *testing.B) {
 	x, y, z, t := testSwell.points(newRand(b, 72), 40_000, 0.02, true, pass(4.1e8))
-	g, err := NewGrid(x, y, z, t, GridOptions{})
+	g, err := gridOf(x, y, z, t, GridOptions{})
 	if err != nil {
 		b.Fatal(err)
 	}

@@ -92,8 +92,9 @@ type SeparationReport struct {
 
 // DescribeSurface reads the job's surface and what it is made from, and describes
 // it; of the clouds it reads their surface points alone, where the surface is made of
-// them. It writes nothing. Errors are *CallErrors, or the context's.
-func DescribeSurface(ctx context.Context, j *job.Job) (*SurfaceReport, error) {
+// them, and tells the watcher (nil: nobody). It writes nothing. Errors are *CallErrors,
+// or the context's.
+func DescribeSurface(ctx context.Context, j *job.Job, watch Watcher) (*SurfaceReport, error) {
 	var clouds []input
 	if g := j.Surface.Grid; g != nil && g.Points == "" {
 		var err error
@@ -101,7 +102,7 @@ func DescribeSurface(ctx context.Context, j *job.Job) (*SurfaceReport, error) {
 			return nil, err
 		}
 	}
-	s := &survey{job: j}
+	s := newSurvey(j, Options{Watch: watch})
 	if err := s.readUnits(); err != nil {
 		return nil, &CallError{err}
 	}

@@ -19,7 +19,7 @@ func describeText(t *testing.T, tables string, f files) (*SurfaceReport, error) 
 	folder := t.TempDir()
 	f.write(t, folder)
 	j := loadJob(t, folder, "[output]\nfolder = \"true\"\n[rays]\nmodel = \"vertical\"\n"+tables)
-	return DescribeSurface(context.Background(), j)
+	return DescribeSurface(context.Background(), j, nil)
 }
 
 func described(t *testing.T, tables string, f files) *SurfaceReport {
@@ -301,7 +301,7 @@ func TestDescribeStops(t *testing.T) {
 	folder := t.TempDir()
 	files{"line.csv": "x,y,z\n0,0,1\n10,0,1\n10,9,1\n"}.write(t, folder)
 	j := loadJob(t, folder, metres+"[output]\nfolder = \"true\"\n[rays]\nmodel = \"vertical\"\n[surface.plane]\nwaterline = \"line.csv\"\n")
-	if _, err := DescribeSurface(ctx, j); !errors.Is(err, context.Canceled) {
+	if _, err := DescribeSurface(ctx, j, nil); !errors.Is(err, context.Canceled) {
 		t.Errorf("error is %v, want that of the context", err)
 	}
 }

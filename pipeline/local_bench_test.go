@@ -5,8 +5,11 @@ import (
 	"fmt"
 	"math"
 	"path/filepath"
+	"strconv"
+	"strings"
 	"testing"
 
+	"bentray/io/parquetfile"
 	"bentray/pipeline/job"
 )
 
@@ -43,18 +46,63 @@ func benchStations() string {
 	return lines("x,y,temperature,salinity,time", rows...)
 }
 
-// benchCloud is n points along parallel strips, as a scanner sees them.
-func benchCloud(n int) string {
+// benchCloud is n points along parallel strips, as a scanner sees them: whole numbers
+// are counts, the others lengths in millimetres and times in microseconds.
+func benchCloud(n int) []parquetfile.Column {
 	r := newRand(19)
-	var b bytes.Buffer
-	b.WriteString("x,y,z,gps_time,intensity,return_number,classification,origin_x,origin_y,origin_z\n")
+	var numbers [7][]float64
+	var counts [3][]int64
 	for i := range n {
 		along := 20 * float64(i) / float64(n) // strips of 100 m
 		strip, share := math.Modf(along)
 		x, y := 2000*share, 100*strip
-		fmt.Fprintf(&b, "%.3f,%.3f,%.3f,%.6f,%d,1,40,%.3f,%.3f,400\n", x, y+100*r.Float64(), -0.5-14*r.Float64(), 1.9e9+2000*along, r.IntN(999), x, y+50)
+		for k, v := range [...]float64{x, y + 100*r.Float64(), -0.5 - 14*r.Float64(), 1.9e9 + 2000*along, x, y + 50, 400} {
+			step := 1e3
+			if k == 3 {
+				step = 1e6
+			}
+			numbers[k] = append(numbers[k], math.Round(v*step)/step)
+		}
+		for k, v := range [...]int64{r.Int64N(999), 1, 40} {
+			counts[k] = append(counts[k], v)
+		}
 	}
-	return b.String()
+	return []parquetfile.Column{
+		{Name: "x", Values: numbers[0]},
+		{Name: "y", Values: numbers[1]},
+		{Name: "z", Values: numbers[2]},
+		{Name: "gps_time", Values: numbers[3]},
+		{Name: "intensity", Values: counts[0]},
+		{Name: "return_number", Values: counts[1]},
+		{Name: "classification", Values: counts[2]},
+		{Name: "origin_x", Values: numbers[4]},
+		{Name: "origin_y", Values: numbers[5]},
+		{Name: "origin_z", Values: numbers[6]},
+	}
+}
+
+// csvOf is a table of numbers as CSV: times with six decimals, others with three.
+func csvOf(columns []parquetfile.Column, n int) string {
+	var b []byte
+	for k, c := range columns {
+		b = append(append(b, c.Name...), ",\n"[k/(len(columns)-1)])
+	}
+	for i := range n {
+		for k, c := range columns {
+			switch values := c.Values.(type) {
+			case []int64:
+				b = strconv.AppendInt(b, values[i], 10)
+			case []float64:
+				decimals := 3
+				if c.Name == "gps_time" {
+					decimals = 6
+				}
+				b = strconv.AppendFloat(b, values[i], 'f', decimals, 64)
+			}
+			b = append(b, ",\n"[k/(len(columns)-1)])
+		}
+	}
+	return string(b)
 }
 
 // benchJobs are the same pulses through one water at one level, and through 2000
@@ -66,35 +114,51 @@ var benchJobs = []struct{ name, tables string }{
 
 func benchFolder(b *testing.B, n int) string {
 	b.Helper()
-	folder := b.TempDir()
+	folder, cloud := b.TempDir(), benchCloud(n)
 	gauge := [][]float64{}
 	for k := range 500 {
 		gauge = append(gauge, []float64{1.9e9 + 600*float64(k), math.Sin(float64(k) / 12)})
 	}
+	var parquet bytes.Buffer
+	if err := parquetfile.WriteTable(&parquet, cloud, 1<<20); err != nil {
+		b.Fatal(err)
+	}
 	files{
-		"raw/a.csv": benchCloud(n), "zones.geojson": benchZones(), "stations.csv": benchStations(), "gauge.csv": lines("time,level", gauge...),
+		"raw/a.csv": csvOf(cloud, n), "raw/a.parquet": parquet.String(),
+		"zones.geojson": benchZones(), "stations.csv": benchStations(), "gauge.csv": lines("time,level", gauge...),
 	}.write(b, folder)
 	return folder
 }
 
-// BenchmarkLocalWater runs whole jobs on a CSV cloud, and reads zones and stations
-// anew each time. Local water is to reach 60 % of the speed with constants.
+// BenchmarkLocalWater runs whole jobs, and reads zones and stations anew each time.
+// Local water is to reach 60 % of the speed with constants in either format.
 func BenchmarkLocalWater(b *testing.B) {
-	const n = 1_000_000
+	const n = 1_500_000
 	folder := benchFolder(b, n)
-	for _, c := range benchJobs {
-		b.Run(c.name, func(b *testing.B) {
-			j := loadJob(b, folder, inUTC(pulseJob)+c.tables)
-			b.ReportAllocs()
-			for b.Loop() {
-				s := runJob(b, j, Options{Redo: true})
-				if s.Outcomes["corrected"] < n*9/10 {
-					b.Fatalf("outcomes are %v", s.Outcomes)
-				}
-			}
-			b.ReportMetric(float64(b.Elapsed().Nanoseconds())/float64(b.N)/n, "ns/point")
-		})
+	for _, format := range formats {
+		for _, c := range benchJobs {
+			b.Run(format+"/"+c.name, func(b *testing.B) {
+				benchRun(b, loadJob(b, folder, benchJob(format)+c.tables), n)
+			})
+		}
 	}
+}
+
+// benchJob is the job of benchFolder's cloud in a format, without water and surface.
+func benchJob(format string) string {
+	return strings.Replace(inUTC(pulseJob), "*.csv", "*."+format, 1)
+}
+
+func benchRun(b *testing.B, j *job.Job, n int) {
+	b.Helper()
+	b.ReportAllocs()
+	for b.Loop() {
+		s := runJob(b, j, Options{Redo: true})
+		if s.Outcomes["corrected"] < int64(n)*9/10 {
+			b.Fatalf("outcomes are %v", s.Outcomes)
+		}
+	}
+	b.ReportMetric(float64(b.Elapsed().Nanoseconds())/float64(b.N)/float64(n), "ns/point")
 }
 
 // BenchmarkCorrectChunk corrects one chunk, without reading and writing.
@@ -102,7 +166,7 @@ func BenchmarkCorrectChunk(b *testing.B) {
 	folder := benchFolder(b, 60_000)
 	for _, c := range benchJobs {
 		b.Run(c.name, func(b *testing.B) {
-			benchChunk(b, loadJob(b, folder, inUTC(pulseJob)+c.tables))
+			benchChunk(b, loadJob(b, folder, benchJob("csv")+c.tables))
 		})
 	}
 }
@@ -113,7 +177,7 @@ func benchChunk(b *testing.B, j *job.Job) {
 	if err != nil {
 		b.Fatal(err)
 	}
-	s, err := readSurvey(b.Context(), j, inputs)
+	s, err := readSurvey(b.Context(), j, inputs, Options{})
 	if err != nil {
 		b.Fatal(err)
 	}

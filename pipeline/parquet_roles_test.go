@@ -85,7 +85,7 @@ func planError(t *testing.T, f files, jobText string) string {
 	t.Helper()
 	folder := t.TempDir()
 	f.write(t, folder)
-	p, err := MakePlan(t.Context(), loadJob(t, folder, jobText))
+	p, err := MakePlan(t.Context(), loadJob(t, folder, jobText), nil)
 	if err == nil {
 		err = p.Files[0].Err
 	}

@@ -51,7 +51,7 @@ func TestSameParquetBytesForAnyWorkers(t *testing.T) {
 // A plan knows the rows of a Parquet file without reading them.
 func TestPlanCountsParquetRows(t *testing.T) {
 	folder := mixedFleet(t)
-	p, err := MakePlan(t.Context(), mixedJob(t, folder, "true"))
+	p, err := MakePlan(t.Context(), mixedJob(t, folder, "true"), nil)
 	if err != nil {
 		t.Fatal(err)
 	}

@@ -74,14 +74,15 @@ type TrajectoryInfo struct {
 // Corner is the surface at a corner of the bounds.
 type Corner struct{ X, Y, Level float64 }
 
-// MakePlan looks ahead. It writes nothing. Errors are *CallErrors; files that
-// cannot be read are in the plan with their error.
-func MakePlan(ctx context.Context, j *job.Job) (*Plan, error) {
+// MakePlan looks ahead. It writes nothing, and tells the watcher (nil: nobody) of
+// surface points that it reads. Errors are *CallErrors; files that cannot be read are
+// in the plan with their error.
+func MakePlan(ctx context.Context, j *job.Job, watch Watcher) (*Plan, error) {
 	inputs, leftOut, err := findInputs(j)
 	if err != nil {
 		return nil, err
 	}
-	s, err := readSurvey(ctx, j, inputs)
+	s, err := readSurvey(ctx, j, inputs, Options{Watch: watch})
 	if err != nil {
 		return nil, err
 	}

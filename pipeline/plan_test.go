@@ -18,7 +18,7 @@ func planOf(t *testing.T, f files, jobText string) *Plan {
 	f.write(t, folder)
 	j := loadJob(t, folder, jobText)
 	before := snapshot(t, folder)
-	p, err := MakePlan(t.Context(), j)
+	p, err := MakePlan(t.Context(), j, nil)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -82,7 +82,7 @@ func TestPlanForetellsTheRun(t *testing.T) {
 	folder := fleet(t)
 	files{"raw/wrong.csv": "x,y\n1,2\n"}.write(t, folder)
 	j := fleetJob(t, folder, "true")
-	p, err := MakePlan(t.Context(), j)
+	p, err := MakePlan(t.Context(), j, nil)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -109,7 +109,7 @@ func TestPlanForetellsTheRun(t *testing.T) {
 	if !slices.Equal(p.Roles, want) {
 		t.Errorf("roles are %v, want %v", p.Roles, want)
 	}
-	if p, err = MakePlan(t.Context(), j); err != nil || !p.Files[0].Fresh {
+	if p, err = MakePlan(t.Context(), j, nil); err != nil || !p.Files[0].Fresh {
 		t.Errorf("after the run the first file is not fresh (%v)", err)
 	}
 }

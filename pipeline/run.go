@@ -5,7 +5,6 @@ import (
 	"errors"
 	"os"
 	"path/filepath"
-	"runtime"
 	"sync"
 	"time"
 
@@ -27,9 +26,9 @@ type Options struct {
 
 // Watcher is told how a run goes on. Its methods may be called at the same time.
 type Watcher interface {
-	Begin(files int, bytes int64)
-	Read(bytes int64)             // so many more bytes of input are done
-	End(file receipt.FileSummary) // one more file is done, fresh or failed
+	Begin(stage string, files int, bytes int64) // a stage of the run begins: "surface points" of all clouds where they are the surface, then "" (the files to do)
+	Read(bytes int64)                           // so many more bytes of the stage's input are done
+	End(file receipt.FileSummary)               // one more file is done, fresh or failed
 }
 
 // runner does the files of one run.
@@ -38,7 +37,6 @@ type runner struct {
 	engine *engine
 	redo   bool
 	known  history
-	watch  Watcher
 
 	mu      sync.Mutex
 	summary *receipt.Summary
@@ -60,22 +58,15 @@ func Run(ctx context.Context, j *job.Job, o Options) (*receipt.Summary, error) {
 	if err != nil {
 		return nil, err
 	}
-	s, err := readSurvey(ctx, j, all)
+	s, err := readSurvey(ctx, j, all, o)
 	if err != nil {
 		return nil, err
 	}
-	workers := o.Workers
-	if workers <= 0 {
-		workers = runtime.GOMAXPROCS(0)
-	}
-	r := &runner{survey: s, engine: newEngine(workers), redo: o.Redo, watch: o.Watch}
-	if r.watch == nil {
-		r.watch = silent{}
-	}
-	return r.run(ctx, inputs, leftOut, o.Shard, workers)
+	r := &runner{survey: s, engine: newEngine(s.workers), redo: o.Redo}
+	return r.run(ctx, inputs, leftOut, o.Shard)
 }
 
-func (r *runner) run(ctx context.Context, inputs []input, leftOut int, shard Shard, workers int) (*receipt.Summary, error) {
+func (r *runner) run(ctx context.Context, inputs []input, leftOut int, shard Shard) (*receipt.Summary, error) {
 	folder := r.job.Resolve(r.job.Output.Folder)
 	if err := makeFolders(folder, inputs); err != nil {
 		return nil, err
@@ -93,11 +84,11 @@ func (r *runner) run(ctx context.Context, inputs []input, leftOut int, shard Sha
 		return nil, err
 	}
 	r.summary = &receipt.Summary{
-		Run: r.survey.run, Program: Program, Title: r.job.Title, Host: host, Shard: shard.String(), Workers: workers, LeftOut: leftOut,
+		Run: r.survey.run, Program: Program, Title: r.job.Title, Host: host, Shard: shard.String(), Workers: r.workers, LeftOut: leftOut,
 		Started: time.Now().UTC().Truncate(time.Millisecond), Files: []receipt.FileSummary{}, Outcomes: map[string]int64{},
 	}
 	r.known = readHistory(folder)
-	r.all(ctx, inputs, workers)
+	r.all(ctx, inputs)
 	r.summary.Close()
 	return r.summary, errors.Join(ctx.Err(), r.writeSummary(folder, summaryName(shard)))
 }
@@ -115,14 +106,14 @@ func (r *runner) writeSummary(folder, name string) error {
 }
 
 // all does the files, as many at once as there are workers.
-func (r *runner) all(ctx context.Context, inputs []input, workers int) {
+func (r *runner) all(ctx context.Context, inputs []input) {
 	var bytes int64
 	for _, in := range inputs {
 		bytes += in.bytes
 	}
-	r.watch.Begin(len(inputs), bytes)
+	r.watch.Begin("", len(inputs), bytes)
 	var g errgroup.Group
-	g.SetLimit(workers)
+	g.SetLimit(r.workers)
 	for _, in := range inputs {
 		g.Go(func() error {
 			r.one(ctx, in)
@@ -187,6 +178,6 @@ func summaryName(s Shard) string {
 
 type silent struct{}
 
-func (silent) Begin(int, int64)        {}
-func (silent) Read(int64)              {}
-func (silent) End(receipt.FileSummary) {}
+func (silent) Begin(string, int, int64) {}
+func (silent) Read(int64)               {}
+func (silent) End(receipt.FileSummary)  {}

@@ -2,19 +2,13 @@ package pipeline
 
 import (
 	"context"
-	"crypto/sha256"
-	"encoding/binary"
-	"encoding/hex"
 	"errors"
-	"fmt"
 	"math"
 	"os"
 	"slices"
 
 	"bentray/correct"
 	"bentray/geo"
-	"bentray/io/cloud"
-	"bentray/pipeline/receipt"
 )
 
 // waterSurface says where the water is. It stands on one base, or on none where
@@ -188,19 +182,24 @@ func (s *survey) readGrid(ctx context.Context, clouds []input) error {
 		if err != nil {
 			return err
 		}
-		return s.makeGrid(x, y, z, t.utc)
+		var points geo.SurfacePoints
+		points.Add(x, y, z, t.utc)
+		return s.makeGrid(&points)
 	})
 }
 
-func (s *survey) makeGrid(x, y, z, utc []float64) (err error) {
+func (s *survey) makeGrid(points *geo.SurfacePoints) (err error) {
 	j := s.job.Surface.Grid
 	o := geo.GridOptions{Reach: j.Reach, Window: j.Window, Offset: j.Offset * s.height}
 	if j.Cell != nil {
 		o.Cell = *j.Cell * s.plan
 	}
-	s.surface.grid, err = geo.NewGrid(x, y, z, utc, o)
-	s.surface.source.area.add(x, y)
-	return err
+	if s.surface.grid, err = geo.NewGrid(points, o); err != nil {
+		return err
+	}
+	low, high := points.Bounds()
+	s.surface.source.area.add([]float64{low[0], high[0]}, []float64{low[1], high[1]})
+	return nil
 }
 
 func (s *survey) readGauges(path string) error {
@@ -232,97 +231,4 @@ func (s *survey) readSeparation(path string) error {
 	s.surface.source.separationZ.addFinite(z)
 	s.surface.separation, err = geo.NewSeparation(x, y, z)
 	return err
-}
-
-// gridOfClouds makes the grid from the clouds' own surface points: all files of
-// the job are read, whichever of them a run does, so that tiles agree at their
-// seams. The points take part in the fingerprint.
-func (s *survey) gridOfClouds(ctx context.Context, clouds []input) error {
-	var x, y, z, utc []float64
-	var unread []error
-	for _, in := range clouds {
-		if err := ctx.Err(); err != nil {
-			return err
-		}
-		points, err := s.surfacePoints(in)
-		if err != nil {
-			unread = append(unread, inFile(in.path, err)) // the file fails by itself when it is done
-			continue
-		}
-		x, y, z, utc = append(x, points[0]...), append(y, points[1]...), append(z, points[2]...), append(utc, points[3]...)
-	}
-	classes := s.job.Surface.Grid.Classes
-	switch {
-	case len(unread) == len(clouds):
-		return fmt.Errorf("%s: [surface.grid] classes: none of the clouds can be read: %w", s.job.Path, unread[0])
-	case len(x) == 0:
-		return fmt.Errorf("%s: [surface.grid] classes: no point of the clouds has a classification of %v", s.job.Path, classes)
-	case len(unread) > 0:
-		s.cautions = append(s.cautions, fmt.Sprintf("%d of %d clouds could not be read for their surface points", len(unread), len(clouds)))
-	}
-	s.auxiliary = append(s.auxiliary, receipt.Input{Use: "surface points", File: receipt.File{
-		Path: fmt.Sprintf("classification %v of %d clouds", classes, len(clouds)), Bytes: int64(32 * len(x)), SHA256: digest(x, y, z, utc),
-	}})
-	if err := s.makeGrid(x, y, z, utc); err != nil {
-		return fmt.Errorf("%s: [surface.grid] classes: %w", s.job.Path, err)
-	}
-	return nil
-}
-
-// digest is the SHA-256 of columns of numbers.
-func digest(columns ...[]float64) string {
-	h := sha256.New()
-	for _, column := range columns {
-		_ = binary.Write(h, binary.LittleEndian, column) // a hash does not fail
-	}
-	return hex.EncodeToString(h.Sum(nil))
-}
-
-// surfacePoints returns x, y, z (m) and UTC (NaN without times) of a cloud's
-// points of the surface classes.
-func (s *survey) surfacePoints(in input) (points [4][]float64, err error) {
-	file, err := s.openCloud(in, "")
-	if err != nil {
-		return points, err
-	}
-	defer file.Close()
-	columns := file.Columns()
-	r := &reading{}
-	if r.xyz, err = cloud.Coordinates(columns, s.job.Input.Columns); err != nil {
-		return points, err
-	}
-	for _, i := range r.xyz {
-		r.number(i)
-	}
-	class, err := r.need(s.job, columns, "classification", "[surface.grid] classes looks at it")
-	if err != nil {
-		return points, err
-	}
-	if err := r.findTime(s, columns); err != nil {
-		return points, err
-	}
-	if err := file.Begin(r.request, cloud.Layout{}, nil); err != nil {
-		return points, err
-	}
-	return points, s.gather(file, r, class, &points)
-}
-
-// gather appends a cloud's surface points.
-func (s *survey) gather(file cloud.Rewriter, r *reading, class int, points *[4][]float64) error {
-	return cloud.EachChunk(file, func(c *cloud.Chunk) {
-		s.toScale(c, r)
-		for i, v := range c.Numbers[class] {
-			if !slices.Contains(s.job.Surface.Grid.Classes, int(v)) || v != math.Trunc(v) {
-				continue
-			}
-			utc := math.NaN()
-			if r.time >= 0 {
-				utc = s.times.UTC(c.Numbers[r.time][i])
-			}
-			points[0] = append(points[0], c.Numbers[0][i]*s.plan)
-			points[1] = append(points[1], c.Numbers[1][i]*s.plan)
-			points[2] = append(points[2], c.Numbers[2][i]*s.height)
-			points[3] = append(points[3], utc)
-		}
-	})
 }

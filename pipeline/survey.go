@@ -7,6 +7,7 @@ import (
 	"io/fs"
 	"os"
 	"path/filepath"
+	"runtime"
 	"strings"
 
 	"github.com/paulmach/orb"
@@ -26,6 +27,8 @@ const Program = "bentray " + Version
 // survey is what all files of a job share. It does not change once it is read.
 type survey struct {
 	job          *job.Job
+	workers      int
+	watch        Watcher
 	settings     []byte
 	auxiliary    []receipt.Input
 	run          string        // fingerprint
@@ -42,11 +45,23 @@ type survey struct {
 	cautions    []string // that hold for every file
 }
 
+// newSurvey returns a survey of which nothing is read yet.
+func newSurvey(j *job.Job, o Options) *survey {
+	s := &survey{job: j, workers: o.Workers, watch: o.Watch}
+	if s.workers <= 0 {
+		s.workers = runtime.GOMAXPROCS(0)
+	}
+	if s.watch == nil {
+		s.watch = silent{}
+	}
+	return s
+}
+
 // readSurvey reads what the job names beside its clouds, and of the clouds
 // themselves their surface points where the surface is made of them. Its errors
 // are CallErrors: nothing can be done without these files.
-func readSurvey(ctx context.Context, j *job.Job, clouds []input) (*survey, error) {
-	s := &survey{job: j}
+func readSurvey(ctx context.Context, j *job.Job, clouds []input, o Options) (*survey, error) {
+	s := newSurvey(j, o)
 	if err := s.readUnits(); err != nil {
 		return nil, &CallError{err}
 	}

@@ -33,7 +33,9 @@ func (c *planCommand) Run(s *streams) error {
 	if err != nil {
 		return err
 	}
-	p, err := pipeline.MakePlan(s.ctx, j)
+	watch := newWatcher(s.errors, false, "")
+	p, err := pipeline.MakePlan(s.ctx, j, watch)
+	watch.close()
 	if err != nil {
 		return err
 	}

@@ -36,7 +36,9 @@ func (c *surfaceCommand) Run(s *streams) error {
 			return err
 		}
 	}
-	r, err := pipeline.DescribeSurface(s.ctx, j)
+	watch := newWatcher(s.errors, false, "")
+	r, err := pipeline.DescribeSurface(s.ctx, j, watch)
+	watch.close()
 	if err != nil {
 		return err
 	}

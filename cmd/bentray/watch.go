@@ -22,6 +22,7 @@ type watcher struct {
 
 	mu          sync.Mutex
 	lines       io.Writer // nil: no lines
+	stage       string
 	files, done int
 	bytes, read int64
 	stop        chan struct{}
@@ -61,16 +62,18 @@ func newBar(w io.Writer) *progressbar.ProgressBar {
 	)
 }
 
-// Begin is told the size of the work.
-func (w *watcher) Begin(files int, bytes int64) {
+// Begin is told that a stage of the work begins, and its size.
+func (w *watcher) Begin(stage string, files int, bytes int64) {
 	w.mu.Lock()
 	defer w.mu.Unlock()
-	w.files, w.bytes = files, bytes
+	first := w.files == 0
+	w.stage, w.files, w.bytes, w.done, w.read = stage, files, bytes, 0, 0
 	if w.bar != nil {
+		w.bar.Reset()
 		w.bar.ChangeMax64(max(bytes, 1))
-		w.describe()
+		w.bar.Describe(w.progress())
 	}
-	if w.lines != nil {
+	if w.lines != nil && first {
 		go w.everyInterval()
 	}
 }
@@ -91,7 +94,7 @@ func (w *watcher) End(f receipt.FileSummary) {
 	defer w.mu.Unlock()
 	w.done++
 	if w.bar != nil {
-		w.describe()
+		w.bar.Describe(w.progress())
 	}
 	if w.log == nil {
 		return
@@ -107,8 +110,12 @@ func (w *watcher) End(f receipt.FileSummary) {
 	w.log.Info(string(f.Status), attributes...)
 }
 
-func (w *watcher) describe() {
-	w.bar.Describe(fmt.Sprintf("%d of %s", w.done, plural(w.files, "file")))
+// progress says how far the stage has come.
+func (w *watcher) progress() string {
+	if w.stage != "" {
+		return fmt.Sprintf("%s of %s", w.stage, plural(w.files, "file"))
+	}
+	return fmt.Sprintf("%d of %s", w.done, plural(w.files, "file"))
 }
 
 func (w *watcher) everyInterval() {
@@ -120,7 +127,7 @@ func (w *watcher) everyInterval() {
 			return
 		case <-ticker.C:
 			w.mu.Lock()
-			fmt.Fprintf(w.lines, "%d of %s, %.0f %% of the input\n", w.done, plural(w.files, "file"), 100*float64(w.read)/float64(max(w.bytes, 1)))
+			fmt.Fprintf(w.lines, "%s, %.0f %% of the input\n", w.progress(), 100*float64(w.read)/float64(max(w.bytes, 1)))
 			w.mu.Unlock()
 		}
 	}
@@ -129,7 +136,7 @@ func (w *watcher) everyInterval() {
 // close ends the progress.
 func (w *watcher) close() {
 	close(w.stop)
-	if w.bar != nil {
+	if w.bar != nil && w.files > 0 {
 		_ = w.bar.Finish()
 	}
 }
