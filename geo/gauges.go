@@ -75,13 +75,24 @@ func (r *GaugeRecords) checkLengths() {
 	}
 }
 
+// checkRow returns what is wrong with the values of a row.
+func (r *GaugeRecords) checkRow(row int) error {
+	switch {
+	case !isFinite(r.UTC[row]):
+		return errors.New("time is empty or not finite, want a time in every record")
+	case !isFinite(r.Level[row]):
+		return errors.New("level is empty or not finite, want a level in every record")
+	}
+	return nil
+}
+
 // gauge returns the gauge at a site.
 func (r *GaugeRecords) gauge(s *site) (gauge, error) {
 	g := gauge{x: s.x, y: s.y}
 	var utc []float64
 	for _, row := range s.rows {
-		if !isFinite(r.UTC[row]) || !isFinite(r.Level[row]) {
-			return gauge{}, &RecordError{Index: row, Err: errors.New("a value is not finite, want a time and a level")}
+		if err := r.checkRow(row); err != nil {
+			return gauge{}, &RecordError{Index: row, Err: err}
 		}
 		if n := len(utc); n > 0 {
 			if err := checkRise(utc[n-1], r.UTC[row]); err != nil {
@@ -99,22 +110,20 @@ func (r *GaugeRecords) gauge(s *site) (gauge, error) {
 
 // Add adds the level of the water (m, in the cloud's heights) at each plan position
 // x, y (m) and time utc (s since 1970, POSIX) to level (m), which holds the surface
-// that the gauges lie over, or 0. level becomes NaN where there is none. It returns
-// how many points have their level from some of the gauges while others have none
-// at the time, so the caller can say so.
+// that the gauges lie over, or 0. level becomes NaN where there is none.
 //
 // A gauge's level is linear between its records and exact at them. It has none
 // before the first and after the last record, in a gap and where utc is NaN. Several
 // gauges are weighted by inverse distance (power 1, so linear on the line between
 // two); within 1 mm of a gauge that has a level, it is that gauge's alone. Those
 // without a level at the time take no part, which makes a step in the level at the
-// ends of their records and gaps. The slope between gauges, their difference over
+// ends of their records and gaps (Recording counts them). The slope between gauges, their difference over
 // their distance and rarely above 1e-5, is left out.
 //
 // The slices have one length (otherwise it panics); with a single gauge, x and y
 // are not looked at and may be nil. For a cloud without times, fill utc with one.
 // The cost is that of a look per gauge, for times in any order.
-func (g *Gauges) Add(level, x, y, utc []float64) (partial int) {
+func (g *Gauges) Add(level, x, y, utc []float64) {
 	if len(utc) != len(level) {
 		panic(errLengths)
 	}
@@ -122,23 +131,32 @@ func (g *Gauges) Add(level, x, y, utc []float64) (partial int) {
 		for i := range level {
 			level[i] += g.zero + g.gauges[0].at(utc[i], g.maxGap)
 		}
-		return 0
+		return
 	}
 	if len(x) != len(level) || len(y) != len(level) {
 		panic(errLengths)
 	}
 	for i := range level {
-		mean, used := g.mean(x[i], y[i], utc[i])
-		level[i] += g.zero + mean
-		if used > 0 && used < len(g.gauges) {
-			partial++
-		}
+		level[i] += g.zero + g.mean(x[i], y[i], utc[i])
 	}
-	return partial
 }
 
-// mean returns the weighted mean of the gauges' levels and how many have one.
-func (g *Gauges) mean(x, y, utc float64) (level float64, used int) {
+// Len returns how many gauges there are.
+func (g *Gauges) Len() int { return len(g.gauges) }
+
+// Recording returns how many of the gauges have a level at a time (s since 1970, POSIX).
+func (g *Gauges) Recording(utc float64) int {
+	n := 0
+	for k := range g.gauges {
+		if level := g.gauges[k].at(utc, g.maxGap); level == level {
+			n++
+		}
+	}
+	return n
+}
+
+// mean returns the weighted mean of the gauges' levels, NaN where none has one.
+func (g *Gauges) mean(x, y, utc float64) float64 {
 	at := math.NaN() // of the gauge that the point is at
 	sum, weights := 0.0, 0.0
 	for k := range g.gauges {
@@ -146,7 +164,6 @@ func (g *Gauges) mean(x, y, utc float64) (level float64, used int) {
 		if math.IsNaN(one) {
 			continue
 		}
-		used++
 		dx, dy := x-g.gauges[k].x, y-g.gauges[k].y
 		distance := math.Sqrt(dx*dx + dy*dy)
 		if distance < atPlace {
@@ -157,9 +174,9 @@ func (g *Gauges) mean(x, y, utc float64) (level float64, used int) {
 		weights += 1 / distance
 	}
 	if !math.IsNaN(at) {
-		return at, used
+		return at
 	}
-	return sum / weights, used
+	return sum / weights
 }
 
 // at returns the gauge's level at a time. The weight is taken from differences, so a

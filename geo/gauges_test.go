@@ -54,11 +54,12 @@ func TestGaugeByHand(t *testing.T) {
 		{"infinite", math.Inf(-1), none},
 	} {
 		level := []float64{0}
-		if partial := g.Add(level, nil, nil, []float64{tc.utc}); partial != 0 {
-			t.Errorf("%s: %d partial points of a single gauge", tc.name, partial)
-		}
+		g.Add(level, nil, nil, []float64{tc.utc})
 		if !same(level[0], tc.level) {
 			t.Errorf("%s: level %v, want %v", tc.name, level[0], tc.level)
+		}
+		if recording := g.Recording(tc.utc); (recording == 1) != (tc.level == tc.level) || recording > 1 {
+			t.Errorf("%s: %d gauges have a level of %v", tc.name, recording, tc.level)
 		}
 	}
 	level := []float64{5, none}
@@ -199,7 +200,7 @@ func TestGaugesPlain(t *testing.T) {
 	for range 5000 {
 		x, y, utc := 7e6+3000*rng.Float64(), 5e5+3000*rng.Float64(), 1.7e9-4000+60000*rng.Float64()
 		level, sum, weights, used := []float64{1}, 0.0, 0.0, 0
-		partial := g.Add(level, []float64{x}, []float64{y}, []float64{utc})
+		g.Add(level, []float64{x}, []float64{y}, []float64{utc})
 		for _, name := range names {
 			at, levels := series[name][0], series[name][1]
 			for k := 1; k < len(at); k++ {
@@ -214,8 +215,8 @@ func TestGaugesPlain(t *testing.T) {
 		if want := 1 - 2 + sum/weights; used == 0 != math.IsNaN(level[0]) || math.Abs(level[0]-want) > 1e-12 {
 			t.Fatalf("at %v %v %v: %v, want %v of %d gauges", x, y, utc, level[0], want, used)
 		}
-		if (partial == 1) != (used > 0 && used < len(names)) {
-			t.Fatalf("%d partial points with %d gauges of %d", partial, used, len(names))
+		if got := g.Recording(utc); got != used || g.Len() != len(names) {
+			t.Fatalf("at %v %d of %d gauges have a level, want %d of %d", utc, got, g.Len(), used, len(names))
 		}
 		switch used {
 		case 0:

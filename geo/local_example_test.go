@@ -19,10 +19,10 @@ func ExampleGauges_Add() {
 		return
 	}
 	level := make([]float64, 3)
-	partial := gauges.Add(level, []float64{512000, 512250, 512250}, []float64{7012000, 7012000, 7012000}, []float64{300, 300, 1200})
-	fmt.Printf("%.2f, of some gauges only: %d\n", level, partial)
+	gauges.Add(level, []float64{512000, 512250, 512250}, []float64{7012000, 7012000, 7012000}, []float64{300, 300, 1200})
+	fmt.Printf("%.2f, the last from %d gauge of %d\n", level, gauges.Recording(1200), gauges.Len())
 	// Output:
-	// [0.60 0.85 0.80], of some gauges only: 1
+	// [0.60 0.85 0.80], the last from 1 gauge of 2
 }
 
 func ExampleNewGauges() {

@@ -43,33 +43,51 @@ const maxCells = 1 << 20
 // copies what it needs. It takes time and memory for the edges, and for the cells
 // that each polygon covers.
 func NewPolygonIndex(polys []orb.Polygon) *PolygonIndex {
-	shapes := make([]*shape, len(polys))
+	all := make([]numbered, len(polys))
 	for k, poly := range polys {
-		shapes[k] = newShape(poly)
+		all[k] = numbered{newShape(poly), int32(k), planar.Area(poly)}
 	}
+	return newIndex(all)
+}
+
+// NewZoneIndex returns an index of zones, whose numbers Find gives in place of those
+// of polygons: of zones that overlap, that with the smallest area, which is the sum
+// over its polygons. So all parts of a zone win or lose together.
+func NewZoneIndex(zones []Zone) *PolygonIndex {
+	var all []numbered
+	for k, zone := range zones {
+		area := planar.Area(orb.MultiPolygon(zone.Polygons))
+		for _, poly := range zone.Polygons {
+			all = append(all, numbered{newShape(poly), int32(k), area})
+		}
+	}
+	return newIndex(all)
+}
+
+// numbered is a polygon with the number that stands for it and the area by which it
+// competes.
+type numbered struct {
+	*shape
+	number int32
+	area   float64
+}
+
+// newIndex returns an index of polygons, which it sorts by area; where areas are equal
+// they keep their order.
+func newIndex(all []numbered) *PolygonIndex {
 	idx := &PolygonIndex{}
-	idx.layRaster(shapes)
+	idx.layRaster(all)
 	b := burner{PolygonIndex: idx, closed: make([]bool, idx.cols.n*idx.rows.n)}
-	for _, k := range byArea(polys) {
-		b.burn(shapes[k], int32(k))
+	slices.SortStableFunc(all, func(a, b numbered) int { return cmp.Compare(a.area, b.area) })
+	for _, p := range all {
+		b.burn(p.shape, p.number)
 	}
 	idx.cells = newLists(b.entries, len(b.closed))
 	return idx
 }
 
-// byArea returns the numbers of the polygons, smallest area first, in their order
-// where areas are equal.
-func byArea(polys []orb.Polygon) []int {
-	order, area := make([]int, len(polys)), make([]float64, len(polys))
-	for k, poly := range polys {
-		order[k], area[k] = k, planar.Area(poly)
-	}
-	slices.SortStableFunc(order, func(a, b int) int { return cmp.Compare(area[a], area[b]) })
-	return order
-}
-
 // layRaster chooses the cells: about four for each edge, nearly square.
-func (idx *PolygonIndex) layRaster(shapes []*shape) {
+func (idx *PolygonIndex) layRaster(shapes []numbered) {
 	left, right, low, high := math.Inf(1), math.Inf(-1), math.Inf(1), math.Inf(-1)
 	count := 0
 	for _, s := range shapes {

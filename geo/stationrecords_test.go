@@ -25,7 +25,7 @@ func TestNewStationsRefuses(t *testing.T) {
 		want   string
 	}{
 		{"depth twice in a cast", func(r *StationRecords) { r.Depth[1] = 1 }, 1, `record 2: station "pier" has depth 1 m twice in one cast`},
-		{"time twice", func(r *StationRecords) { r.Depth = nil }, 1, `record 2: station "pier" has time 0 twice`},
+		{"time twice", func(r *StationRecords) { r.Depth = nil }, 1, `record 2: station "pier" has time 0 twice, want each time once, or a column depth where the rows are a cast`},
 		{"two records", func(r *StationRecords) { r.Depth, r.UTC = nil, nil }, 1, `station "pier" has two records`},
 		{"two records unnamed", func(r *StationRecords) { r.Depth, r.UTC, r.Name = nil, nil, nil }, 1, "station has two records, want one"},
 		{"some without depth", func(r *StationRecords) { r.Depth[4] = math.NaN() }, 4, "record 5: depth is not finite, want a depth in every record or no depths"},

@@ -154,10 +154,13 @@ func (r *StationRecords) repeat(s *site, row int) error {
 	case r.Depth != nil:
 		return fmt.Errorf("%s has depth %v m twice in one cast, want each depth once", s.label("station"), r.Depth[row])
 	case r.UTC != nil:
-		return fmt.Errorf("%s has time %s twice, want each time once", s.label("station"), decimal(r.UTC[row]))
+		return fmt.Errorf("%s has time %s twice, want each time once, or a column depth where the rows are a cast", s.label("station"), decimal(r.UTC[row]))
 	}
 	return fmt.Errorf("%s has two records, want one, or times or depths that tell them apart", s.label("station"))
 }
+
+// Len returns how many stations there are.
+func (s *Stations) Len() int { return len(s.stations) }
 
 // HasTimes tells whether the stations have times, so that Fill wants those of points.
 func (s *Stations) HasTimes() bool { return s.timed }

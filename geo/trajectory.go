@@ -8,7 +8,7 @@ import (
 	"strconv"
 )
 
-// RecordError is a fault in one record of a trajectory. Index counts the records
+// RecordError is a fault in one record of a file: of a trajectory, say. Index counts the records
 // from 0, so the caller can name the line of the file; the text counts from 1.
 type RecordError struct {
 	Index int

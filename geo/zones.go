@@ -31,7 +31,8 @@ type Zone struct {
 // It is an error, with the number of the feature (from 1), if a geometry is none
 // that ParsePolygons takes; if the name is missing, blank or that of another zone; if
 // a zone has no value, a temperature without a salinity or the reverse; if a value is
-// of another type, or a property differs from these only in letter case.
+// of another type; if a property differs from these only in letter case, or is a number
+// under a name that is one slip of the hand from that of a value which is not given.
 func ParseZones(data []byte) ([]Zone, error) {
 	doc, err := parseText(data)
 	if err != nil {
@@ -79,7 +80,7 @@ func parseZone(doc document) (zone Zone, err error) {
 	if err := json.Unmarshal(orNull(doc.Properties), &values); err != nil {
 		return Zone{}, fmt.Errorf("properties are %s, want an object", doc.Properties)
 	}
-	if err := values.checkCase(); err != nil {
+	if err := values.checkNames(); err != nil {
 		return Zone{}, err
 	}
 	if zone.Name, err = values.name(); err != nil {
@@ -124,16 +125,51 @@ type properties map[string]json.RawMessage
 // zoneKeys are the properties that a zone takes, the name first, then numbers.
 var zoneKeys = []string{"name", "temperature", "salinity", "level"}
 
-// checkCase returns an error if a property would be a zone's in other letters.
-func (p properties) checkCase() error {
+// checkNames returns an error if a property would be a zone's in other letters.
+func (p properties) checkNames() error {
 	for _, key := range slices.Sorted(maps.Keys(p)) {
 		for _, want := range zoneKeys {
-			if _, found := p[want]; !found && strings.EqualFold(key, want) {
+			_, found := p[want]
+			switch {
+			case found:
+			case strings.EqualFold(key, want):
 				return fmt.Errorf("property is %q, want it in the letters %q", key, want)
+			case isSlip(strings.ToLower(key), want) && isNumber(p[key]):
+				return fmt.Errorf("property is %q; did you mean %q?", key, want)
 			}
 		}
 	}
 	return nil
+}
+
+// isNumber tells whether a JSON value is a number.
+func isNumber(data json.RawMessage) bool {
+	var v any
+	_ = json.Unmarshal(data, &v) // it was read before
+	_, is := v.(float64)
+	return is
+}
+
+// isSlip tells whether a word is another one with one letter too few, too many or
+// wrong, or with two neighbours exchanged.
+func isSlip(written, word string) bool {
+	if len(written) > len(word) {
+		written, word = word, written
+	}
+	same := 0
+	for same < len(written) && written[same] == word[same] {
+		same++
+	}
+	rest, of := written[same:], word[same:]
+	switch {
+	case len(of) == 0:
+		return false
+	case len(of) > len(rest):
+		return rest == of[1:]
+	case rest[1:] == of[1:]:
+		return true
+	}
+	return len(of) > 1 && rest[0] == of[1] && rest[1] == of[0] && rest[2:] == of[2:]
 }
 
 // name returns the zone's name.

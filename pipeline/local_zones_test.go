@@ -165,7 +165,7 @@ func TestOverlappingZones(t *testing.T) {
 	if want := []string{"0.5000", "0.2500", "0.0000"}; !slices.Equal(got, want) {
 		t.Errorf("levels are %q, want %q", got, want)
 	}
-	if p := planOf(t, f, job); !slices.Equal(p.Cautions, []string{`zones "Pool" and "Bay" overlap: the smaller polygon wins`}) {
+	if p := planOf(t, f, job); !slices.Equal(p.Cautions, []string{`zones "Pool" and "Bay" overlap: the one with the smaller area wins`}) {
 		t.Errorf("cautions are %q, want one on Pool and Bay", p.Cautions)
 	}
 }

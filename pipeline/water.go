@@ -31,10 +31,9 @@ const (
 
 // zones are waters with values of their own.
 type zones struct {
-	list    []geo.Zone
-	index   *geo.PolygonIndex // nil: no zones; in the cloud's own units
-	polygon []int32           // zone of each polygon of the index
-	bound   orb.Bound
+	list  []geo.Zone
+	index *geo.PolygonIndex // nil: no zones; in the cloud's own units
+	bound orb.Bound
 }
 
 // isConstant tells that all points have the job's own water.
@@ -55,16 +54,13 @@ func (s *survey) readZones(path string) error {
 	if s.zones.list, err = geo.ParseZones(data); err != nil {
 		return err
 	}
-	var polygons []orb.Polygon
-	for i, z := range s.zones.list {
-		for _, polygon := range z.Polygons {
-			polygons = append(polygons, polygon)
-			s.zones.polygon = append(s.zones.polygon, int32(i))
-		}
+	var polygons orb.MultiPolygon
+	for _, z := range s.zones.list {
+		polygons = append(polygons, z.Polygons...)
 	}
-	s.zones.index, s.zones.bound = geo.NewPolygonIndex(polygons), orb.MultiPolygon(polygons).Bound()
+	s.zones.index, s.zones.bound = geo.NewZoneIndex(s.zones.list), polygons.Bound()
 	for _, pair := range geo.Overlaps(s.zones.list) {
-		s.cautions = append(s.cautions, fmt.Sprintf("zones %q and %q overlap: the smaller polygon wins", s.zones.list[pair[0]].Name, s.zones.list[pair[1]].Name))
+		s.cautions = append(s.cautions, fmt.Sprintf("zones %q and %q overlap: the one with the smaller area wins", s.zones.list[pair[0]].Name, s.zones.list[pair[1]].Name))
 	}
 	return nil
 }
@@ -126,11 +122,6 @@ func (s *survey) fillZones(zone []int32, x, y []float64) {
 		return
 	}
 	s.zones.index.Find(zone, x, y)
-	for i, polygon := range zone {
-		if polygon >= 0 {
-			zone[i] = s.zones.polygon[polygon]
-		}
-	}
 }
 
 // fillWater gives each point its temperature and salinity, NaN where there is
