@@ -76,12 +76,28 @@ func checkLength(c cloud.Column) error {
 // since 1970 whatever the scale of the job's numbers.
 func isTimestamp(c cloud.Column) bool { return strings.Contains(c.Type, "TIMESTAMP") }
 
-// cautionsOf returns what the file itself gives cause to say, once it has begun.
-func cautionsOf(file cloud.Rewriter) []string {
+// isLocalTime tells a column of dates and times of which the file does not say that
+// they are UTC.
+func isLocalTime(c cloud.Column) bool { return isTimestamp(c) && strings.HasSuffix(c.Type, " local") }
+
+// localTimeCaution says what is made of local times where they are read at all.
+func localTimeCaution(c cloud.Column) string {
+	return fmt.Sprintf("times in column %q are stored without a time zone (%s) and taken for UTC; store them as adjusted to UTC", c.Name, c.Type)
+}
+
+// cautionsOf returns what the file itself and its columns give cause to say, once it
+// has begun.
+func cautionsOf(file cloud.Rewriter, r *reading) []string {
+	var cautions []string
 	if f, ok := file.(*parquetfile.File); ok {
-		return f.Cautions()
+		cautions = append(cautions, f.Cautions()...)
 	}
-	return nil
+	if r.time >= 0 {
+		if c := file.Columns()[r.request.Numbers[r.time]]; isLocalTime(c) {
+			cautions = append(cautions, localTimeCaution(c))
+		}
+	}
+	return cautions
 }
 
 // rowsOf returns how many rows a file says it has, where its format says so.

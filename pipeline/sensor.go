@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 	"fmt"
+	"path/filepath"
 	"slices"
 	"time"
 
@@ -73,6 +74,9 @@ func (s *survey) readTrajectory(sn *sensor, path string) error {
 	}
 	if i, _ := cloud.Find(f.Columns(), "gps_time"); isTimestamp(f.Columns()[i]) {
 		s.fromUTC(columns[0])
+		if isLocalTime(f.Columns()[i]) {
+			s.cautions = append(s.cautions, filepath.ToSlash(sn.Rays.Trajectory)+": "+localTimeCaution(f.Columns()[i]))
+		}
 	}
 	sn.info = s.describe(columns)
 	scale(columns[1], s.plan)

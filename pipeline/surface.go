@@ -121,9 +121,9 @@ func (s *survey) readOverSurface(ctx context.Context) error {
 	return errors.Join(faults...)
 }
 
-// readXYZ reads the columns x, y, z of a table, in metres.
-func (s *survey) readXYZ(path string) (t *sheet, x, y, z []float64, err error) {
-	t, err = s.readSheet(path, sheetColumns{needed: []string{"x", "y", "z"}, optional: []string{timeColumn}})
+// readXYZ reads the columns x, y, z of a table, in metres, and others that may be there.
+func (s *survey) readXYZ(path string, optional ...string) (t *sheet, x, y, z []float64, err error) {
+	t, err = s.readSheet(path, sheetColumns{needed: []string{"x", "y", "z"}, optional: optional})
 	if err != nil {
 		return nil, nil, nil, nil, err
 	}
@@ -178,7 +178,7 @@ func (s *survey) readGrid(ctx context.Context, clouds []input) error {
 		return s.gridOfClouds(ctx, clouds)
 	}
 	return s.auxiliaryFile(ctx, "surface points", "[surface.grid] points", s.job.Surface.Grid.Points, func(path string) error {
-		t, x, y, z, err := s.readXYZ(path)
+		t, x, y, z, err := s.readXYZ(path, timeColumn)
 		if err != nil {
 			return err
 		}

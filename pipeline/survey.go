@@ -146,7 +146,7 @@ func (s *survey) auxiliaryFile(ctx context.Context, use, key, name string, read 
 	}
 	s.auxiliary = append(s.auxiliary, receipt.Input{Use: use, File: receipt.File{Path: filepath.ToSlash(name), Bytes: bytes, SHA256: sum}})
 	if err := read(path); err != nil {
-		return inFile(path, err)
+		return inFile(path, s.atLine(path, err))
 	}
 	return unchanged(path, before)
 }

@@ -24,7 +24,8 @@
 //
 // Numbers are read from flat DOUBLE, FLOAT, INT32, INT64 (signed and unsigned),
 // BOOLEAN (0 and 1) and TIMESTAMP columns. A TIMESTAMP becomes seconds since
-// 1970-01-01, UTC; one without a time zone is taken for UTC. Null becomes NaN.
+// 1970-01-01, UTC; one that is not adjusted to UTC ("local" in its type's name) is
+// read as if it were. Null becomes NaN.
 // INT64 beyond 2^53 is rounded to the nearest float64. Texts are read from flat
 // BYTE_ARRAY columns; null becomes an empty text. Encodings: PLAIN, dictionary,
 // RLE, DELTA_BINARY_PACKED, BYTE_STREAM_SPLIT, DELTA_LENGTH_BYTE_ARRAY and

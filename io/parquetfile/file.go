@@ -39,9 +39,9 @@ type File struct {
 	numbers []source
 	texts   []*cursor
 	checks  []func([]byte) error // by texts
-	group   int   // the group of the next piece
-	done    int64 // rows of it that were handed out
-	before  int64 // rows of the groups before it
+	group   int                  // the group of the next piece
+	done    int64                // rows of it that were handed out
+	before  int64                // rows of the groups before it
 
 	inflater inflater
 	packed   []byte // compressed page, while it is opened
@@ -103,7 +103,7 @@ func (f *File) readFooter() (err error) {
 // Columns lists the stored columns; those inside a group go by their path with
 // dots. Type is the physical type and what it stands for ("DOUBLE",
 // "INT64 TIMESTAMP_MICROS"), with "nested " before it where the column is not
-// flat.
+// flat, and " local" behind it where times are not adjusted to UTC.
 func (f *File) Columns() []cloud.Column { return f.columns }
 
 // Rows returns the number of rows of the file.

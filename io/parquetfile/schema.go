@@ -34,6 +34,7 @@ var kinds = map[string]kind{
 	"INT32 UINT_8": uint32s, "INT32 UINT_16": uint32s, "INT32 UINT_32": uint32s,
 	"INT64": int64s, "INT64 INT_64": int64s, "INT64 UINT_64": uint64s,
 	"INT64 TIMESTAMP_MILLIS": millis, "INT64 TIMESTAMP_MICROS": micros, "INT64 TIMESTAMP_NANOS": nanos,
+	"INT64 TIMESTAMP_MILLIS local": millis, "INT64 TIMESTAMP_MICROS local": micros, "INT64 TIMESTAMP_NANOS local": nanos,
 	"BYTE_ARRAY": texts, "BYTE_ARRAY UTF8": texts, "BYTE_ARRAY ENUM": texts, "BYTE_ARRAY JSON": texts,
 }
 

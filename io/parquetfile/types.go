@@ -34,7 +34,7 @@ func annotation(e *parquet.SchemaElement) string {
 	case l.INTEGER != nil:
 		return integerName(l.INTEGER)
 	case l.TIMESTAMP != nil:
-		return "TIMESTAMP_" + unitName(l.TIMESTAMP.Unit)
+		return timestampName(l.TIMESTAMP)
 	case l.TIME != nil:
 		return "TIME_" + unitName(l.TIME.Unit)
 	}
@@ -63,6 +63,15 @@ func otherAnnotation(l *parquet.LogicalType) string {
 		return "UUID"
 	}
 	return unknownType
+}
+
+// timestampName ends in "local" where the times are those of no zone in particular.
+func timestampName(t *parquet.TimestampType) string {
+	name := "TIMESTAMP_" + unitName(t.Unit)
+	if !t.IsAdjustedToUTC {
+		name += " local"
+	}
+	return name
 }
 
 func integerName(t *parquet.IntType) string {

@@ -18,8 +18,8 @@ func logical(l *parquet.LogicalType) func(*parquet.SchemaElement) {
 	return func(e *parquet.SchemaElement) { e.LogicalType = l }
 }
 
-func timestamp(u *parquet.TimeUnit) func(*parquet.SchemaElement) {
-	return logical(&parquet.LogicalType{TIMESTAMP: &parquet.TimestampType{Unit: u}})
+func timestamp(u *parquet.TimeUnit, utc bool) func(*parquet.SchemaElement) {
+	return logical(&parquet.LogicalType{TIMESTAMP: &parquet.TimestampType{Unit: u, IsAdjustedToUTC: utc}})
 }
 
 // TestNumbersOf reads one value of each type that stands for a number. The
@@ -48,8 +48,9 @@ func TestNumbersOf(t *testing.T) {
 		{"unsigned 64 bits", i64, converted(parquet.ConvertedType_UINT_64), int64(-1), 18446744073709551615, "INT64 UINT_64"},
 		{"milliseconds", i64, converted(parquet.ConvertedType_TIMESTAMP_MILLIS), int64(newYear2020*1000 + 250), newYear2020 + 0.25, "INT64 TIMESTAMP_MILLIS"},
 		{"microseconds", i64, converted(parquet.ConvertedType_TIMESTAMP_MICROS), int64(newYear2020*1000000 + 125000), newYear2020 + 0.125, "INT64 TIMESTAMP_MICROS"},
-		{"before 1970", i64, timestamp(&parquet.TimeUnit{MICROS: parquet.NewMicroSeconds()}), int64(-1500000), -1.5, "INT64 TIMESTAMP_MICROS"},
-		{"nanoseconds beyond 2^53", i64, timestamp(&parquet.TimeUnit{NANOS: parquet.NewNanoSeconds()}), int64(newYear2020*1000000000 + 500000000), newYear2020 + 0.5, "INT64 TIMESTAMP_NANOS"},
+		{"before 1970", i64, timestamp(&parquet.TimeUnit{MICROS: parquet.NewMicroSeconds()}, true), int64(-1500000), -1.5, "INT64 TIMESTAMP_MICROS"},
+		{"of no time zone", i64, timestamp(&parquet.TimeUnit{MILLIS: parquet.NewMilliSeconds()}, false), int64(newYear2020 * 1000), newYear2020, "INT64 TIMESTAMP_MILLIS local"},
+		{"nanoseconds beyond 2^53", i64, timestamp(&parquet.TimeUnit{NANOS: parquet.NewNanoSeconds()}, true), int64(newYear2020*1000000000 + 500000000), newYear2020 + 0.5, "INT64 TIMESTAMP_NANOS"},
 		{"true", parquet.Type_BOOLEAN, nil, true, 1, "BOOLEAN"},
 	}
 	for _, c := range cases {
