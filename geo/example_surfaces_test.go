@@ -42,7 +42,7 @@ func ExampleNewProfile() {
 	}
 	// Output:
 	// level 11.95 m, fall 0.0010
-	// level 11.71 m, fall 0.0020
+	// level 11.70 m, fall 0.0020
 	// level NaN m, fall NaN
 }
 

@@ -1,44 +1,21 @@
 package geo
 
-import "math"
-
-// poolSigmas is how many sigmas the levels of two neighbouring blocks must differ by
-// to stay apart.
-const poolSigmas = 3
-
-// block is a run of level points that share one level.
-type block struct{ weight, chainage, level float64 } // weighted means, m
-
-// join adds another block.
-func (b *block) join(o block) {
-	sum := b.weight + o.weight
-	b.chainage += (o.chainage - b.chainage) * (o.weight / sum)
-	b.level += (o.level - b.level) * (o.weight / sum)
-	b.weight = sum
-}
-
-// isApart tells whether o, the next block along the line, lies below b beyond what
-// errors of sigma (m) explain, and further along the line.
-func (b *block) isApart(o block, sigma float64) bool {
-	return o.chainage > b.chainage && b.level-o.level > poolSigmas*sigma*math.Sqrt(1/b.weight+1/o.weight)
-}
-
 // poolDown appends to blocks the weighted regression of the levels that falls along
 // the line, by pooling adjacent violators (Ayer and others 1955): a point joins the
-// block before as long as it does not lie clearly below it. With sigma 0 it is the
-// least-squares regression; a sigma above joins blocks whose difference the errors
-// explain, which without it would stand as steps a few centimetres long (compare
-// Schell and Singh 1997). Points without weight are left out.
-func poolDown(blocks []block, chainage, level, weight []float64, sigma float64) []block {
+// block before unless it lies below it and further along the line. Points without
+// weight are left out.
+func poolDown(blocks []block, chainage, level, weight []float64) []block {
 	for i, w := range weight {
 		if w == 0 {
 			continue
 		}
-		b := block{weight: w, chainage: chainage[i], level: level[i]}
-		for len(blocks) > 0 && !blocks[len(blocks)-1].isApart(b, sigma) {
+		b := newBlock(chainage[i], level[i], w)
+		for len(blocks) > 0 {
 			last := blocks[len(blocks)-1]
-			last.join(b)
-			b, blocks = last, blocks[:len(blocks)-1]
+			if b.first > last.last && b.level < last.level {
+				break
+			}
+			b, blocks = last.joined(b), blocks[:len(blocks)-1]
 		}
 		blocks = append(blocks, b)
 	}

@@ -24,7 +24,7 @@ func TestPoolDown(t *testing.T) {
 	rng := newRand(t, 101)
 	for n := range 34 {
 		chainage, level, weight := levelsIn(rng, n)
-		blocks := poolDown(nil, chainage, level, weight, 0)
+		blocks := poolDown(nil, chainage, level, weight)
 		for i := range n {
 			want := math.Inf(1)
 			for a := 0; a <= i; a++ {
@@ -53,26 +53,10 @@ func TestPoolDown(t *testing.T) {
 	}
 }
 
-// TestPoolDownSigma: by hand, 3 sigma of the difference of two single points is
-// 0.0424 m for 1 cm; two more make it less.
-func TestPoolDownSigma(t *testing.T) {
-	at, ones := []float64{0, 10, 20, 30}, []float64{1, 1, 1, 1}
-	for _, tc := range []struct {
-		level []float64
-		want  int
-	}{
-		{[]float64{1, 0.96}, 1},
-		{[]float64{1, 0.957}, 2},
-		{[]float64{1, 1, 0.965, 0.965}, 1}, // the third joins the first two
-		{[]float64{1, 1, 0.96, 0.96}, 2},   // 0.0367 for one against two
-	} {
-		n := len(tc.level)
-		if got := poolDown(nil, at[:n], tc.level, ones[:n], 0.01); len(got) != tc.want {
-			t.Errorf("%v: %d blocks, want %d", tc.level, len(got), tc.want)
-		}
-	}
-	same := []float64{5, 5}
-	if got := poolDown(nil, same, []float64{1, 0}, ones[:2], 0); len(got) != 1 || got[0].level != 0.5 {
+// TestPoolDownTies: two levels at one chainage are one, and what has no weight is not there.
+func TestPoolDownTies(t *testing.T) {
+	got := poolDown(nil, []float64{5, 5, 7}, []float64{1, 0, -3}, []float64{1, 1, 0})
+	if len(got) != 1 || got[0].level != 0.5 || got[0].count != 2 {
 		t.Errorf("two levels at one chainage: %v, want their mean", got)
 	}
 }

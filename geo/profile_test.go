@@ -48,7 +48,8 @@ func (p *Profile) ask(x, y float64) (level, slopeX, slopeY float64) {
 }
 
 // TestProfileRiver compares with the river's truth, at positions found by looking at
-// all segments; positions lie between the first and last level point.
+// all segments; positions lie between the first and last level point. The profile's
+// straight reaches follow the curve to what the noise hides, 1 mm at least.
 func TestProfileRiver(t *testing.T) {
 	lineX, lineY := winding(400, 1500)
 	for _, tc := range []struct {
@@ -58,11 +59,11 @@ func TestProfileRiver(t *testing.T) {
 		level, slope       float64 // greatest rms error
 		asideLow, asideTop int
 	}{
-		{"no noise", 300, 0, 0, 1e-4, 1e-5, 0, 0},
+		{"no noise", 300, 0, 0, 1e-3, 2.5e-4, 0, 0},
 		{"1 cm", 300, 0.01, 0, 0.006, 4e-4, 0, 3},
 		{"4 mm and 12 % blunders", 400, 0.004, 0.12, 0.004, 5e-4, 30, 65},
-		{"2 cm and 15 %", 2500, 0.02, 0.15, 0.006, 2e-4, 300, 400},
-		{"2 cm and 15 %, few points", 200, 0.02, 0.15, 0.015, 4e-4, 20, 40},
+		{"2 cm and 15 %", 2500, 0.02, 0.15, 0.006, 3e-4, 300, 400},
+		{"2 cm and 15 %, few points", 200, 0.02, 0.15, 0.015, 5e-4, 20, 40},
 	} {
 		t.Run(tc.name, func(t *testing.T) {
 			rng := newRand(t, 91)
@@ -76,7 +77,7 @@ func TestProfileRiver(t *testing.T) {
 			for count := 0; count < n; {
 				px, py := 512000+1500*rng.Float64(), 7012000+60*(rng.Float64()-0.5)
 				s, _, seg := footOf(lineX, lineY, px, py)
-				if s < p.first || s > p.last {
+				if s < p.fit.First || s > p.fit.Last {
 					continue
 				}
 				count++
@@ -86,7 +87,7 @@ func TestProfileRiver(t *testing.T) {
 				level += (l - riverLevel(s)) * (l - riverLevel(s)) / n
 				slope += (dx*dx + dy*dy) / n
 			}
-			if f := p.Fit(); !f.Falling || f.Beyond != 0 || f.SetAside < tc.asideLow || f.SetAside > tc.asideTop || f.Sigma > 1.4*tc.noise+1e-6 {
+			if f := p.Fit(); !f.Falling || f.Beyond != 0 || f.SetAside < tc.asideLow || f.SetAside > tc.asideTop || f.Sigma > 1.4*tc.noise+scaleFloor {
 				t.Errorf("falling %v, beyond %d, set aside %d, sigma %v", f.Falling, f.Beyond, f.SetAside, f.Sigma)
 			}
 			if e, s := math.Sqrt(level), math.Sqrt(slope); e > tc.level || s > tc.slope {
@@ -96,29 +97,34 @@ func TestProfileRiver(t *testing.T) {
 	}
 }
 
-// TestProfileSigma compares the stated errors with those found over many surveys.
+// TestProfileSigma compares the stated errors with those found over many surveys: they
+// are right where the river falls evenly, and half of the true ones where its fall
+// changes all the way, since they do not know of what is not straight.
 func TestProfileSigma(t *testing.T) {
-	rng := newRand(t, 92)
-	lineX, lineY := winding(60, 1500)
-	sum, count := 0.0, 0.0
-	for range 40 {
-		x, y, z := levelPoints(rng, lineX, lineY, 200, 0.01, 0)
-		p, err := NewProfile(lineX, lineY, x, y, z, 100)
-		if err != nil {
-			t.Fatal(err)
+	for _, tc := range []struct {
+		name      string
+		level     func(s float64) float64
+		low, high float64
+	}{
+		{"even", straight(0.001), 0.8, 1.2},
+		{"changing", riverLevel, 0.8, 2.2},
+	} {
+		rng := newRand(t, 92)
+		var off []float64
+		for range 40 {
+			c := course{long: 1500, n: 200, noise: 0.01, level: tc.level}
+			along, z, _ := c.survey(rng, 0)
+			p := profileAlong(t, c.long, along, z, false)
+			for at := 100.0; at < 1400; at += 100 {
+				level, _, _ := p.ask(at, 0)
+				var sigma [1]float64
+				p.FillSigma(sigma[:], []float64{at}, []float64{0})
+				off = append(off, (level-tc.level(at))/sigma[0])
+			}
 		}
-		for at := 100.0; at < 1400; at += 100 {
-			px, py := 512000+at, 7012000+60*math.Sin(at/90)
-			s, _, _ := footOf(lineX, lineY, px, py)
-			level, _, _ := p.ask(px, py)
-			var sigma [1]float64
-			p.FillSigma(sigma[:], []float64{px}, []float64{py})
-			e := (level - riverLevel(s)) / sigma[0]
-			sum, count = sum+e*e, count+1
+		if r := rms(off); r < tc.low || r > tc.high {
+			t.Errorf("%s: rms error is %.2f of its sigma, want %g to %g", tc.name, r, tc.low, tc.high)
 		}
-	}
-	if r := math.Sqrt(sum / count); r < 0.8 || r > 1.5 {
-		t.Errorf("rms error is %.2f of its sigma, want about 1", r)
 	}
 }
 
@@ -144,15 +150,15 @@ func TestProfileByHand(t *testing.T) {
 			{"off the line", 25, -30, 9.75, -0.01, 0},
 			{"just farther than reach", 25, -30.001, none, none, none},
 			{"second part", 110, 75, 7.5, 0, -0.02},
-			{"before its start, within reach", -18, 24, 10, -0.01, 0},
+			{"before its start, within reach", -18, 24, 10, 0, 0},
 			{"before its start, farther", -18.01, 24, none, none, none},
-			{"after its end", 100, 130, 7, 0, -0.02},
+			{"after its end", 100, 130, 7, 0, 0},
 			{"after its end, farther", 100, 130.01, none, none, none},
 			{"NaN", none, 5, none, none, none},
 			{"infinite", 5, math.Inf(-1), none, none, none},
 		} {
 			level, sx, sy := p.ask(tc.x, tc.y)
-			if !near(level, tc.level, 1e-12) || !near(sx, tc.sx, 1e-3) || !near(sy, tc.sy, 1e-3) {
+			if !near(level, tc.level, 1e-12) || !near(sx, tc.sx, 1e-12) || !near(sy, tc.sy, 1e-12) {
 				t.Errorf("%s (rising %v): %v %v %v, want %v %v %v", tc.name, up, level, sx, sy, tc.level, tc.sx, tc.sy)
 			}
 			var sigma [1]float64
@@ -162,7 +168,7 @@ func TestProfileByHand(t *testing.T) {
 			}
 		}
 		f := p.Fit()
-		if f.Falling == up || f.Beyond != 1 || f.SetAside != 0 || f.Knots != 5 || !math.IsNaN(f.Residuals[6]) || !math.IsNaN(f.Chainage[6]) {
+		if f.Falling == up || f.Beyond != 1 || f.SetAside != 0 || f.Knots != 6 || !math.IsNaN(f.Residuals[6]) || !math.IsNaN(f.Chainage[6]) {
 			t.Errorf("fit %+v", f)
 		}
 		for i, r := range f.Residuals[:6] {
