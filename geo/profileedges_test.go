@@ -79,8 +79,15 @@ func TestProfileEnds(t *testing.T) {
 	}
 	none := math.NaN()
 	for _, tc := range []struct{ x, level, slope float64 }{
-		{4.9, none, none}, {5, 9.95, 0}, {49.9, 9.95, 0}, {50.1, 9.9499, -0.001}, {500, 9.5, -0.001},
-		{949.9, 9.0501, -0.001}, {950.1, 9.05, 0}, {995, 9.05, 0}, {995.1, none, none},
+		{4.9, none, none},
+		{5, 9.95, 0},
+		{49.9, 9.95, 0},
+		{50.1, 9.9499, -0.001},
+		{500, 9.5, -0.001},
+		{949.9, 9.0501, -0.001},
+		{950.1, 9.05, 0},
+		{995, 9.05, 0},
+		{995.1, none, none},
 	} {
 		if level, slope, _ := p.ask(tc.x, 10); !near(level, tc.level, 1e-9) || !near(slope, tc.slope, 1e-9) {
 			t.Errorf("at %v: level %v, slope %v, want %v, %v", tc.x, level, slope, tc.level, tc.slope)

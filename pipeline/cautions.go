@@ -44,6 +44,15 @@ func (t *tally) geometryCautions(s *survey) []string {
 	return cautions
 }
 
+// profileCautions looks at how the level points agree with their profile.
+func (s *survey) profileCautions() {
+	f := s.surface.profile.Fit()
+	if f.IsUneven() {
+		s.cautions = append(s.cautions, fmt.Sprintf("the level points are %.3f %s (rms) off the profile, but scatter by %.3f from one to the next: their levels do not keep falling along the centreline; look at them with bentray surface",
+			f.Spread/s.height, s.job.Input.VerticalUnit, f.Scatter/s.height))
+	}
+}
+
 // levelCautions looks at one constant level; extent is in metres, level and
 // heights are in the job's unit.
 func (s *survey) levelCautions(level, extent float64, z span) (cautions []string) {

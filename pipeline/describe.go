@@ -61,7 +61,7 @@ type ProfileReport struct {
 	Reach       float64
 	Length      float64 // of the centreline
 	First, Last CurvePoint
-	Curve       []CurvePoint // from the first to the last level point
+	Curve       []CurvePoint // from the first to the last level point that counts
 }
 
 // CurvePoint is a level along a centreline.

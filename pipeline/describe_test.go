@@ -182,6 +182,54 @@ func TestDescribeProfile(t *testing.T) {
 	}
 }
 
+// levelsIn returns a file of levels along the x axis, each 5 from 0 to 1000.
+func levelsIn(level func(x float64) float64) string {
+	text := "x,y,z\n"
+	for x := 0.0; x <= 1000; x += 5 {
+		text += fmt.Sprintf("%s,%s,%s\n", exact(x), exact(3), exact(level(x)))
+	}
+	return text
+}
+
+// A weir in feet between two pools, and a wrong level at either end: the curve runs from
+// the first to the last that counts, level but for the weir, and nothing is cautioned.
+// Where levels rise and fall instead, a caution says by how much, in feet.
+func TestDescribeWeir(t *testing.T) {
+	const tables = "[surface.profile]\ncentreline = \"line.geojson\"\nlevels = \"levels.csv\"\nreach = 50\n"
+	feet := strings.Replace(metres, "[input]", "[input]\nunit = \"ft\"", 1)
+	const line = `{"type":"LineString","coordinates":[[0,0],[1000,0]]}`
+	weir := func(x float64) float64 {
+		switch {
+		case x == 0:
+			return 3
+		case x == 1000:
+			return 30
+		case x <= 500:
+			return 20
+		}
+		return 12
+	}
+	r := described(t, feet+tables, files{"line.geojson": line, "levels.csv": levelsIn(weir)})
+	p := r.Profile
+	if p.Fit.SetAside != 2 || len(r.Cautions) != 0 {
+		t.Errorf("%d set aside, cautions %q, want 2 and none", p.Fit.SetAside, r.Cautions)
+	}
+	closeTo(t, "first", p.First.Chainage, 5, 1e-9)
+	closeTo(t, "last", p.Last.Chainage, 995, 1e-9)
+	for _, at := range p.Curve {
+		switch {
+		case at.Chainage <= 500:
+			closeTo(t, "upper pool", at.Level, 20, 1e-3)
+		case at.Chainage >= 505:
+			closeTo(t, "lower pool", at.Level, 12, 1e-3)
+		}
+	}
+	r = described(t, feet+tables, files{"line.geojson": line, "levels.csv": levelsIn(func(x float64) float64 { return 20 + math.Sin(x/60) })})
+	if len(r.Cautions) != 1 || !strings.Contains(r.Cautions[0], "ft (rms) off the profile") {
+		t.Errorf("cautions are %q, want one of levels that rise and fall", r.Cautions)
+	}
+}
+
 // Zones, two gauges and a separation over a level: each figure by hand, and the map
 // at the record in the middle of the time, where one of the gauges is in a gap.
 func TestDescribeWhatLiesOverALevel(t *testing.T) {

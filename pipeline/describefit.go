@@ -76,7 +76,7 @@ func (s *survey) describeProfile() *ProfileReport {
 	f := p.Fit()
 	r := &ProfileReport{
 		Fit: s.describeFit(f.Chainage, f.Residuals, f.IsAside, f.Sigma), Beyond: f.Beyond, Falling: f.Falling, Knots: f.Knots,
-		Reach: s.job.Surface.Profile.Reach, Curve: s.curve(p, f.Chainage),
+		Reach: s.job.Surface.Profile.Reach, Curve: s.curve(p, f.First, f.Last),
 	}
 	r.First, r.Last = r.Curve[0], r.Curve[len(r.Curve)-1]
 	along := chainages(s.surface.source.lineX, s.surface.source.lineY)
@@ -84,13 +84,11 @@ func (s *survey) describeProfile() *ProfileReport {
 	return r
 }
 
-// curve samples a profile from the first to the last of some chainages (m).
-func (s *survey) curve(p *geo.Profile, chainage []float64) []CurvePoint {
-	ends := emptySpan()
-	ends.addFinite(chainage)
+// curve samples a profile from the first to the last chainage (m).
+func (s *survey) curve(p *geo.Profile, first, last float64) []CurvePoint {
 	at, x, y := make([]float64, curvePoints), make([]float64, curvePoints), make([]float64, curvePoints)
 	for i := range at {
-		at[i] = ends.low + (ends.high-ends.low)*float64(i)/(curvePoints-1)
+		at[i] = first + (last-first)*float64(i)/(curvePoints-1)
 	}
 	alongLine(x, y, s.surface.source.lineX, s.surface.source.lineY, at)
 	level, sigma, rest := make([]float64, curvePoints), make([]float64, curvePoints), make([]float64, curvePoints)

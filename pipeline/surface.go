@@ -163,12 +163,16 @@ func (s *survey) readProfile(ctx context.Context) error {
 		}),
 		s.auxiliaryFile(ctx, "levels", "[surface.profile] levels", j.Levels, func(path string) error {
 			_, x, y, z, err := s.readXYZ(path)
-			if err == nil && lineX != nil {
-				s.surface.profile, err = geo.NewProfile(lineX, lineY, x, y, z, j.Reach*s.plan)
-				s.surface.source.points(x, y, z)
-				s.surface.source.centreline(lineX, lineY, j.Reach*s.plan)
+			if err != nil || lineX == nil {
+				return err
 			}
-			return err
+			if s.surface.profile, err = geo.NewProfile(lineX, lineY, x, y, z, j.Reach*s.plan); err != nil {
+				return err
+			}
+			s.surface.source.points(x, y, z)
+			s.surface.source.centreline(lineX, lineY, j.Reach*s.plan)
+			s.profileCautions()
+			return nil
 		}),
 	)
 }
