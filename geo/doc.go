@@ -46,8 +46,8 @@
 // Against simulated truth: the plane through 400 waterline points with 4 mm noise and
 // 12 % wrong by 0 to 2 m upwards holds to 2 mm (TestFitPlaneWithBlunders); a profile
 // through such points along a river holds to 4 mm rms (TestProfileRiver), over weirs,
-// stairs and rapids to a few times the error of a pool's mean (TestProfileCourses); a grid over
-// swell of 0.25 m and 60 m, from one point a square metre with 2 cm noise and 2 %
+// stairs and rapids to a few times the error of a pool's mean (TestProfileCourses); a
+// grid over swell of 0.25 m and 60 m, from one point a square metre with 2 cm noise and 2 %
 // blunders, puts a bed 10 m down to 1.5 mm rms in height and 5 mm in the plan at 20
 // degrees off nadir (TestGridSwell). The stated sigmas are those found over many
 // simulations (TestFitPlaneErrors, TestProfileSigma, TestGridSigma); where a river's fall

@@ -9,9 +9,9 @@ import (
 // joinBlocks joins neighbouring blocks, the two first whose joining adds least to the
 // squared residuals, until one is left; of all stages it returns that with the least
 // Bayesian information criterion (Schwarz 1978): n times the logarithm of the mean
-// squared residual, for n points, plus log n for each parameter, of which a block has three: level,
-// slope, and where it ends. Residuals below scaleFloor do not count as better. It
-// takes O(n log n) time.
+// squared residual, for n points, plus log n for each parameter, of which a block has
+// three: level, slope, and where it ends. Residuals far below scaleFloor count as
+// that, so levels without noise do not fall apart into twos. It takes O(n log n) time.
 func joinBlocks(blocks []block) []block {
 	j := newJoining(blocks)
 	n, sum := 0.0, 0.0
@@ -36,7 +36,7 @@ type joining struct {
 	given, blocks []block // as given; as joined so far, each in the place of its first one
 	before, after []int   // neighbours of a block, of those left
 	stage         []int   // at which a block was joined to the one before it; 0: not yet
-	cost          []float64
+	cost          []float64 // of the border after a block, m^2; NaN: none
 	queue         borders
 }
 

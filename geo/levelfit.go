@@ -9,11 +9,12 @@ import (
 // levelFit is a regression of level points along a line by straight blocks: of sign
 // times their level, falling.
 type levelFit struct {
-	sign                        float64
-	points                      []levelPoint // in the order of the fit
-	chainage, z, r, weight, tmp []float64
-	sigma                       float64
-	blocks                      []block
+	sign                   float64
+	points                 []levelPoint // in the order of the slices
+	chainage, z, r, weight []float64    // z is sign times the level; r, residuals of it; all but weight in m
+	tmp                    []float64
+	sigma                  float64 // of a point about the line of its block, m
+	blocks                 []block
 }
 
 // newLevelFit returns a fit of level points along the line, sign 1 for levels that

@@ -55,7 +55,8 @@ var courses = []course{
 	{"lake", 1000, 300, 0.02, straight(0), 1, nil, 0.02},
 }
 
-// survey measures the course: chainages, levels, and which are wrong by 0.1 to 2 m upwards.
+// survey measures the course: chainages, levels, and which are wrong by 0.1 to 2 m
+// upwards.
 func (c *course) survey(rng *rand.Rand, blunders float64) (s, z []float64, wrong []bool) {
 	for range c.n {
 		at := c.long * rng.Float64()
