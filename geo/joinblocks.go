@@ -33,9 +33,9 @@ func joinBlocks(blocks []block) []block {
 
 // joining joins neighbouring blocks by twos.
 type joining struct {
-	given, blocks []block // as given; as joined so far, each in the place of its first one
-	before, after []int   // neighbours of a block, of those left
-	stage         []int   // at which a block was joined to the one before it; 0: not yet
+	given, blocks []block   // as given; as joined so far, each in the place of its first one
+	before, after []int     // neighbours of a block, of those left
+	stage         []int     // at which a block was joined to the one before it; 0: not yet
 	cost          []float64 // of the border after a block, m^2; NaN: none
 	queue         borders
 }
