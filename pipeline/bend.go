@@ -72,7 +72,15 @@ func (w *workspace) columns() [14][]float64 {
 
 // bend runs one sensor's ray model over a part.
 func (s *survey) bend(p *part, sn *sensor, w *workspace, c *cloud.Chunk, r *reading) {
-	if !sn.isPulse() {
+	switch {
+	case sn.isMultiview():
+		fillXYZ(p.origin, math.NaN())
+		s.throughCameras(p, sn, w, c, r)
+		if s.surface.curved || s.hasOwnTimes(sn) {
+			s.takeTrueLevels(p, w)
+		}
+		return
+	case !sn.isPulse():
 		fillXYZ(p.origin, math.NaN())
 		s.throughWater(p, sn, w, func() { correct.Vertical(&p.result, p.out, w.raw, p.planes, w.light) })
 		return

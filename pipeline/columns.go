@@ -1,6 +1,7 @@
 package pipeline
 
 import (
+	"cmp"
 	"fmt"
 	"slices"
 	"strconv"
@@ -26,6 +27,8 @@ const (
 type layout struct {
 	cloud.Layout
 	sensors                       []*sensor
+	viewSource                    string // where the views of a camera's points come from: a column of the file, or ""
+	rayCount                      int
 	depth, waterLevel, entryLevel int
 	slope                         [2]int
 	incidence, refraction         int
@@ -39,8 +42,11 @@ type layout struct {
 // newLayout lays out the output of a file with these columns.
 func newLayout(s *survey, columns []cloud.Column, r *reading) (*layout, error) {
 	l := &layout{
-		sensors: s.sensors, depth: -1, waterLevel: -1, entryLevel: -1, slope: [2]int{-1, -1}, incidence: -1, refraction: -1,
+		sensors: s.sensors, rayCount: -1, depth: -1, waterLevel: -1, entryLevel: -1, slope: [2]int{-1, -1}, incidence: -1, refraction: -1,
 		water: -1, waterGroup: -1, temperature: -1, salinity: -1, source: -1, origin: [3]int{-1, -1, -1},
+	}
+	if r.views >= 0 {
+		l.viewSource = "column"
 	}
 	l.Decimals = s.job.Output.Decimals
 	for range s.sensors {
@@ -91,19 +97,26 @@ func (l *layout) addSurface(s *survey) {
 }
 
 func (l *layout) addOutcome() {
-	l.label("outcome", everyPoint, func(_ *sensor, o correct.Outcome) string { return o.String() })
+	l.label("outcome", everyPoint, func(sn *sensor, o correct.Outcome) string { return sn.nameOf(o) })
 }
 
 func (l *layout) addModel() {
 	l.label("model", ruled, func(sn *sensor, _ correct.Outcome) string { return sn.Rays.Model })
-	l.byClass("ray_count", cloud.Count, func(sn *sensor, o correct.Outcome) cloud.Value {
-		return cloud.Value{Set: sn.isPulse() && traced(o), Number: 1, Text: "1"}
+	if slices.ContainsFunc(l.sensors, (*sensor).isMultiview) {
+		l.rayCount = len(l.Added)
+		l.Added = append(l.Added, cloud.Added{Name: "ray_count", Type: cloud.Count})
+	} else {
+		l.byClass("ray_count", cloud.Count, func(sn *sensor, o correct.Outcome) cloud.Value {
+			return cloud.Value{Set: sn.isPulse() && traced(o), Number: 1, Text: "1"}
+		})
+	}
+	l.byClass("view_source", cloud.Label, func(sn *sensor, o correct.Outcome) cloud.Value {
+		return cloud.Value{Set: sn.isMultiview() && rayed(o), Text: cmp.Or(l.viewSource, sn.viewRule())}
 	})
-	l.byClass("view_source", cloud.Label, func(*sensor, correct.Outcome) cloud.Value { return cloud.Value{} })
 }
 
 func (l *layout) addAngles() {
-	if l.hasPulse() {
+	if slices.ContainsFunc(l.sensors, (*sensor).hasRays) {
 		l.incidence = l.byRow("incidence_deg", angleDecimals)
 		l.refraction = l.byRow("refraction_deg", angleDecimals)
 		return
@@ -188,6 +201,11 @@ func solved(o correct.Outcome) bool { return o == correct.Corrected }
 // traced points had all that it takes to trace their rays.
 func traced(o correct.Outcome) bool {
 	return o == correct.Corrected || o == correct.Grazing || o == correct.Unsolved
+}
+
+// rayed points had their rays looked for.
+func rayed(o correct.Outcome) bool {
+	return traced(o) || o == correct.NoOrigin || o == correct.NoWater || o == correct.OutOfRange || o == correct.FewRays
 }
 
 // watered points had their water looked up.

@@ -10,8 +10,8 @@ import (
 
 // correctChunk corrects the decoded rows of a chunk: it fills Class, XYZ and
 // Added, and adds to the tally. The stages come in the order of the outcomes'
-// precedence.
-func (s *survey) correctChunk(c *cloud.Chunk, r *reading, l *layout, w *workspace, t *tally) {
+// precedence. It fails where a point names a camera of another sensor.
+func (s *survey) correctChunk(c *cloud.Chunk, r *reading, l *layout, w *workspace, t *tally) error {
 	c.Resize(c.Rows, l.Layout)
 	w.prepare(c, l, s)
 	s.toScale(c, r)
@@ -25,11 +25,43 @@ func (s *survey) correctChunk(c *cloud.Chunk, r *reading, l *layout, w *workspac
 	s.fillZones(w.zone, c.Numbers[0], c.Numbers[1])
 	s.surface.fill(w.planes, w.raw.X, w.raw.Y, w.moments, w.zone, s.ownLevels(w, c, r))
 	correct.MarkNoSurface(w.out, w.planes)
-	correct.MarkDry(w.out, &w.result, w.raw, w.planes)
+	s.markDry(w)
+	fill(w.rayCount, math.NaN())
 	s.bendSensors(w, c, r)
+	if w.fault != nil {
+		return w.fault
+	}
 
 	t.add(w, c, r, s)
 	s.toUnits(c, l, w)
+	return nil
+}
+
+// markDry sets Dry where a raw point lies on its sensor's own side of the surface.
+func (s *survey) markDry(w *workspace) {
+	if !slices.ContainsFunc(s.sensors, (*sensor).looksUp) {
+		correct.MarkDry(w.out, &w.result, w.raw, w.planes)
+		return
+	}
+	w.side = cloud.Grow(w.side, len(w.out))
+	for _, up := range []bool{false, true} {
+		for i, o := range w.out {
+			w.side[i] = o
+			if o == correct.Corrected && s.sensors[w.sensor[i]].looksUp() != up {
+				w.side[i] = correct.NoRule
+			}
+		}
+		mark := correct.MarkDry
+		if up {
+			mark = correct.MarkWet
+		}
+		mark(w.side, &w.result, w.raw, w.planes)
+		for i, o := range w.side {
+			if o == correct.Dry {
+				w.out[i] = o
+			}
+		}
+	}
 }
 
 // toScale brings times that are dates to the scale of the job's numbers.
@@ -161,6 +193,20 @@ func (s *survey) toUnits(c *cloud.Chunk, l *layout, w *workspace) {
 	clearUnless(traced, l.tracedOnly, c, w.out)
 	clearUnless(watered, l.wateredOnly, c, w.out)
 	s.clearGroups(c, l, w)
+	s.countPulses(l, w)
+}
+
+// countPulses notes the one ray of each traced pulse in a cloud that images made points of
+// too.
+func (s *survey) countPulses(l *layout, w *workspace) {
+	if l.rayCount < 0 {
+		return
+	}
+	for i, k := range w.sensor {
+		if s.sensors[k].isPulse() && traced(w.out[i]) {
+			w.rayCount[i] = 1
+		}
+	}
 }
 
 // clearGroups empties the group index of points that no pulse made.

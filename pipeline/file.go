@@ -100,7 +100,9 @@ func (w *rewriting) work(s *slot) error {
 		return err
 	}
 	s.tally = newTally()
-	w.correctChunk(&s.chunk, w.read, w.layout, &s.work, s.tally)
+	if err := w.correctChunk(&s.chunk, w.read, w.layout, &s.work, s.tally); err != nil {
+		return err
+	}
 	return w.file.Encode(&s.chunk)
 }
 

@@ -44,6 +44,7 @@ type Heads struct {
 	High     [3]float64
 	Times    [2]time.Time // first and last, UTC; zero where there are none
 	Outcomes map[string]int64
+	Images   *ImageHeads // nil where no image made a point
 }
 
 // PlannedSensor is one sensor of a plan; indices are phase and group, referred to
@@ -54,11 +55,13 @@ type PlannedSensor struct {
 	Air         [2]float64
 	Water       [2]float64      // of the job's own water; NaN where it has none
 	Trajectory  *TrajectoryInfo // nil where the job names none
+	Cameras     *CameraInfo     // nil unless it is multiview
 }
 
 func (s *survey) planSensor(sn *sensor) PlannedSensor {
 	p := PlannedSensor{Name: sn.Name, Model: sn.Rays.Model, Wavelength: sn.wavelength, Air: [2]float64{sn.airPhase, sn.airGroup}, Trajectory: sn.info}
 	p.Water[0], p.Water[1] = s.constantIndex(sn)
+	p.Cameras = s.planCameras(sn)
 	return p
 }
 
@@ -156,7 +159,9 @@ func (p *planner) head(in input, f *PlannedFile) error {
 	if err := file.Decode(c); err != nil {
 		return err
 	}
-	p.correctChunk(c, r, l, &p.slot.work, p.tally)
+	if err := p.correctChunk(c, r, l, &p.slot.work, p.tally); err != nil {
+		return err
+	}
 	return f.count(c, file, in.bytes)
 }
 
@@ -194,6 +199,9 @@ func (p *planner) roles(columns []cloud.Column, r *reading) []RoleColumn {
 	add("origin_y", r.origin[1])
 	add("origin_z", r.origin[2])
 	add("surface", r.level)
+	if r.views >= 0 {
+		roles = append(roles, RoleColumn{"views", columns[r.request.Texts[r.views]].Name})
+	}
 	return roles
 }
 
@@ -207,7 +215,8 @@ func (p *planner) finish() {
 		h.Low[k], h.High[k] = b.low, b.high
 	}
 	p.corners()
-	p.plan.Cautions = append(t.cautions(p.survey), p.ofFiles...)
+	h.Images = t.images.heads(t, p.survey)
+	p.plan.Cautions = slices.Concat(t.cautions(p.survey), p.imageCautions(), p.ofFiles)
 }
 
 // corners asks the surface at the corners of the bounds.

@@ -19,6 +19,7 @@ type reading struct {
 	timestamps bool // gps_time holds dates and times, not numbers on the job's scale
 	origin     [3]int
 	level      int // the surface's column
+	views      int // the cameras that saw each point
 	where      []condition
 	sensors    [][]condition // by sensor
 }
@@ -33,7 +34,7 @@ type condition struct {
 // newReading finds the columns that a job needs in a file.
 func newReading(s *survey, columns []cloud.Column) (*reading, error) {
 	j := s.job
-	r := &reading{time: -1, origin: [3]int{-1, -1, -1}, level: -1}
+	r := &reading{time: -1, origin: [3]int{-1, -1, -1}, level: -1, views: -1}
 	var err error
 	if r.xyz, err = cloud.Coordinates(columns, j.Input.Columns); err != nil {
 		return nil, err
@@ -45,6 +46,9 @@ func newReading(s *survey, columns []cloud.Column) (*reading, error) {
 		return nil, err
 	}
 	if err := r.findOrigins(s, columns); err != nil {
+		return nil, err
+	}
+	if err := r.findViews(s, columns); err != nil {
 		return nil, err
 	}
 	if j.Surface.Column != "" {
@@ -116,6 +120,24 @@ func (r *reading) findOrigins(s *survey, columns []cloud.Column) (err error) {
 	return nil
 }
 
+// findViews finds the column of camera ids, where images made points and the file
+// has one. Its texts are checked against every sensor's cameras.
+func (r *reading) findViews(s *survey, columns []cloud.Column) error {
+	if !s.hasMultiview() {
+		return nil
+	}
+	i, err := cloud.FindRole(columns, "views", s.job.Input.Columns)
+	if err != nil {
+		return err
+	}
+	if i < 0 {
+		return s.checkImages()
+	}
+	r.views = r.text(i)
+	r.request.Checks[r.views] = s.checkViews
+	return nil
+}
+
 // conditions turns a table column -> values into conditions.
 func (r *reading) conditions(j *job.Job, columns []cloud.Column, where map[string][]any, why string) ([]condition, error) {
 	var list []condition
@@ -147,11 +169,7 @@ func (r *reading) condition(column int, values []any) condition {
 }
 
 func (r *reading) textCondition(column int, values []any) condition {
-	c := condition{column: slices.Index(r.request.Texts, column), texts: map[string]bool{}}
-	if c.column < 0 {
-		c.column = len(r.request.Texts)
-		r.request.Texts = append(r.request.Texts, column)
-	}
+	c := condition{column: r.text(column), texts: map[string]bool{}}
 	for _, v := range values {
 		switch v := v.(type) {
 		case string:
@@ -170,6 +188,15 @@ func (r *reading) number(column int) int {
 	}
 	r.request.Numbers, r.request.Steps = append(r.request.Numbers, column), append(r.request.Steps, 0)
 	return len(r.request.Numbers) - 1
+}
+
+// text asks for a column as texts and returns its place in the chunk.
+func (r *reading) text(column int) int {
+	if i := slices.Index(r.request.Texts, column); i >= 0 {
+		return i
+	}
+	r.request.Texts, r.request.Checks = append(r.request.Texts, column), append(r.request.Checks, nil)
+	return len(r.request.Texts) - 1
 }
 
 // need asks for a column that the job cannot do without, by role or name.

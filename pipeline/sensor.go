@@ -8,6 +8,7 @@ import (
 	"slices"
 	"time"
 
+	"bentray/correct"
 	"bentray/correct/medium"
 	"bentray/geo"
 	"bentray/io/cloud"
@@ -22,27 +23,51 @@ type sensor struct {
 	ranges             float64         // the index that the raw ranges were made with
 	trajectory         *geo.Trajectory // nil: origins come from the cloud, or are not needed
 	info               *TrajectoryInfo // nil without trajectory
+	cameras            *cameras        // nil unless it is multiview
 }
 
 // isPulse tells a sensor whose rays have an origin each.
 func (s *sensor) isPulse() bool { return s.Rays.Model == job.Pulse }
 
+// isMultiview tells a sensor whose points have the rays of several cameras.
+func (s *sensor) isMultiview() bool { return s.Rays.Model == job.Multiview }
+
+// hasRays tells a sensor whose rays are traced.
+func (s *sensor) hasRays() bool { return s.isPulse() || s.isMultiview() }
+
 func (s *sensor) isAny() bool { return true }
+
+// looksUp tells a sensor under water whose points are above it.
+func (s *sensor) looksUp() bool { return s.isMultiview() && s.Rays.CameraMedium == job.InWater }
+
+// nameOf names an outcome of the sensor's points: those on its own side of the surface
+// are wet where it is under water.
+func (s *sensor) nameOf(o correct.Outcome) string {
+	if o == correct.Dry && s.looksUp() {
+		return "wet"
+	}
+	return o.String()
+}
 
 func (s *survey) readSensors(ctx context.Context) error {
 	var faults []error
 	for _, js := range s.job.Sensors {
 		sn := &sensor{Sensor: js, wavelength: s.job.Wavelength(js)}
-		key := "[rays] trajectory"
-		if js.Name != "" {
-			key = fmt.Sprintf("[sensor.rays] trajectory of %q", js.Name)
-		}
-		faults = append(faults, sn.setAir(s.job), s.auxiliaryFile(ctx, "trajectory", key, js.Rays.Trajectory, func(path string) error {
-			return s.readTrajectory(sn, path)
-		}))
+		faults = append(faults, sn.setAir(s.job),
+			s.auxiliaryFile(ctx, "trajectory", sn.key("trajectory"), js.Rays.Trajectory, func(path string) error { return s.readTrajectory(sn, path) }),
+			s.auxiliaryFile(ctx, "cameras", sn.key("cameras"), js.Rays.Cameras, func(path string) error { return s.readCameras(sn, path) }),
+		)
 		s.sensors = append(s.sensors, sn)
 	}
 	return errors.Join(faults...)
+}
+
+// key names a key of the sensor's rays, for messages.
+func (sn *sensor) key(name string) string {
+	if sn.Name == "" {
+		return "[rays] " + name
+	}
+	return fmt.Sprintf("[sensor.rays] %s of %q", name, sn.Name)
 }
 
 func (sn *sensor) setAir(j *job.Job) (err error) {

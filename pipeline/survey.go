@@ -78,7 +78,7 @@ func readSurvey(ctx context.Context, j *job.Job, clouds []input, o Options) (*su
 	if err != nil {
 		return nil, &CallError{err}
 	}
-	if err := s.readWaters(); err != nil {
+	if err := errors.Join(s.readWaters(), s.checkSides()); err != nil {
 		return nil, &CallError{fmt.Errorf("%s: %w", j.Path, err)}
 	}
 	if s.settings, err = j.Settings(); err != nil {

@@ -3,6 +3,7 @@ package pipeline
 import (
 	"fmt"
 	"math"
+	"slices"
 
 	"bentray/correct"
 	"bentray/correct/medium"
@@ -17,7 +18,8 @@ type tally struct {
 	bounds           [3]span // raw x, y, z in the file's units
 	times            span    // gps_time on the job's scale
 	depth, incidence span
-	water, group     span  // indices
+	water, group     span // indices
+	images           viewTally
 	extended         int64 // corrected points whose water is outside the formula's published range
 }
 
@@ -28,7 +30,7 @@ func emptySpan() span { return span{math.Inf(1), math.Inf(-1)} }
 
 func newTally() *tally {
 	e := emptySpan()
-	return &tally{bounds: [3]span{e, e, e}, times: e, depth: e, incidence: e, water: e, group: e}
+	return &tally{bounds: [3]span{e, e, e}, times: e, depth: e, incidence: e, water: e, group: e, images: newViewTally()}
 }
 
 func (s *span) add(v float64) {
@@ -75,6 +77,13 @@ func (t *tally) add(w *workspace, c *cloud.Chunk, r *reading, s *survey) {
 			t.noPosition++
 		}
 	}
+	if s.hasMultiview() {
+		for i, k := range w.sensor {
+			if s.sensors[k].isMultiview() {
+				t.images.add(w, i, r.views >= 0)
+			}
+		}
+	}
 	for k := range t.bounds {
 		t.bounds[k].addFinite(c.Numbers[k])
 	}
@@ -97,6 +106,7 @@ func (t *tally) join(o *tally) {
 		t.bounds[k].join(o.bounds[k])
 	}
 	t.noPosition += o.noPosition
+	t.images.join(&o.images)
 	t.times.join(o.times)
 	t.extended += o.extended
 	t.water.join(o.water)
@@ -131,8 +141,10 @@ func (t *tally) ranges(s *survey) map[string][2]float64 {
 	}
 	ranges["depth"] = [2]float64{t.depth.low / s.height, t.depth.high / s.height}
 	ranges["n_water"] = [2]float64{t.water.low, t.water.high}
-	if !t.incidence.isEmpty() {
+	if !t.group.isEmpty() {
 		ranges["ng_water"] = [2]float64{t.group.low, t.group.high}
+	}
+	if !t.incidence.isEmpty() {
 		ranges["incidence_deg"] = [2]float64{t.incidence.low / radiansPerDegree, t.incidence.high / radiansPerDegree}
 	}
 	return ranges
@@ -146,6 +158,7 @@ var advice = map[correct.Outcome]string{
 	correct.NoRule:     "match no sensor",
 	correct.NoWater:    "have no temperature and salinity: no zone or station gives them, in place or time",
 	correct.OutOfRange: "are in water outside the range of the index formula",
+	correct.FewRays:    "were seen by fewer than two cameras",
 	correct.Grazing:    "were seen at more than max_incidence from the surface normal",
 	correct.Unsolved:   "have no finite solution",
 }
@@ -154,6 +167,7 @@ var advice = map[correct.Outcome]string{
 func (t *tally) cautions(s *survey) []string {
 	total := t.points()
 	cautions := append(t.geometryCautions(s), s.cautions...)
+	cautions = append(cautions, t.images.cautions(s)...)
 	for o, n := range t.outcomes {
 		if text := advice[correct.Outcome(o)]; n > 0 && text != "" {
 			cautions = append(cautions, fmt.Sprintf("%d of %d points %s", n, total, text))
@@ -166,7 +180,7 @@ func (t *tally) cautions(s *survey) []string {
 		cautions = append(cautions, fmt.Sprintf("%d of %d points have no ray origin: %s", n, total, s.whyNoPosition()))
 	}
 	if n := t.outcomes[correct.NoOrigin] - t.noPosition; n > 0 {
-		cautions = append(cautions, fmt.Sprintf("%d of %d points have a ray origin that is not above the water: are origins and cloud in one system and unit?", n, total))
+		cautions = append(cautions, fmt.Sprintf("%d of %d points have a ray origin that is %s: are origins and cloud in one system and unit?", n, total, s.wrongSide()))
 	}
 	switch {
 	case total == 0:
@@ -185,4 +199,12 @@ func (s *survey) whyNoPosition() string {
 		}
 	}
 	return "an origin column is empty there"
+}
+
+// wrongSide says where a ray origin is that cannot have seen through the surface.
+func (s *survey) wrongSide() string {
+	if slices.ContainsFunc(s.sensors, (*sensor).looksUp) {
+		return "on the points' side of the surface"
+	}
+	return "not above the water"
 }

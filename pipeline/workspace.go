@@ -26,7 +26,12 @@ type workspace struct {
 	part part
 	meet meeting
 
-	spare [16][]float64 // for results that have no column in the chunk
+	side     []correct.Outcome // as seen by some of the sensors
+	rays     rays
+	rayCount []float64
+	fault    error // of a point's views
+
+	spare [17][]float64 // for results that have no column in the chunk
 }
 
 // moments are the times of points, UTC seconds since 1970, NaN for none.
@@ -56,6 +61,7 @@ func (w *workspace) prepare(c *cloud.Chunk, l *layout, s *survey) {
 	n := c.Rows
 	w.out = cloud.Grow(w.out, n)
 	clear(w.out)
+	w.fault = nil
 	w.sensor, w.zone = cloud.Grow(w.sensor, n), cloud.Grow(w.zone, n)
 	growAll(n, &w.own, &w.utc, &w.raw.X, &w.raw.Y, &w.raw.Z, &w.planes.Level, &w.column)
 	if !s.isConstantWater() {
@@ -86,6 +92,7 @@ func (w *workspace) prepare(c *cloud.Chunk, l *layout, s *survey) {
 		{l.temperature, &w.temperature},
 		{l.salinity, &w.salinity},
 		{l.source, &w.source},
+		{l.rayCount, &w.rayCount},
 		{l.water, &w.light.Water},
 		{l.waterGroup, &w.light.WaterGroup},
 	} {

@@ -103,6 +103,7 @@ func printSensors(s *streams, p *pipeline.Plan, j *job.Job) {
 		}
 		fmt.Fprintf(s.out, "air      %g degrees C, %g hPa, %g %%: phase %.6f, group %.6f\n", j.Air.Temperature, j.Air.Pressure, j.Air.Humidity, sn.Air[0], sn.Air[1])
 		printTrajectory(s, sn.Trajectory, j)
+		printCameras(s, sn.Cameras, j)
 	}
 	for _, source := range []struct{ key, name string }{{"zones", j.Water.Zones}, {"stations", j.Water.Stations}} {
 		if source.name != "" {
@@ -117,6 +118,30 @@ func printTrajectory(s *streams, t *pipeline.TrajectoryInfo, j *job.Job) {
 	}
 	fmt.Fprintf(s.out, "flight   %s, %s to %s, longest gap %.3g s\n", plural(t.Records, "record"), t.Times[0].Format(time.RFC3339), t.Times[1].Format(time.RFC3339), t.Gap)
 	printBounds(s, t.Low, t.High, j)
+}
+
+func printCameras(s *streams, c *pipeline.CameraInfo, j *job.Job) {
+	if c == nil {
+		return
+	}
+	times := "without times"
+	if c.Timed {
+		times = "each at its time"
+	}
+	fmt.Fprintf(s.out, "cameras  %s in %s, %s; solve %s, residual %s\n", plural(c.Count, "camera"), c.Medium, times, c.Solve, c.Residual)
+	printBounds(s, c.Low, c.High, j)
+}
+
+// printImages shows what is expected of the points made from images.
+func printImages(s *streams, h *pipeline.ImageHeads, j *job.Job) {
+	if h == nil {
+		return
+	}
+	fmt.Fprintf(s.out, "views    %d to %d cameras a point, %.1f on average\n", h.Views[0], h.Views[1], h.MeanViews)
+	if h.Lift[0] <= h.Lift[1] {
+		fmt.Fprintf(s.out, "         incidence up to %.1f degrees; z moves by %.3f to %.3f %s, plan by up to %.3f %s\n",
+			h.MaxIncidence, h.Lift[0], h.Lift[1], j.Input.VerticalUnit, h.MaxDrift, j.Input.Unit)
+	}
 }
 
 func printBounds(s *streams, low, high [3]float64, j *job.Job) {
@@ -136,6 +161,7 @@ func printHeads(s *streams, p *pipeline.Plan, j *job.Job) {
 		fmt.Fprintf(s.out, "         time %s to %s\n", h.Times[0].Format(time.RFC3339), h.Times[1].Format(time.RFC3339))
 	}
 	printCorners(s, p, j)
+	printImages(s, h.Images, j)
 	for _, o := range outcomeRows(h.Outcomes) {
 		fmt.Fprintf(s.out, "         %-13s %12s  %5.1f %%\n", o.name, grouped(o.count), o.percent)
 	}

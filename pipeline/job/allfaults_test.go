@@ -24,7 +24,7 @@ level = inf
 files = ["", "a/*.csv"]
 `
 	want := []string{
-		`job.toml:1: unknown key "range" in [rays], want "model", "trajectory", "max_gap" or "range_index"`,
+		`job.toml:1: unknown key "range" in [rays], want "model", "trajectory", "max_gap", "range_index", "cameras", "solve", "residual", "max_off_nadir" or "camera_medium"`,
 		`job.toml:4: [water] temperature is 99, want -2 to 35 degrees C for quan-fry`,
 		`job.toml:5: [water] salinity is a string, want a number`,
 		`job.toml:6: unknown key "depth" in [water], want "temperature", "salinity", "formula", "pressure_dbar", "stations", "max_gap" or "zones"`,
@@ -48,7 +48,7 @@ func TestParseOfNothing(t *testing.T) {
 		`job.toml: [water] temperature is missing, want a number in degrees C`,
 		`job.toml: [water] salinity is missing, want a number (practical salinity; 0 for fresh water)`,
 		`job.toml: [surface] has no water surface, want level, column, [surface.plane], [surface.profile], [surface.grid] or [surface.gauge], or [water] zones with levels`,
-		`job.toml: [rays] model is missing, want "vertical" or "pulse"`,
+		`job.toml: [rays] model is missing, want "vertical", "pulse" or "multiview"`,
 	}
 	_, err := Parse("job.toml", nil)
 	if err == nil || err.Error() != strings.Join(want, "\n") {

@@ -59,17 +59,39 @@ func checkWhere(f *faults, table string, where map[string][]any) {
 	}
 }
 
+// keysOf are the keys of rays that one model alone looks at.
+var keysOf = []struct {
+	model string
+	keys  []string
+}{
+	{Pulse, []string{"trajectory", "max_gap", "range_index"}},
+	{Multiview, []string{"cameras", "solve", "residual", "max_off_nadir", "camera_medium"}},
+}
+
 // check reports what is wrong with the rays of the table named.
 func (r *Rays) check(f *faults, table string) {
 	key := func(name string) string { return join(table, name) }
-	f.require(key("model"), `"vertical" or "pulse"`)
-	f.oneOf(key("model"), r.Model, Vertical, Pulse)
-	if r.Model == Vertical {
-		for _, name := range []string{"trajectory", "max_gap", "range_index"} {
-			f.noEffect(key(name), `with model "vertical"`, `use model = "pulse"`)
-		}
+	f.require(key("model"), `"vertical", "pulse" or "multiview"`)
+	f.oneOf(key("model"), r.Model, Vertical, Pulse, Multiview)
+	if f.isTold(key("model")) {
 		return
 	}
+	for _, own := range keysOf {
+		for _, name := range own.keys {
+			if own.model != r.Model {
+				f.noEffect(key(name), fmt.Sprintf("with model %q", r.Model), fmt.Sprintf("use model = %q", own.model))
+			}
+		}
+	}
+	switch r.Model {
+	case Pulse:
+		r.checkPulse(f, key)
+	case Multiview:
+		r.checkMultiview(f, key)
+	}
+}
+
+func (r *Rays) checkPulse(f *faults, key func(string) string) {
 	f.notBlank(key("trajectory"), r.Trajectory, "a file")
 	if !f.has(key("trajectory")) {
 		f.noEffect(key("max_gap"), "without trajectory", "name the trajectory")
@@ -77,5 +99,15 @@ func (r *Rays) check(f *faults, table string) {
 	f.above0(key("max_gap"), r.MaxGap, " seconds")
 	if n := r.RangeIndex; n != nil && (*n < 1 || *n > 1.01) {
 		f.add(key("range_index"), "is %s, want 1 to 1.01, the index of air that the ranges were made with", format(*n))
+	}
+}
+
+func (r *Rays) checkMultiview(f *faults, key func(string) string) {
+	f.requireText(key("cameras"), r.Cameras, "a file of cameras: camera, x, y, z and, where known, their rotations and images")
+	f.oneOf(key("solve"), r.Solve, Invert, Intersect, Average)
+	f.oneOf(key("residual"), r.Residual, Image, Angle, Equal)
+	f.oneOf(key("camera_medium"), r.CameraMedium, InAir, InWater)
+	if a := r.MaxOffNadir; f.has(key("max_off_nadir")) && !(a > 0 && a < 90) {
+		f.add(key("max_off_nadir"), "is %s, want degrees above 0 and below 90", format(a))
 	}
 }

@@ -36,11 +36,21 @@ func (j *Job) applyDefaults(f *faults) {
 	}
 	j.Surface.applyDefaults(f)
 	for i := range j.Sensors {
-		if r := &j.Sensors[i].Rays; r.Trajectory != "" {
-			f.setDefault(f.raysKey(i)+".max_gap", &r.MaxGap, 1)
-		}
+		j.Sensors[i].Rays.applyDefaults(f, f.raysKey(i))
 	}
 	j.settleWavelength()
+}
+
+func (r *Rays) applyDefaults(f *faults, table string) {
+	if r.Trajectory != "" {
+		f.setDefault(join(table, "max_gap"), &r.MaxGap, 1)
+	}
+	if r.Model != Multiview {
+		return
+	}
+	f.setDefault(join(table, "max_off_nadir"), &r.MaxOffNadir, 45)
+	f.setDefaultText(join(table, "solve"), &r.Solve, Invert)
+	f.setDefaultText(join(table, "camera_medium"), &r.CameraMedium, InAir)
 }
 
 // settleWavelength writes out the default wavelength that all sensors share.
@@ -73,6 +83,13 @@ func (s *Surface) applyDefaults(f *faults) {
 
 // setDefault sets a number that is not in the file.
 func (f *faults) setDefault(key string, to *float64, value float64) {
+	if !f.has(key) {
+		*to = value
+	}
+}
+
+// setDefaultText sets a text that is not in the file.
+func (f *faults) setDefaultText(key string, to *string, value string) {
 	if !f.has(key) {
 		*to = value
 	}

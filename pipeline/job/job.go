@@ -22,8 +22,20 @@ const (
 	Full = "full" // all columns that tell how a point came about
 	Lean = "lean" // the few that no one does without
 
-	Vertical = "vertical" // depth times the ratio of indices, plan kept
-	Pulse    = "pulse"    // a laser pulse, bent at its entry and shortened
+	Vertical  = "vertical"  // depth times the ratio of indices, plan kept
+	Pulse     = "pulse"     // a laser pulse, bent at its entry and shortened
+	Multiview = "multiview" // a point of images, by the rays of the cameras that saw it
+
+	Invert    = "invert"    // the exact inverse of what the survey software did
+	Intersect = "intersect" // straight rays refracted and intersected again
+	Average   = "average"   // the mean of the depths by each camera, plan kept
+
+	Image = "image" // the cloud's rays were intersected by least squares in the images
+	Angle = "angle" // by the angles between ray and point
+	Equal = "equal" // by the distances to the rays
+
+	InAir   = "air"   // cameras above the water look down into it
+	InWater = "water" // cameras below the water look up out of it
 )
 
 // Job is a checked job file with all defaults applied. Its zero value is not a

@@ -50,6 +50,17 @@ func TestParseAppliesDefaults(t *testing.T) {
 	}
 }
 
+func TestParseAppliesDefaultsOfMultiview(t *testing.T) {
+	want := Rays{Model: "multiview", Cameras: "c.csv", Solve: "invert", MaxOffNadir: 45, CameraMedium: "air"}
+	got := parse(t, strings.Replace(least, "vertical", "multiview", 1)+"rays.cameras = 'c.csv'\n")
+	if r := got.Sensors[0].Rays; r != want {
+		t.Errorf("got  %+v\nwant %+v", r, want)
+	}
+	if nm := *got.Light.Wavelength; nm != 550 {
+		t.Errorf("wavelength is %v nm, want 550", nm)
+	}
+}
+
 func TestLoadReadsEveryKey(t *testing.T) {
 	want := &Job{
 		Title: "Lantern Cove, spring flight",
@@ -100,7 +111,7 @@ func TestLoadReadsLocalWater(t *testing.T) {
 				Name: "laser", Where: map[string][]any{"point_source_id": {11.0, 12.0}},
 				Rays: Rays{Model: "pulse", Trajectory: "flight.csv", MaxGap: 1, RangeIndex: ptr(1.0003)},
 			},
-			{Name: "images", Rays: Rays{Model: "vertical"}},
+			{Name: "images", Rays: Rays{Model: "multiview", Cameras: "cameras.csv", Solve: "intersect", Residual: "angle", MaxOffNadir: 30, CameraMedium: "water"}},
 		},
 		Limits: Limits{MaxIncidence: 60},
 		Path:   "testdata/reach.toml",

@@ -102,9 +102,9 @@ func TestParseSensorFaults(t *testing.T) {
 		{"no condition", strings.Replace(green, "id = [1]", "", 1), `job.toml:12: [sensor.where] has no column, want lists of values by column, such as classification = [2]`},
 		{"no value", strings.Replace(green, "[1]", "[]", 1), `job.toml:12: [sensor.where] id is empty, want a list of values, such as [2, 9]`},
 		{"boolean value", strings.Replace(green, "[1]", "[1, true]", 1), `job.toml:12: [sensor.where] id item 2 is a boolean, want a number or a string`},
-		{"no model", green + strings.Replace(other, "model = 'vertical'\n", "", 1), `job.toml:17: [sensor.rays] model is missing, want "vertical" or "pulse"`},
-		{"no rays", green + "[[sensor]]\nname = 'images'\n", `job.toml:15: [sensor.rays] model is missing, want "vertical" or "pulse"`},
-		{"model", green + strings.Replace(other, "vertical", "sonar", 1), `job.toml:18: [sensor.rays] model is "sonar", want "vertical" or "pulse"`},
+		{"no model", green + strings.Replace(other, "model = 'vertical'\n", "", 1), `job.toml:17: [sensor.rays] model is missing, want "vertical", "pulse" or "multiview"`},
+		{"no rays", green + "[[sensor]]\nname = 'images'\n", `job.toml:15: [sensor.rays] model is missing, want "vertical", "pulse" or "multiview"`},
+		{"model", green + strings.Replace(other, "vertical", "sonar", 1), `job.toml:18: [sensor.rays] model is "sonar", want "vertical", "pulse" or "multiview"`},
 		{"gap without trajectory", green + "max_gap = 2\n" + other, `job.toml:15: [sensor.rays] max_gap has no effect without trajectory; remove it, or name the trajectory`},
 		{"range index of images", green + other + "range_index = 1.0003\n", `job.toml:19: [sensor.rays] range_index has no effect with model "vertical"; remove it, or use model = "pulse"`},
 		{"unknown key", green + strings.Replace(other, "name", "nam", 1), `job.toml:16: unknown key "nam" in [[sensor]]; did you mean "name"?`},
@@ -122,10 +122,10 @@ func TestParseInlineSensors(t *testing.T) {
 	for _, c := range []struct{ name, text, want string }{
 		{"empty list", "sensor = []", `job.toml:5: [[sensor]] is empty, want at least one table`},
 		{"number in the list", "sensor = [\n1, { name = 'a', rays.model = 'x' }]", `job.toml:5: [[sensor]] is a number, want a table` + "\n" +
-			`job.toml:6: [sensor.rays] model is "x", want "vertical" or "pulse"`},
+			`job.toml:6: [sensor.rays] model is "x", want "vertical", "pulse" or "multiview"`},
 		{"second of a list", "sensor = [\n{ name = 'a', where = { a = [1] }, rays.model = 'pulse' },\n{ name = 'b', rays.modl = 'pulse' }]", `job.toml:7: unknown key "modl" in [sensor.rays]; did you mean "model"?`},
 		{"table in the list", "sensor = [\n{ name = 'a', where = { a = [1] }, rays.model = 'pulse' },\n{}]", `job.toml:7: [[sensor]] name is missing, want a name` + "\n" +
-			`job.toml:7: [sensor.rays] model is missing, want "vertical" or "pulse"`},
+			`job.toml:7: [sensor.rays] model is missing, want "vertical", "pulse" or "multiview"`},
 	} {
 		t.Run(c.name, func(t *testing.T) { wantFault(t, top+c.text, c.want) })
 	}

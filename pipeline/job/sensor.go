@@ -15,16 +15,23 @@ const maxSensors = 19
 
 // Rays says how light went between the ray origin and the points.
 type Rays struct {
-	Model string `toml:"model" json:"model"` // Vertical or Pulse
+	Model string `toml:"model" json:"model"` // Vertical, Pulse or Multiview
 
-	// The rest is for Pulse alone.
+	// For Pulse alone.
 	Trajectory string   `toml:"trajectory" json:"trajectory,omitempty"`   // a file of ray origins by time; empty: the cloud's origin columns
 	MaxGap     float64  `toml:"max_gap" json:"max_gap,omitempty"`         // s between its records at most; default 1, and 0 without Trajectory
 	RangeIndex *float64 `toml:"range_index" json:"range_index,omitempty"` // the index the ranges were made with, 1 to 1.01; nil: group index of the job's air
+
+	// For Multiview alone.
+	Cameras      string  `toml:"cameras" json:"cameras,omitempty"`             // a file of cameras
+	Solve        string  `toml:"solve" json:"solve,omitempty"`                 // Invert (default), Intersect or Average
+	Residual     string  `toml:"residual" json:"residual,omitempty"`           // what the cloud's rays were intersected by; empty: Image where the cameras have rotations, else Angle
+	MaxOffNadir  float64 `toml:"max_off_nadir" json:"max_off_nadir,omitempty"` // degrees within which a camera is taken to see a point where nothing else tells; default 45
+	CameraMedium string  `toml:"camera_medium" json:"camera_medium,omitempty"` // InAir (default) or InWater
 }
 
 // Wavelength returns the vacuum wavelength (nm) of a sensor's light: that of
-// [light], or else 532 for Pulse and 550 for Vertical.
+// [light], or else 532 for Pulse and 550 for the others.
 func (j *Job) Wavelength(s Sensor) float64 {
 	if j.Light.Wavelength != nil {
 		return *j.Light.Wavelength

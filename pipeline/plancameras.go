@@ -1,0 +1,68 @@
+package pipeline
+
+import (
+	"slices"
+
+	"bentray/pipeline/job"
+)
+
+// CameraInfo sums up the cameras of a sensor, in the job's units.
+type CameraInfo struct {
+	Count     int
+	Low, High [3]float64 // of the centres
+	Rule      string     // who sees a point that names no cameras: image or angle
+	Solve     string
+	Residual  string
+	Medium    string // that the cameras are in: air or water
+	Timed     bool   // each has a time
+}
+
+// ImageHeads sums up the points made from images among the first rows.
+type ImageHeads struct {
+	Points       int64
+	Views        [2]int // least and greatest number of cameras of a point
+	MeanViews    float64
+	MaxIncidence float64    // degrees, of corrected points; NaN where there is none
+	Lift         [2]float64 // least and greatest change of z, in the job's unit of heights; NaN where none was corrected
+	MaxDrift     float64    // greatest move in plan, in the job's unit
+}
+
+func (s *survey) planCameras(sn *sensor) *CameraInfo {
+	if sn.cameras == nil {
+		return nil
+	}
+	c := &CameraInfo{
+		Count: sn.cameras.Len(), Rule: sn.cameras.rule, Solve: sn.Rays.Solve, Residual: sn.residualName(), Medium: sn.Rays.CameraMedium,
+		Timed: sn.cameras.UTC() != nil,
+	}
+	c.Low, c.High = sn.cameras.Bounds()
+	for _, b := range []*[3]float64{&c.Low, &c.High} {
+		b[0], b[1], b[2] = b[0]/s.plan, b[1]/s.plan, b[2]/s.height
+	}
+	return c
+}
+
+// heads sums up what a tally has of images.
+func (t *viewTally) heads(all *tally, s *survey) *ImageHeads {
+	if t.points == 0 {
+		return nil
+	}
+	return &ImageHeads{
+		Points: t.points, Views: [2]int{int(t.views.low), int(t.views.high)}, MeanViews: float64(t.rays) / float64(t.points),
+		MaxIncidence: all.incidence.high / radiansPerDegree,
+		Lift:         [2]float64{t.lift.low / s.height, t.lift.high / s.height}, MaxDrift: t.drift.high / s.plan,
+	}
+}
+
+// imageCautions says what no correction of refraction mends in points made from images.
+func (s *survey) imageCautions() (cautions []string) {
+	if !s.hasMultiview() {
+		return nil
+	}
+	cautions = append(cautions, "camera poses that were adjusted through the water by software which knows of one medium only can be wrong by far more than refraction: adjust them with points on land, or check the land points of this cloud")
+	inAir := func(sn *sensor) bool { return sn.isMultiview() && sn.Rays.CameraMedium == job.InAir }
+	if s.surface.grid == nil && slices.ContainsFunc(s.sensors, inAir) {
+		cautions = append(cautions, "waves: each image saw another surface than the smooth one of this job, and only many images of a point even that out")
+	}
+	return cautions
+}
