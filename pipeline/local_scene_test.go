@@ -59,7 +59,11 @@ func (c *scene) under(d vec, slopeX, slopeY float64) (wet vec, incidence, refrac
 func (c *scene) fire(utc float64, origin, toward vec, below float64) shot {
 	d := toward.plus(-1, origin)
 	d = d.plus(1/d.length()-1, d)
-	entry := c.meet(origin, d, utc)
+	return c.enter(utc, origin, d, c.meet(origin, d, utc), below)
+}
+
+// enter goes on for fire from an entry along the unit vector d.
+func (c *scene) enter(utc float64, origin, d, entry vec, below float64) shot {
 	_, slopeX, slopeY := c.surface(entry[0], entry[1], utc)
 	wet, incidence, refraction := c.under(d, slopeX, slopeY)
 	way := below / -wet[2]

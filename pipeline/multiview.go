@@ -54,6 +54,9 @@ func (s *survey) throughCameras(p *part, sn *sensor, w *workspace, c *cloud.Chun
 	}
 	s.throughWater(p, sn, w, func() {
 		s.eachBatch(p, sn, w, c, r, func(b *batch) { s.solve(b, sn, w) })
+		if s.surface.curved || s.hasOwnTimes(sn) {
+			s.takeTrueLevels(p, w)
+		}
 	})
 }
 
@@ -243,5 +246,5 @@ func (f *fewRays) gather(b *batch, w *workspace, utc []float64) {
 
 // hasOwnTimes tells whether a sensor's cameras have times that its surface depends on.
 func (s *survey) hasOwnTimes(sn *sensor) bool {
-	return sn.cameras.UTC() != nil && (s.surface.timed || s.surface.grid != nil)
+	return sn.isMultiview() && sn.cameras.UTC() != nil && (s.surface.timed || s.surface.grid != nil)
 }

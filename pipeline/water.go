@@ -39,6 +39,16 @@ type zones struct {
 // isConstant tells that all points have the job's own water.
 func (s *survey) isConstantWater() bool { return s.water.stations == nil && s.zones.index == nil }
 
+// fillConstantIndex gives each point the index of the job's own water.
+func (s *survey) fillConstantIndex(w *workspace, out []correct.Outcome, sn *sensor) {
+	phase, group := s.constantIndex(sn)
+	for i, o := range out {
+		if o != correct.NoRule {
+			w.light.Water[i], w.light.WaterGroup[i] = phase, group
+		}
+	}
+}
+
 // constantIndex is the index of the job's own water for a sensor's light, which
 // was checked when the job was read.
 func (s *survey) constantIndex(sn *sensor) (phase, group float64) {
@@ -151,24 +161,36 @@ func (s *survey) waterOf(w *workspace, i int) (temperature, salinity, source flo
 	return s.water.job.TemperatureC, s.water.job.Salinity, fromJob
 }
 
-// markWater sets NoWater and OutOfRange, and computes the indices of the others
-// for one sensor's light.
+// markWater sets NoWater, and computes the indices of the others for one sensor's
+// light: where a water is outside the formula's range, that of the nearest one inside,
+// so that casts can be averaged on to a depth at which it may be inside.
 func (s *survey) markWater(w *workspace, out []correct.Outcome, sn *sensor) {
-	for i := range out {
+	for i, o := range out {
+		switch {
+		case o == correct.NoRule: // or another sensor's
+			continue
+		case o == correct.Corrected && math.IsNaN(w.temperature[i]):
+			out[i] = correct.NoWater
+		}
 		if out[i] != correct.Corrected {
-			if out[i] != correct.NoRule { // else it is another sensor's
-				w.light.Water[i], w.light.WaterGroup[i] = math.NaN(), math.NaN()
-			}
+			w.light.Water[i], w.light.WaterGroup[i] = math.NaN(), math.NaN()
 			continue
 		}
-		water := medium.Water{TemperatureC: w.temperature[i], Salinity: w.salinity[i], PressureDbar: s.water.pressure}
-		switch {
-		case math.IsNaN(water.TemperatureC):
-			out[i] = correct.NoWater
-		case !s.water.formula.Computed(water, sn.wavelength):
-			out[i] = correct.OutOfRange
-		default:
-			w.light.Water[i], w.light.WaterGroup[i], _ = s.water.formula.Index(water, sn.wavelength) // computed, so no error
+		w.light.Water[i], w.light.WaterGroup[i], _ = s.water.formula.Index(s.water.formula.Nearest(s.waterAt(w, i)), sn.wavelength) // NaN with an error
+	}
+}
+
+// waterAt is the state of a point's water.
+func (s *survey) waterAt(w *workspace, i int) medium.Water {
+	return medium.Water{TemperatureC: w.temperature[i], Salinity: w.salinity[i], PressureDbar: s.water.pressure}
+}
+
+// markOutOfRange sets OutOfRange for points whose water is outside the formula's range,
+// before what a model may have said of them with another index.
+func (s *survey) markOutOfRange(p *part, w *workspace, sn *sensor) {
+	for i, o := range p.out {
+		if (o == correct.Corrected || o > correct.OutOfRange) && !s.water.formula.Computed(s.waterAt(w, i), sn.wavelength) {
+			p.fail(i, correct.OutOfRange)
 		}
 	}
 }

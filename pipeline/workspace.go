@@ -1,6 +1,8 @@
 package pipeline
 
 import (
+	"slices"
+
 	"bentray/correct"
 	"bentray/io/cloud"
 )
@@ -49,12 +51,6 @@ type part struct {
 	result correct.Result
 }
 
-// meeting is what it takes to meet a curved surface.
-type meeting struct {
-	x, y, lastX, lastY []float64
-	depth              []float64
-}
-
 // prepare makes room for a chunk's rows. Results are written straight into the
 // chunk's columns, or to spare memory where it has no such column.
 func (w *workspace) prepare(c *cloud.Chunk, l *layout, s *survey) {
@@ -67,9 +63,8 @@ func (w *workspace) prepare(c *cloud.Chunk, l *layout, s *survey) {
 	if !s.isConstantWater() {
 		growAll(n, &w.fromStations[0], &w.fromStations[1])
 	}
-	if s.surface.curved || s.hasCasts() {
-		m := &w.meet
-		growAll(n, &m.x, &m.y, &m.lastX, &m.lastY, &m.depth)
+	if s.surface.curved || s.hasCasts() || slices.ContainsFunc(s.sensors, s.hasOwnTimes) {
+		w.meet.prepare(n)
 	}
 	if len(s.sensors) > 1 {
 		w.part.prepare(n)
@@ -110,6 +105,11 @@ func (p *part) prepare(n int) {
 	r := &p.result
 	growAll(n, &p.origin.X, &p.origin.Y, &p.origin.Z, &p.planes.Level, &p.planes.SlopeX, &p.planes.SlopeY,
 		&r.X, &r.Y, &r.Z, &r.Depth, &r.WaterLevel, &r.EntryLevel, &r.IncidenceRad, &r.RefractionRad)
+}
+
+func (m *meeting) prepare(n int) {
+	m.unmet, m.before = cloud.Grow(m.unmet, n), cloud.Grow(m.before, n)
+	growAll(n, &m.x, &m.y, &m.lastX, &m.lastY, &m.there.Level, &m.there.SlopeX, &m.there.SlopeY, &m.clear, &m.gain, &m.depth)
 }
 
 func growAll(n int, columns ...*[]float64) {

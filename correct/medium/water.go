@@ -96,6 +96,15 @@ func (f WaterFormula) Published(w Water, vacuumWavelengthNM float64) bool {
 	return breach(waterPublished[f][:], values[:]) < 0
 }
 
+// Nearest returns the state whose temperature and salinity are moved to the nearest
+// values that Index is computed for; those inside stay, to the bit, and NaN stays NaN.
+func (f WaterFormula) Nearest(w Water) Water {
+	t, s := waterComputed[f][0], waterComputed[f][1]
+	w.TemperatureC = min(max(w.TemperatureC, t.low), t.high)
+	w.Salinity = min(max(w.Salinity, s.low), s.high)
+	return w
+}
+
 // UsesPressure reports whether Water.PressureDbar enters the index. Where it
 // does not, a pressure other than 0 is left out of the index, which is then too
 // low by 1.3e-6 to 1.7e-6 per dbar.
