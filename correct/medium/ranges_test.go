@@ -2,6 +2,7 @@ package medium
 
 import (
 	"errors"
+	"fmt"
 	"math"
 	"testing"
 )
@@ -45,6 +46,24 @@ func TestWaterRange(t *testing.T) {
 		}
 		if got := row.formula.Published(row.water, row.nm); got != row.published {
 			t.Errorf("%s %+v, %g nm: Published is %v", row.formula, row.water, row.nm, got)
+		}
+	}
+}
+
+func TestNearestWater(t *testing.T) {
+	nan := math.NaN()
+	for _, row := range []struct {
+		formula     WaterFormula
+		water, want Water
+	}{
+		{QuanFry, Water{20.1, 34.9, 5}, Water{20.1, 34.9, 5}},
+		{QuanFry, Water{36, 46, 200}, Water{35, 45, 200}},
+		{MillardSeaver, Water{-3, -1, 0}, Water{-2, 0, 0}},
+		{IAPWS, Water{-3, 0.6, 0}, Water{-3, 0.5, 0}},
+		{IAPWS, Water{nan, nan, 0}, Water{nan, nan, 0}},
+	} {
+		if got := row.formula.Nearest(row.water); fmt.Sprint(got) != fmt.Sprint(row.want) { // NaN too
+			t.Errorf("%s %+v: the nearest is %+v, want %+v", row.formula, row.water, got, row.want)
 		}
 	}
 }
