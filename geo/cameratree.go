@@ -140,7 +140,7 @@ func (n *treeNode) fill(r cameraRule, whole *treeNode, k int, at *[3]float64) {
 }
 
 // settled tells whether dividing a box would gain little: few of its cameras are in
-// doubt, or an eighth are not. The rule then decides on less than twice the cameras
+// doubt, or an eighth are not. The rule then decides on up to about twice the cameras
 // that see a point; finer boxes would take more memory and no less time.
 func (n *treeNode) settled(r cameraRule) bool {
 	doubt := 0

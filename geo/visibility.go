@@ -9,9 +9,9 @@ import (
 
 // Visibility finds the cameras that see a point. A tree of boxes over all of space knows
 // the cameras that may see a point of a box; the rule itself decides on each of those.
-// A box is divided when a point first comes into it, until some of its cameras see all of it
-// or few are in doubt; so a point costs about what the cameras that see it cost,
-// however many others there are. A tree that has grown to 32 MiB is begun anew.
+// A box is divided when a point first comes into it, until an eighth of its cameras see
+// all of it or few are in doubt; so a point costs about what the cameras that see it
+// cost, however many others there are. A tree that has grown to 32 MiB is begun anew.
 // Several goroutines may ask at once; what they get does not depend on the tree.
 type Visibility struct {
 	rule cameraRule
@@ -25,7 +25,7 @@ type cameraRule interface {
 	// reaches tells whether a camera may see a point of a box, never wrongly that it
 	// does not.
 	reaches(k int32, b *cuboid) bool
-	// covers tells whether a camera sees all points of a box, but for rounding.
+	// covers tells whether a camera sees all points of a box.
 	covers(k int32, b *cuboid) bool
 }
 
