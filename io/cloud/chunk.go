@@ -8,6 +8,7 @@ type Chunk struct {
 	Consumed int64       // bytes of the input file that this chunk took, for progress
 	Numbers  [][]float64 // by Request.Numbers, each Rows long; NaN for empty or null
 	Texts    []Texts     // by Request.Texts, each Rows long
+	Stored   []Texts     // by Request.Stored, each Rows long: equal bytes are equal values; CSV has the field as it stands, Parquet a 1 and the value's bits, or nothing for null
 	Rejects  []Reject    // rows that could not be read, in file order
 
 	Class []uint8      // by row, set by the caller before Encode

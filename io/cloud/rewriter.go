@@ -9,12 +9,13 @@ type Column struct {
 }
 
 // Request names the columns to decode, by their position in Rewriter.Columns.
-// Chunk.Numbers and Chunk.Texts have the same order.
+// Chunk.Numbers, Chunk.Texts and Chunk.Stored have the same order.
 type Request struct {
 	Numbers []int
 	Steps   []float64 // by Numbers, or nil: the coarsest step in which a binary format may store them, in their own unit; 0 is any
 	Texts   []int
 	Checks  []func(text []byte) error // by Texts, or nil: what a text must hold, where it is not nil; an error makes the row one that cannot be read. Called side by side
+	Stored  []int                     // columns whose values are wanted as they are stored, to compare files
 }
 
 // Rewriter copies one file, with other coordinates and more columns.

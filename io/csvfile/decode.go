@@ -23,6 +23,11 @@ func (f *File) Decode(c *cloud.Chunk) error {
 		if len(text) == 0 || f.sep == blanks && len(trim(text)) == 0 {
 			continue
 		}
+		if f.passes(b, begin) {
+			c.Rejects = append(c.Rejects, cloud.Reject{Line: b.line, Text: bytes.Clone(text)})
+			from = b.remove(from, begin, next)
+			continue
+		}
 		if bad := f.decodeRow(c, b, text, begin, loneReturns); bad != nil {
 			bad.Line = b.lineAt(begin)
 			if !f.divert {
@@ -70,6 +75,10 @@ func (f *File) clear(c *cloud.Chunk, b *block) {
 	for k := range c.Texts {
 		c.Texts[k].Reset()
 	}
+	c.Stored = cloud.Grow(c.Stored, len(f.read.Stored))
+	for k := range c.Stored {
+		c.Stored[k].Reset()
+	}
 	b.rows = cloud.Grow(b.rows, b.most)
 	b.fields = cloud.Grow(b.fields, f.located)
 }
@@ -101,6 +110,9 @@ func (f *File) decodeRow(c *cloud.Chunk, b *block, text []byte, begin int, loneR
 	}
 	if bad := f.decodeTexts(c, b, text); bad != nil {
 		return bad
+	}
+	for k, column := range f.read.Stored {
+		c.Stored[k].Append(b.fields[column].of(text))
 	}
 	if f.out != nil {
 		r := &b.rows[c.Rows]

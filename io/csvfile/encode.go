@@ -29,7 +29,7 @@ type piece struct {
 // Begin fixes what is decoded and written, and writes the header. It fails
 // where a position, the number of classes or the decimals make no sense.
 func (f *File) Begin(read cloud.Request, write cloud.Layout, out io.Writer) error {
-	wanted := slices.Concat(read.Numbers, read.Texts)
+	wanted := slices.Concat(read.Numbers, read.Texts, read.Stored)
 	if out != nil {
 		wanted = append(wanted, write.XYZ[:]...)
 	}

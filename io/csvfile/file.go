@@ -14,6 +14,7 @@ import (
 type Options struct {
 	Names  []string // column names of a file without a header line
 	Divert bool     // bad rows become Chunk.Rejects instead of an error
+	Passed []int64  // lines, rising, on which rows begin that are passed over: they become Chunk.Rejects without a reason
 }
 
 // extensions of delimited text; each may be followed by .gz or .zst.
@@ -36,6 +37,7 @@ type File struct {
 	text   io.ReadCloser // the same decompressed
 	codec  codec
 	divert bool
+	passed []int64
 
 	head
 	columns []cloud.Column
@@ -73,7 +75,7 @@ func Open(path string, o Options) (*File, error) {
 
 // newFile reads the header from a source, which it closes only by File.Close.
 func newFile(s *source, o Options) (*File, error) {
-	f := &File{path: s.path, source: s, codec: codecOf(s.path), divert: o.Divert, blockSize: blockSize}
+	f := &File{path: s.path, source: s, codec: codecOf(s.path), divert: o.Divert, passed: o.Passed, blockSize: blockSize}
 	var err error
 	if f.text, err = f.codec.reader(s); err != nil {
 		return nil, f.readError(err)

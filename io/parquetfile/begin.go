@@ -42,6 +42,13 @@ func (f *File) beginReading(read cloud.Request, write cloud.Layout, laidOut bool
 		}
 		f.texts = append(f.texts, c)
 	}
+	for _, i := range read.Stored {
+		c, err := f.newStored(i)
+		if err != nil {
+			return err
+		}
+		f.stored = append(f.stored, c)
+	}
 	return nil
 }
 

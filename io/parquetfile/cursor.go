@@ -25,6 +25,7 @@ type cursor struct {
 	levels  hybrid
 	spilled bool // the page at hand lies in scratch
 	scratch scratch
+	stored  bool        // values are handed over as they are stored
 	few     cloud.Texts // on their way to it
 	hasDict bool
 	dict    cloud.Texts
@@ -42,6 +43,7 @@ type cursor struct {
 		coded  codedWords
 		length lengthWords
 		front  frontWords
+		stored storedWords
 	}
 
 	open       []byte // page data, decompressed

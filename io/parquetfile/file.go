@@ -6,6 +6,7 @@ import (
 	"io"
 	"os"
 	"path/filepath"
+	"slices"
 	"strings"
 
 	"bentray/io/cloud"
@@ -38,6 +39,7 @@ type File struct {
 	raw     []*cursor // x, y, z; none where there is no layout
 	numbers []source
 	texts   []*cursor
+	stored  []*cursor            // numbers and texts, as they are stored
 	checks  []func([]byte) error // by texts
 	group   int                  // the group of the next piece
 	done    int64                // rows of it that were handed out
@@ -156,7 +158,7 @@ func (f *File) Close() error {
 
 // cursors lists all columns that are read.
 func (f *File) cursors() []*cursor {
-	list := append(f.raw[:len(f.raw):len(f.raw)], f.texts...)
+	list := slices.Concat(f.raw, f.texts, f.stored)
 	for _, s := range f.numbers {
 		if s.cursor != nil {
 			list = append(list, s.cursor)

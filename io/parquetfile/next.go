@@ -126,13 +126,8 @@ func (f *File) share(rows int64) int64 {
 // decodeTexts decodes the texts of the next rows, at most so many, and returns
 // of how many: of fewer where they are long.
 func (f *File) decodeTexts(c *cloud.Chunk, most int64) (rows int64, err error) {
-	if len(c.Texts) != len(f.texts) {
-		c.Texts = make([]cloud.Texts, len(f.texts))
-	}
-	for k := range c.Texts {
-		c.Texts[k].Reset()
-	}
-	if len(c.Texts) == 0 {
+	c.Texts, c.Stored = emptied(c.Texts, len(f.texts)), emptied(c.Stored, len(f.stored))
+	if len(c.Texts)+len(c.Stored) == 0 {
 		return most, nil
 	}
 	for bytes := 0; rows < most && bytes < cutTextBytes; {
@@ -147,15 +142,37 @@ func (f *File) decodeTexts(c *cloud.Chunk, most int64) (rows int64, err error) {
 
 // decodeFewTexts appends a few rows and returns the bytes of all columns.
 func (f *File) decodeFewTexts(c *cloud.Chunk, rows int) (bytes int, err error) {
+	read := func(cursor *cursor, t *cloud.Texts) error {
+		if err := cursor.readTexts(t, rows); err != nil {
+			return err
+		}
+		if bytes += len(t.Bytes); bytes > maxTextBytes {
+			return cursor.fail(fmt.Errorf("the texts of %d rows are longer than %d bytes", len(t.Ends), maxTextBytes))
+		}
+		return nil
+	}
 	for k, cursor := range f.texts {
-		if err := cursor.readTexts(&c.Texts[k], rows); err != nil {
+		if err := read(cursor, &c.Texts[k]); err != nil {
 			return 0, err
 		}
-		if bytes += len(c.Texts[k].Bytes); bytes > maxTextBytes {
-			return 0, cursor.fail(fmt.Errorf("the texts of %d rows are longer than %d bytes", len(c.Texts[k].Ends), maxTextBytes))
+	}
+	for k, cursor := range f.stored {
+		if err := read(cursor, &c.Stored[k]); err != nil {
+			return 0, err
 		}
 	}
 	return bytes, nil
+}
+
+// emptied returns so many empty columns, in the same memory where there is any.
+func emptied(list []cloud.Texts, count int) []cloud.Texts {
+	if len(list) != count {
+		return make([]cloud.Texts, count)
+	}
+	for k := range list {
+		list[k].Reset()
+	}
+	return list
 }
 
 func (f *File) decodeNumbers(c *cloud.Chunk, p *piece) error {

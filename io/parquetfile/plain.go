@@ -56,6 +56,8 @@ func (k kind) number(v int64) float64 {
 		return float64(uint32(v))
 	case uint64s:
 		return float64(uint64(v))
+	case patterns:
+		return math.Float64frombits(uint64(v))
 	case millis:
 		return seconds(v, 1e3)
 	case micros:

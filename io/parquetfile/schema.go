@@ -24,6 +24,7 @@ const (
 	micros
 	nanos
 	booleans
+	patterns // the bits of what has 64, as they are stored
 	texts
 )
 

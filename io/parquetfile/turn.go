@@ -88,7 +88,7 @@ func (c *cursor) turnGiant(h *parquet.PageHeader) error {
 		return err
 	}
 	defer c.forget()
-	if c.leaf.kind == texts {
+	if c.leaf.kind == texts || c.stored {
 		return c.spillTexts()
 	}
 	return c.spill()
@@ -157,6 +157,9 @@ func (c *cursor) turnData(h *parquet.PageHeader, packed, open *[]byte) error {
 			err = c.chooseWords(&b)
 		} else {
 			err = c.chooseNumbers(&b)
+		}
+		if c.stored {
+			c.chooseStored()
 		}
 	}
 	c.left = b.rows
