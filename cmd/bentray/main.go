@@ -38,6 +38,7 @@ var (
 type cli struct {
 	Run     runCommand       `cmd:"" help:"Correct all clouds of a job."`
 	Plan    planCommand      `cmd:"" help:"Show what run would do, or a cloud's columns and a starting job."`
+	Diff    diffCommand      `cmd:"" help:"Compare raw and corrected clouds, and with surveyed points."`
 	Index   indexCommand     `cmd:"" help:"Refractive index and speed of sound of given water and air."`
 	Ray     rayCommand       `cmd:"" help:"Bend one ray, step by step, for a check by hand."`
 	Surface surfaceCommand   `cmd:"" help:"Describe a job's water surface, and draw it."`
@@ -113,7 +114,7 @@ func report(stderr io.Writer, err error) int {
 		return exitDone
 	case errors.Is(err, errPartly):
 		return exitPartly
-	case errors.Is(err, errNothing):
+	case errors.Is(err, errNothing), errors.Is(err, errNotHeld):
 		return exitNothing
 	case errors.Is(err, context.Canceled):
 		fmt.Fprintln(stderr, "bentray: interrupted; done files stay done, run again for the rest")

@@ -1,0 +1,177 @@
+package quality
+
+import (
+	"cmp"
+	"fmt"
+	"math"
+	"slices"
+
+	"bentray/io/cloud"
+)
+
+// readCheck reads the check points of a file: columns x, y, z, projected as the cloud.
+// Points without finite coordinates are counted as ignored.
+func readCheck(path string) (x, y, z []float64, ignored int, err error) {
+	t, err := openTable(path, nil, nil)
+	if err != nil {
+		return nil, nil, nil, 0, err
+	}
+	defer t.Close()
+	xyz, err := cloud.Coordinates(t.Columns(), nil)
+	if err != nil {
+		return nil, nil, nil, 0, fmt.Errorf("%s: check points: %w", path, err)
+	}
+	numbers, _, err := cloud.ReadAll(t, cloud.Request{Numbers: xyz[:]})
+	if err != nil {
+		return nil, nil, nil, 0, err
+	}
+	for i := range numbers[0] {
+		if sum := numbers[0][i] + numbers[1][i] + numbers[2][i]; sum-sum != 0 {
+			ignored++
+			continue
+		}
+		x, y, z = append(x, numbers[0][i]), append(y, numbers[1][i]), append(z, numbers[2][i])
+	}
+	if len(x) == 0 {
+		return nil, nil, nil, 0, fmt.Errorf("%s: has no check point with finite coordinates, want columns x, y, z", path)
+	}
+	return x, y, z, ignored, nil
+}
+
+// reportCheck makes the report of matched points. Depth is that of the cloud's
+// corrected points.
+func reportCheck(r *CheckReport, m *matcher, depth *bins, plan, height float64) {
+	r.Points = m.points(r.Match, plan, height)
+	r.Given = len(r.Points)
+	var matched, deep []CheckPoint // deep: with a depth
+	for i, p := range r.Points {
+		isMatched := !math.IsNaN(p.Residual)
+		if isMatched {
+			matched = append(matched, p)
+		}
+		if isMatched && !math.IsNaN(p.Depth) {
+			deep = append(deep, p)
+		}
+		if p.Depth <= 0 || !isMatched && m.isDry[i] {
+			r.OnLand++
+		}
+	}
+	r.Count, r.Unmatched = len(matched), r.Given-len(matched)
+	r.Residuals = residualsOf(matched)
+	slope, sigma := regression(deep)
+	r.Slope, r.SlopeSigma = Number(slope), Number(sigma)
+	r.Meaning = meaning(slope, sigma)
+	r.ByDepth = checkBands(deep)
+	r.S44 = shares(deep, height)
+	r.Warnings = r.warnings(deep, depth)
+}
+
+// residualsOf sums up the residuals of matched points.
+func residualsOf(points []CheckPoint) Residuals {
+	n := float64(len(points))
+	if n == 0 {
+		nan := Number(math.NaN())
+		return Residuals{nan, nan, nan, nan}
+	}
+	var sum, squares, about float64
+	magnitudes := make([]float64, len(points))
+	for i, p := range points {
+		sum += p.Residual
+		squares += p.Residual * p.Residual
+		magnitudes[i] = math.Abs(p.Residual)
+	}
+	bias := sum / n
+	for _, p := range points {
+		about += (p.Residual - bias) * (p.Residual - bias)
+	}
+	return Residuals{Number(bias), Number(math.Sqrt(squares / n)), Number(math.Sqrt(about / (n - 1))), Number(percentile(magnitudes, 0.95))}
+}
+
+// percentile returns a quantile of values, linear between the order statistics at
+// (n-1) p (Hyndman and Fan 1996, Sample quantiles in statistical packages, definition
+// 7). It sorts the values; there is at least one.
+func percentile(values []float64, p float64) float64 {
+	slices.Sort(values)
+	at := p * float64(len(values)-1)
+	k := int(at)
+	if k+1 == len(values) {
+		return values[k]
+	}
+	return values[k] + (at-float64(k))*(values[k+1]-values[k])
+}
+
+// regression returns the least-squares slope of the residual against depth, and its
+// standard error; NaN where the points do not give them.
+func regression(points []CheckPoint) (slope, sigma float64) {
+	n := float64(len(points))
+	var depth, residual float64
+	for _, p := range points {
+		depth += p.Depth / n
+		residual += p.Residual / n
+	}
+	var dd, dr, rest float64
+	for _, p := range points {
+		dd += (p.Depth - depth) * (p.Depth - depth)
+		dr += (p.Depth - depth) * (p.Residual - residual)
+	}
+	if len(points) < 3 || !(dd > 0) {
+		return math.NaN(), math.NaN()
+	}
+	slope = dr / dd
+	for _, p := range points {
+		e := p.Residual - residual - slope*(p.Depth-depth)
+		rest += e * e
+	}
+	return slope, math.Sqrt(rest / (n - 2) / dd)
+}
+
+// meaning says what a slope of the residual against depth stands for.
+func meaning(slope, sigma float64) string {
+	switch {
+	case math.IsNaN(slope):
+		return "the check points do not give a slope of the error against depth"
+	case math.Abs(slope) <= 2*sigma:
+		return "no slope of the error against depth beyond 2 standard errors: nothing speaks against the index and the angles; a bias that is the same at all depths points to the water level, or to different vertical references"
+	}
+	where := "too shallow"
+	if slope < 0 {
+		where = "too deep"
+	}
+	return fmt.Sprintf("the deeper, the more the corrected bed is %s, by %.2f %% of the depth: an index that is off in proportion does this (temperature, salinity, phase or group index), so does the geometry of the rays (angles, calibration, origins, waves); a wrong water level moves all depths alike and shows in the bias", where, 100*math.Abs(slope))
+}
+
+// checkBands sums up the residuals by depth, in round bands.
+func checkBands(points []CheckPoint) []CheckBand {
+	list := []CheckBand{}
+	if len(points) == 0 {
+		return list
+	}
+	byDepth := func(a, b CheckPoint) int { return cmp.Compare(a.Depth, b.Depth) }
+	low, high := slices.MinFunc(points, byDepth).Depth, slices.MaxFunc(points, byDepth).Depth
+	w := chooseWidth(low, high, maxBands, step{-2})
+	groups := make([][]CheckPoint, w.count(low, high))
+	first := w.band(low)
+	for _, p := range points {
+		groups[w.band(p.Depth)-first] = append(groups[w.band(p.Depth)-first], p)
+	}
+	for i, g := range groups {
+		list = append(list, CheckBand{Number(w.from(first + i)), Number(w.to(first + i)), len(g), residualsOf(g)})
+	}
+	return list
+}
+
+// shares returns, by order, which share of the points is within its limit; heights
+// have so many metres a unit.
+func shares(points []CheckPoint, height float64) map[string]Number {
+	list := map[string]Number{}
+	for _, o := range orders {
+		within := 0
+		for _, p := range points {
+			if math.Abs(p.Residual)*height <= o.limit(p.Depth*height) {
+				within++
+			}
+		}
+		list[o.name] = Number(float64(within) / float64(len(points)))
+	}
+	return list
+}

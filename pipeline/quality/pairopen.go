@@ -1,0 +1,78 @@
+package quality
+
+import (
+	"errors"
+	"fmt"
+
+	"bentray/io/cloud"
+	"bentray/io/parquetfile"
+	"bentray/pipeline"
+)
+
+// open opens both files, and tells what they are.
+func (d *fileDiff) open() (err error) {
+	if d.made, err = readProvenance(d.pair.corrected); err != nil {
+		return err
+	}
+	if d.rejects, err = readRejects(d.pair.corrected); err != nil {
+		return err
+	}
+	if d.b, err = openTable(d.pair.corrected, nil, nil); err != nil {
+		return err
+	}
+	if err := d.openFirst(); err != nil {
+		d.b.Close()
+		return err
+	}
+	return nil
+}
+
+func (d *fileDiff) openFirst() (err error) {
+	isOutput := false
+	if d.to, isOutput = findOutput(d.b.Columns()); !isOutput {
+		return d.noOutput()
+	}
+	var own []string
+	for _, c := range d.b.Columns()[:d.to.raw] {
+		own = append(own, c.Name)
+	}
+	if d.a, err = openTable(d.pair.raw, own, nil); err != nil {
+		return err
+	}
+	d.from, _ = findOutput(d.a.Columns())
+	if d.from != nil {
+		d.report.RowsDiverted = int64(len(d.rejects.lines)) // the first cloud does not have them either
+		d.rejects = &rejects{}
+	}
+	if len(d.rejects.lines) > 0 {
+		d.a.Close()
+		if d.a, err = openTable(d.pair.raw, own, d.rejects.lines); err != nil {
+			return err
+		}
+	}
+	if parquetfile.IsName(d.pair.raw) != parquetfile.IsName(d.pair.corrected) {
+		err = callErrorf("%s and %s are of two formats, want one: an output has the format of its input", d.pair.raw, d.pair.corrected)
+		return errors.Join(err, d.a.Close())
+	}
+	return nil
+}
+
+// noOutput explains why the second file is none of bentray's.
+func (d *fileDiff) noOutput() error {
+	if t, err := openTable(d.pair.raw, nil, nil); err == nil {
+		defer t.Close()
+		if _, is := findOutput(t.Columns()); is {
+			return callErrorf("%s is the raw cloud and %s the corrected one: exchange them", d.pair.corrected, d.pair.raw)
+		}
+	}
+	return callErrorf("%s: has no raw coordinates (such as x_raw, y_raw, z_raw) with depth and outcome behind its own columns, want an output of bentray; the columns are %s", d.pair.corrected, cloud.Names(d.b.Columns()))
+}
+
+// inFile puts a file's name before an error, which stays of its kind.
+func inFile(path string, err error) error {
+	var call *pipeline.CallError
+	if errors.As(err, &call) {
+		return callErrorf("%s: %w", path, call.Err)
+	}
+	return fmt.Errorf("%s: %w", path, err)
+}
