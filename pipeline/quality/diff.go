@@ -114,7 +114,7 @@ func (r *Report) run(ctx context.Context, s *shared, pairs []filePair, without [
 			r.Findings = append(r.Findings, f)
 		}
 	}
-	s.watch.Begin(len(pairs), totalBytes(pairs))
+	s.watch.Begin("", len(pairs), totalBytes(pairs))
 	all := s.newFigures()
 	turns := make([]chan struct{}, len(pairs)+1) // turn i ends with the file before i
 	for i := range turns {
@@ -162,6 +162,6 @@ func totalBytes(pairs []filePair) (bytes int64) {
 
 type silent struct{}
 
-func (silent) Begin(int, int64)        {}
-func (silent) Read(int64)              {}
-func (silent) End(receipt.FileSummary) {}
+func (silent) Begin(string, int, int64) {}
+func (silent) Read(int64)               {}
+func (silent) End(receipt.FileSummary)  {}
