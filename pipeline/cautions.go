@@ -11,6 +11,7 @@ import (
 const (
 	levelExtent = 2000 // one constant ellipsoidal level over more than this is not level
 	levelRise   = 30   // the highest point of a shallow cloud lies no deeper than this
+	farPlaces   = 5e4  // stations and gauges that are all farther off tell nothing of the water here
 )
 
 // geometryCautions looks at the bounds of raw points for the usual mistakes.
@@ -21,7 +22,7 @@ func (t *tally) geometryCautions(s *survey) []string {
 	if x.isEmpty() || y.isEmpty() || z.isEmpty() {
 		return nil
 	}
-	if math.Max(math.Abs(x.low), math.Abs(x.high)) <= 180 && math.Max(math.Abs(y.low), math.Abs(y.high)) <= 90 {
+	if likeDegrees(x, y) {
 		say("all x lie within 180 and all y within 90: these look like degrees; coordinates must be projected lengths")
 	}
 	apart := func(what string, b orb.Bound) {
@@ -33,8 +34,16 @@ func (t *tally) geometryCautions(s *survey) []string {
 	if s.extent != nil {
 		apart("polygons", s.extentBound)
 	}
-	if b := s.zones.bound; s.zones.index != nil && math.Max(math.Abs(b.Min[0]), math.Abs(b.Max[0])) <= 180 && math.Max(math.Abs(b.Min[1]), math.Abs(b.Max[1])) <= 90 {
+	if b := s.zones.bound; s.zones.index != nil && likeDegrees(span{b.Min[0], b.Max[0]}, span{b.Min[1], b.Max[1]}) {
 		apart("zones", b) // elsewhere a tile may well lie outside all zones
+	}
+	for _, places := range []struct {
+		what string
+		x, y []float64
+	}{{"stations", s.water.records.X, s.water.records.Y}, {"gauges", s.surface.source.gauges.X, s.surface.source.gauges.Y}} {
+		if text := s.farFrom(x, y, places.x, places.y); text != "" {
+			say("the %s %s; are both in one projected system and unit?", places.what, text)
+		}
 	}
 	if s.surface.isConstant() {
 		cautions = append(cautions, s.levelCautions(*s.job.Surface.Level, math.Max(x.high-x.low, y.high-y.low)*s.plan, z)...)
@@ -51,6 +60,33 @@ func (s *survey) profileCautions() {
 		s.cautions = append(s.cautions, fmt.Sprintf("the level points are %.3f %s (rms) off the profile, but scatter by %.3f from one to the next: their levels do not keep falling along the centreline; look at them with bentray surface",
 			f.Spread/s.height, s.job.Input.VerticalUnit, f.Scatter/s.height))
 	}
+}
+
+// likeDegrees tells whether coordinates may be longitudes and latitudes.
+func likeDegrees(x, y span) bool {
+	return max(-x.low, x.high) <= 180 && max(-y.low, y.high) <= 90
+}
+
+// farFrom says how places (m) lie where they do not seem to belong to points of these
+// bounds (in the job's unit): nothing where they do, or there are none.
+func (s *survey) farFrom(x, y span, placeX, placeY []float64) string {
+	if len(placeX) == 0 {
+		return ""
+	}
+	nearest, ownX, ownY := math.Inf(1), emptySpan(), emptySpan()
+	for i := range placeX {
+		ownX.add(placeX[i] / s.plan)
+		ownY.add(placeY[i] / s.plan)
+		nearest = min(nearest, math.Hypot(x.beyond(placeX[i]/s.plan), y.beyond(placeY[i]/s.plan))*s.plan)
+	}
+	switch {
+	case nearest > 0 && likeDegrees(ownX, ownY) && !likeDegrees(x, y):
+		return fmt.Sprintf("(x %.6g to %.6g, y %.6g to %.6g) look like degrees beside the points (x %.1f to %.1f, y %.1f to %.1f)",
+			ownX.low, ownX.high, ownY.low, ownY.high, x.low, x.high, y.low, y.high)
+	case nearest > farPlaces:
+		return fmt.Sprintf("all lie far from the points, the nearest %.0f km", nearest/1000)
+	}
+	return ""
 }
 
 // levelCautions looks at one constant level; extent is in metres, level and

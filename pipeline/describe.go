@@ -2,9 +2,9 @@ package pipeline
 
 import (
 	"context"
-	"errors"
 	"math"
 
+	"bentray/geo"
 	"bentray/pipeline/job"
 )
 
@@ -72,6 +72,7 @@ type CurvePoint struct{ Chainage, Level, Sigma float64 }
 type GridReport struct {
 	Cell, Reach, Window, Offset float64 // as used; Reach in cells, Window in s
 	Points, Ignored             int     // Ignored have a coordinate that is not finite
+	Misfit                      geo.GridMisfit
 	Cells, Patches              int     // Patches are more where passes at other times overlap
 	Sigma                       float64 // median of the cells' levels
 	Extent                      Extent  // of the points
@@ -90,42 +91,41 @@ type SeparationReport struct {
 	Range  Range
 }
 
-// DescribeSurface reads the job's surface and what it is made from, and describes
-// it; of the clouds it reads their surface points alone, where the surface is made of
-// them, and tells the watcher (nil: nobody). It writes nothing. Errors are *CallErrors,
-// or the context's.
+// DescribeSurface reads what a run of the job reads before its clouds, and describes
+// the surface. Of the clouds it reads their surface points, where the surface is made
+// of them, and tells the watcher (nil: nobody); and where there is a gauge the times
+// with which they begin. Where it needs none of that they need not be there. It writes
+// nothing. Errors are *CallErrors, or the context's.
 func DescribeSurface(ctx context.Context, j *job.Job, watch Watcher) (*SurfaceReport, error) {
-	var clouds []input
-	if g := j.Surface.Grid; g != nil && g.Points == "" {
-		var err error
-		if clouds, _, err = findInputs(j); err != nil {
+	clouds, _, err := findInputs(j)
+	if g := j.Surface.Grid; err != nil && g != nil && g.Points == "" {
+		return nil, err
+	}
+	s := newSurvey(j, Options{Watch: watch})
+	s.describes = true
+	if err := s.read(ctx, clouds); err != nil {
+		return nil, err
+	}
+	times := emptySpan()
+	if s.surface.timed {
+		if times, err = s.cloudTimes(ctx, clouds); err != nil {
 			return nil, err
 		}
 	}
-	s := newSurvey(j, Options{Watch: watch})
-	if err := s.readUnits(); err != nil {
-		return nil, &CallError{err}
+	if s.surface.at != nil && !times.isEmpty() {
+		s.cautions = append(s.cautions, atNotUsed)
 	}
-	err := errors.Join(
-		s.auxiliaryFile(ctx, "extent", "[extent] polygons", j.Extent.Polygons, s.readExtent),
-		s.auxiliaryFile(ctx, "zones", "[water] zones", j.Water.Zones, s.readZones),
-		s.readSurface(ctx, clouds),
-	)
-	if ctx.Err() != nil {
-		return nil, ctx.Err()
-	}
-	if err != nil {
-		return nil, &CallError{err}
-	}
-	return s.describeSurface(), nil
+	return s.describeSurface(times), nil
 }
 
-func (s *survey) describeSurface() *SurfaceReport {
+// describeSurface reports on the surface; clouds is the span of the clouds' times
+// (UTC seconds), as far as it is known.
+func (s *survey) describeSurface(clouds span) *SurfaceReport {
 	j := s.job.Surface
 	r := &SurfaceReport{
 		Unit: s.job.Input.Unit, VerticalUnit: s.job.Input.VerticalUnit, Level: j.Level, Column: j.Column,
 		Plane: s.describePlane(), Profile: s.describeProfile(), Zones: s.describeZones(), Gauge: s.describeGauge(),
-		Map: s.mapLevels(), Cautions: s.cautions,
+		Map: s.mapLevels(clouds), Cautions: s.cautions,
 	}
 	if s.surface.grid != nil {
 		r.Grid = s.describeGrid()
@@ -143,12 +143,21 @@ func (s *survey) describeGrid() *GridReport {
 	bare.surface = waterSurface{grid: s.surface.grid, curved: true, source: surfaceSource{area: s.surface.source.area}}
 	r := &GridReport{
 		Cell: stats.Cell / s.plan, Reach: j.Reach, Window: j.Window, Offset: j.Offset, Points: stats.Used, Ignored: stats.Ignored,
-		Cells: stats.Cells, Patches: stats.Patches, Sigma: stats.Sigma / s.height, Extent: s.extentOf(s.surface.source.area),
+		Misfit: s.gridMisfit(), Cells: stats.Cells, Patches: stats.Patches, Sigma: stats.Sigma / s.height, Extent: s.extentOf(s.surface.source.area),
 	}
-	if m := bare.mapLevels(); m != nil {
+	if m := bare.mapLevels(emptySpan()); m != nil {
 		r.Level = m.Level
 	}
 	return r
+}
+
+// gridMisfit compares the surface points with the grid, in the job's unit.
+func (s *survey) gridMisfit() geo.GridMisfit {
+	m := s.surface.grid.Misfit(s.surface.source.gridPoints)
+	for _, length := range []*float64{&m.RMS, &m.Largest, &m.Farthest, &m.Sigma} {
+		*length /= s.height
+	}
+	return m
 }
 
 func (s *survey) describeZones() *ZonesReport {

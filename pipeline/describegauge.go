@@ -22,9 +22,15 @@ type GaugeReport struct {
 
 // GaugeSeries is the records of one gauge.
 type GaugeSeries struct {
-	Name  string // empty where the file has no names
+	Name  string  // empty where the file has no names
+	X, Y  float64 // its place in the job's unit; NaN where the file has no places
 	UTC   []float64
 	Level []float64
+}
+
+// Times returns the first and the last record's time, UTC.
+func (g *GaugeSeries) Times() (from, to time.Time) {
+	return utcTime(g.UTC[0]), utcTime(g.UTC[len(g.UTC)-1])
 }
 
 func (s *survey) describeGauge() *GaugeReport {
@@ -33,13 +39,13 @@ func (s *survey) describeGauge() *GaugeReport {
 		return nil
 	}
 	r := &GaugeReport{Series: gaugeSeries(records), Records: len(records.UTC), MaxGap: j.MaxGap}
-	times, levels := emptySpan(), emptySpan()
+	times, levels := s.surface.source.gaugeTimes, emptySpan()
 	for k := range r.Series {
 		g := &r.Series[k]
+		g.X, g.Y = g.X/s.plan, g.Y/s.plan
 		for i := range g.Level {
 			g.Level[i] = g.Level[i]/s.height + j.Zero
 		}
-		times.addFinite(g.UTC)
 		levels.addFinite(g.Level)
 		r.addGaps(g.UTC)
 	}
@@ -57,22 +63,23 @@ func (r *GaugeReport) addGaps(utc []float64) {
 	}
 }
 
-// gaugeSeries parts records by gauge: by name or, without, by place.
+// gaugeSeries parts records by gauge: by name or, without, by place, in metres.
 func gaugeSeries(r *geo.GaugeRecords) []GaugeSeries {
 	var series []GaugeSeries
 	number := map[string]int{}
 	for i, utc := range r.UTC {
-		var name, key string
-		switch {
-		case r.Name != nil:
-			name, key = r.Name[i], r.Name[i]
-		case r.X != nil:
-			key = fmt.Sprint(r.X[i], r.Y[i])
+		one := GaugeSeries{X: math.NaN(), Y: math.NaN()}
+		if r.X != nil {
+			one.X, one.Y = r.X[i], r.Y[i]
+		}
+		key := fmt.Sprint(one.X, one.Y)
+		if r.Name != nil {
+			one.Name, key = r.Name[i], r.Name[i]
 		}
 		k, known := number[key]
 		if !known {
 			k = len(series)
-			number[key], series = k, append(series, GaugeSeries{Name: name})
+			number[key], series = k, append(series, one)
 		}
 		series[k].UTC, series[k].Level = append(series[k].UTC, utc), append(series[k].Level, r.Level[i])
 	}
@@ -83,21 +90,4 @@ func gaugeSeries(r *geo.GaugeRecords) []GaugeSeries {
 func utcTime(seconds float64) time.Time {
 	whole, part := math.Modf(seconds)
 	return time.Unix(int64(whole), int64(math.Round(part*1e9))).UTC()
-}
-
-// mapTime returns the time (UTC seconds) of a map of levels: that of the job for
-// clouds without times, else that of the record nearest to the middle of all.
-func (s *survey) mapTime() float64 {
-	if s.surface.at != nil {
-		return *s.surface.at
-	}
-	times := emptySpan()
-	times.addFinite(s.surface.source.gauges.UTC)
-	middle, best := (times.low+times.high)/2, math.NaN()
-	for _, utc := range s.surface.source.gauges.UTC {
-		if !(math.Abs(utc-middle) >= math.Abs(best-middle)) {
-			best = utc
-		}
-	}
-	return best
 }

@@ -3,7 +3,6 @@ package pipeline
 import (
 	"math"
 	"slices"
-	"time"
 
 	"bentray/correct"
 )
@@ -17,8 +16,8 @@ type LevelMap struct {
 	X, Y     []float64 // centres of columns, rising, and of rows, rising
 	Levels   []float64 // row by row; NaN where there is no surface
 	Level    Range
-	At       *time.Time // UTC of a gauge's level; nil without gauge
-	Outlines []Outline  // of zones
+	At       *Moment   // of a gauge's level; nil without gauge
+	Outlines []Outline // of zones
 }
 
 // Outline is a ring of a zone's polygon in the plan.
@@ -28,8 +27,9 @@ type Outline struct {
 }
 
 // mapLevels returns the map; nil where the level is the same everywhere, where the
-// cloud alone knows it, or where nothing says in which area it holds.
-func (s *survey) mapLevels() *LevelMap {
+// cloud alone knows it, or where nothing says in which area it holds. clouds is the
+// span of the clouds' times (UTC seconds), as far as it is known.
+func (s *survey) mapLevels(clouds span) *LevelMap {
 	f, a := &s.surface, s.mapArea()
 	sloping := f.curved || f.plane != nil || slices.ContainsFunc(f.zoneLevel, func(v float64) bool { return v == v })
 	if !sloping || !a.used || !(a.x.high > a.x.low || a.y.high > a.y.low) {
@@ -38,7 +38,7 @@ func (s *survey) mapLevels() *LevelMap {
 	m := &LevelMap{Outlines: s.outlines()}
 	cell := max(a.x.high-a.x.low, a.y.high-a.y.low) / mapCells
 	m.X, m.Y = centres(a.x, cell), centres(a.y, cell)
-	s.sample(m)
+	s.sample(m, clouds)
 	scale(m.X, 1/s.plan)
 	scale(m.Y, 1/s.plan)
 	levels := emptySpan()
@@ -93,16 +93,16 @@ func centres(v span, cell float64) []float64 {
 }
 
 // sample takes the levels at the cells' centres, which are in metres.
-func (s *survey) sample(m *LevelMap) {
+func (s *survey) sample(m *LevelMap, clouds span) {
 	n := len(m.X)
 	at, y, zone, none := make([]float64, n), make([]float64, n), make([]int32, n), make([]float64, n)
 	fill(none, math.NaN())
 	base := s.surface
 	base.gauges = nil // added below: its time is not that of a grid's points
 	if s.surface.gauges != nil {
-		fill(at, s.mapTime())
-		t := utcTime(at[0])
-		m.At = &t
+		var utc float64
+		utc, m.At = s.moment(clouds)
+		fill(at, utc)
 	}
 	ownX, ownY := slices.Clone(m.X), make([]float64, n)
 	scale(ownX, 1/s.plan)

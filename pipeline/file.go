@@ -144,7 +144,10 @@ func (w *rewriting) commit(whole receipt.Input) (*receipt.Receipt, error) {
 		Inputs:   append([]receipt.Input{whole}, w.auxiliary...),
 		Output:   receipt.File{Path: w.in.target, Bytes: w.output.bytes, SHA256: hex.EncodeToString(w.output.hash.Sum(nil))},
 		RowsRead: w.rows.Read, RowsWritten: w.rows.Written, RowsDiverted: w.rows.Diverted,
-		Outcomes: w.tally.counts(), Ranges: w.tally.ranges(w.survey), Cautions: append(w.tally.cautions(w.survey), cautionsOf(w.file, w.read)...),
+		Outcomes: w.tally.counts(), Sensors: w.tally.bySensor(w.survey), Ranges: w.tally.ranges(w.survey), Cautions: append(w.tally.cautions(w.survey), cautionsOf(w.file, w.read)...),
+	}
+	if w.rows.Written == 0 {
+		r.Cautions = append(r.Cautions, "the file holds no points")
 	}
 	if w.rows.Diverted > 0 {
 		r.Cautions = append(r.Cautions, fmt.Sprintf("%d of %d rows could not be read and were diverted to %s%s", w.rows.Diverted, w.rows.Read, w.in.target, rejectsSuffix))

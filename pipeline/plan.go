@@ -2,6 +2,7 @@ package pipeline
 
 import (
 	"context"
+	"fmt"
 	"io"
 	"math"
 	"slices"
@@ -21,7 +22,11 @@ type Plan struct {
 	Roles    []RoleColumn
 	Heads    Heads
 	Sensors  []PlannedSensor
-	Corners  [4]Corner // of the heads' bounds; NaN where the surface depends on the cloud or on time
+	Zones    *ZonesReport    // nil without
+	Stations *StationsReport // nil without
+	Gauge    *GaugeReport    // nil without
+	Corners  [4]Corner       // of the heads' bounds; NaN where there is no surface, or the cloud alone knows it
+	At       *Moment         // of the corners, where they depend on time
 	Cautions []string
 }
 
@@ -54,6 +59,7 @@ type PlannedSensor struct {
 	Wavelength  float64 // nm
 	Air         [2]float64
 	Water       [2]float64      // of the job's own water; NaN where it has none
+	Points      int64           // of the heads' points, those it made
 	Trajectory  *TrajectoryInfo // nil where the job names none
 	Cameras     *CameraInfo     // nil unless it is multiview
 }
@@ -90,7 +96,7 @@ func MakePlan(ctx context.Context, j *job.Job, watch Watcher) (*Plan, error) {
 		return nil, err
 	}
 	p := &planner{survey: s, known: readHistory(j.Resolve(j.Output.Folder)), tally: newTally()}
-	p.plan = Plan{Run: s.run, LeftOut: leftOut}
+	p.plan = Plan{Run: s.run, LeftOut: leftOut, Zones: s.describeZones(), Stations: s.describeStations(), Gauge: s.describeGauge()}
 	for _, sn := range s.sensors {
 		p.plan.Sensors = append(p.plan.Sensors, s.planSensor(sn))
 	}
@@ -214,9 +220,37 @@ func (p *planner) finish() {
 	for k, b := range t.bounds {
 		h.Low[k], h.High[k] = b.low, b.high
 	}
+	for k := range t.sensors {
+		p.plan.Sensors[k].Points = t.sensors[k]
+	}
 	p.corners()
 	h.Images = t.images.heads(t, p.survey)
-	p.plan.Cautions = slices.Concat(t.cautions(p.survey), p.imageCautions(), p.ofFiles)
+	p.plan.Cautions = slices.Concat(t.cautions(p.survey), p.idleSensors(), p.imageCautions(), p.whyNoPoints(), p.ofFiles)
+}
+
+// idleSensors names the sensors that fit none of the heads' points, where any came as
+// far as that.
+func (p *planner) idleSensors() (cautions []string) {
+	matched := p.tally.points() - p.tally.outcomes[correct.Invalid] - p.tally.outcomes[correct.NotSelected]
+	for _, sn := range p.plan.Sensors {
+		if sn.Name != "" && sn.Points == 0 && matched > 0 {
+			cautions = append(cautions, fmt.Sprintf("sensor %q fits none of the first %d points of the files", sn.Name, p.tally.points()))
+		}
+	}
+	return cautions
+}
+
+// whyNoPoints says why there is nothing to look at, where there is nothing.
+func (p *planner) whyNoPoints() []string {
+	if p.tally.points() > 0 {
+		return nil
+	}
+	for _, f := range p.plan.Files {
+		if f.Err != nil {
+			return []string{fmt.Sprintf("no point could be read: %v", f.Err)}
+		}
+	}
+	return []string{"the files hold no points"}
 }
 
 // corners asks the surface at the corners of the bounds.
@@ -229,13 +263,14 @@ func (p *planner) corners() {
 		scale(v, p.survey.plan)
 		return v
 	}
-	utc := make([]float64, 4)
-	fill(utc, math.NaN())
-	if at := p.surface.at; at != nil {
-		fill(utc, *at)
+	utc, none, zone := make([]float64, 4), []float64{math.NaN(), math.NaN(), math.NaN(), math.NaN()}, make([]int32, 4)
+	if p.surface.timed {
+		var at float64
+		at, p.plan.At = p.moment(p.tally.utc(p.survey))
+		fill(utc, at)
 	}
-	none := []float64{math.NaN(), math.NaN(), math.NaN(), math.NaN()}
-	p.surface.fill(planes, inMetres(x), inMetres(y), moments{none, utc}, []int32{-1, -1, -1, -1}, none)
+	p.fillZones(zone, x, y)
+	p.surface.fill(planes, inMetres(x), inMetres(y), moments{none, utc}, zone, none)
 	level := planes.Level
 	scale(level, 1/p.height)
 	for i := range p.plan.Corners {

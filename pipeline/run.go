@@ -140,19 +140,19 @@ func (r *runner) one(ctx context.Context, in input) {
 			f.Status = receipt.Done
 		}
 	}
-	var outcomes map[string]int64
+	var record *receipt.Receipt
 	switch {
 	case ctx.Err() != nil && err != nil: // interrupted
 	case err != nil:
 		f.Status, f.Error = receipt.Failed, err.Error()
 	default:
 		f.Rows = receipt.Rows{Read: done.RowsRead, Written: done.RowsWritten, Diverted: done.RowsDiverted}
-		f.Cautions, outcomes = done.Cautions, done.Outcomes
+		f.Cautions, record = done.Cautions, done.Receipt
 		f.InputBytes, f.InputSHA256, f.InputModified = done.Inputs[0].Bytes, done.Inputs[0].SHA256, done.modified
 	}
 	f.Seconds = time.Since(started).Seconds()
 	r.mu.Lock()
-	r.summary.Add(f, outcomes)
+	r.summary.Add(f, record)
 	r.mu.Unlock()
 	r.watch.End(f)
 }

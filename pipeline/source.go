@@ -5,10 +5,12 @@ import "bentray/geo"
 // surfaceSource is what a surface was made from, as far as a description of it
 // tells; metres and seconds.
 type surfaceSource struct {
-	x, y, z      []float64 // waterline or level points
-	lineX, lineY []float64 // centreline
-	area         area      // of the base's points, or of the centreline and its reach
+	x, y, z      []float64          // waterline or level points
+	lineX, lineY []float64          // centreline
+	area         area               // of the base's points, or of the centreline and its reach
+	gridPoints   *geo.SurfacePoints // nil in a run
 	gauges       geo.GaugeRecords
+	gaugeTimes   span // UTC seconds
 	separation   area
 	separationZ  span
 }

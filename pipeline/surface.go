@@ -203,6 +203,9 @@ func (s *survey) makeGrid(points *geo.SurfacePoints) (err error) {
 	}
 	low, high := points.Bounds()
 	s.surface.source.area.add([]float64{low[0], high[0]}, []float64{low[1], high[1]})
+	if s.describes {
+		s.surface.source.gridPoints = points
+	}
 	return nil
 }
 
@@ -219,7 +222,8 @@ func (s *survey) readGauges(path string) error {
 	scale(r.X, s.plan)
 	scale(r.Y, s.plan)
 	s.surface.curved = s.surface.curved || r.X != nil // the level differs between gauges
-	s.surface.source.gauges = r
+	s.surface.source.gauges, s.surface.source.gaugeTimes = r, emptySpan()
+	s.surface.source.gaugeTimes.addFinite(r.UTC)
 	g := s.job.Surface.Gauge
 	s.surface.gauges, err = geo.NewGauges(r, g.Zero*s.height, g.MaxGap)
 	return err

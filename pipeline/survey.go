@@ -27,6 +27,7 @@ const Program = "bentray " + Version
 // survey is what all files of a job share. It does not change once it is read.
 type survey struct {
 	job          *job.Job
+	describes    bool // keeps what a description alone needs
 	workers      int
 	watch        Watcher
 	settings     []byte
@@ -57,14 +58,20 @@ func newSurvey(j *job.Job, o Options) *survey {
 	return s
 }
 
-// readSurvey reads what the job names beside its clouds, and of the clouds
-// themselves their surface points where the surface is made of them. Its errors
-// are CallErrors: nothing can be done without these files.
+// readSurvey returns what the files of a job share.
 func readSurvey(ctx context.Context, j *job.Job, clouds []input, o Options) (*survey, error) {
 	s := newSurvey(j, o)
+	return s, s.read(ctx, clouds)
+}
+
+// read reads what the job names beside its clouds, and of the clouds themselves their
+// surface points where the surface is made of them. Its errors are CallErrors: nothing
+// can be done without these files.
+func (s *survey) read(ctx context.Context, clouds []input) error {
 	if err := s.readUnits(); err != nil {
-		return nil, &CallError{err}
+		return &CallError{err}
 	}
+	j := s.job
 	err := errors.Join(
 		s.readSensors(ctx),
 		s.auxiliaryFile(ctx, "extent", "[extent] polygons", j.Extent.Polygons, s.readExtent),
@@ -73,19 +80,19 @@ func readSurvey(ctx context.Context, j *job.Job, clouds []input, o Options) (*su
 		s.readSurface(ctx, clouds),
 	)
 	if ctx.Err() != nil {
-		return nil, ctx.Err()
+		return ctx.Err()
 	}
 	if err != nil {
-		return nil, &CallError{err}
+		return &CallError{err}
 	}
 	if err := errors.Join(s.readWaters(), s.checkSides()); err != nil {
-		return nil, &CallError{fmt.Errorf("%s: %w", j.Path, err)}
+		return &CallError{fmt.Errorf("%s: %w", j.Path, err)}
 	}
 	if s.settings, err = j.Settings(); err != nil {
-		return nil, err
+		return err
 	}
 	s.run, err = receipt.Fingerprint(s.settings, s.auxiliary, correct.Version)
-	return s, err
+	return err
 }
 
 func (s *survey) readUnits() error {

@@ -20,7 +20,9 @@ type tally struct {
 	depth, incidence span
 	water, group     span // indices
 	images           viewTally
-	extended         int64 // corrected points whose water is outside the formula's published range
+	extended         int64   // corrected points whose water is outside the formula's published range
+	sensors          []int64 // points of each sensor; nil before the first chunk
+	gauge            gaugeTally
 }
 
 // span is the least and the greatest of some numbers.
@@ -51,6 +53,9 @@ func (s *span) addFinite(values []float64) {
 	}
 }
 
+// beyond returns how far a number lies outside the span.
+func (s *span) beyond(v float64) float64 { return max(s.low-v, v-s.high, 0) }
+
 func (s *span) isEmpty() bool { return s.low > s.high }
 
 func (s *span) join(o span) {
@@ -60,8 +65,17 @@ func (s *span) join(o span) {
 // add counts the points of a corrected chunk, whose results are in metres and
 // radians.
 func (t *tally) add(w *workspace, c *cloud.Chunk, r *reading, s *survey) {
+	if t.sensors == nil {
+		t.sensors = make([]int64, len(s.sensors))
+	}
 	for i, o := range w.out {
 		t.outcomes[o]++
+		if s.surface.gauges != nil {
+			t.gauge.add(s, o, w.utc[i])
+		}
+		if ruled(o) {
+			t.sensors[w.sensor[i]]++
+		}
 		switch {
 		case o == correct.Corrected:
 			t.depth.add(w.result.Depth[i])
@@ -105,6 +119,13 @@ func (t *tally) join(o *tally) {
 	for k := range t.bounds {
 		t.bounds[k].join(o.bounds[k])
 	}
+	if t.sensors == nil {
+		t.sensors = make([]int64, len(o.sensors))
+	}
+	for k, n := range o.sensors {
+		t.sensors[k] += n
+	}
+	t.gauge.join(o.gauge)
 	t.noPosition += o.noPosition
 	t.images.join(&o.images)
 	t.times.join(o.times)
@@ -120,6 +141,22 @@ func (t *tally) points() (n int64) {
 		n += c
 	}
 	return n
+}
+
+// bySensor returns how many points each sensor made, by name; nil where the job does
+// not name its one sensor.
+func (t *tally) bySensor(s *survey) map[string]int64 {
+	counts := map[string]int64{}
+	for k, sn := range s.sensors {
+		if sn.Name == "" {
+			return nil
+		}
+		counts[sn.Name] = 0
+		if t.sensors != nil {
+			counts[sn.Name] = t.sensors[k]
+		}
+	}
+	return counts
 }
 
 // counts returns the outcomes that occur, by name.
@@ -168,8 +205,12 @@ func (t *tally) cautions(s *survey) []string {
 	total := t.points()
 	cautions := append(t.geometryCautions(s), s.cautions...)
 	cautions = append(cautions, t.images.cautions(s)...)
+	cautions = append(cautions, t.gaugeCautions(s)...)
 	for o, n := range t.outcomes {
-		if text := advice[correct.Outcome(o)]; n > 0 && text != "" {
+		if correct.Outcome(o) == correct.NoSurface {
+			n -= t.gauge.surfaceless()
+		}
+		if text := t.adviceOn(correct.Outcome(o), s); n > 0 && text != "" {
 			cautions = append(cautions, fmt.Sprintf("%d of %d points %s", n, total, text))
 		}
 	}
@@ -182,13 +223,21 @@ func (t *tally) cautions(s *survey) []string {
 	if n := t.outcomes[correct.NoOrigin] - t.noPosition; n > 0 {
 		cautions = append(cautions, fmt.Sprintf("%d of %d points have a ray origin that is %s: are origins and cloud in one system and unit?", n, total, s.wrongSide()))
 	}
-	switch {
-	case total == 0:
-		cautions = append(cautions, "the file holds no points")
-	case t.outcomes[correct.Corrected] == 0:
+	if total > 0 && t.outcomes[correct.Corrected] == 0 {
 		cautions = append(cautions, "no point was corrected")
 	}
 	return cautions
+}
+
+// adviceOn says what to look at for an outcome, or nothing.
+func (t *tally) adviceOn(o correct.Outcome, s *survey) string {
+	text := advice[o]
+	if o == correct.NoWater && s.water.stations != nil && s.water.stations.HasTimes() {
+		records := rangeOf(s.water.records.UTC)
+		text += fmt.Sprintf("; the stations' records are from %s and hold max_gap (%g s) beyond, %s",
+			spanText(span{records.Low, records.High}), s.job.Water.MaxGap, t.timesText(s))
+	}
+	return text
 }
 
 // whyNoPosition says what leaves a point without ray origin.

@@ -19,7 +19,8 @@ type waters struct {
 	pressure float64
 	job      medium.Water // the job's own; NaN where it has none
 	stations *geo.Stations
-	sources  []string // names for the column water_source, by code
+	records  geo.StationRecords // of the stations, in m
+	sources  []string           // names for the column water_source, by code
 }
 
 // Codes of sources; a zone's is firstZone plus its number.
@@ -89,6 +90,7 @@ func (s *survey) readStations(path string) error {
 	scale(r.X, s.plan)
 	scale(r.Y, s.plan)
 	scale(r.Depth, s.height)
+	s.water.records = r
 	s.water.stations, err = geo.NewStations(r, s.job.Water.MaxGap)
 	return err
 }

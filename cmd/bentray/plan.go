@@ -97,7 +97,7 @@ func printRoles(s *streams, p *pipeline.Plan) {
 
 func printSensors(s *streams, p *pipeline.Plan, j *job.Job) {
 	for _, sn := range p.Sensors {
-		fmt.Fprintf(s.out, "model    %s%s, %g nm\n", sn.Model, quoted(sn.Name), sn.Wavelength)
+		fmt.Fprintf(s.out, "model    %s%s, %g nm%s\n", sn.Model, quoted(sn.Name), sn.Wavelength, sampled(sn, p))
 		if j.Water.Temperature != nil {
 			fmt.Fprintf(s.out, "water    %g degrees C, salinity %g: phase %.6f, group %.6f (%s)\n", *j.Water.Temperature, *j.Water.Salinity, sn.Water[0], sn.Water[1], j.Water.Formula)
 		}
@@ -105,11 +105,25 @@ func printSensors(s *streams, p *pipeline.Plan, j *job.Job) {
 		printTrajectory(s, sn.Trajectory, j)
 		printCameras(s, sn.Cameras, j)
 	}
-	for _, source := range []struct{ key, name string }{{"zones", j.Water.Zones}, {"stations", j.Water.Stations}} {
-		if source.name != "" {
-			fmt.Fprintf(s.out, "%-8s from %s\n", source.key, source.name)
-		}
+	printLines(s, "zones", zonesLines(p.Zones, j))
+	printLines(s, "stations", stationsLines(p.Stations, j))
+	printLines(s, "gauge", gaugeLines(p.Gauge, j))
+}
+
+// printLines writes lines below one head.
+func printLines(s *streams, head string, lines []string) {
+	for _, line := range lines {
+		fmt.Fprintf(s.out, "%-8s %s\n", head, line)
+		head = ""
 	}
+}
+
+// sampled says how many of the heads' points a sensor made, where it has a name.
+func sampled(sn pipeline.PlannedSensor, p *pipeline.Plan) string {
+	if sn.Name == "" || p.Heads.Points == 0 {
+		return ""
+	}
+	return fmt.Sprintf("; made %s of the first %s points", grouped(sn.Points), grouped(p.Heads.Points))
 }
 
 func printTrajectory(s *streams, t *pipeline.TrajectoryInfo, j *job.Job) {
@@ -169,7 +183,7 @@ func printHeads(s *streams, p *pipeline.Plan, j *job.Job) {
 
 func printCorners(s *streams, p *pipeline.Plan, j *job.Job) {
 	if math.IsNaN(p.Corners[0].Level + p.Corners[1].Level + p.Corners[2].Level + p.Corners[3].Level) {
-		fmt.Fprintln(s.out, "surface  depends on place and time; bentray surface describes it")
+		fmt.Fprintln(s.out, "surface  does not reach all corners of these points; bentray surface describes it")
 		return
 	}
 	for i, corner := range p.Corners {
@@ -178,6 +192,9 @@ func printCorners(s *streams, p *pipeline.Plan, j *job.Job) {
 			head = "surface"
 		}
 		fmt.Fprintf(s.out, "%-8s %.3f at %.1f, %.1f\n", head, corner.Level, corner.X, corner.Y)
+	}
+	if p.At != nil {
+		fmt.Fprintf(s.out, "         at %s, %s\n", p.At.Format(time.RFC3339), p.At.Why)
 	}
 }
 

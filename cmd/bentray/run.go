@@ -131,6 +131,9 @@ func printCautions(s *streams, summary *receipt.Summary) {
 			files[caution] = append(files[caution], f.Output)
 		}
 	}
+	for _, caution := range summary.Cautions {
+		fmt.Fprintln(s.out, "caution:", caution)
+	}
 	for _, caution := range cautions[:min(len(cautions), most)] {
 		where := files[caution][0]
 		if more := len(files[caution]) - 1; more > 0 {

@@ -69,15 +69,19 @@ func (p *surfacePrinter) row(head, format string, args ...any) {
 	fmt.Fprintf(p.out, "%-10s %s\n", head, fmt.Sprintf(format, args...))
 }
 
+// rows writes lines below one head.
+func (p *surfacePrinter) rows(head string, lines []string) {
+	for _, line := range lines {
+		p.row(head, "%s", line)
+		head = ""
+	}
+}
+
 func (p *surfacePrinter) print() {
 	p.row("job", "%s%s", p.j.Path, quoted(p.j.Title))
 	p.base()
-	if z := p.r.Zones; z != nil {
-		p.zones(z)
-	}
-	if g := p.r.Gauge; g != nil {
-		p.gauge(g)
-	}
+	p.rows("zones", zonesLines(p.r.Zones, p.j))
+	p.rows("gauge", gaugeLines(p.r.Gauge, p.j))
 	if sep := p.r.Separation; sep != nil {
 		p.row("separation", "%s, added, from %s", p.heights(sep.Range), p.j.Surface.Separation.File)
 		p.extent(sep.Extent)
@@ -171,26 +175,16 @@ func (p *surfacePrinter) grid(r *pipeline.GridReport) {
 	p.row("", "gaps filled within %g cells, points within %g s", r.Reach, r.Window)
 	p.row("level", "%s, offset of %g %s included", p.heights(r.Level), r.Offset, p.r.VerticalUnit)
 	p.row("", "1-sigma of a cell %.4f %s (median)", r.Sigma, p.r.VerticalUnit)
+	p.misfit(r)
 }
 
-func (p *surfacePrinter) zones(z *pipeline.ZonesReport) {
-	switch z.WithLevel {
-	case 0:
-		p.row("zones", "%d from %s, none with a level of its own", z.Count, p.j.Water.Zones)
-	default:
-		p.row("zones", "%d from %s, %d with a level of its own: %s", z.Count, p.j.Water.Zones, z.WithLevel, p.heights(z.Level))
+// misfit says how surface points agree with their grid.
+func (p *surfacePrinter) misfit(r *pipeline.GridReport) {
+	m, unit := &r.Misfit, p.r.VerticalUnit
+	p.row("misfit", "rms %.4f %s, largest %.4f %s, of %s; 1-sigma of a point %.4f %s", m.RMS, unit, m.Largest, unit, plural(m.Used, "point"), m.Sigma, unit)
+	if m.FarOff > 0 {
+		p.row("", "%s more far off, with next to no weight: up to %.3f %s", grouped(int64(m.FarOff)), m.Farthest, unit)
 	}
-}
-
-func (p *surfacePrinter) gauge(g *pipeline.GaugeReport) {
-	p.row("gauge", "%s from %s, %s", plural(g.Records, "record"), p.j.Surface.Gauge.File, plural(len(g.Series), "gauge"))
-	p.row("", "%s to %s", g.From.Format(time.RFC3339), g.To.Format(time.RFC3339))
-	p.row("", "adds %s (zero at %g %s)", p.heights(g.Level), p.j.Surface.Gauge.Zero, p.r.VerticalUnit)
-	gaps := "none longer"
-	if g.Gaps > 0 {
-		gaps = fmt.Sprintf("%d longer, without a level", g.Gaps)
-	}
-	p.row("", "longest gap %g s; max_gap %g s, %s", g.LongestGap, g.MaxGap, gaps)
 }
 
 // overview says what the map shows, whether it is drawn or not.
@@ -203,7 +197,10 @@ func (p *surfacePrinter) overview() {
 	if m.At != nil {
 		at = " at " + m.At.Format(time.RFC3339)
 	}
-	p.row("altogether", "%s%s, at %d by %d places", p.heights(m.Level), at, len(m.X), len(m.Y))
+	p.row("altogether", "%s%s, over %d by %d places", p.heights(m.Level), at, len(m.X), len(m.Y))
+	if m.At != nil {
+		p.row("", "that time is %s", m.At.Why)
+	}
 	p.extent(pipeline.Extent{X: pipeline.Range{Low: m.X[0], High: m.X[len(m.X)-1]}, Y: pipeline.Range{Low: m.Y[0], High: m.Y[len(m.Y)-1]}})
 }
 
@@ -211,9 +208,4 @@ func (p *surfacePrinter) extent(e pipeline.Extent) {
 	p.row("", "x %.1f to %.1f, y %.1f to %.1f %s", e.X.Low, e.X.High, e.Y.Low, e.Y.High, p.r.Unit)
 }
 
-func (p *surfacePrinter) heights(r pipeline.Range) string {
-	if r.Low == r.High {
-		return fmt.Sprintf("%.4f %s", r.Low, p.r.VerticalUnit)
-	}
-	return fmt.Sprintf("%.4f to %.4f %s", r.Low, r.High, p.r.VerticalUnit)
-}
+func (p *surfacePrinter) heights(r pipeline.Range) string { return rangeText(r, 4, p.r.VerticalUnit) }

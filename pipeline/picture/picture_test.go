@@ -63,7 +63,7 @@ func reports() map[string]*pipeline.SurfaceReport {
 	plane := &pipeline.PlaneReport{Fit: &fit}
 	plane.Fit.Points = plane.Fit.Points[1:]
 	zones := slopeMap(40, 30)
-	zones.At = &at
+	zones.At = &pipeline.Moment{Time: at}
 	zones.Outlines = []pipeline.Outline{{Name: "lock", XY: [][2]float64{{412_010, 6_213_010}, {412_030, 6_213_010}, {412_020, 6_213_030}, {412_010, 6_213_010}}}}
 	flat := slopeMap(30, 3)
 	flat.Level = pipeline.Range{Low: 5, High: 5}

@@ -33,8 +33,9 @@ type Receipt struct {
 	RowsRead     int64                 `json:"rows_read"` // = rows_written + rows_diverted
 	RowsWritten  int64                 `json:"rows_written"`
 	RowsDiverted int64                 `json:"rows_diverted"`
-	Outcomes     map[string]int64      `json:"outcomes"` // those that occur
-	Ranges       map[string][2]float64 `json:"ranges"`   // least and greatest over corrected points, in the units of the columns
+	Outcomes     map[string]int64      `json:"outcomes"`          // those that occur
+	Sensors      map[string]int64      `json:"sensors,omitempty"` // points by sensor, where the job names them
+	Ranges       map[string][2]float64 `json:"ranges"`            // least and greatest over corrected points, in the units of the columns
 	Cautions     []string              `json:"cautions"`
 }
 

@@ -131,9 +131,9 @@ func TestReadFaults(t *testing.T) {
 func TestSummary(t *testing.T) {
 	s := Summary{Started: time.Now().Add(-2 * time.Second), Outcomes: map[string]int64{}}
 	s.Add(FileSummary{Output: "c.csv", Status: Failed, Error: "broken"}, nil)
-	s.Add(FileSummary{Output: "b.csv", Status: Fresh, Rows: Rows{5, 4, 1}}, map[string]int64{"dry": 4})
+	s.Add(FileSummary{Output: "b.csv", Status: Fresh, Rows: Rows{5, 4, 1}}, &Receipt{Outcomes: map[string]int64{"dry": 4}, Sensors: map[string]int64{"laser": 4, "images": 0, "sonar": 0}})
 	s.Add(FileSummary{Output: "d.csv", Status: Dropped}, nil)
-	s.Add(FileSummary{Output: "a.csv", Status: Done, Rows: Rows{3, 3, 0}}, map[string]int64{"dry": 1, "corrected": 2})
+	s.Add(FileSummary{Output: "a.csv", Status: Done, Rows: Rows{3, 3, 0}}, &Receipt{Outcomes: map[string]int64{"dry": 1, "corrected": 2}, Sensors: map[string]int64{"laser": 2, "images": 1, "sonar": 0}})
 	s.Close()
 	if s.Done != 1 || s.Fresh != 1 || s.Failed != 1 || s.Dropped != 1 || (s.Rows != Rows{8, 7, 1}) {
 		t.Errorf("counts are %+v", s)

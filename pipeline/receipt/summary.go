@@ -4,6 +4,7 @@ import (
 	"cmp"
 	"encoding/json"
 	"fmt"
+	"maps"
 	"os"
 	"slices"
 	"time"
@@ -29,6 +30,8 @@ type Summary struct {
 	Dropped  int              `json:"files_not_done"` // interrupted
 	Rows     Rows             `json:"rows"`           // over the files that are done
 	Outcomes map[string]int64 `json:"outcomes"`
+	Sensors  map[string]int64 `json:"sensors,omitempty"`  // points by sensor, where the job names them
+	Cautions []string         `json:"cautions,omitempty"` // of the files together; each has its own
 }
 
 // Rows counts rows. Read = Written + Diverted.
@@ -78,9 +81,9 @@ func ReadSummary(path string) (*Summary, error) {
 	return &s, nil
 }
 
-// Add takes the result of one file into the summary; outcomes are those of its
-// receipt.
-func (s *Summary) Add(f FileSummary, outcomes map[string]int64) {
+// Add takes the result of one file into the summary, with the receipt of one that is
+// done or fresh, else nil.
+func (s *Summary) Add(f FileSummary, r *Receipt) {
 	s.Files = append(s.Files, f)
 	switch f.Status {
 	case Done:
@@ -95,13 +98,28 @@ func (s *Summary) Add(f FileSummary, outcomes map[string]int64) {
 	s.Rows.Read += f.Rows.Read
 	s.Rows.Written += f.Rows.Written
 	s.Rows.Diverted += f.Rows.Diverted
-	for name, n := range outcomes {
+	if r == nil {
+		return
+	}
+	for name, n := range r.Outcomes {
 		s.Outcomes[name] += n
+	}
+	for name, n := range r.Sensors {
+		if s.Sensors == nil {
+			s.Sensors = map[string]int64{}
+		}
+		s.Sensors[name] += n
 	}
 }
 
-// Close sets the end of the run and brings the files into order.
+// Close sets the end of the run, brings the files into order, and cautions of sensors
+// that have no point in any of them.
 func (s *Summary) Close() {
+	for _, name := range slices.Sorted(maps.Keys(s.Sensors)) {
+		if s.Sensors[name] == 0 {
+			s.Cautions = append(s.Cautions, fmt.Sprintf("sensor %q fits no point of these files", name))
+		}
+	}
 	s.Finished = time.Now().UTC().Truncate(time.Millisecond)
 	s.Seconds = s.Finished.Sub(s.Started).Seconds()
 	slices.SortFunc(s.Files, func(a, b FileSummary) int { return cmp.Compare(a.Output, b.Output) })
