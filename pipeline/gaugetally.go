@@ -62,7 +62,7 @@ func (t *tally) gaugeCautions(s *survey) (cautions []string) {
 	say(t.gauge.outside, "have no water surface: the gauge's records are from %s, %s", spanText(s.surface.source.gaugeTimes), t.timesText(s))
 	say(t.gauge.inGap, "have no water surface: their times fall into gaps of the gauge's records longer than max_gap (%g s)", gap)
 	say(t.gauge.timeless, "have no water surface: they have no time, by which the gauge is looked up")
-	say(t.gauge.partial, "have their level from only some of the gauges, as the others have none at their times: the level makes a step where a gauge's records begin, end, or have a gap longer than max_gap (%g s)", gap)
+	say(t.gauge.partial, "have their level from only some of the gauges, the others having none at their times: it makes a step where a gauge's records begin, end or pause for longer than max_gap (%g s)", gap)
 	if s.surface.at != nil && !t.times.isEmpty() {
 		cautions = append(cautions, atNotUsed)
 	}

@@ -2,6 +2,7 @@ package pipeline
 
 import (
 	"context"
+	"fmt"
 	"math"
 	"time"
 
@@ -19,15 +20,17 @@ type Moment struct {
 // the middle of the clouds' times where a gauge has a level then; else that of the job
 // for clouds without times; else the record nearest to the middle of all.
 func (s *survey) moment(clouds span) (utc float64, m *Moment) {
-	why := ""
+	const ofClouds = "the middle of the clouds' first times"
 	middle := math.Round((clouds.low + clouds.high) / 2)
-	switch at := s.surface.at; {
-	case !clouds.isEmpty() && s.surface.gauges.Recording(middle) > 0:
-		utc, why = middle, "the middle of the clouds' first times"
-	case at != nil:
+	if !clouds.isEmpty() && s.surface.gauges.Recording(middle) > 0 {
+		return middle, &Moment{utcTime(middle), ofClouds}
+	}
+	utc, why := s.middleRecord(), "the gauge's record nearest to the middle of all"
+	if at := s.surface.at; at != nil {
 		utc, why = *at, "the time that [surface.gauge] at names"
-	default:
-		utc, why = s.middleRecord(), "the gauge's record nearest to the middle of all"
+	}
+	if !clouds.isEmpty() {
+		why += fmt.Sprintf("; no gauge has a level at %s, %s", ofClouds, utcText(middle))
 	}
 	return utc, &Moment{utcTime(utc), why}
 }

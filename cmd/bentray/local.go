@@ -60,7 +60,7 @@ func stationsLines(r *pipeline.StationsReport, j *job.Job) []string {
 	if r == nil {
 		return nil
 	}
-	lines := []string{fmt.Sprintf("%s from %s, %s", plural(r.Stations, "station"), j.Water.Stations, plural(r.Records, "record"))}
+	lines := []string{fmt.Sprintf("%d from %s, %s", r.Stations, j.Water.Stations, plural(r.Records, "record"))}
 	if r.Timed {
 		lines = append(lines, fmt.Sprintf("%s, held for max_gap %g s beyond", timesText(r.From, r.To), r.MaxGap))
 	}
