@@ -21,7 +21,7 @@ func TestTreeChangesNothing(t *testing.T) {
 				all[k] = int32(k)
 			}
 			rules := []*Visibility{mustByImage(t, c), mustByAngle(t, c, radians(45), false), mustByAngle(t, c, radians(70), true)}
-			for i := range 2000 {
+			for i := range 1000 {
 				x, y, z := somePoint(rng, at[0], at[1], at[2])
 				k := rng.IntN(c.Len())
 				switch i % 4 {
@@ -42,35 +42,33 @@ func TestTreeChangesNothing(t *testing.T) {
 	}
 }
 
-// TestTreeIsBounded lets a tree of cameras whose borders coincide and that see to the
-// horizon grow from wild points until it has begun anew twice, and the answers stay.
-func TestTreeIsBounded(t *testing.T) {
+// TestTreeBeginsAnew takes a tree for one that has grown to its limit but for a little.
+// It must grow beyond it by the boxes around one point at most, then begin anew, and the
+// answers stay.
+func TestTreeBeginsAnew(t *testing.T) {
 	rng := newRand(t, 84)
 	var r CameraRecords
-	for range 4 {
-		networks[1].add(&r, rng, 0, 0, 0)
-		networks[2].add(&r, rng, 0, 0, 0)
-	}
+	networks[1].add(&r, rng, 0, 0, 0)
+	networks[2].add(&r, rng, 0, 0, 0)
 	c := mustCameras(t, r)
 	v := mustByImage(t, c)
 	all := v.tree.Load().root.cameras
-	most, renewals := int64(0), 0
-	for i := 0; renewals < 2 && i < 1_000_000; i++ {
-		before := v.tree.Load()
-		x, y, z := somePoint(rng, 0, 0, 0)
-		got := v.AppendSeeing(nil, x, y, z)
-		if after := v.tree.Load(); after != before {
-			renewals++
-		} else if most = max(most, after.size.Load()); i%100 != 0 {
-			continue
+	onePoint := int64(maxDepth * 8 * (boxSize + 2*c.Len()))
+	for range 5 {
+		grown := v.tree.Load()
+		grown.size.Add(maxTreeSize - 20000)
+		for i := 0; v.tree.Load() == grown; i++ {
+			if size := grown.size.Load(); i == 2000 || size > maxTreeSize+onePoint {
+				t.Fatalf("after %d points the tree has grown to %d, limit %d", i, size, maxTreeSize)
+			}
+			x, y, z := somePoint(rng, 0, 0, 0)
+			if got, want := v.AppendSeeing(nil, x, y, z), v.rule.appendSeeing(nil, all, x, y, z); !slices.Equal(got, want) {
+				t.Fatalf("%v %v %v: %v, without the tree %v", x, y, z, got, want)
+			}
 		}
-		if want := v.rule.appendSeeing(nil, all, x, y, z); !slices.Equal(got, want) {
-			t.Fatalf("%v %v %v: %v, without the tree %v", x, y, z, got, want)
+		if size := v.tree.Load().size.Load(); size > onePoint {
+			t.Errorf("the new tree begins with %d", size)
 		}
-	}
-	onePath := int64(maxDepth * 8 * (boxSize + 2*c.Len()))
-	if renewals < 2 || most > maxTreeSize+onePath {
-		t.Errorf("%d renewals, and the tree grew to %d, want at most %d and one path, %d", renewals, most, maxTreeSize, onePath)
 	}
 }
 
