@@ -27,7 +27,7 @@ func benchSurvey(b *testing.B, tiltDeg float64) *Cameras {
 
 // benchCloud returns points over a bed 0 to 12 m deep, along a swath or anywhere.
 func benchCloud(b *testing.B, swath bool) (x, y, z []float64) {
-	const n = 1 << 17
+	const n = 1 << 20
 	rng := newRand(b, 92)
 	x, y, z = make([]float64, n), make([]float64, n), make([]float64, n)
 	for i := range n {
