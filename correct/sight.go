@@ -39,6 +39,7 @@ func (r *sight) look(back optics.Vec, surface plane, fromWater bool) {
 	}
 	r.rise = rise * math.Abs(r.up.Z)
 	r.above = r.up.Dot(back) - r.rise
+	r.slopes = optics.Slopes{}
 }
 
 // isFacing reports whether the camera is finite and on its side of the plane. A height
@@ -68,7 +69,7 @@ func (r *sight) aimFor(rule Residual, c *Cameras, camera int32) bool {
 func (r *sight) trace(b *optics.Boundary, p optics.Vec) (depth float64) {
 	r.layRun(r.back.Sub(p))
 	depth = r.depth(p)
-	r.slopes = b.Fermat(r.above, depth, r.run2)
+	r.slopes = b.Fermat(r.above, depth, r.run2, r.slopes)
 	return depth
 }
 

@@ -45,3 +45,11 @@ func BenchmarkRefract(b *testing.B) {
 		b.Fatal("refracted direction is not a number")
 	}
 }
+
+func ExampleThroughPlane() {
+	// A camera 3 m above the water sees a point 4 m below it and 7 m away.
+	camera, point := optics.Vec{Z: 3}, optics.Vec{X: 7, Z: -4}
+	entry, ok := optics.ThroughPlane(camera, point, optics.Vec{}, optics.Vec{Z: 1}, 1, 4./3)
+	fmt.Printf("%.4f %v\n", entry.X, ok)
+	// Output: 4.0000 true
+}

@@ -35,49 +35,57 @@ func (b *Boundary) Ratio() float64 { return math.Sqrt(b.ratio2) }
 type Slopes struct{ Near, Far float64 }
 
 // fermatSteps bounds the steps of Fermat. The usual number is 2 to 4; the worst
-// is a far point at a run that the denser side alone can just not reach, with
-// next to nothing on the thinner side: some log(dense/thin) / log(3.4).
+// case is a run that the denser side can only just not cover, with next to nothing
+// on the thinner side: some log(dense/thin) / log(3.4).
 const fermatSteps = 200
 
 // Fermat returns the ray between two points on opposite sides of the boundary, at the
 // distances nearM and farM from it, metres, one of them positive and the other not
 // negative (the one on the thinner side positive if the run is long), whose feet
-// on the boundary have the squared distance run2, square metres.
+// on the boundary have the squared distance run2, square metres. guess may be any
+// slopes, the zero value too: those of a ray nearby save steps.
 //
 // The unknown is s, the slope on the thinner side. With w = 1 / sqrt(m^2 + (m^2 - 1) s^2 run2)
 // Snell's law makes the other slope s w, and the ray ends where it should if
 //
 //	f(s) = s (thin + dense w) - 1 = 0,  f'(s) = thin + dense m^2 w^3 > 0
 //
-// f” is not positive, since w falls with s. A Newton step on an increasing concave function
-// ends at or before the root, wherever it began, and from there each step
-// goes up to it. The first lies at 1 / (thin + dense/m), at or before the root
+// f'' is not positive, since w falls with s. A Newton step on an increasing concave function
+// ends at or before the root, wherever it began, and from there each step goes up to
+// it. No step goes below 1 / (thin + dense/m), which is at or before the root
 // because w is at most 1/m; equal indices are done there. The error of a step is at most
 // 1.5 times the square of the step before, both relative to s:
-// -f” s / 2f' = 1.5 (m^2 - 1) s^2 run2 w^2 dense m^2 w^3 / f', where neither of the last two
+// -f'' s / 2f' = 1.5 (m^2 - 1) s^2 run2 w^2 dense m^2 w^3 / f', where neither of the last two
 // factors exceeds 1. So a step of 1e-8 leaves nothing to gain.
 //
 // With layers of thickness t_k in place of two sides the same holds: a sum of such
 // terms with the slope in the thinnest medium as unknown.
-func (b *Boundary) Fermat(nearM, farM, run2 float64) Slopes {
+func (b *Boundary) Fermat(nearM, farM, run2 float64, guess Slopes) Slopes {
 	if b.isUp {
-		thin, dense := b.thin(farM, nearM, run2)
+		thin, dense := b.thin(farM, nearM, run2, guess.Far)
 		return Slopes{Near: dense, Far: thin}
 	}
-	thin, dense := b.thin(nearM, farM, run2)
+	thin, dense := b.thin(nearM, farM, run2, guess.Near)
 	return Slopes{Near: thin, Far: dense}
 }
 
-// thin returns the slopes in the thinner and the denser medium.
-func (b *Boundary) thin(thinM, denseM, run2 float64) (thin, dense float64) {
-	s := 1 / (thinM + denseM*b.straight)
+// thin returns the slopes in the thinner and the denser medium, from a guess
+// of the first.
+func (b *Boundary) thin(thinM, denseM, run2, guess float64) (thin, dense float64) {
+	low := 1 / (thinM + denseM*b.straight)
+	s := low
+	if guess > low && guess <= math.MaxFloat64 {
+		s = guess
+	}
 	for range fermatSteps {
 		w := b.bend(s, run2)
-		step := (1 - s*(thinM+denseM*w)) / (thinM + denseM*b.dense2*w*w*w)
-		s += step
-		if step <= 1e-8*s {
-			break
+		w3 := w * w * w
+		step := (1 - s*(thinM+denseM*w)) / (thinM + denseM*b.dense2*w3)
+		if math.Abs(step) <= 1e-8*s {
+			// w changes by its derivative; the square of the step is nothing.
+			return s + step, (s + step) * (w - b.excess*s*run2*w3*step)
 		}
+		s = max(s+step, low)
 	}
 	return s, s * b.bend(s, run2)
 }
@@ -121,6 +129,6 @@ func ThroughPlane(from, to, at, normal Vec, nFrom, nTo float64) (entry Vec, ok b
 	run := way.Sub(normal.Scale(way.Dot(normal)))
 	b := NewBoundary(nFrom, nTo)
 	nearM := math.Abs(near)
-	s := b.Fermat(nearM, math.Abs(far), run.Dot(run))
+	s := b.Fermat(nearM, math.Abs(far), run.Dot(run), Slopes{})
 	return from.Sub(normal.Scale(near)).Add(run.Scale(s.Near * nearM)), true
 }
