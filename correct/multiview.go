@@ -147,7 +147,8 @@ func (s *MultiviewSolver) gather(i int, point optics.Vec, b *Bundle) Outcome {
 // surface.
 func (b *Bundle) sight(r *sight, k int, point optics.Vec) bool {
 	surface := b.Planes.around(k, point.Z)
-	r.look(b.Cameras.at(int(b.Camera[k])).Sub(point), surface, b.FromWater)
+	camera := b.Cameras.at(int(b.Camera[k]))
+	r.look(camera, camera.Sub(point), surface, b.FromWater)
 	return surface.isFinite()
 }
 
@@ -195,12 +196,14 @@ func (s *MultiviewSolver) invertFrom(i int, from optics.Vec, b *Bundle) (optics.
 			return optics.Vec{}, false
 		}
 	}
-	if !b.Warm || !s.areBeyond(from) {
-		if p, ok := s.intersect(); ok && s.areBeyond(p) {
-			from = p
-		} else {
-			from = s.straightDown()
+	if b.Warm && s.areBeyond(from) {
+		if p, ok := s.invert(from, b.Residual); ok {
+			return p, true
 		}
+	}
+	from, ok := s.intersect()
+	if !ok || !s.areBeyond(from) {
+		from = s.straightDown()
 	}
 	if !s.areBeyond(from) {
 		return from, false

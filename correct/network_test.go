@@ -127,11 +127,20 @@ func eliminate(n [3][4]float64) vec {
 	return vec{n[0][3] / n[0][0], n[1][3] / n[1][1], n[2][3] / n[2][2]}
 }
 
+// entry returns where the light between the point and camera k crosses the surface.
+func (s *scene) entry(k int) vec {
+	c := s.cameras[k]
+	if c[2] > s.truth[2] {
+		return s.waters[k].entry(c, s.truth)
+	}
+	return s.waters[k].entry(s.truth, c)
+}
+
 // shoot takes the raw direction of each camera.
 func (s *scene) shoot() {
 	s.dirs = s.dirs[:0]
 	for k, c := range s.cameras {
-		s.dirs = append(s.dirs, s.waters[k].entry(c, s.truth).plus(-1, c))
+		s.dirs = append(s.dirs, s.entry(k).plus(-1, c))
 	}
 }
 
@@ -162,8 +171,28 @@ var networks = map[string]network{
 	},
 }
 
+// level returns a scene over level water at height 0, of index 1.34 below air of index 1.
+func level(truth vec, cameras ...vec) *scene {
+	s := &scene{truth: truth, cameras: cameras}
+	for _, c := range cameras {
+		s.waters = append(s.waters, water{air: 1, waterPhase: 1.34})
+		s.rotations = append(s.rotations, lookAlong(truth.plus(-1, c), 0.3))
+	}
+	s.shoot()
+	return s
+}
+
+// photos returns the scene as a cloud of one point.
+func (s *scene) photos(rule correct.Residual) *photos {
+	p := newPhotos(s.waters[0].air)
+	p.bundle.Residual = rule
+	p.add(s, s.triangulate(rule, s.truth), noOffset)
+	return p
+}
+
 // photos is a simulated cloud from images with its truth.
 type photos struct {
+	scenes     []*scene
 	truth, raw correct.XYZ
 	planes     correct.Planes // at the raw plan position of each point, for the marks
 	bundle     correct.Bundle
@@ -191,6 +220,7 @@ func (p *photos) add(s *scene, raw, offset vec) {
 		to.SlopeX, to.SlopeY = append(to.SlopeX, w.sx), append(to.SlopeY, w.sy)
 	}
 	b := &p.bundle
+	p.scenes = append(p.scenes, s)
 	push(&p.truth, s.truth)
 	push(&p.raw, raw)
 	plane(&p.planes, s.waters[0])
@@ -209,7 +239,11 @@ func (p *photos) add(s *scene, raw, offset vec) {
 func (p *photos) solve() {
 	correct.MarkInvalid(p.out, p.raw)
 	correct.MarkNoSurface(p.out, p.planes)
-	correct.MarkDry(p.out, &p.dst, p.raw, p.planes)
+	if p.bundle.FromWater {
+		correct.MarkWet(p.out, &p.dst, p.raw, p.planes)
+	} else {
+		correct.MarkDry(p.out, &p.dst, p.raw, p.planes)
+	}
 	p.solver.Solve(&p.dst, p.out, nil, p.raw, &p.bundle)
 }
 

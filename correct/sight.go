@@ -30,15 +30,14 @@ type aim struct {
 	axes  [3]optics.Vec // image: the camera's axes
 }
 
-// look fills the geometry of a ray.
-func (r *sight) look(back optics.Vec, surface plane, fromWater bool) {
+// look fills the geometry of a ray from the raw point to a camera, which back leads to.
+func (r *sight) look(camera, back optics.Vec, surface plane, fromWater bool) {
 	r.back, r.up = back, surface.normal()
-	rise := surface.rise
+	r.rise = surface.rise * r.up.Z
+	r.above = (camera.Z - surface.level - surface.climb(back)) * r.up.Z
 	if fromWater {
-		r.up, rise = r.up.Scale(-1), -rise
+		r.up, r.rise, r.above = r.up.Scale(-1), -r.rise, -r.above
 	}
-	r.rise = rise * math.Abs(r.up.Z)
-	r.above = r.up.Dot(back) - r.rise
 	r.slopes = optics.Slopes{}
 }
 

@@ -50,12 +50,12 @@ const fermatSteps = 200
 //
 //	f(s) = s (thin + dense w) - 1 = 0,  f'(s) = thin + dense m^2 w^3 > 0
 //
-// f'' is not positive, since w falls with s. A Newton step on an increasing concave function
+// f” is not positive, since w falls with s. A Newton step on an increasing concave function
 // ends at or before the root, wherever it began, and from there each step goes up to
 // it. No step goes below 1 / (thin + dense/m), which is at or before the root
 // because w is at most 1/m; equal indices are done there. The error of a step is at most
 // 1.5 times the square of the step before, both relative to s:
-// -f'' s / 2f' = 1.5 (m^2 - 1) s^2 run2 w^2 dense m^2 w^3 / f', where neither of the last two
+// -f” s / 2f' = 1.5 (m^2 - 1) s^2 run2 w^2 dense m^2 w^3 / f', where neither of the last two
 // factors exceeds 1. So a step of 1e-8 leaves nothing to gain.
 //
 // With layers of thickness t_k in place of two sides the same holds: a sum of such

@@ -191,7 +191,9 @@ func TestThroughPlane(t *testing.T) {
 	r := rand.New(rand.NewPCG(seed, 5))
 	for i := range 2000 {
 		normal, at := randomUnit(r), randomUnit(r).Scale(10)
-		side := func(height float64) optics.Vec { return at.Add(randomUnit(r).Cross(normal).Scale(9)).Add(normal.Scale(height)) }
+		side := func(height float64) optics.Vec {
+			return at.Add(randomUnit(r).Cross(normal).Scale(9)).Add(normal.Scale(height))
+		}
 		from, to := side(5*r.Float64()), side(-5*r.Float64())
 		n1, n2 := 1+r.Float64(), 1+r.Float64()
 		if r.IntN(2) == 0 {
