@@ -62,3 +62,35 @@ func ExamplePulse() {
 	fmt.Printf("%s, x %.3f, depth %.3f, %.2f degrees\n", out[0], dst.X[0], dst.Depth[0], dst.IncidenceRad[0]*180/math.Pi)
 	// Output: corrected, x 1.807, depth 7.600, 21.80 degrees
 }
+
+// Two cameras 30 m above the water see a point between them along rays of 3, 4 and 5: 3 m down and
+// 4 m across in the air, 4 m down and 3 m across in water of index 4/3. Prolonged straight they
+// meet 2.25 m below the surface; the point is at 4 m.
+func ExampleMultiviewSolver_Solve() {
+	raw := correct.XYZ{X: []float64{0}, Y: []float64{0}, Z: []float64{-2.25}}
+	bundle := correct.Bundle{
+		Views:           correct.Views{Start: []int32{0, 2}, Camera: []int32{0, 1}},
+		Cameras:         &correct.Cameras{XYZ: correct.XYZ{X: []float64{-43, 43}, Y: []float64{0, 0}, Z: []float64{30, 30}}},
+		Planes:          correct.Planes{Level: []float64{0, 0}, SlopeX: []float64{0, 0}, SlopeY: []float64{0, 0}},
+		Light:           correct.Light{Air: 1, Water: []float64{4. / 3}},
+		Residual:        correct.Angle,
+		MaxIncidenceRad: math.Pi / 3,
+	}
+	dst, out := correct.NewResult(1), make([]correct.Outcome, 1)
+	correct.MarkNoCameras(out, raw, &bundle)
+	var solver correct.MultiviewSolver
+	solver.Solve(&dst, out, nil, raw, &bundle)
+	x, y := make([]float64, 2), make([]float64, 2)
+	solver.EntryPlan(x, y, out, nil, raw, dst.XYZ, &bundle)
+	fmt.Printf("%s at %.4f, entries at x %.4f and %.4f\n", out[0], dst.Z[0], x[0], x[1])
+	// Output: corrected at -4.0000, entries at x -3.0000 and 3.0000
+}
+
+func ExampleMarkWet() {
+	raw := correct.XYZ{X: []float64{0, 5}, Y: []float64{0, 5}, Z: []float64{1.25, -2}}
+	surface := correct.Planes{Level: []float64{0.5, 0.5}, SlopeX: []float64{0, 0}, SlopeY: []float64{0, 0}}
+	dst, out := correct.NewResult(2), make([]correct.Outcome, 2)
+	correct.MarkWet(out, &dst, raw, surface)
+	fmt.Println(out[0], dst.Depth[1])
+	// Output: corrected 2.5
+}
