@@ -60,7 +60,7 @@ func TestGradientDerivative(t *testing.T) {
 
 // Both sides of the change from series to closed form agree, with the angle itself too.
 func TestAngleOverSine(t *testing.T) {
-	for _, rad := range []float64{0, 1e-9, 1e-3, 0.03, 0.0316, 0.0317, 0.1, 1, 2, 3} {
+	for _, rad := range []float64{0, 1e-9, 1e-3, 0.03, 0.0316, 0.0317, 0.1, 1, 2, 3, 3.12} {
 		sin, cos := math.Sincos(rad)
 		k, by := angleOverSine(sin*sin, cos)
 		wantK, wantBy := rad/sin, (rad*cos/sin-1)/(sin*sin)
@@ -69,6 +69,26 @@ func TestAngleOverSine(t *testing.T) {
 		}
 		if !(math.Abs(k-wantK) < 1e-14*wantK && math.Abs(by-wantBy) < 2e-12*math.Abs(wantBy)) {
 			t.Errorf("at %g: %.17g and %.17g, want %.17g and %.17g", rad, k, by, wantK, wantBy)
+		}
+	}
+}
+
+// A pair of rays of 3, 4 and 5: 30 m down and 40 m across in the air, 4 m down and 3 m across in
+// water of index 4/3, prolonged to 2.25 m. From starts far off Newton's method ends at the
+// point; without a check of its steps, some would leave the water for good.
+func TestInvertFromAfar(t *testing.T) {
+	s := MultiviewSolver{boundary: optics.NewBoundary(1, 4./3)}
+	for _, x := range []float64{-43, 43} {
+		var k sight
+		camera := optics.Vec{X: x, Z: 30}
+		k.look(camera, camera.Sub(optics.Vec{Z: -2.25}), plane{level: 0, rise: 2.25}, false)
+		k.aimFor(Angle, nil, 0)
+		s.sights = append(s.sights, k)
+	}
+	for _, from := range []optics.Vec{{Z: 2.2}, {X: 30, Z: 2}, {X: -60, Y: 40, Z: 2}, {Y: 60, Z: -100}, {X: 200, Z: -500}, {Z: -5000}} {
+		p, ok := s.invert(from, Angle)
+		if !ok || !(p.Sub(optics.Vec{Z: -1.75}).Norm() < 1e-9) {
+			t.Errorf("from %v: %v, %v, want -1.75 in z", from, p, ok)
 		}
 	}
 }

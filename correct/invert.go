@@ -24,7 +24,7 @@ func (s *MultiviewSolver) invert(from optics.Vec, rule Residual) (optics.Vec, bo
 		share := s.share(p, step)
 		p = p.Sub(step.Scale(share))
 		if share == 1 && step.Norm() < doneM {
-			return p, true
+			return p, s.areAhead(rule)
 		}
 	}
 	return p, false
@@ -68,4 +68,18 @@ func (s *MultiviewSolver) share(p, step optics.Vec) float64 {
 		}
 	}
 	return share
+}
+
+// areAhead reports whether each ray leaves its camera forwards, to within a right
+// angle of the raw point. Behind a camera the gradient has roots that are no
+// intersection.
+func (s *MultiviewSolver) areAhead(rule Residual) bool {
+	for k := range s.sights {
+		r := &s.sights[k]
+		v := r.near()
+		if !(v.Dot(r.back) > 0) || rule == Image && !(r.aim.axes[2].Dot(v) > 0) {
+			return false
+		}
+	}
+	return true
 }

@@ -29,6 +29,23 @@ func TestMultiviewSizes(t *testing.T) {
 	}
 }
 
+// So with a warm start.
+func TestMultiviewWarmNeighbours(t *testing.T) {
+	whole := simulatePhotos(200, networks["ring"], correct.Angle, 40, 0.05, true, noOffset)
+	whole.solve()
+	warm := simulatePhotos(200, networks["ring"], correct.Angle, 40, 0.05, true, noOffset)
+	warm.bundle.Warm, whole.bundle.Warm = true, true
+	for i := range warm.out {
+		warm.dst.X[i], warm.dst.Y[i], warm.dst.Z[i] = whole.dst.X[i], whole.dst.Y[i], whole.dst.Z[i]-0.3
+		whole.dst.Z[i] -= 0.3
+	}
+	whole.solve()
+	for i := len(warm.out) - 1; i >= 0; i-- {
+		warm.solver.Solve(&warm.dst, warm.out, []int32{int32(i)}, warm.raw, &warm.bundle)
+		warm.same(t, i, whole, i)
+	}
+}
+
 // same fails the test unless point i has the bits of point k of other.
 func (p *photos) same(t *testing.T, i int, other *photos, k int) {
 	t.Helper()

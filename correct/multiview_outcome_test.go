@@ -58,6 +58,13 @@ func TestMultiviewOutcomes(t *testing.T) {
 		{"cameras coincide", func(p *photos, b *correct.Bundle) { b.Camera = []int32{1, 1, 1} }, correct.Unsolved},
 		{"cameras in line of sight", func(p *photos, b *correct.Bundle) { p.lineUp() }, correct.Unsolved},
 		{"huge", func(p *photos, b *correct.Bundle) { p.raw.Z[0] = -1e300 }, correct.Unsolved},
+		{"huge, averaged", func(p *photos, b *correct.Bundle) { p.raw.Z[0], b.Solve = -1.7e308, correct.Average }, correct.Unsolved},
+		{"the middle ray alone beyond the limit", func(p *photos, b *correct.Bundle) {
+			b.Cameras.X[1], b.Cameras.Z[1], b.MaxIncidenceRad = 70, 50, 0.8
+		}, correct.Grazing},
+		{"all rays' planes below the point", func(p *photos, b *correct.Bundle) { p.lowerPlanes() }, correct.Unsolved},
+		{"so, intersected", func(p *photos, b *correct.Bundle) { p.lowerPlanes(); b.Solve = correct.Intersect }, correct.Unsolved},
+		{"so, averaged", func(p *photos, b *correct.Bundle) { p.lowerPlanes(); b.Solve = correct.Average }, correct.Unsolved},
 		{"no surface, camera under water", func(p *photos, b *correct.Bundle) {
 			b.Planes.Level[2], b.Cameras.Z[0] = nan, -1
 		}, correct.NoSurface},
@@ -94,6 +101,13 @@ func TestMultiviewOutcomes(t *testing.T) {
 				p.checkKept(t)
 			}
 		})
+	}
+}
+
+// lowerPlanes puts the planes of the rays below the raw point.
+func (p *photos) lowerPlanes() {
+	for k := range p.bundle.Planes.Level {
+		p.bundle.Planes.Level[k] = p.raw.Z[0] - 0.5
 	}
 }
 

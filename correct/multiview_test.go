@@ -218,6 +218,36 @@ func TestInvertHardNetworks(t *testing.T) {
 	}
 }
 
+// From under water a raw ray may be past the critical angle though the light was not: the
+// far camera's here, so that the raw rays cannot be refracted and intersected.
+func TestInvertPastCriticalAngle(t *testing.T) {
+	for rule, residual := range map[string]correct.Residual{"angle": correct.Angle, "image": correct.Image} {
+		t.Run(rule, func(t *testing.T) {
+			p := level(vec{0, 0, 2.067}, vec{1.923, -0.672, -2.818}, vec{60.081, -9.676, -25.148}, vec{0.028, 2.145, -1.497}).photos(residual)
+			p.bundle.FromWater, p.bundle.MaxIncidenceRad = true, math.Pi/2
+			p.bundle.Solve = correct.Intersect
+			p.solve()
+			if p.out[0] != correct.Grazing {
+				t.Errorf("refracted and intersected: outcome is %s, want grazing", p.out[0])
+			}
+			p.bundle.Solve, p.out[0] = correct.Invert, correct.Corrected
+			p.solve()
+			p.checkTruth(t, 1e-6)
+		})
+	}
+}
+
+// Here Newton's method ends where a camera would have seen the point behind itself.
+func TestInvertRootBehindCamera(t *testing.T) {
+	p := level(vec{0, 0, 0.740308116127848}, vec{54.32343439272241, 15.371390882327882, -28.369622375494323}, vec{24.20686051572396, 3.6340361762501927, -22.623318378457128},
+		vec{3.593090397861785, -0.13866438935206732, -2.053513666048961}, vec{10.656753324709438, 3.05296876162375, -11.621380190904928}).photos(correct.Image)
+	p.bundle.FromWater, p.bundle.MaxIncidenceRad = true, math.Pi/2
+	p.solve()
+	if p.out[0] != correct.Grazing {
+		t.Errorf("outcome is %s at %g %g %g, want grazing", p.out[0], p.dst.X[0], p.dst.Y[0], p.dst.Z[0])
+	}
+}
+
 // Few cameras anywhere, to 80 degrees off nadir and from 0.1 m to 50 m, over up to 20 m of
 // water; or under water, to where light from above still comes.
 func TestInvertWildNetworks(t *testing.T) {

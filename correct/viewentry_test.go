@@ -52,12 +52,13 @@ func TestViewEntriesOfStraightRays(t *testing.T) {
 // Rays without an entry, and those of points that are not Corrected, have the raw position.
 func TestViewEntriesMissing(t *testing.T) {
 	for name, spoil := range map[string]func(p *photos, b *correct.Bundle){
-		"not corrected":     func(p *photos, b *correct.Bundle) { p.out[0] = correct.Grazing },
-		"no index":          func(p *photos, b *correct.Bundle) { b.Light.Water[0] = nan },
-		"no surface":        func(p *photos, b *correct.Bundle) { b.Planes.Level[1] = nan },
-		"camera in water":   func(p *photos, b *correct.Bundle) { b.Cameras.Z[1] = 0 },
-		"point above":       func(p *photos, b *correct.Bundle) { p.truth.Z[0] = 1 },
-		"point on no place": func(p *photos, b *correct.Bundle) { p.truth.X[0] = nan; p.truth.Z[0] = nan },
+		"not corrected":        func(p *photos, b *correct.Bundle) { p.out[0] = correct.Grazing },
+		"no index":             func(p *photos, b *correct.Bundle) { b.Light.Water[0] = nan },
+		"no surface":           func(p *photos, b *correct.Bundle) { b.Planes.Level[1] = nan },
+		"camera in water":      func(p *photos, b *correct.Bundle) { b.Cameras.Z[1] = 0 },
+		"point above":          func(p *photos, b *correct.Bundle) { p.truth.Z[0] = 1 },
+		"straight ray upwards": func(p *photos, b *correct.Bundle) { p.raw.Z[0], b.Solve = 99, correct.Intersect },
+		"point on no place":    func(p *photos, b *correct.Bundle) { p.truth.X[0] = nan; p.truth.Z[0] = nan },
 	} {
 		t.Run(name, func(t *testing.T) {
 			p := onePhoto()
