@@ -17,21 +17,21 @@ type Planes struct{ Level, SlopeX, SlopeY []float64 }
 // Light is what the kernels must know of air and water, all referred to vacuum.
 type Light struct {
 	Air        float64   // phase index of the air
-	RangeIndex float64   // index that the file's ranges were computed with; Vertical does not read it
+	RangeIndex float64   // index that the file's ranges were computed with; only Pulse reads it
 	Water      []float64 // phase index of the water at each point
-	WaterGroup []float64 // group index of the water at each point; Vertical does not read it
+	WaterGroup []float64 // group index of the water at each point; only Pulse reads it
 }
 
 // Result holds what is computed of each point. XYZ is the true point, or the raw
 // one where the point is not Corrected. The rest is NaN where it was not
-// computed.
+// computed. Of a point with several rays the last three are means.
 type Result struct {
 	XYZ
 	Depth         []float64 // WaterLevel - Z, m, positive down
 	WaterLevel    []float64 // elevation of the surface at the true point's plan position, m
-	EntryLevel    []float64 // elevation of the surface where the ray enters the water, m
-	IncidenceRad  []float64 // angle in air between ray and surface normal, 0 to pi/2
-	RefractionRad []float64 // the same angle in the water
+	EntryLevel    []float64 // elevation of the surface where the ray crosses it, m
+	IncidenceRad  []float64 // angle between ray and surface normal on the origin's side, 0 to pi/2
+	RefractionRad []float64 // the same angle on the point's side
 }
 
 // NewResult returns a Result for n points.

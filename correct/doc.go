@@ -32,10 +32,10 @@
 //
 // Metres, radians, z up, right-handed. All columns of a call have the length of
 // out, one value per point, those of rays one value per ray; other lengths are a
-// caller's bug and panic.
-// dst.XYZ may be the raw columns themselves; no other columns may overlap.
-// What was not computed is NaN. Nothing is allocated, but for a MultiviewSolver's room
-// for the rays of one point. The package keeps no state: calls on separate columns may run at once.
+// caller's bug and panic. dst.XYZ may be the raw columns themselves; no other columns
+// may overlap. What was not computed is NaN. Nothing is allocated, but for a
+// MultiviewSolver's room for the rays of one point. The package keeps no state: calls on
+// separate columns may run at once.
 //
 // # Range
 //

@@ -9,6 +9,30 @@ const (
 	newtonSteps = 30
 )
 
+// invertFrom inverts from the best start there is: the last solution, the
+// intersection of the refracted raw rays, or n times the depth.
+func (s *MultiviewSolver) invertFrom(i int, from optics.Vec, b *Bundle) (optics.Vec, bool) {
+	first := b.Start[i]
+	for k := range s.sights {
+		if !s.sights[k].aimFor(b.Residual, b.Cameras, b.Camera[int(first)+k]) {
+			return optics.Vec{}, false
+		}
+	}
+	if b.Warm && s.areBeyond(from) {
+		if p, ok := s.invert(from, b.Residual); ok {
+			return p, true
+		}
+	}
+	from, ok := s.intersect()
+	if !ok || !s.areBeyond(from) {
+		from = s.straightDown()
+	}
+	if !s.areBeyond(from) {
+		return from, false
+	}
+	return s.invert(from, b.Residual)
+}
+
 // invert returns the point, relative to the raw one, whose refracted rays the survey's
 // triangulation intersected at the raw point: with the rays traced to it the gradient
 // of the triangulation's cost vanishes at the raw point. Three equations, Newton's
@@ -23,7 +47,7 @@ func (s *MultiviewSolver) invert(from optics.Vec, rule Residual) (optics.Vec, bo
 		}
 		share := s.share(p, step)
 		p = p.Sub(step.Scale(share))
-		if share == 1 && step.Norm() < doneM {
+		if step.Norm() < doneM {
 			return p, s.areAhead(rule)
 		}
 	}

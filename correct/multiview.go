@@ -22,40 +22,6 @@ const (
 	Average
 )
 
-// Bundle is what a MultiviewSolver must know beside the raw points: the rays of each,
-// the water surface where they cross it, and the indices.
-type Bundle struct {
-	Views
-	Cameras *Cameras
-	// Planes has one plane per ray: the elevation at the raw plan position of the ray's
-	// point, and the slopes.
-	Planes Planes
-	// Light has the indices: Air, and Water for each point. The others are not read.
-	Light    Light
-	Solve    Solve
-	Residual Residual // of the triangulation that made the raw points; Invert alone reads it
-	// FromWater says that the cameras are under water and the points in the air.
-	FromWater bool
-	// Warm says that dst holds points near the solutions to start from, such as those of the
-	// same points under planes that differ a little. Invert alone reads it.
-	Warm bool
-	// MaxIncidenceRad is the largest angle between ray and surface normal on
-	// the camera's side, 0 to pi/2.
-	MaxIncidenceRad float64
-}
-
-func (b *Bundle) mustHave(n int) {
-	b.Views.mustHave(n)
-	b.Planes.mustHave(len(b.Camera))
-	b.Cameras.XYZ.mustHave(len(b.Cameras.X))
-	mustHave(n, b.Light.Water)
-	if b.Residual == Image && b.Solve == Invert && len(b.Cameras.Rotation) != len(b.Cameras.X) {
-		panic(errRotations)
-	}
-}
-
-const errRotations = "correct: the image residual needs the rotation of each camera"
-
 // MultiviewSolver corrects points that a triangulation intersected from images. The zero
 // value is ready; it holds room for the rays of one point, so each goroutine
 // needs its own.
@@ -143,23 +109,6 @@ func (s *MultiviewSolver) gather(i int, point optics.Vec, b *Bundle) Outcome {
 	return Corrected
 }
 
-// sight fills r with the geometry of ray k, of a point. It is false where the ray has no
-// surface.
-func (b *Bundle) sight(r *sight, k int, point optics.Vec) bool {
-	surface := b.Planes.around(k, point.Z)
-	camera := b.Cameras.at(int(b.Camera[k]))
-	r.look(camera, camera.Sub(point), surface, b.FromWater)
-	return surface.isFinite()
-}
-
-// boundary returns the surface at point i, from the cameras' side.
-func (b *Bundle) boundary(i int) optics.Boundary {
-	if b.FromWater {
-		return optics.NewBoundary(b.Light.Water[i], b.Light.Air)
-	}
-	return optics.NewBoundary(b.Light.Air, b.Light.Water[i])
-}
-
 // solve returns the true point relative to the raw one. from is where a warm start begins.
 // Where there is no solution the outcome is Unsolved, or Grazing where a raw ray
 // is totally reflected.
@@ -187,30 +136,6 @@ func (s *MultiviewSolver) solve(i int, from optics.Vec, b *Bundle) (optics.Vec, 
 	return p, Unsolved
 }
 
-// invertFrom inverts from the best start there is: the last solution, the
-// intersection of the refracted raw rays, or n times the depth.
-func (s *MultiviewSolver) invertFrom(i int, from optics.Vec, b *Bundle) (optics.Vec, bool) {
-	first := b.Start[i]
-	for k := range s.sights {
-		if !s.sights[k].aimFor(b.Residual, b.Cameras, b.Camera[int(first)+k]) {
-			return optics.Vec{}, false
-		}
-	}
-	if b.Warm && s.areBeyond(from) {
-		if p, ok := s.invert(from, b.Residual); ok {
-			return p, true
-		}
-	}
-	from, ok := s.intersect()
-	if !ok || !s.areBeyond(from) {
-		from = s.straightDown()
-	}
-	if !s.areBeyond(from) {
-		return from, false
-	}
-	return s.invert(from, b.Residual)
-}
-
 // isReflected reports whether a raw ray is totally reflected, or does not come down to its
 // plane at all.
 func (s *MultiviewSolver) isReflected() bool {
@@ -227,9 +152,11 @@ func (s *MultiviewSolver) isReflected() bool {
 func (s *MultiviewSolver) incidence(o Outcome) (near, far, widest float64) {
 	for k := range s.sights {
 		r := &s.sights[k]
-		i, t := r.rawIncidenceRad(), math.NaN()
+		var i, t float64
 		if o == Corrected {
 			i, t = r.angles()
+		} else {
+			i, t = r.back.AngleRad(r.up), math.NaN()
 		}
 		near, far, widest = near+i, far+t, max(widest, i)
 	}

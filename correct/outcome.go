@@ -16,13 +16,13 @@ const (
 	NoRule                     // no sensor matches
 	Outside                    // not in the extent of the water
 	NoSurface                  // no water surface at the point's plan position
-	Dry                        // at or above the surface at its raw plan position
-	NoOrigin                   // no ray origin, or one that is not above the surface
+	Dry                        // on the ray origin's side of the surface at its raw plan position
+	NoOrigin                   // no ray origin, or one that is not on its side of the surface
 	NoWater                    // no temperature and salinity for it
 	OutOfRange                 // water outside the range of the index formula
 	FewRays                    // seen by fewer than two rays
 	Grazing                    // incidence beyond the limit, or total reflection
-	Unsolved                   // no finite result
+	Unsolved                   // no result: not finite, or the rays do not fix one
 )
 
 // NumOutcomes is the number of outcomes: every outcome is below it.

@@ -101,9 +101,6 @@ func (r *sight) near() optics.Vec { return r.up.Add(r.run.Scale(r.slopes.Near)) 
 // far returns the direction of the ray on the point's side in the same manner.
 func (r *sight) far() optics.Vec { return r.up.Add(r.run.Scale(r.slopes.Far)) }
 
-// rawIncidenceRad returns the angle of the straight raw ray from the normal.
-func (r *sight) rawIncidenceRad() float64 { return r.back.AngleRad(r.up) }
-
 // angles returns the ray's angles from the normal on both sides.
 func (r *sight) angles() (near, far float64) {
 	run := math.Sqrt(r.run2)
