@@ -1,7 +1,6 @@
 package geo
 
-// cast is one profile of the water: levels by depth, each depth once. What was
-// measured without a depth is a cast of one level, and the same at every depth.
+// cast is one profile of the water: levels by depth, at least two, each depth once.
 type cast []castLevel
 
 // castLevel is one record of a cast with the sums of temperature and salinity over
@@ -25,10 +24,9 @@ func (c cast) integrate() {
 }
 
 // mean returns the means of temperature and salinity from the surface to a depth. At
-// the surface, and above it, they are those of the surface; at NaN depth NaN, unless
-// the cast has one level.
+// the surface, and above it, they are those of the surface; at NaN depth NaN.
 func (c cast) mean(depth float64) (temperature, salinity float64) {
-	if len(c) == 1 || depth <= c[0].depth {
+	if depth <= c[0].depth {
 		return c[0].temperature, c[0].salinity
 	}
 	k := c.above(depth)

@@ -84,9 +84,9 @@ func BenchmarkStations(b *testing.B) {
 		s := benchStations(b, kind.timed, kind.casts)
 		for _, where := range swaths {
 			x, y, utc, depth := benchPoints(b, where.swath)
-			t, c := make([]float64, len(x)), make([]float64, len(x))
+			t, c, rows := make([]float64, len(x)), make([]float64, len(x)), rowsTo(len(x))
 			b.Run(kind.name+"/"+where.name, func(b *testing.B) {
-				runChunks(b, len(x), func() { s.Fill(t, c, x, y, utc, depth) })
+				runChunks(b, len(x), func() { s.Fill(t, c, rows, x, y, utc, depth) })
 			})
 		}
 	}
@@ -104,8 +104,8 @@ func BenchmarkStationsOnce(b *testing.B) {
 	}
 	s := mustStations(b, r, 3600)
 	x, y, utc, _ := benchPoints(b, false)
-	t, c := make([]float64, len(x)), make([]float64, len(x))
-	runChunks(b, len(x), func() { s.Fill(t, c, x, y, utc, nil) })
+	t, c, rows := make([]float64, len(x)), make([]float64, len(x)), rowsTo(len(x))
+	runChunks(b, len(x), func() { s.Fill(t, c, rows, x, y, utc, nil) })
 }
 
 func BenchmarkNewStations(b *testing.B) {
@@ -154,11 +154,11 @@ func BenchmarkLocalWater(b *testing.B) {
 	for _, where := range swaths {
 		x, y, utc, _ := benchPoints(b, where.swath)
 		zone, level := make([]int32, len(x)), make([]float64, len(x))
-		t, c := make([]float64, len(x)), make([]float64, len(x))
+		t, c, rows := make([]float64, len(x)), make([]float64, len(x)), rowsTo(len(x))
 		b.Run(where.name, func(b *testing.B) {
 			runChunks(b, len(x), func() {
 				zones.Find(zone, x, y)
-				stations.Fill(t, c, x, y, utc, nil)
+				stations.Fill(t, c, rows, x, y, utc, nil)
 				gauge.Add(level, x, y, utc)
 			})
 		})

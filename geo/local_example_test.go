@@ -67,7 +67,7 @@ func ExampleStations_Fill() {
 	}
 	x, y, depth := []float64{0, 0, 50}, []float64{0, 0, 0}, []float64{4, 8, 8}
 	temperature, salinity := make([]float64, 3), make([]float64, 3)
-	stations.Fill(temperature, salinity, x, y, nil, depth)
+	stations.Fill(temperature, salinity, []int32{0, 1, 2}, x, y, nil, depth)
 	fmt.Printf("%.1f %.1f\n", temperature, salinity)
 	// Output:
 	// [18.0 16.0 15.5] [30.0 31.0 31.5]

@@ -1,7 +1,6 @@
 package geo
 
 import (
-	"cmp"
 	"math"
 	"slices"
 )
@@ -24,12 +23,18 @@ type nearIndex struct {
 	bounds     []bound // count for each cell
 }
 
-// bound is a site and the square of a distance (m2) that no point of the cell falls
-// below.
-type bound struct {
-	distance2 float32
-	site      int32
+// bound is a site and the square of a distance (m2, as a float32) that no point of the
+// cell falls below: the bits of the distance above those of the site's number, so that
+// bounds have the order of the distances, then of the numbers.
+type bound uint64
+
+func newBound(distance2 float64, site int) bound {
+	return bound(math.Float32bits(float32(distance2)))<<32 | bound(site)
 }
+
+func (b bound) distance2() float64 { return float64(math.Float32frombits(uint32(b >> 32))) }
+
+func (b bound) site() int32 { return int32(uint32(b)) }
 
 // newNearIndex returns the index of at least one site. The grid reaches beyond the
 // sites by half their larger extent; cells at its rim reach on without end.
@@ -60,11 +65,9 @@ func (n *nearIndex) appendCell(col, row int, x, y []float64) {
 	for k := range x {
 		dx, dy := n.cols.apart(col, x[k]), n.rows.apart(row, y[k])
 		d2 := (dx*dx + dy*dy) * (1 - 0x1p-20) // so that the rounding to float32 stays below
-		n.bounds = append(n.bounds, bound{distance2: float32(d2), site: int32(k)})
+		n.bounds = append(n.bounds, newBound(d2, k))
 	}
-	slices.SortFunc(n.bounds[first:], func(a, b bound) int {
-		return cmp.Or(cmp.Compare(a.distance2, b.distance2), cmp.Compare(a.site, b.site))
-	})
+	slices.Sort(n.bounds[first:])
 }
 
 // apart returns the distance of v from a cell of the axis, less than it is by a 16th

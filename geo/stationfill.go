@@ -5,11 +5,11 @@ import (
 	"slices"
 )
 
-// Fill fills temperature (degrees C) and salinity (practical) with the water at each
-// plan position x, y (m) and time utc (s since 1970, POSIX), for casts with the mean
-// from the surface to depth (m, positive down). Both are NaN where there is none: no
-// station has water at the time, or a coordinate, a time or a depth that is used is
-// NaN.
+// Fill fills temperature (degrees C) and salinity (practical) of the rows that are
+// named with the water at their plan position x, y (m) and time utc (s since 1970,
+// POSIX), for casts with the mean from the surface to depth (m, positive down). Other
+// rows keep what they have. Both are NaN where there is none: no station has water at
+// the time, or a coordinate, a time or a depth that is used is NaN.
 //
 //   - Each station is linear in time between its records, however far apart, and holds
 //     its first and last up to maxGap beyond. One without water at the time drops
@@ -20,18 +20,20 @@ import (
 //   - The 8 nearest stations are weighted by inverse distance squared (Shepard 1968);
 //     within 1 mm of one it is that one's alone.
 //
-// The slices have one length (otherwise it panics); utc may be nil without HasTimes,
+// The columns have one length (otherwise it panics); utc may be nil without HasTimes,
 // depth without HasDepths. A point costs a look at 8 stations, and a search for
 // them, among a dozen as long as the near ones have water, when it is far from the
-// last point searched for; what comes out does not depend on the points before.
-func (s *Stations) Fill(temperature, salinity, x, y, utc, depth []float64) {
+// last point searched for; what comes out does not depend on the points before. Times
+// that go on from point to point are looked up fastest.
+func (s *Stations) Fill(temperature, salinity []float64, rows []int32, x, y, utc, depth []float64) {
 	n := len(temperature)
 	if len(salinity) != n || len(x) != n || len(y) != n || s.timed && len(utc) != n || s.casts && len(depth) != n {
 		panic(errLengths)
 	}
 	var near nearest
+	var last lately
 	when, down := 0.0, 0.0
-	for i := range temperature {
+	for _, i := range rows {
 		if s.timed {
 			when = utc[i]
 		}
@@ -41,7 +43,7 @@ func (s *Stations) Fill(temperature, salinity, x, y, utc, depth []float64) {
 		if !near.covers(x[i], y[i], when) {
 			s.search(&near, x[i], y[i], when)
 		}
-		temperature[i], salinity[i] = s.mean(&near, x[i], y[i], when, down)
+		temperature[i], salinity[i] = s.mean(&near, &last, x[i], y[i], when, down)
 	}
 }
 
@@ -50,15 +52,15 @@ func (s *Stations) search(near *nearest, x, y, utc float64) {
 	*near = nearest{x: x, y: y, worst: math.Inf(1)}
 	near.after, near.until = s.unchanged(utc)
 	for _, b := range s.index.of(x, y) {
-		if float64(b.distance2) > near.worst {
+		if b.distance2() > near.worst {
 			break
 		}
-		st := &s.stations[b.site]
+		st := &s.stations[b.site()]
 		if !(utc >= st.from && utc <= st.until) {
 			continue
 		}
 		dx, dy := x-st.x, y-st.y
-		near.offer(dx*dx+dy*dy, b.site)
+		near.offer(dx*dx+dy*dy, b.site())
 	}
 	near.settle()
 }
@@ -82,7 +84,7 @@ func (s *Stations) unchanged(utc float64) (after, until float64) {
 
 // mean returns the weighted mean of the nearest stations. It is taken from differences
 // to one of them, so where all agree it is what they say.
-func (s *Stations) mean(near *nearest, x, y, utc, depth float64) (temperature, salinity float64) {
+func (s *Stations) mean(near *nearest, last *lately, x, y, utc, depth float64) (temperature, salinity float64) {
 	if near.count == 0 || math.IsNaN(depth) {
 		return math.NaN(), math.NaN()
 	}
@@ -91,7 +93,7 @@ func (s *Stations) mean(near *nearest, x, y, utc, depth float64) (temperature, s
 		st := &s.stations[site]
 		dx, dy := x-st.x, y-st.y
 		d2 := dx*dx + dy*dy
-		oneT, oneS := st.at(utc, depth)
+		oneT, oneS := st.at(last.record(st, site, utc), utc, depth)
 		if d2 < atPlace*atPlace {
 			return oneT, oneS
 		}
@@ -106,20 +108,36 @@ func (s *Stations) mean(near *nearest, x, y, utc, depth float64) (temperature, s
 	return temperature + sumT/weights, salinity + sumS/weights
 }
 
-// at returns the station's water at a time at which it has some, to a depth.
-func (st *station) at(utc, depth float64) (temperature, salinity float64) {
-	last := len(st.casts) - 1
-	switch {
-	case utc <= st.utc[0] || last == 0:
-		return st.casts[0].mean(depth)
-	case utc >= st.utc[last]:
-		return st.casts[last].mean(depth)
+// lately remembers which records stations were last asked for: times of points go on
+// from row to row, and stations are often sampled together. It is a guess, which is
+// looked at before it is taken, so stations may share places in it.
+type lately [64]int32
+
+// record returns a station's last record not after a time; its first where there is
+// none.
+func (l *lately) record(st *station, site int32, utc float64) int {
+	guess := &l[site%int32(len(l))]
+	if k := int(*guess) + 1; k < len(st.records) && st.records[k-1].utc <= utc && utc < st.records[k].utc {
+		return k - 1
 	}
-	k := st.before(utc)
-	temperature, salinity = st.casts[k].mean(depth)
-	w := (utc - st.utc[k]) / (st.utc[k+1] - st.utc[k])
-	if w > 0 {
-		t, s := st.casts[k+1].mean(depth)
+	k := 0
+	switch last := len(st.records) - 1; {
+	case utc >= st.utc[last]:
+		k = last
+	case utc > st.utc[0]:
+		k = st.before(utc)
+	}
+	*guess = int32(k)
+	return k
+}
+
+// at returns the station's water at a time at which it has some, to a depth, given the
+// last record not after the time, or the first.
+func (st *station) at(k int, utc, depth float64) (temperature, salinity float64) {
+	r := &st.records[k]
+	temperature, salinity = r.mean(depth)
+	if w := (utc - r.utc) / r.gap; w > 0 {
+		t, s := st.records[k+1].mean(depth)
 		temperature += w * (t - temperature)
 		salinity += w * (s - salinity)
 	}

@@ -63,8 +63,8 @@ func TestStationsLengths(t *testing.T) {
 	mustPanic(t, func() { r := goodRecords(); r.Y = r.Y[1:]; _, _ = NewStations(r, 1) })
 	mustPanic(t, func() { r := goodRecords(); r.UTC = r.UTC[1:]; _, _ = NewStations(r, 1) })
 	c := make([]float64, 3)
-	mustPanic(t, func() { mustStations(t, goodRecords(), 1).Fill(c, c, c, c, c, nil) })
-	mustPanic(t, func() { mustStations(t, goodRecords(), 1).Fill(c, c, c, c, nil, c) })
+	mustPanic(t, func() { mustStations(t, goodRecords(), 1).Fill(c, c, nil, c, c, c, nil) })
+	mustPanic(t, func() { mustStations(t, goodRecords(), 1).Fill(c, c, nil, c, c, nil, c) })
 	r := goodRecords()
 	r.Depth, r.UTC = nil, nil
 	for _, column := range []*[]float64{&r.X, &r.Y, &r.Temperature, &r.Salinity} {
@@ -72,7 +72,7 @@ func TestStationsLengths(t *testing.T) {
 	}
 	r.Name = nil
 	s := mustStations(t, r, 1)
-	s.Fill(c, make([]float64, 3), []float64{1, 2, 1.5}, []float64{3, 4, 3.5}, nil, nil)
+	s.Fill(c, make([]float64, 3), rowsTo(3), []float64{1, 2, 1.5}, []float64{3, 4, 3.5}, nil, nil)
 	if c[0] != 15 || c[1] != 17 || c[2] != 16 {
 		t.Errorf("at both stations and half way: %v, want [15 17 16]", c)
 	}
@@ -84,7 +84,7 @@ func TestStationsRepeatAcrossNames(t *testing.T) {
 	r.Name[1], r.Name[4] = "buoy", "pier"
 	r.X[1], r.Y[1], r.X[4], r.Y[4] = 2, 4, 1, 3
 	s := mustStations(t, r, 1)
-	if len(s.stations) != 2 || len(s.stations[0].casts) != 2 || len(s.stations[1].casts) != 2 {
+	if len(s.stations) != 2 || len(s.stations[0].records) != 2 || len(s.stations[1].records) != 2 {
 		t.Errorf("%d stations, want 2 with 2 casts each", len(s.stations))
 	}
 	if gotT, gotS := fillOne(s, 1, 3, 0, 0); gotT != 16 || gotS != 30 {

@@ -31,11 +31,20 @@ type Stations struct {
 	timed, casts bool
 }
 
-// station is one place with its casts over time; it has water from a time to another.
+// station is one place with its records over time; it has water from a time to
+// another.
 type station struct {
 	x, y, from, until float64
-	casts             []cast
+	records           []stationRecord
 	timeline
+}
+
+// stationRecord is the water at one time: the same at every depth where the cast is
+// nil.
+type stationRecord struct {
+	utc, gap              float64 // s; gap to the next record, +Inf for the last
+	temperature, salinity float64 // of a cast, at the surface
+	cast
 }
 
 // NewStations returns the stations with the records given. A station with times has
@@ -129,23 +138,45 @@ func (r *StationRecords) station(s *site, maxGap float64) (station, error) {
 	var utc []float64
 	for i, row := range s.rows {
 		if i == 0 || r.utc(row) != r.utc(s.rows[i-1]) {
-			utc, st.casts = append(utc, r.utc(row)), append(st.casts, nil)
+			utc = append(utc, r.utc(row))
+			st.records = append(st.records, stationRecord{utc: r.utc(row), temperature: r.Temperature[row], salinity: r.Salinity[row]})
 		} else if r.depth(row) == r.depth(s.rows[i-1]) {
 			return station{}, &RecordError{Index: row, Err: r.repeat(s, row)}
 		}
-		last := len(st.casts) - 1
-		st.casts[last] = append(st.casts[last], castLevel{
+		last := &st.records[len(st.records)-1]
+		last.cast = append(last.cast, castLevel{
 			depth: r.depth(row), temperature: r.Temperature[row], salinity: r.Salinity[row],
 		})
 	}
-	for _, c := range st.casts {
-		c.integrate()
+	for k := range st.records {
+		st.records[k].finish(st.records[k+1:])
 	}
 	if r.UTC != nil {
 		st.from, st.until = utc[0]-maxGap, utc[len(utc)-1]+maxGap
 	}
 	st.timeline = newTimeline(utc)
 	return st, nil
+}
+
+// finish prepares a record with its levels, given those after it.
+func (r *stationRecord) finish(after []stationRecord) {
+	r.gap = math.Inf(1)
+	if len(after) > 0 {
+		r.gap = after[0].utc - r.utc
+	}
+	if len(r.cast) == 1 {
+		r.cast = nil
+		return
+	}
+	r.integrate()
+}
+
+// mean returns the means of temperature and salinity from the surface to a depth.
+func (r *stationRecord) mean(depth float64) (temperature, salinity float64) {
+	if r.cast == nil {
+		return r.temperature, r.salinity
+	}
+	return r.cast.mean(depth)
 }
 
 // repeat says how a row repeats another of its station.

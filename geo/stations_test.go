@@ -18,10 +18,19 @@ func mustStations(t testing.TB, r StationRecords, maxGap float64) *Stations {
 	return s
 }
 
+// rowsTo are the first n rows.
+func rowsTo(n int) []int32 {
+	rows := make([]int32, n)
+	for i := range rows {
+		rows[i] = int32(i)
+	}
+	return rows
+}
+
 // fillOne asks for the water at one point.
 func fillOne(s *Stations, x, y, utc, depth float64) (temperature, salinity float64) {
 	t, c := []float64{0}, []float64{0}
-	s.Fill(t, c, []float64{x}, []float64{y}, []float64{utc}, []float64{depth})
+	s.Fill(t, c, rowsTo(1), []float64{x}, []float64{y}, []float64{utc}, []float64{depth})
 	return t[0], c[0]
 }
 
@@ -147,7 +156,7 @@ func TestStationsChunk(t *testing.T) {
 				}
 			}
 		}
-		s.Fill(temperature, salinity, x, y, utc, depth)
+		s.Fill(temperature, salinity, rowsTo(n), x, y, utc, depth)
 		for i := range x {
 			if oneT, oneS := fillOne(s, x[i], y[i], utc[i], depth[i]); !same(temperature[i], oneT) || !same(salinity[i], oneS) {
 				t.Fatalf("timed %v, casts %v, lattice %v: point %d: %v %v, alone %v %v",
@@ -196,19 +205,20 @@ func TestStationsShared(t *testing.T) {
 		x[i], y[i], utc[i], depth[i] = 1000*rng.Float64(), 1000*rng.Float64(), 1.7e9+1e5*rng.Float64(), 9*rng.Float64()
 	}
 	wantT, wantS := make([]float64, n), make([]float64, n)
-	s.Fill(wantT, wantS, x, y, utc, depth)
+	rows := rowsTo(n)
+	s.Fill(wantT, wantS, rows, x, y, utc, depth)
 	var wait sync.WaitGroup
 	for range 4 {
 		wait.Go(func() {
 			gotT, gotS := make([]float64, n), make([]float64, n)
-			s.Fill(gotT, gotS, x, y, utc, depth)
+			s.Fill(gotT, gotS, rows, x, y, utc, depth)
 			if !slices.Equal(gotT, wantT) || !slices.Equal(gotS, wantS) {
 				t.Error("goroutines differ")
 			}
 		})
 	}
 	wait.Wait()
-	if n := testing.AllocsPerRun(10, func() { s.Fill(wantT, wantS, x, y, utc, depth) }); n != 0 {
+	if n := testing.AllocsPerRun(10, func() { s.Fill(wantT, wantS, rows, x, y, utc, depth) }); n != 0 {
 		t.Errorf("%v allocations a chunk, want 0", n)
 	}
 }

@@ -9,6 +9,7 @@ import (
 	"path/filepath"
 	"runtime"
 	"strings"
+	"sync"
 
 	"github.com/paulmach/orb"
 
@@ -75,8 +76,7 @@ func (s *survey) read(ctx context.Context, clouds []input) error {
 	err := errors.Join(
 		s.readSensors(ctx),
 		s.auxiliaryFile(ctx, "extent", "[extent] polygons", j.Extent.Polygons, s.readExtent),
-		s.auxiliaryFile(ctx, "zones", "[water] zones", j.Water.Zones, s.readZones),
-		s.auxiliaryFile(ctx, "stations", "[water] stations", j.Water.Stations, s.readStations),
+		s.readLocalWater(ctx),
 		s.readSurface(ctx, clouds),
 	)
 	if ctx.Err() != nil {
@@ -133,29 +133,52 @@ func (s *survey) readExtent(path string) error {
 	return nil
 }
 
+// readLocalWater reads zones and stations, side by side since both take a while.
+func (s *survey) readLocalWater(ctx context.Context) error {
+	zones := s.hashAuxiliary(ctx, "zones", "[water] zones", s.job.Water.Zones, s.readZones)
+	stations := s.hashAuxiliary(ctx, "stations", "[water] stations", s.job.Water.Stations, s.readStations)
+	var stationsErr error
+	var beside sync.WaitGroup
+	beside.Go(func() { stationsErr = stations() })
+	zonesErr := zones()
+	beside.Wait()
+	return errors.Join(zonesErr, stationsErr)
+}
+
 // auxiliaryFile hashes and reads a file that the job names beside its clouds, if
 // it names one.
 func (s *survey) auxiliaryFile(ctx context.Context, use, key, name string, read func(path string) error) error {
+	return s.hashAuxiliary(ctx, use, key, name, read)()
+}
+
+// hashAuxiliary hashes such a file, and returns what is left to do: to read it, or to
+// return what was wrong so far.
+func (s *survey) hashAuxiliary(ctx context.Context, use, key, name string, read func(path string) error) (rest func() error) {
+	failed := func(err error) func() error {
+		return func() error { return err }
+	}
 	if name == "" {
-		return nil
+		return failed(nil)
 	}
 	path := s.job.Resolve(name)
 	before, err := os.Stat(path)
 	if err != nil {
-		return fmt.Errorf("%s: %s: %w", s.job.Path, key, inFile(path, err))
+		return failed(fmt.Errorf("%s: %s: %w", s.job.Path, key, inFile(path, err)))
 	}
 	if !before.Mode().IsRegular() {
-		return fmt.Errorf("%s: %s: %s is not a regular file", s.job.Path, key, path)
+		return failed(fmt.Errorf("%s: %s: %s is not a regular file", s.job.Path, key, path))
 	}
 	bytes, sum, err := receipt.Hash(ctx, path)
 	if err != nil {
-		return fmt.Errorf("%s: %s: %w", s.job.Path, key, inFile(path, err))
+		return failed(fmt.Errorf("%s: %s: %w", s.job.Path, key, inFile(path, err)))
 	}
 	s.auxiliary = append(s.auxiliary, receipt.Input{Use: use, File: receipt.File{Path: filepath.ToSlash(name), Bytes: bytes, SHA256: sum}})
-	if err := read(path); err != nil {
-		return inFile(path, s.atLine(path, err))
+	return func() error {
+		if err := read(path); err != nil {
+			return inFile(path, s.atLine(path, err))
+		}
+		return unchanged(path, before)
 	}
-	return unchanged(path, before)
 }
 
 // inFile puts the file's name before an error that does not begin with it.

@@ -136,26 +136,36 @@ func (s *survey) fillZones(zone []int32, x, y []float64) {
 	s.zones.index.Find(zone, x, y)
 }
 
-// fillWater gives each point its temperature and salinity, NaN where there is
-// none, and says where they came from; points that are NoRule keep what they have.
+// fillWater gives each point that is Corrected so far its temperature and salinity,
+// NaN where there is none, and says where they came from; others keep what they have.
 // Casts are averaged down to the depth.
 func (s *survey) fillWater(w *workspace, out []correct.Outcome, depth []float64) {
 	if s.water.stations != nil {
-		s.water.stations.Fill(w.fromStations[0], w.fromStations[1], w.raw.X, w.raw.Y, w.utc, depth)
+		w.rows = w.rows[:0]
+		for i, o := range out {
+			if o == correct.Corrected && !s.hasZoneWater(w.zone[i]) {
+				w.rows = append(w.rows, int32(i))
+			}
+		}
+		s.water.stations.Fill(w.fromStations[0], w.fromStations[1], w.rows, w.raw.X, w.raw.Y, w.utc, depth)
 	}
 	for i, o := range out {
-		if o != correct.NoRule {
+		if o == correct.Corrected {
 			w.temperature[i], w.salinity[i], w.source[i] = s.waterOf(w, i)
 		}
 	}
 }
 
+// hasZoneWater tells whether a zone (-1: none) has a temperature and salinity.
+func (s *survey) hasZoneWater(zone int32) bool {
+	return zone >= 0 && !math.IsNaN(s.zones.list[zone].Temperature)
+}
+
 // waterOf returns the water of one point and the code of its source.
 func (s *survey) waterOf(w *workspace, i int) (temperature, salinity, source float64) {
-	if s.zones.index != nil && w.zone[i] >= 0 {
-		if z := &s.zones.list[w.zone[i]]; !math.IsNaN(z.Temperature) {
-			return z.Temperature, z.Salinity, float64(firstZone + w.zone[i])
-		}
+	if zone := w.zone[i]; s.hasZoneWater(zone) {
+		z := &s.zones.list[zone]
+		return z.Temperature, z.Salinity, float64(firstZone + zone)
 	}
 	if s.water.stations != nil && !math.IsNaN(w.fromStations[0][i]) {
 		return w.fromStations[0][i], w.fromStations[1][i], fromStations

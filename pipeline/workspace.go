@@ -24,6 +24,7 @@ type workspace struct {
 
 	temperature, salinity, source []float64 // source: position among waters.sources
 	fromStations                  [2][]float64
+	rows                          []int32 // that take their water from stations
 
 	part part
 	meet meeting
