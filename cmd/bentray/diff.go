@@ -14,7 +14,7 @@ type diffCommand struct {
 	Check     string  `help:"Compare with surveyed points: a file with columns x, y, z." placeholder:"FILE"`
 	Reach     float64 `help:"Match a check point within so much in plan, in the cloud's unit; 0 is 0.5 m." default:"0"`
 	Match     string  `help:"By a local plane through at least 6 points, or the nearest one: plane or nearest." default:"plane"`
-	Overlap   bool    `help:"Compare flight lines where they overlap, in cells twice as wide as the reach."`
+	Overlap   bool    `help:"Compare flight lines where they overlap, in cells of twice the reach, or wider where points are thin."`
 	JSON      string  `name:"json" help:"Also write all figures into this file." placeholder:"FILE"`
 	Workers   int     `help:"Files in work at once; 0 is one a processor." default:"0"`
 	Quiet     bool    `help:"No progress."`

@@ -17,7 +17,7 @@ type Options struct {
 	Check   string  // file of check points, with columns x, y, z; empty: none
 	Reach   float64 // within which a check point is matched, in the clouds' unit; 0: 0.5 m
 	Match   string  // MatchPlane or MatchNearest; empty: MatchPlane
-	Overlap bool    // compare flight lines, in cells twice as wide as the reach
+	Overlap bool    // compare flight lines, in cells twice as wide as the reach, or wider where points are thin
 	Workers int     // files in work at once; 0: one a processor
 	Watch   pipeline.Watcher
 }

@@ -8,7 +8,8 @@ import (
 )
 
 // overlap adds points up by cell and flight line, to compare lines in the cells that
-// they share. Where cells are many it keeps a share of them, chosen by chance.
+// they share. Where cells are many it keeps a share of them, chosen by chance in blocks,
+// so that they can be made wider.
 type overlap struct {
 	column  string  // that tells lines apart
 	side    float64 // of a cell
@@ -33,7 +34,9 @@ type moments struct {
 const (
 	maxLineCells = 1 << 17 // cells times lines that are kept
 	maxLines     = 1 << 12
-	leastPoints  = 3 // of a line in a cell
+	leastPoints  = 3   // of a line in a cell
+	doublings    = 4   // of a cell's side, at most
+	enoughCells  = 100 // differences, for which cells need not be wider
 )
 
 func newOverlap(side float64) *overlap {
@@ -42,7 +45,7 @@ func newOverlap(side float64) *overlap {
 
 // takes tells whether a cell is among those kept.
 func (o *overlap) takes(col, row int64) bool {
-	return o.mask == 0 || mix(mix(uint64(col))^uint64(row))&o.mask == 0
+	return o.mask == 0 || mix(mix(uint64(col>>doublings))^uint64(row>>doublings))&o.mask == 0
 }
 
 // add takes a corrected point of a line.

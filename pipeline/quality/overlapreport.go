@@ -11,7 +11,7 @@ import (
 // slopes that they share; the lines are in the order of their names.
 type OverlapReport struct {
 	Column      string        `json:"column"` // that tells lines apart
-	Cell        Number        `json:"cell"`   // side
+	Cell        Number        `json:"cell"`   // side, the smallest that gives differences enough
 	Share       Number        `json:"share"`  // of the cells that were looked at; below 1 where they are many
 	Lines       int           `json:"lines"`
 	Count       int           `json:"count"` // of differences
@@ -89,7 +89,7 @@ func (o *overlap) inCell(list []difference, cells []lineCell) []difference {
 
 // report sums the differences up.
 func (o *overlap) report(r *OverlapReport) {
-	list := o.differences()
+	o, list := o.widened()
 	r.Column, r.Cell, r.Share = o.column, Number(o.side), Number(1/(float64(o.mask)+1))
 	r.Lines, r.Count, r.Difference = len(o.lines.list), len(list), sumUp(list)
 	r.ByDepth = overlapBands(list, func(d difference) float64 { return d.depth })
@@ -99,7 +99,7 @@ func (o *overlap) report(r *OverlapReport) {
 	case r.Lines < 2:
 		r.Warnings = append(r.Warnings, "there is one flight line alone, want two or more")
 	case r.Count == 0:
-		r.Warnings = append(r.Warnings, "no cell has points enough of two flight lines; a larger --reach makes larger cells")
+		r.Warnings = append(r.Warnings, "no cell has points enough of two flight lines: they do not overlap, or are thin; a larger --reach makes larger cells")
 	}
 	if o.skipped > 0 {
 		r.Warnings = append(r.Warnings, "there are too many flight lines; the points of the last ones are left out")
