@@ -35,8 +35,8 @@ var errNotHeld = errors.New("the comparison does not hold")
 
 // Run compares and reports.
 func (c *diffCommand) Run(s *streams) error {
-	if c.JSON != "" && (c.JSON == c.Raw || c.JSON == c.Corrected || c.JSON == c.Check) {
-		return &pipeline.CallError{Err: fmt.Errorf("--json %s would overwrite an input; give another name", c.JSON)}
+	if err := c.checkJSON(); err != nil {
+		return err
 	}
 	watch := newWatcher(s.errors, c.Quiet, "")
 	r, err := quality.Diff(s.ctx, c.Raw, c.Corrected, quality.Options{
@@ -55,6 +55,19 @@ func (c *diffCommand) Run(s *streams) error {
 	}
 	if !r.Holds {
 		return errNotHeld
+	}
+	return nil
+}
+
+// checkJSON refuses to write figures over a cloud or another input.
+func (c *diffCommand) checkJSON() error {
+	switch {
+	case c.JSON == "":
+		return nil
+	case c.JSON == c.Raw || c.JSON == c.Corrected || c.JSON == c.Check:
+		return &pipeline.CallError{Err: fmt.Errorf("--json %s would overwrite an input; give another name", c.JSON)}
+	case pipeline.IsCloud(c.JSON):
+		return &pipeline.CallError{Err: fmt.Errorf("--json %s is a cloud, want another name", c.JSON)}
 	}
 	return nil
 }

@@ -9,6 +9,9 @@
 // node, npm or the package, bentray alone is measured, on CSV alone (the engine
 // makes the Parquet survey), and a message says so.
 //
+// `bentray diff` of the survey and its output is measured too, for its speed and
+// memory, and must hold.
+//
 // Of the same points the engine also makes Parquet files of one giant row group
 // and of giant pages. Only bentray is measured on them, for its memory, and its
 // outputs are compared with the one of the ordinary file.

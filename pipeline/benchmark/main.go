@@ -140,7 +140,11 @@ func (o options) measure(format, program string, sql *engine) (*result, error) {
 		}
 		engine = append(engine, u)
 	}
-	r := &result{format: format, rows: o.rows, inputBytes: info.Size(), workers: o.workers, runs: o.runs, bentray: summary(bentray)}
+	diff, err := o.measureDiff(program, input, filepath.Join(outFolder, filepath.Base(input)))
+	if err != nil {
+		return nil, err
+	}
+	r := &result{diff: diff, format: format, rows: o.rows, inputBytes: info.Size(), workers: o.workers, runs: o.runs, bentray: summary(bentray)}
 	if sql == nil {
 		return r, nil
 	}
@@ -163,6 +167,20 @@ func (o options) runBentray(program, job, outFolder string) (usage, error) {
 	syscall.Sync()
 	u, _, err := measure(exec.Command(program, "run", job, "--quiet", "--workers", strconv.Itoa(o.workers)))
 	return u, err
+}
+
+// measureDiff compares the survey with its corrected cloud.
+func (o options) measureDiff(program, input, output string) (*total, error) {
+	var runs []usage
+	for range o.runs {
+		u, _, err := measure(exec.Command(program, "diff", input, output, "--quiet", "--workers", strconv.Itoa(o.workers)))
+		if err != nil {
+			return nil, err
+		}
+		runs = append(runs, u)
+	}
+	sum := summary(runs)
+	return &sum, nil
 }
 
 // runEngine corrects the survey into a file that is not there yet.

@@ -20,6 +20,7 @@ type result struct {
 	workers     int
 	runs        int
 	bentray     total
+	diff        *total // of the input against bentray's output; nil where it was not measured
 	engine      *total
 	giants      []giantResult
 	checkedRows int64
@@ -40,6 +41,9 @@ func (r *result) print(w io.Writer) {
 	if r.engine != nil {
 		r.line(t, "engine", r.inputBytes, *r.engine)
 	}
+	if r.diff != nil {
+		r.line(t, "bentray diff", r.inputBytes, *r.diff)
+	}
 	for _, g := range r.giants {
 		r.line(t, "bentray, "+g.shape.String(), g.inputBytes, g.total)
 	}
@@ -59,6 +63,9 @@ func (r *result) line(w io.Writer, name string, inputBytes int64, t total) {
 func (r *result) check(holdFloor bool) error {
 	if r.bentray.peakMiB > peakLimitMiB {
 		return fmt.Errorf("%s: peak memory is %.0f MiB, want at most %d", r.format, r.bentray.peakMiB, peakLimitMiB)
+	}
+	if r.diff != nil && r.diff.peakMiB > peakLimitMiB {
+		return fmt.Errorf("%s: peak memory of diff is %.0f MiB, want at most %d", r.format, r.diff.peakMiB, peakLimitMiB)
 	}
 	for _, g := range r.giants {
 		if g.peakMiB > peakLimitMiB {

@@ -28,6 +28,7 @@ func TestFloorsAndPeakAreHeld(t *testing.T) {
 		{"parquet below its floor", result{format: "parquet", bentray: fast, engine: took(3)}, true, "parquet: 1.50 times"},
 		{"no engine", result{format: "csv", bentray: fast}, true, ""},
 		{"peak", result{format: "csv", bentray: total{usage: usage{seconds: 1, peakMiB: 513}}, engine: slow}, false, "peak memory is 513 MiB"},
+		{"peak of diff", result{format: "csv", bentray: fast, diff: &total{usage{seconds: 1, peakMiB: 600}, 1}}, true, "csv: peak memory of diff is 600 MiB"},
 		{"giants at the limit", result{format: "parquet", bentray: fast, giants: giants[:1]}, true, ""},
 		{
 			"peak of a giant",
@@ -47,6 +48,7 @@ func TestFloorsAndPeakAreHeld(t *testing.T) {
 
 func TestReportShowsSpeedAndRatio(t *testing.T) {
 	r := result{
+		diff:   &total{usage{4, 6, 90}, 3.5},
 		format: "csv", rows: 5e6, inputBytes: 440e6, workers: 2, runs: 3, checkedRows: 5016,
 		bentray: total{usage{2, 3.5, 100}, 1.5}, engine: &total{usage{7, 13, 700}, 6},
 		giants: []giantResult{{shape{1, 5e6, 4e6}, 110e6, total{usage{2.5, 4, 300}, 2.25}}},
@@ -55,6 +57,7 @@ func TestReportShowsSpeedAndRatio(t *testing.T) {
 	r.print(&out)
 	for _, want := range []string{
 		"bentray     2.00  1.50   2500000  220.0   3.50       100",
+		"bentray diff     4.00  3.50   1250000  110.0   6.00        90",
 		"engine     7.00  6.00    714286   62.9  13.00       700",
 		"bentray, 1 group, pages of 4000000     2.50  2.25   2000000   44.0   4.00       300",
 		"ratio engine/bentray 3.50 by median (floor 3), 4.00 by best; outputs agree on 5016 rows",
