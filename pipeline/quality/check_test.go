@@ -278,3 +278,44 @@ func TestMeaning(t *testing.T) {
 		}
 	}
 }
+
+// In feet the figures are those in metres over 0.3048, and the shares within the limits,
+// which are in metres, the same.
+func TestCheckInFeet(t *testing.T) {
+	raw, corrected, check := checkedCloud(20_000, 300)
+	feet := func(s sheet) sheet {
+		s = s.clone()
+		for i, name := range s[0] {
+			if !slices.Contains([]string{"x", "y", "z", "x_raw", "y_raw", "z_raw", "depth", "water_level"}, name) {
+				continue
+			}
+			for _, row := range s[1:] {
+				v, _ := strconv.ParseFloat(row[i], 64)
+				row[i] = exact(v / 0.3048)
+			}
+		}
+		return s
+	}
+	folder := t.TempDir()
+	compare := func(name string, raw, corrected, check sheet, o Options) *CheckReport {
+		o.Check = check.write(t, filepath.Join(folder, name+"-check.csv"))
+		path := corrected.write(t, filepath.Join(folder, name, "true.parquet"))
+		job := `{"run": "a1", "job": {"input": {"unit": "` + name + `", "vertical_unit": "` + name + `"}}, "rows_written": 20000, "outcomes": {"corrected": 20000}}`
+		writeFile(t, path+".receipt.json", job)
+		r, err := Diff(t.Context(), raw.write(t, filepath.Join(folder, name, "raw.parquet")), path, o)
+		if err != nil || !r.Holds || r.Unit != name {
+			t.Fatal(err, r)
+		}
+		return r.Check
+	}
+	m := compare("m", raw, corrected, check, Options{Reach: 2})
+	ft := compare("ft", feet(raw), feet(corrected), feet(check), Options{Reach: 2 / 0.3048})
+	if ft.Count != 300 || !isNear(ft.Bias, float64(m.Bias)/0.3048, 1e-8) || !isNear(ft.RMSE, float64(m.RMSE)/0.3048, 1e-8) || !isNear(ft.Slope, float64(m.Slope), 1e-8) {
+		t.Errorf("in feet %+v, in metres %+v", ft.Residuals, m.Residuals)
+	}
+	for name, share := range m.S44 {
+		if ft.S44[name] != share {
+			t.Errorf("order %s: %v in feet, %v in metres", name, ft.S44[name], share)
+		}
+	}
+}

@@ -92,9 +92,7 @@ func (g *gatherer) count(b *cloud.Chunk, i int) (corrected bool) {
 	if axis, want := g.read.checkAgreement(b, i, corrected, g.tolerance); axis >= 0 {
 		g.f.moved(g.row, g.coords[axis], b.Numbers[g.read.xyz[axis]][i], want, corrected)
 	}
-	if g.check != nil && string(outcome) == string(dryName) {
-		g.check.dry(b.Numbers[g.read.xyz[0]][i], b.Numbers[g.read.xyz[1]][i])
-	}
+	g.offer(b, i, corrected)
 	return corrected
 }
 
@@ -129,23 +127,38 @@ func (g *gatherer) take(b *cloud.Chunk, i int, x, y, z float64) {
 		g.noDepth++
 	}
 	g.addShift(dz, dh)
-	incidence := math.NaN()
-	if g.read.incidence >= 0 {
-		incidence = b.Numbers[g.read.incidence][i]
-	}
-	if incidence >= 0 && incidence <= 180 {
+	if incidence := g.incidenceOf(b, i); incidence >= 0 && incidence <= 180 {
 		g.incidence[int(incidence/incidenceWidth)].add(dz, dh, depth)
 	}
 	g.raster.add(p.x, p.y, dz, dh)
 	if g.sample.takes(p.hash) {
 		g.sample.add(p)
 	}
-	if g.check != nil {
-		g.check.offer(p.x, p.y, p.z, p.level)
+}
+
+// incidenceOf returns a row's incidence in degrees, NaN where it is not known.
+func (g *gatherer) incidenceOf(b *cloud.Chunk, i int) float64 {
+	if g.read.incidence < 0 {
+		return math.NaN()
 	}
-	if g.overlap != nil {
+	return b.Numbers[g.read.incidence][i]
+}
+
+// offer takes a point to the check points and to the other flight lines, whatever the
+// other file has of it.
+func (g *gatherer) offer(b *cloud.Chunk, i int, corrected bool) {
+	n, xyz := b.Numbers, &g.read.xyz
+	x, y, z := n[xyz[0]][i], n[xyz[1]][i], n[xyz[2]][i]
+	if g.overlap != nil && corrected {
 		g.number = g.read.lineOf(b, i, g.number)
-		g.overlap.add(g.number, p.x, p.y, p.z, depth, incidence)
+		g.overlap.add(g.number, x, y, z, n[g.read.depth][i], g.incidenceOf(b, i))
+	}
+	switch {
+	case g.check == nil:
+	case corrected:
+		g.check.offer(x, y, z, g.read.levelOf(b, i))
+	case string(b.Texts[g.read.outcome].At(i)) == string(dryName):
+		g.check.dry(x, y)
 	}
 }
 

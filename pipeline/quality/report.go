@@ -31,7 +31,7 @@ type Report struct {
 	ColumnsChanged []string         `json:"columns_changed"`
 	NotCompared    []string         `json:"columns_not_compared"` // stored in other bytes, in a type that cannot be read
 	OneSided       []string         `json:"columns_one_sided"`    // of two corrected clouds, untouched columns of one alone
-	Findings       []Finding        `json:"findings"`             // the first ones of each file
+	Findings       []Finding        `json:"findings"`             // the first ones
 	FindingCounts  map[string]int64 `json:"finding_counts"`       // of all, by Kind
 	Files          []FileReport     `json:"files"`
 	Settings       []Setting        `json:"settings"`
