@@ -57,6 +57,19 @@ func TestDescribeMoment(t *testing.T) {
 	}
 }
 
+// Clouds in GPS time, as numbers or TIMESTAMPs, give the same moment in UTC.
+func TestDescribeMomentInGPSTime(t *testing.T) {
+	const cloud = "x,y,z,gps_time\n3,0,-1,400000000\n3,0,-1,400000060\n" // from 1715964782 s, UTC
+	tables := strings.Replace(metres, "*.csv", "*.parquet", 1) + "[surface.plane]\nlevel = 0\nat = [0, 0]\n[extent]\npolygons = \"water.geojson\"\n[surface.gauge]\nfile = \"gauge.csv\"\n"
+	for name, data := range map[string]string{"numbers": parquetOf(t, cloud, 0, nil), "TIMESTAMP": stamps(t, cloud)} {
+		r := described(t, tables, files{"raw/a.parquet": data, "gauge.csv": "time,level\n1715964700,0\n1715965700,10\n", "water.geojson": polygonOf(0, 0, 9, 9)})
+		if r.Map == nil || r.Map.At == nil || !r.Map.At.Equal(time.Unix(1715964812, 0)) {
+			t.Fatalf("%s: the moment is %+v, want 1715964812 s", name, r.Map)
+		}
+		near(t, 0, "the level", r.Map.Level.Low, 1.12, 1e-9)
+	}
+}
+
 // What stops a run before its clouds stops a description, with the same words; what a
 // run cautions for all clouds, a description cautions too.
 func TestDescribeLikeARun(t *testing.T) {

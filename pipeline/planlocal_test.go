@@ -86,6 +86,10 @@ func TestSensorCounts(t *testing.T) {
 			t.Errorf("the receipt of %s counts %v, want %v", name, got, want)
 		}
 	}
+	none, err := MakePlan(t.Context(), loadJob(t, folder, "[input]\nfiles = [\"raw/*.csv\"]\n[output]\nfolder = \"other\"\n[select]\nwhere.strip = [\"up\"]\n"+seaWater+"[surface]\nlevel = 0\n"+sensor("north")), nil)
+	if err != nil || slices.ContainsFunc(none.Cautions, func(text string) bool { return strings.Contains(text, "sensor") }) {
+		t.Errorf("where no point is selected the plan cautions %q (%v), want nothing on sensors", none.Cautions, err)
+	}
 	if _, r := correctText(t, tiny, tinyJob(`"raw/*.csv"`, "true")); r.Sensors != nil {
 		t.Errorf("a job without named sensors counts %v", r.Sensors)
 	}
