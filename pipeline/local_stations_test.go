@@ -6,6 +6,7 @@ import (
 	"slices"
 	"testing"
 
+	"bentray/correct"
 	"bentray/correct/medium"
 )
 
@@ -202,5 +203,31 @@ func checkStations(t *testing.T, got table, shots []shot, waters [][2]float64) {
 	}
 	if dry == 0 || dry > len(shots)/2 {
 		t.Errorf("%d of %d points have no water, want some", dry, len(shots))
+	}
+}
+
+// Every outcome that shows its water, and those that are set before the water is looked
+// up though they come after it in precedence, gets the water of its own place: what an
+// earlier chunk left there is gone.
+func TestWaterOfEarlierChunks(t *testing.T) {
+	folder := t.TempDir()
+	files{"raw/a.csv": "x,y,z\n1,2,3\n", "stations.csv": "x,y,temperature,salinity\n1,2,12,30\n"}.write(t, folder)
+	s, err := readSurvey(t.Context(), loadJob(t, folder, pulseJob+"[surface]\nlevel = 0\n[water]\nstations = \"stations.csv\"\n"), nil, Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	n := int(correct.NumOutcomes)
+	var w workspace
+	out := make([]correct.Outcome, n)
+	w.zone = make([]int32, n)
+	growAll(n, &w.raw.X, &w.raw.Y, &w.temperature, &w.salinity, &w.source, &w.fromStations[0], &w.fromStations[1])
+	for i := range n {
+		out[i], w.zone[i], w.temperature[i], w.fromStations[0][i] = correct.Outcome(i), -1, -99, -99
+	}
+	s.fillWater(&w, out, nil)
+	for i, o := range out {
+		if isFresh := w.temperature[i] == 12 && w.salinity[i] == 30 && w.source[i] == fromStations; watered(o) && o != correct.OutOfRange && !isFresh {
+			t.Errorf("%v has %v degrees C, salinity %v from %v, want 12 and 30 from stations", o, w.temperature[i], w.salinity[i], w.source[i])
+		}
 	}
 }

@@ -136,21 +136,24 @@ func (s *survey) fillZones(zone []int32, x, y []float64) {
 	s.zones.index.Find(zone, x, y)
 }
 
-// fillWater gives each point that is Corrected so far its temperature and salinity,
-// NaN where there is none, and says where they came from; others keep what they have.
+// reachesWater tells whether nothing that comes before the water has stopped a point.
+func reachesWater(o correct.Outcome) bool { return o == correct.Corrected || o > correct.OutOfRange }
+
+// fillWater gives each point that reaches the water its temperature and salinity, NaN
+// where there is none, and says where they came from; others keep what they have.
 // Casts are averaged down to the depth.
 func (s *survey) fillWater(w *workspace, out []correct.Outcome, depth []float64) {
 	if s.water.stations != nil {
 		w.rows = w.rows[:0]
 		for i, o := range out {
-			if o == correct.Corrected && !s.hasZoneWater(w.zone[i]) {
+			if reachesWater(o) && !s.hasZoneWater(w.zone[i]) {
 				w.rows = append(w.rows, int32(i))
 			}
 		}
 		s.water.stations.Fill(w.fromStations[0], w.fromStations[1], w.rows, w.raw.X, w.raw.Y, w.utc, depth)
 	}
 	for i, o := range out {
-		if o == correct.Corrected {
+		if reachesWater(o) {
 			w.temperature[i], w.salinity[i], w.source[i] = s.waterOf(w, i)
 		}
 	}
@@ -201,7 +204,7 @@ func (s *survey) waterAt(w *workspace, i int) medium.Water {
 // before what a model may have said of them with another index.
 func (s *survey) markOutOfRange(p *part, w *workspace, sn *sensor) {
 	for i, o := range p.out {
-		if (o == correct.Corrected || o > correct.OutOfRange) && !s.water.formula.Computed(s.waterAt(w, i), sn.wavelength) {
+		if reachesWater(o) && !s.water.formula.Computed(s.waterAt(w, i), sn.wavelength) {
 			p.fail(i, correct.OutOfRange)
 		}
 	}
