@@ -2,7 +2,6 @@ package pipeline
 
 import (
 	"fmt"
-	"slices"
 
 	"bentray/correct"
 )
@@ -40,8 +39,8 @@ func (t *tally) cautions(s *survey) []string {
 	if n := t.noPosition; n > 0 {
 		cautions = append(cautions, fmt.Sprintf("%d of %d points have no ray origin: %s", n, total, s.whyNoPosition()))
 	}
-	if n := t.outcomes[correct.NoOrigin] - t.noPosition; n > 0 {
-		cautions = append(cautions, fmt.Sprintf("%d of %d points have a ray origin that is %s: are origins and cloud in one system and unit?", n, total, s.wrongSide()))
+	if n := t.outcomes[correct.NoOrigin] - t.noPosition - t.images.offside; n > 0 {
+		cautions = append(cautions, fmt.Sprintf("%d of %d points have a ray origin that is not above the water: are origins and cloud in one system and unit?", n, total))
 	}
 	if total > 0 && t.outcomes[correct.Corrected] == 0 {
 		cautions = append(cautions, "no point was corrected")
@@ -68,12 +67,4 @@ func (s *survey) whyNoPosition() string {
 		}
 	}
 	return "an origin column is empty there"
-}
-
-// wrongSide says where a ray origin is that cannot have seen through the surface.
-func (s *survey) wrongSide() string {
-	if slices.ContainsFunc(s.sensors, (*sensor).looksUp) {
-		return "on the points' side of the surface"
-	}
-	return "not above the water"
 }

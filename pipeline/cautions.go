@@ -3,6 +3,7 @@ package pipeline
 import (
 	"fmt"
 	"math"
+	"slices"
 
 	"github.com/paulmach/orb"
 )
@@ -97,7 +98,10 @@ func (s *survey) levelCautions(level, extent float64, z span) (cautions []string
 		say("one constant level over %.1f km: an ellipsoidal level is not level over such a distance; use a plane, or heights above a geoid", extent/1000)
 	}
 	unit := s.job.Input.VerticalUnit
-	switch {
+	switch up := slices.ContainsFunc(s.sensors, (*sensor).looksUp); {
+	case up && level >= z.high:
+		say("the level %g lies %.1f %s above the highest point: no point would be out of the water; are level and cloud in one vertical reference?", level, level-z.high, unit)
+	case up: // points far from the level may be in the air
 	case level <= z.low:
 		say("the level %g lies %.1f %s below the lowest point: no point would be under water; are level and cloud in one vertical reference?", level, z.low-level, unit)
 	case (level-z.high)*s.height > levelRise:

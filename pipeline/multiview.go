@@ -35,6 +35,8 @@ type rays struct {
 	lastX, lastY []float64 // where the planes were taken
 	moving, done []int32   // points whose entries still move, and those that have come to rest
 	few          fewRays
+
+	slopeX, slopeY []float64 // of the planes at all points of a part
 }
 
 // fewRays are the rays whose planes are taken anew, side by side.
@@ -52,9 +54,13 @@ func (s *survey) throughCameras(p *part, sn *sensor, w *workspace, c *cloud.Chun
 	if !s.isConstantWater() { // a ray origin comes before water in the order of outcomes
 		s.eachBatch(p, sn, w, c, r, func(b *batch) { correct.MarkNoCameras(b.out, b.raw, &b.bundle) })
 	}
-	s.throughWater(p, sn, w, func() {
+	y := &w.rays
+	y.slopeX, y.slopeY = append(y.slopeX[:0], p.planes.SlopeX...), append(y.slopeY[:0], p.planes.SlopeY...)
+	s.throughWater(p, sn, w, func() { // with casts more than once, always from the same planes
+		copy(p.planes.SlopeX, y.slopeX)
+		copy(p.planes.SlopeY, y.slopeY)
 		s.eachBatch(p, sn, w, c, r, func(b *batch) { s.solve(b, sn, w) })
-		if s.surface.curved || s.hasOwnTimes(sn) {
+		if s.hasRayPlanes(sn) {
 			s.takeTrueLevels(p, w)
 		}
 	})
@@ -132,7 +138,7 @@ func (b *batch) spreadPlanes() {
 func (s *survey) solve(b *batch, sn *sensor, w *workspace) {
 	y, limit := b.rays, s.job.Limits.MaxIncidence*radiansPerDegree
 	b.bundle.MaxIncidenceRad = limit
-	if !s.surface.curved && !s.hasOwnTimes(sn) {
+	if !s.hasRayPlanes(sn) {
 		y.solver.Solve(&b.result, b.out, nil, b.raw, &b.bundle)
 		return
 	}
@@ -243,6 +249,9 @@ func (f *fewRays) gather(b *batch, w *workspace, utc []float64) {
 	}
 	growAll(len(f.index), &f.planes.Level, &f.planes.SlopeX, &f.planes.SlopeY)
 }
+
+// hasRayPlanes tells whether the rays of a point can have planes that differ.
+func (s *survey) hasRayPlanes(sn *sensor) bool { return s.surface.curved || s.hasOwnTimes(sn) }
 
 // hasOwnTimes tells whether a sensor's cameras have times that its surface depends on.
 func (s *survey) hasOwnTimes(sn *sensor) bool {

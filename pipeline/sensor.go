@@ -40,11 +40,14 @@ func (s *sensor) isAny() bool { return true }
 // looksUp tells a sensor under water whose points are above it.
 func (s *sensor) looksUp() bool { return s.isMultiview() && s.Rays.CameraMedium == job.InWater }
 
+// wetName is the outcome dry of a sensor that looks up.
+const wetName = "wet"
+
 // nameOf names an outcome of the sensor's points: those on its own side of the surface
 // are wet where it is under water.
 func (s *sensor) nameOf(o correct.Outcome) string {
 	if o == correct.Dry && s.looksUp() {
-		return "wet"
+		return wetName
 	}
 	return o.String()
 }

@@ -12,6 +12,7 @@ import (
 // which chunks are added.
 type tally struct {
 	outcomes         [correct.NumOutcomes]int64
+	wet              int64   // of the dry points, those that are wet: on the side of cameras under water
 	noPosition       int64   // of the points without origin, those that have none at all
 	bounds           [3]span // raw x, y, z in the file's units
 	times            span    // gps_time on the job's scale
@@ -85,7 +86,9 @@ func (t *tally) add(w *workspace, c *cloud.Chunk, r *reading, s *survey) {
 			if !s.isConstantWater() && !s.isPublished(w, i) {
 				t.extended++
 			}
-		case o == correct.NoOrigin && math.IsNaN(w.origin.X[i]+w.origin.Y[i]+w.origin.Z[i]):
+		case o == correct.Dry && s.sensors[w.sensor[i]].looksUp():
+			t.wet++
+		case o == correct.NoOrigin && s.sensors[w.sensor[i]].isPulse() && math.IsNaN(w.origin.X[i]+w.origin.Y[i]+w.origin.Z[i]):
 			t.noPosition++
 		}
 	}
@@ -124,6 +127,7 @@ func (t *tally) join(o *tally) {
 		t.sensors[k] += n
 	}
 	t.gauge.join(o.gauge)
+	t.wet += o.wet
 	t.noPosition += o.noPosition
 	t.images.join(&o.images)
 	t.times.join(o.times)
@@ -161,9 +165,15 @@ func (t *tally) bySensor(s *survey) map[string]int64 {
 func (t *tally) counts() map[string]int64 {
 	counts := map[string]int64{}
 	for o, n := range t.outcomes {
+		if correct.Outcome(o) == correct.Dry {
+			n -= t.wet
+		}
 		if n > 0 {
 			counts[correct.Outcome(o).String()] = n
 		}
+	}
+	if t.wet > 0 {
+		counts[wetName] = t.wet
 	}
 	return counts
 }
