@@ -37,6 +37,7 @@ type layout struct {
 	origin                        [3]int
 	tracedOnly                    []int // columns by row that only traced points have
 	wateredOnly                   []int // the same for points whose water was looked up
+	rayedOnly                     []int // the same for points whose rays were looked for
 }
 
 // newLayout lays out the output of a file with these columns.
@@ -104,6 +105,7 @@ func (l *layout) addModel() {
 	l.label("model", ruled, func(sn *sensor, _ correct.Outcome) string { return sn.Rays.Model })
 	if slices.ContainsFunc(l.sensors, (*sensor).isMultiview) {
 		l.rayCount = len(l.Added)
+		l.rayedOnly = append(l.rayedOnly, l.rayCount)
 		l.Added = append(l.Added, cloud.Added{Name: "ray_count", Type: cloud.Count})
 	} else {
 		l.byClass("ray_count", cloud.Count, func(sn *sensor, o correct.Outcome) cloud.Value {

@@ -190,6 +190,7 @@ func (s *survey) toUnits(c *cloud.Chunk, l *layout, w *workspace) {
 	}
 	scale(w.result.IncidenceRad, 1/radiansPerDegree)
 	scale(w.result.RefractionRad, 1/radiansPerDegree)
+	clearUnless(rayed, l.rayedOnly, c, w.out)
 	clearUnless(traced, l.tracedOnly, c, w.out)
 	clearUnless(watered, l.wateredOnly, c, w.out)
 	s.clearGroups(c, l, w)

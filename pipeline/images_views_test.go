@@ -43,7 +43,7 @@ func (c *scene) agree(residual string, all []photo, n int, sees func(photo, vec)
 func TestImagesSeenByARule(t *testing.T) {
 	c := scene{surface: still(0.42, 0.02, -0.013), sea: seaAt(t, 550)}
 	all := block(newRand(151))
-	const plane = "[surface.plane]\nlevel = 0.42\nat = [0, 0]\nslope_x = 0.02\nslope_y = -0.013\n"
+	const plane = "[surface.plane]\nlevel = 0.42\nat = [0, 0]\nslope_x = 0.02\nslope_y = -0.013\n[limits]\nmax_incidence = 85\n"
 	for _, test := range []struct {
 		name, source, residual, keys string
 		rotations                    string

@@ -73,10 +73,9 @@ func TestImagesOutOfTheWater(t *testing.T) {
 	compareImages(t, got, list, "column", inMetres, tolerances{2e-6, 2e-6})
 }
 
-// Looking up is looking down in a mirror. Light goes either way, so a point in the air as
-// cameras in the water see it, and one in the water seen from the air, with the two
-// media exchanged, are mirror images; the media of a job are exchanged by n_air = n_water,
-// which moves nothing, so here the mirror holds the visible cameras and the marks.
+// Looking up is looking down in a mirror: the same cameras see a point, and what is wet
+// from below is dry from above. Rays bend the other way, so points above the water come
+// down where those below go down too.
 func TestImagesWetIsDryInAMirror(t *testing.T) {
 	var up, down bytes.Buffer
 	up.WriteString("x,y,z\n")
@@ -106,9 +105,10 @@ func TestImagesWetIsDryInAMirror(t *testing.T) {
 			t.Errorf("seed %d: row %d has %s cameras, and %s in the mirror", seed, i, n, m)
 		}
 		if a == "corrected" && b == "corrected" {
-			// what looks too high from below is brought down, what looks too high from above too
-			if z := wet.number(t, i, "z"); !(z < wet.number(t, i, "z_raw")) {
-				t.Errorf("seed %d: row %d rises from %s to %g", seed, i, wet.text(t, i, "z_raw"), z)
+			for _, got := range []table{wet, dry} {
+				if z := got.number(t, i, "z"); !(z < got.number(t, i, "z_raw")) {
+					t.Errorf("seed %d: row %d rises from %s to %g", seed, i, got.text(t, i, "z_raw"), z)
+				}
 			}
 			near(t, i, "depth", wet.number(t, i, "depth"), -wet.number(t, i, "z"), 1e-9)
 		}
