@@ -112,8 +112,9 @@ func (s *survey) checkSides() error {
 	return nil
 }
 
-// checkViews refuses a text of camera ids that no sensor's cameras have.
-func (s *survey) checkViews(text []byte) (err error) {
+// checkViews refuses a text of camera ids that no sensor's cameras all are.
+func (s *survey) checkViews(text []byte) error {
+	var err error
 	for _, sn := range s.sensors {
 		if !sn.isMultiview() {
 			continue
@@ -122,7 +123,7 @@ func (s *survey) checkViews(text []byte) (err error) {
 			return nil
 		}
 	}
-	return err
+	return fmt.Errorf("has an unknown id: %w", err)
 }
 
 // appendViews appends the cameras that saw a point: those that the cloud names,

@@ -160,7 +160,7 @@ func want(t *testing.T, what string, gotCode, wantCode int, got, wantText string
 }
 
 func TestWrongCallsWriteNothing(t *testing.T) {
-	for _, c := range slices.Concat(wrongCalls, wrongLocalCalls) {
+	for _, c := range slices.Concat(wrongCalls, wrongLocalCalls, wrongImageCalls) {
 		t.Run(c.name, func(t *testing.T) {
 			c.lay(t)
 			before := listing(t)
