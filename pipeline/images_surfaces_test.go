@@ -7,7 +7,6 @@ import (
 	"testing"
 )
 
-
 // nanometres is half a unit of the last of nine decimals and what ofImages says.
 var nanometres = tolerances{0.5e-9 + ofImages, 0.5e-9 + ofImages}
 
