@@ -13,28 +13,48 @@ import (
 
 // Every outcome that local water brings, in order of precedence. Each row also fails
 // as many later tests as it can: the strip has a sensor, the extent is 0 to 200 in x,
-// zone Good from 100, zone Hot from 150.
-const localCloud = `x,y,z,class,strip,tide,origin_x,origin_y,origin_z
-nan,6,-10,9,z,,,,
-500,6,-10,9,z,,,,
-500,6,-10,2,z,,,,
-500,6,-10,2,a,,,,
-50,6,-10,2,a,,,,
-50,6,-10,2,b,,,,
-50,6,1.5,2,a,0.25,,,
-50,6,-10,2,a,0.25,,,
-50,6,-10,2,a,0.25,9000,6,400
-50,6,-10,2,b,0.25,9000,6,400
-160,6,-10,2,a,0.25,9000,6,400
-160,6,-10,2,b,0.25,9000,6,400
-110,6,-10,2,a,0.25,9000,6,400
-110,6,-10,2,a,0.25,110,6,400
-110,6,-10,2,b,0.25,,,
+// zone Good from 100, zone Hot from 150; rays with y = -5 come across the middle of a hairpin,
+// where they meet neither its lower water to the north nor its higher one to the south.
+const localCloud = `x,y,z,class,strip,origin_x,origin_y,origin_z
+nan,200,-10,9,z,,,
+500,200,-10,9,z,,,
+500,200,-10,2,z,,,
+500,200,-10,2,a,,,
+50,200,-10,2,a,,,
+50,200,-10,2,b,,,
+50,6,1.5,2,a,,,
+50,6,-10,2,a,,,
+50,-5,-1.6,2,a,50,1195,398.4
+50,6,-10,2,b,,,
+160,-5,-1.6,2,a,160,1195,398.4
+160,6,-10,2,b,,,
+110,-5,-1.6,2,a,110,1195,398.4
+110,6,-10,2,a,9000,6,400
+110,-5,-9.94,2,a,110,195,390.06
+110,6,-10,2,a,110,6,400
+110,6,-10,2,b,,,
 `
 
 var localWant = []string{
 	"invalid", "not_selected", "no_rule", "outside", "no_surface", "no_surface", "dry", "no_origin",
-	"no_water", "no_water", "out_of_range", "out_of_range", "grazing", "corrected", "corrected",
+	"no_water", "no_water", "out_of_range", "out_of_range", "grazing", "grazing", "unsolved", "corrected", "corrected",
+}
+
+// localFiles are the water of localJob with the zones given. The hairpin falls by 2 mm a
+// metre, to the east 20 m south of y = 0 and back as far north of it.
+func localFiles(zones ...place) files {
+	var levels [][]float64
+	for k := range 9 {
+		x, y := 100*float64(k)-100, -20.0
+		if k > 4 {
+			x, y = 800-100*float64(k), 20
+		}
+		levels = append(levels, []float64{x, y, 0.9 - 0.2*float64(k)})
+	}
+	return files{
+		"water.geojson": polygonOf(0, -50, 200, 300), "zones.geojson": zonesFile(zones), "levels.csv": lines("x,y,z", levels...),
+		"hairpin.geojson": `{"type":"LineString","coordinates":[[-100,-20],[300,-20],[300,20],[-100,20]]}`,
+	}
 }
 
 const localJob = `[input]
@@ -45,8 +65,10 @@ folder = "true"
 class = [2]
 [extent]
 polygons = "water.geojson"
-[surface]
-column = "tide"
+[surface.profile]
+centreline = "hairpin.geojson"
+levels = "levels.csv"
+reach = 30
 [[sensor]]
 name = "laser"
 where.strip = ["a"]
@@ -63,18 +85,18 @@ func band(name string, from, temperature float64) place {
 }
 
 // localColumns are added columns with the outcomes that have a value in them, for a
-// pulse by the letters of outcomeLetters and, besides, no_water w, out_of_range x.
+// pulse by the letters of outcomeLetters and, besides, no_water w, out_of_range x, unsolved n.
 var localColumns = map[string]string{
-	"depth": "cd", "water_level": "cd", "entry_level": "c", "slope_x": "cg", "model": "cdgosuwx", "ray_count": "cg", "incidence_deg": "cg", "refraction_deg": "c",
-	"n_air": "cg", "n_water": "cg", "ng_air": "cg", "ng_water": "cg", "temperature": "cgx", "salinity": "cgx", "water_source": "cgx", "run": "acdgosuwx",
+	"depth": "cd", "water_level": "cd", "entry_level": "c", "slope_x": "cg", "model": "cdgnosuwx", "ray_count": "cgn", "incidence_deg": "cg", "refraction_deg": "c",
+	"n_air": "cgn", "n_water": "cgn", "ng_air": "cgn", "ng_water": "cgn", "temperature": "cgnx", "salinity": "cgnx", "water_source": "cgnx", "run": "acdgnosuwx",
 }
 
 func TestLocalOutcomes(t *testing.T) {
-	f := files{"water.geojson": polygonOf(0, -50, 200, 50), "zones.geojson": zonesFile([]place{band("Good", 100, 12), band("Hot", 150, 36)})}
+	f := localFiles(band("Good", 100, 12), band("Hot", 150, 36))
 	for _, format := range formats {
 		folder := t.TempDir()
 		f.write(t, folder)
-		files{"raw/a." + format: encode(t, format, localCloud)}.write(t, folder)
+		files{"raw/a." + format: encode(t, format, localCloud), "levels." + format: encode(t, format, f["levels.csv"])}.write(t, folder)
 		runJob(t, loadJob(t, folder, inFormat(localJob, format)+"zones = \"zones.geojson\"\n"), Options{})
 		got := decode(t, format, readFile(t, folder, "true/a."+format))
 		if outcomes := got.column(t, "outcome"); !slices.Equal(outcomes, localWant) {
@@ -88,7 +110,7 @@ func TestLocalOutcomes(t *testing.T) {
 func checkLocalColumns(t *testing.T, got table) {
 	t.Helper()
 	for i, outcome := range localWant {
-		letter := outcomeLetters[outcome] + map[string]string{"no_water": "w", "out_of_range": "x"}[outcome]
+		letter := outcomeLetters[outcome] + map[string]string{"no_water": "w", "out_of_range": "x", "unsolved": "n"}[outcome]
 		if letter == "" || got.text(t, i, "strip") == "b" {
 			continue
 		}
@@ -117,13 +139,14 @@ func checkLocalReceipt(t *testing.T, output string) {
 		t.Errorf("outcomes are %v, want %v", r.Outcomes, counts)
 	}
 	want := []string{
-		"1 of 15 points have no finite coordinates",
-		"1 of 15 points match no sensor",
-		"2 of 15 points have no water surface: it does not reach them in place or time, or its column is empty there",
-		"2 of 15 points have no temperature and salinity: no zone or station gives them, in place or time",
-		"2 of 15 points are in water outside the range of the index formula",
-		"1 of 15 points were seen at more than max_incidence from the surface normal",
-		"1 of 15 points have no ray origin: an origin column is empty there",
+		"1 of 17 points have no finite coordinates",
+		"1 of 17 points match no sensor",
+		"2 of 17 points have no water surface: it does not reach them in place or time, or its column is empty there",
+		"2 of 17 points have no temperature and salinity: no zone or station gives them, in place or time",
+		"2 of 17 points are in water outside the range of the index formula",
+		"2 of 17 points were seen at more than max_incidence from the surface normal",
+		"1 of 17 points have no solution: their rays meet the curved surface more than once or at no one place, or tries end without rest",
+		"1 of 17 points have no ray origin: an origin column is empty there",
 	}
 	if !slices.Equal(r.Cautions, want) {
 		t.Errorf("cautions are\n%s, want\n%s", strings.Join(r.Cautions, "\n"), strings.Join(want, "\n"))
@@ -133,9 +156,10 @@ func checkLocalReceipt(t *testing.T, output string) {
 // Water beyond the published range of the formula is used and counted.
 func TestLocalWaterBeyondThePublishedRange(t *testing.T) {
 	folder := t.TempDir()
-	files{"raw/a.csv": localCloud, "water.geojson": polygonOf(0, -50, 200, 50), "zones.geojson": zonesFile([]place{band("Good", 100, 34)})}.write(t, folder)
+	localFiles(band("Good", 100, 34)).write(t, folder)
+	files{"raw/a.csv": localCloud}.write(t, folder)
 	runJob(t, loadJob(t, folder, localJob+"zones = \"zones.geojson\"\n"), Options{})
-	want := "2 of 15 points are in water outside the published range of quan-fry; its index is an extension of the formula"
+	want := "2 of 17 points are in water outside the published range of quan-fry; its index is an extension of the formula"
 	if r := readReceipt(t, filepath.Join(folder, "true/a.csv")); !slices.Contains(r.Cautions, want) {
 		t.Errorf("cautions are %q, want %q", r.Cautions, want)
 	}
@@ -163,7 +187,7 @@ func TestSensorsThroughCasts(t *testing.T) {
 		"raw/a.csv":    "x,y,z,class,strip,origin_x,origin_y,origin_z\n0,0,-10,2,a,80,0,400\n0,0,-10,2,b,,,\n0,0,-3,2,a,80,0,400\n",
 		"stations.csv": "x,y,temperature,salinity,depth\n5,6,24,2,0\n5,6,18,8,6\n5,6,4,30,20\n",
 	}
-	job := strings.NewReplacer("[extent]\npolygons = \"water.geojson\"\n", "", "column = \"tide\"", "level = 0", "[output]\n", "[output]\ndecimals = 9\n").Replace(localJob)
+	job := strings.NewReplacer("[extent]\npolygons = \"water.geojson\"\n", "", "[surface.profile]\ncentreline = \"hairpin.geojson\"\nlevels = \"levels.csv\"\nreach = 30\n", "[surface]\nlevel = 0\n", "[output]\n", "[output]\ndecimals = 9\n").Replace(localJob)
 	got := correctFiles(t, f, job+"stations = \"stations.csv\"\n")
 	for i, shift := range []float64{-1, 1, -1} { // a laser's bed rises, an image's falls
 		depth := got.number(t, i, "depth")

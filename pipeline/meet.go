@@ -85,11 +85,13 @@ func (p *part) levelUnmet(w *workspace) {
 	}
 }
 
-// markUnmet sets Unsolved for points of unmet rays for which nothing else applies.
+// markUnmet sets Unsolved for points of unmet rays for which nothing else applies; no
+// slope is known where they would enter.
 func (p *part) markUnmet(w *workspace) {
 	for i, unmet := range w.meet.unmet {
 		if unmet && p.out[i] == correct.Corrected {
 			p.fail(i, correct.Unsolved)
+			p.planes.SlopeX[i], p.planes.SlopeY[i] = math.NaN(), math.NaN()
 		}
 	}
 }
