@@ -187,7 +187,7 @@ func TestSensorsThroughCasts(t *testing.T) {
 		"raw/a.csv":    "x,y,z,class,strip,origin_x,origin_y,origin_z\n0,0,-10,2,a,80,0,400\n0,0,-10,2,b,,,\n0,0,-3,2,a,80,0,400\n",
 		"stations.csv": "x,y,temperature,salinity,depth\n5,6,24,2,0\n5,6,18,8,6\n5,6,4,30,20\n",
 	}
-	job := strings.NewReplacer("[extent]\npolygons = \"water.geojson\"\n", "", "[surface.profile]\ncentreline = \"hairpin.geojson\"\nlevels = \"levels.csv\"\nreach = 30\n", "[surface]\nlevel = 0\n", "[output]\n", "[output]\ndecimals = 9\n").Replace(localJob)
+	job := overLevel(localJob)
 	got := correctFiles(t, f, job+"stations = \"stations.csv\"\n")
 	for i, shift := range []float64{-1, 1, -1} { // a laser's bed rises, an image's falls
 		depth := got.number(t, i, "depth")
