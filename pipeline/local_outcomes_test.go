@@ -217,30 +217,46 @@ func localSurvey(t *testing.T) (f files, jobText string) {
 	return f, jobText + "[water]\nzones = \"zones.geojson\"\nstations = \"casts.csv\"\nmax_gap = 1000\n[surface.gauge]\nfile = \"gauge.csv\"\n"
 }
 
+// localBases are surfaces below localSurvey's gauges: none, a grid and a river.
+var localBases = map[string]string{
+	"no base": "", "grid": "[surface.grid]\npoints = \"swell.csv\"\n",
+	"profile": "[surface.profile]\ncentreline = \"river.geojson\"\nlevels = \"levels.csv\"\nreach = 200\n",
+}
+
 func TestLocalSameBytesForAnyWorkers(t *testing.T) {
 	f, jobText := localSurvey(t)
-	cloud := f["raw/a.csv"]
+	cloud, surface := f["raw/a.csv"], swell(0)
 	delete(f, "raw/a.csv")
-	for _, format := range formats {
-		folder := t.TempDir()
-		f.write(t, folder)
-		data := cloud
-		if format == "parquet" {
-			data = parquetOf(t, cloud, 7000, nil)
-		}
-		files{"raw/a." + format: data}.write(t, folder)
-		var want map[string]string
-		for _, workers := range []int{1, 2, 7} {
-			output := fmt.Sprintf("true%d", workers)
-			text := strings.Replace(strings.Replace(jobText, `"true"`, `"`+output+`"`, 1), "raw/*.csv", "raw/*."+format, 1)
-			s := runJob(t, loadJob(t, folder, text), Options{Workers: workers})
-			got := outputs(t, filepath.Join(folder, output))
-			if want == nil {
-				want = got
+	var points [][]float64
+	for i := range 1600 {
+		x, y := 10*float64(i%40), 10*float64(i/40)
+		z, _, _ := surface(x, y, 0)
+		points = append(points, []float64{x, y, z})
+	}
+	f["swell.csv"], f["levels.csv"] = lines("x,y,z", points...), "x,y,z\n0,0,1\n300,40,0.5\n330,420,0\n"
+	f["river.geojson"] = `{"type":"LineString","coordinates":[[0,0],[300,40],[330,420]]}`
+	for base, table := range localBases {
+		for _, format := range formats {
+			folder := t.TempDir()
+			f.write(t, folder)
+			data := cloud
+			if format == "parquet" {
+				data = parquetOf(t, cloud, 7000, nil)
 			}
-			same(t, fmt.Sprintf("%s, %d workers", format, workers), got, want)
-			if s.Outcomes["corrected"] < 10_000 || s.Outcomes["no_rule"] != 10_000 || s.Outcomes["dry"] == 0 || s.Outcomes["no_surface"] == 0 {
-				t.Errorf("%s: outcomes are %v", format, s.Outcomes)
+			files{"raw/a." + format: data}.write(t, folder)
+			var want map[string]string
+			for _, workers := range []int{1, 2, 7} {
+				output := fmt.Sprintf("true%d", workers)
+				text := strings.Replace(strings.Replace(jobText, `"true"`, `"`+output+`"`, 1), "raw/*.csv", "raw/*."+format, 1)
+				s := runJob(t, loadJob(t, folder, text+table), Options{Workers: workers})
+				got := outputs(t, filepath.Join(folder, output))
+				if want == nil {
+					want = got
+				}
+				same(t, fmt.Sprintf("%s, %s, %d workers", base, format, workers), got, want)
+				if s.Outcomes["corrected"] < 10_000 || s.Outcomes["no_rule"] != 10_000 || s.Outcomes["dry"] == 0 || s.Outcomes["no_surface"] == 0 {
+					t.Errorf("%s, %s: outcomes are %v", base, format, s.Outcomes)
+				}
 			}
 		}
 	}

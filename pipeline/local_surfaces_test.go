@@ -2,6 +2,7 @@ package pipeline
 
 import (
 	"math"
+	"slices"
 	"strings"
 	"testing"
 )
@@ -166,5 +167,32 @@ func TestColumnGaugeAndSeparation(t *testing.T) {
 		near(t, i, "z", got.number(t, i, "z"), s.bed[2]/foot, 4e-6)
 		near(t, i, "water_level", got.number(t, i, "water_level"), s.waterLevel/foot, 4e-6)
 		near(t, i, "entry_level", got.number(t, i, "entry_level"), s.entryLevel/foot, 4e-6)
+	}
+}
+
+// A true point may lie where there is no surface although its entry and its raw point lie
+// where there is one: over a hole of 8 m in a separation, for which one node is missing.
+func TestTruePointWithoutSurface(t *testing.T) {
+	var nodes [][]float64
+	for i := range 25 {
+		if i != 12 {
+			nodes = append(nodes, []float64{4 * float64(i%5), 4 * float64(i/5), 0.1})
+		}
+	}
+	f := files{
+		"raw/a.csv": "x,y,z,origin_x,origin_y,origin_z\n" +
+			"13,8,-9.4,-396.6,8,400.2\n" + // from 3.6 to 8.5 in x
+			"7,8,-2.7,-398,8,400\n" + // the raw point is in the hole
+			"7,2,-2.7,-398,2,400\n", // beside the hole
+		"above.csv": lines("x,y,z", nodes...),
+	}
+	got := correctFiles(t, f, pulseJob+seaWater+"[surface]\nlevel = -0.1\n[surface.separation]\nfile = \"above.csv\"\n")
+	if is, want := got.column(t, "outcome"), []string{"no_surface", "no_surface", "corrected"}; !slices.Equal(is, want) {
+		t.Fatalf("outcomes are %q, want %q", is, want)
+	}
+	for name, want := range map[string]string{"x": "13", "z": "-9.4", "depth": "", "water_level": "", "entry_level": "", "incidence_deg": "", "n_water": ""} {
+		if is := got.text(t, 0, name); is != want {
+			t.Errorf("%s is %q, want %q", name, is, want)
+		}
 	}
 }

@@ -180,3 +180,22 @@ func TestSurfacePointsAreWatched(t *testing.T) {
 		t.Errorf("the stages of a plan are %q", got)
 	}
 }
+
+// A surface point measured at another time makes every tile stale: by its time it counts
+// for one wave or the next.
+func TestSurfacePointAtAnotherTime(t *testing.T) {
+	folder := tileFolder(t, nil)
+	j := loadJob(t, folder, inUTC(swellJob))
+	runJob(t, j, Options{})
+	rows := strings.Split(readFile(t, folder, "raw/1.csv"), "\n")
+	fields := strings.Split(rows[1], ",") // x, y, z, classification, origin, gps_time, id
+	if fields[3] != "41" || !strings.HasPrefix(fields[7], "1900000") {
+		t.Fatalf("the first row is %q, want one of class 41 with its time", rows[1])
+	}
+	fields[7] = "1900000007.5"
+	rows[1] = strings.Join(fields, ",")
+	files{"raw/1.csv": strings.Join(rows, "\n")}.write(t, folder)
+	if s := runJob(t, j, Options{}); s.Done != 4 {
+		t.Errorf("%d of 4 tiles are done anew", s.Done)
+	}
+}
