@@ -217,9 +217,9 @@ func localSurvey(t *testing.T) (f files, jobText string) {
 	return f, jobText + "[water]\nzones = \"zones.geojson\"\nstations = \"casts.csv\"\nmax_gap = 1000\n[surface.gauge]\nfile = \"gauge.csv\"\n"
 }
 
-// localBases are surfaces below localSurvey's gauges: none, a grid and a river.
+// localBases are surfaces below localSurvey's gauges.
 var localBases = map[string]string{
-	"no base": "", "grid": "[surface.grid]\npoints = \"swell.csv\"\n",
+	"grid":    "[surface.grid]\npoints = \"swell.csv\"\n",
 	"profile": "[surface.profile]\ncentreline = \"river.geojson\"\nlevels = \"levels.csv\"\nreach = 200\n",
 }
 
