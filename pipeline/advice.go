@@ -16,7 +16,7 @@ var advice = map[correct.Outcome]string{
 	correct.OutOfRange: "are in water outside the range of the index formula",
 	correct.FewRays:    "were seen by fewer than two cameras",
 	correct.Grazing:    "were seen at more than max_incidence from the surface normal",
-	correct.Unsolved:   "have no solution: their rays meet the curved surface more than once or at no one place, or tries end without rest",
+	correct.Unsolved:   "have no solution: their rays fix no point, or meet a curved surface at no one place or more than once",
 }
 
 // cautions says what a person should look at before trusting the output.

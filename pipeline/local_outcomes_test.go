@@ -145,7 +145,7 @@ func checkLocalReceipt(t *testing.T, output string) {
 		"2 of 17 points have no temperature and salinity: no zone or station gives them, in place or time",
 		"2 of 17 points are in water outside the range of the index formula",
 		"2 of 17 points were seen at more than max_incidence from the surface normal",
-		"1 of 17 points have no solution: their rays meet the curved surface more than once or at no one place, or tries end without rest",
+		"1 of 17 points have no solution: their rays fix no point, or meet a curved surface at no one place or more than once",
 		"1 of 17 points have no ray origin: an origin column is empty there",
 	}
 	if !slices.Equal(r.Cautions, want) {
