@@ -1,6 +1,7 @@
 package main
 
 import (
+	"errors"
 	"fmt"
 	"path/filepath"
 	"strconv"
@@ -15,7 +16,7 @@ type demoCommand struct {
 }
 
 func (demoCommand) Help() string {
-	return `Two made-up laser surveys, one of a cove and one of a river, are written with their job files, corrected by these jobs, and held against the truth and against doing nothing. The whole takes a few seconds and some 90 MB of disk.
+	return `Three made-up surveys, a cove and a river by laser and a pool in a drone's images, are written with their job files, corrected by these jobs, and held against the truth and against doing nothing; the images also against the usual remedies. The whole takes a few seconds and some 100 MB of disk.
 
 Example:
 
@@ -26,51 +27,61 @@ Exit codes: 0 done, and the correction meets the truth; 1 it does not, or the fi
 
 // Run writes the surveys, corrects them and reports.
 func (c *demoCommand) Run(s *streams) error {
-	cove, river, err := demo.Write(c.Folder)
+	cove, river, pool, err := demo.Write(c.Folder)
 	if err != nil {
 		return err
 	}
-	for _, survey := range []*demo.Survey{cove, river} {
+	for i, survey := range []*demo.Survey{cove, river, pool} {
+		if i > 0 {
+			fmt.Fprintln(s.out)
+		}
 		if err := runSurvey(s, survey); err != nil {
 			return err
 		}
 	}
-	printPlaces(s, cove, river)
-	fmt.Fprintf(s.out, "\nTry next\n  bentray plan %s\n  bentray run %[1]s --redo\n  bentray surface %s --png %s\n",
-		cove.Job, river.Job, filepath.Join(c.Folder, "surface.png"))
+	printPlaces(s, cove, river, pool)
+	fmt.Fprintf(s.out, "\nTry next\n  bentray plan %s\n  bentray run %[1]s --redo\n  bentray surface %s --png %s\n  bentray plan %s\n",
+		cove.Job, river.Job, filepath.Join(c.Folder, "surface.png"), pool.Job)
 	return nil
 }
 
 // runSurvey corrects one survey and reports.
 func runSurvey(s *streams, survey *demo.Survey) error {
-	j, err := loadJob(survey.Job)
+	comparison, seconds, err := correctSurvey(s, survey)
 	if err != nil {
 		return err
-	}
-	summary, err := pipeline.Run(s.ctx, j, pipeline.Options{Redo: true})
-	if err != nil {
-		return err
-	}
-	if err := verdict(summary); err != nil {
-		printFailures(s, summary)
-		return err
-	}
-	comparison, err := demo.Compare(survey)
-	if err != nil {
-		return err
-	}
-	if survey.Waterline != "" {
-		fmt.Fprintln(s.out)
 	}
 	fmt.Fprintf(s.out, "%s: %s points in %s (%s), corrected in %.1f s\n\n",
-		survey.Title, grouped(survey.Points), plural(len(survey.Tiles), "tile"), formats(survey.Tiles), summary.Seconds)
+		survey.Title, grouped(survey.Points), plural(len(survey.Tiles), "tile"), formats(survey.Tiles), seconds)
 	printOutcomes(s, comparison)
-	printErrors(s, comparison)
-	if err := comparison.Verify(); err != nil {
+	if len(survey.Remedies) > 0 {
+		err = compareRemedies(s, survey, comparison)
+	} else {
+		printErrors(s, comparison)
+	}
+	if err := errors.Join(err, comparison.Verify()); err != nil {
 		return err
 	}
 	printRest(s, survey)
 	return nil
+}
+
+// correctSurvey runs a survey's job and compares what it made with the truth.
+func correctSurvey(s *streams, survey *demo.Survey) (c *demo.Comparison, seconds float64, err error) {
+	j, err := loadJob(survey.Job)
+	if err != nil {
+		return nil, 0, err
+	}
+	summary, err := pipeline.Run(s.ctx, j, pipeline.Options{Redo: true})
+	if err != nil {
+		return nil, 0, err
+	}
+	if err := verdict(summary); err != nil {
+		printFailures(s, summary)
+		return nil, 0, err
+	}
+	c, err = demo.Compare(survey)
+	return c, summary.Seconds, err
 }
 
 // formats counts tiles by format.
@@ -80,6 +91,9 @@ func formats(tiles []string) string {
 		if strings.HasSuffix(name, ".parquet") {
 			parquet++
 		}
+	}
+	if parquet == 0 {
+		return "CSV"
 	}
 	return fmt.Sprintf("%d CSV, %d Parquet", len(tiles)-parquet, parquet)
 }
@@ -91,6 +105,7 @@ var meanings = map[string]string{
 	"dry":        "on the shore, at or above the water level",
 	"no_origin":  "measured in a gap of the trajectory: not guessed",
 	"no_surface": "measured in a gap of the gauge: not guessed",
+	"few_rays":   "known from one image alone, which tells no depth",
 	"invalid":    "rows without coordinates",
 }
 
@@ -141,22 +156,31 @@ func fixed(v float64, decimals int) string {
 
 // printRest says what the correction leaves.
 func printRest(s *streams, survey *demo.Survey) {
-	if survey.Waterline != "" {
-		fmt.Fprintf(s.out, `
+	switch {
+	case survey.Waterline != "":
+		fmt.Fprint(s.out, `
   What is left is rounding, and some tenths of a millimetre of the level: the surface
-  is a plane fitted to a waterline with 4 mm of noise and 12 %% of blunders up to 2 m,
+  is a plane fitted to a waterline with 4 mm of noise and 12 % of blunders up to 2 m,
   and a gauge lifts it as the river rises. Zones hold a side channel of its own level
   and a brackish reach.
 `)
-		return
-	}
-	fmt.Fprintf(s.out, `
+	case survey.Cameras != "":
+		fmt.Fprint(s.out, `
+  vertical multiplies depths by the ratio of indices, as if all images were taken from
+  straight above; average takes the mean of what each image would give by itself; intersect
+  bends the lines from the images to the raw point, though the rays that made it passed it by.
+  invert finds the point whose bent rays the software would have put where the raw point is.
+  What it leaves is rounding: half a millimetre of the cloud, and a third more in depth.
+`)
+	default:
+		fmt.Fprint(s.out, `
   What is left is rounding: the tiles hold whole millimetres, like many clouds.
   In a real survey the level, the index and the sensor's own errors come on top.
 `)
+	}
 }
 
-func printPlaces(s *streams, cove, river *demo.Survey) {
+func printPlaces(s *streams, cove, river, pool *demo.Survey) {
 	fmt.Fprintf(s.out, "\nFiles\n")
 	slash := string(filepath.Separator)
 	for _, f := range [][2]string{
@@ -170,6 +194,8 @@ func printPlaces(s *streams, cove, river *demo.Survey) {
 		{river.Waterline, "the water's edge on both banks, with blunders"},
 		{river.Polygons, "zones: their water, and a level"},
 		{river.Gauge, "the level over time, with a gap"},
+		{pool.Job, "the pool's job; the jobs of the remedies lie beside it"},
+		{pool.Cameras, "where each image was taken from, its angles and its size"},
 	} {
 		fmt.Fprintf(s.out, "  %-*s  %s\n", len(river.Waterline), f[0], f[1])
 	}

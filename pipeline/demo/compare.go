@@ -35,7 +35,7 @@ type Comparison struct {
 // file cannot be read, or has not a row for each row of the truth.
 func Compare(s *Survey) (*Comparison, error) {
 	c := &Comparison{Outcomes: map[string]int64{}, limitM: s.LimitM}
-	var b bands
+	b := bands{step: s.bandM}
 	for _, name := range s.Tiles {
 		if err := c.compareTile(&b, below(s.Corrected, name), below(s.Truth, truthName(name))); err != nil {
 			return nil, err
@@ -112,7 +112,7 @@ func (c *Comparison) add(b *bands, found points, known *table) error {
 	if outcome != known.text() {
 		c.Unexpected++
 	}
-	if outcome != "corrected" {
+	if outcome != "corrected" || known.text() != "corrected" {
 		return nil
 	}
 	corrected, errCorrected := found.vec(0)

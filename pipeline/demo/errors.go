@@ -17,9 +17,6 @@ type Band struct {
 	Raw, Corrected Errors
 }
 
-// bandM is the thickness of a band.
-const bandM = 2.0
-
 // spread adds up errors.
 type spread struct {
 	count                                         int64
@@ -61,28 +58,31 @@ func (s *spread) errors() Errors {
 }
 
 // bands are the errors of bands of depth from 0 down.
-type bands []struct{ raw, corrected spread }
+type bands struct {
+	step float64 // m, the thickness of a band
+	each []struct{ raw, corrected spread }
+}
 
 func (b *bands) add(depth float64, raw, corrected, truth vec) {
-	i := int(max(depth, 0) / bandM)
-	for len(*b) <= i {
-		*b = append(*b, struct{ raw, corrected spread }{})
+	i := int(max(depth, 0) / b.step)
+	for len(b.each) <= i {
+		b.each = append(b.each, struct{ raw, corrected spread }{})
 	}
-	(*b)[i].raw.add(raw, truth)
-	(*b)[i].corrected.add(corrected, truth)
+	b.each[i].raw.add(raw, truth)
+	b.each[i].corrected.add(corrected, truth)
 }
 
 // report returns each band and all of them as one.
-func (b bands) report() (each []Band, all Band) {
+func (b *bands) report() (each []Band, all Band) {
 	var raw, corrected spread
-	for i := range b {
-		each = append(each, newBand(i, i+1, &b[i].raw, &b[i].corrected))
-		raw.join(&b[i].raw)
-		corrected.join(&b[i].corrected)
+	for i := range b.each {
+		each = append(each, b.band(i, i+1, &b.each[i].raw, &b.each[i].corrected))
+		raw.join(&b.each[i].raw)
+		corrected.join(&b.each[i].corrected)
 	}
-	return each, newBand(0, len(b), &raw, &corrected)
+	return each, b.band(0, len(b.each), &raw, &corrected)
 }
 
-func newBand(from, to int, raw, corrected *spread) Band {
-	return Band{From: float64(from) * bandM, To: float64(to) * bandM, Points: raw.count, Raw: raw.errors(), Corrected: corrected.errors()}
+func (b *bands) band(from, to int, raw, corrected *spread) Band {
+	return Band{From: float64(from) * b.step, To: float64(to) * b.step, Points: raw.count, Raw: raw.errors(), Corrected: corrected.errors()}
 }

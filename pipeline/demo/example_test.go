@@ -17,11 +17,11 @@ func Example() {
 		log.Fatal(err)
 	}
 	defer os.RemoveAll(folder)
-	cove, river, err := demo.Write(folder)
+	cove, river, pool, err := demo.Write(folder)
 	if err != nil {
 		log.Fatal(err)
 	}
-	for _, survey := range []*demo.Survey{cove, river} {
+	for _, survey := range []*demo.Survey{cove, river, pool} {
 		j, err := job.Load(survey.Job)
 		if err != nil {
 			log.Fatal(err)
@@ -38,4 +38,5 @@ func Example() {
 	// Output:
 	// 200000 points, doing nothing: true corrected: <nil>
 	// 59809 points, doing nothing: true corrected: <nil>
+	// 32412 points, doing nothing: true corrected: <nil>
 }

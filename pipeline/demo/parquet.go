@@ -58,7 +58,7 @@ func (t *tile) isParquet() bool { return parquetfile.IsName(t.name) }
 // write writes the cloud.
 func (t *tile) write(path string) error {
 	if !t.isParquet() {
-		return atomicfile.Write(path, append([]byte(cloudColumns), t.cloud...))
+		return atomicfile.Write(path, append([]byte(t.header), t.cloud...))
 	}
 	data, err := t.table.bytes()
 	if err != nil {

@@ -20,7 +20,7 @@ type riverShooter struct {
 func newRiverShooter() (*riverShooter, error) {
 	s := &riverShooter{waters: riverWaters(), random: rand.New(rand.NewPCG(13, 532))}
 	for _, w := range s.waters {
-		l, err := newLight(w.temperatureC, w.salinity)
+		l, err := newLight(w.temperatureC, w.salinity, laserNM)
 		if err != nil {
 			return nil, err
 		}

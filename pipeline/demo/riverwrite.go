@@ -23,7 +23,7 @@ func newRiver(folder string) *Survey {
 	return &Survey{
 		Title: RiverTitle, Job: in(riverJobFile), Trajectory: in(trajectoryFile), Polygons: in(zoneFile),
 		Waterline: in(waterlineFile), Gauge: in(gaugeFile),
-		Raw: in(rawFolder), Corrected: in(outputFolder), Truth: in(truthFolder), LimitM: FitM,
+		Raw: in(rawFolder), Corrected: in(outputFolder), Truth: in(truthFolder), LimitM: FitM, bandM: 2,
 	}
 }
 

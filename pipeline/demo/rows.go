@@ -22,11 +22,12 @@ const (
 // tile is a cloud and its truth, row by row. The truth is CSV, the cloud CSV or
 // Parquet as its name says.
 type tile struct {
-	name  string  // below the folder of tiles, with slashes
-	cloud []byte  // of a CSV tile, without its header
-	table columns // of a Parquet tile
-	truth []byte
-	rows  int
+	name   string  // below the folder of tiles, with slashes
+	header string  // of a CSV tile
+	cloud  []byte  // of a CSV tile, without its header
+	table  columns // of a Parquet tile
+	truth  []byte
+	rows   int
 }
 
 // truthName names the truth of a tile below its folder.
@@ -43,7 +44,7 @@ func newTiles() []*tile {
 func namedTiles(names ...string) []*tile {
 	var tiles []*tile
 	for _, name := range names {
-		tiles = append(tiles, &tile{name: name, truth: []byte(truthColumns)})
+		tiles = append(tiles, &tile{name: name, header: cloudColumns, truth: []byte(truthColumns)})
 	}
 	return tiles
 }
@@ -63,7 +64,7 @@ func (t *tile) add(s *shot) {
 	} else {
 		t.cloud = s.appendRow(t.cloud)
 	}
-	t.truth = s.appendTruth(t.truth)
+	t.truth = appendTruth(t.truth, s.bed, s.depth, s.outcome)
 	t.rows++
 }
 
@@ -96,11 +97,11 @@ func (s *shot) numbers() [4]int32 {
 	return [4]int32{int32(s.intensity), returnNumber, class, int32(s.line)}
 }
 
-// appendTruth appends the row of the truth.
-func (s *shot) appendTruth(b []byte) []byte {
-	b = appendVec(b, s.bed, 4)
-	b = appendNumber(append(b, ','), s.depth, 4)
-	b = append(append(b, ','), s.outcome...)
+// appendTruth appends a row of the truth.
+func appendTruth(b []byte, bed vec, depth float64, outcome string) []byte {
+	b = appendVec(b, bed, 4)
+	b = appendNumber(append(b, ','), depth, 4)
+	b = append(append(b, ','), outcome...)
 	return append(b, '\n')
 }
 

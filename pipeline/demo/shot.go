@@ -34,7 +34,7 @@ type shooter struct {
 }
 
 func newShooter() (*shooter, error) {
-	l, err := newLight(waterTemperatureC, salinity)
+	l, err := newLight(waterTemperatureC, salinity, laserNM)
 	if err != nil {
 		return nil, err
 	}

@@ -13,6 +13,12 @@ func (v vec) plus(s float64, w vec) vec { return vec{v.x + s*w.x, v.y + s*w.y, v
 func (v vec) minus(w vec) vec           { return v.plus(-1, w) }
 func (v vec) length() float64           { return math.Sqrt(v.x*v.x + v.y*v.y + v.z*v.z) }
 
+func dot(v, w vec) float64 { return v.x*w.x + v.y*w.y + v.z*w.z }
+
+func cross(v, w vec) vec {
+	return vec{v.y*w.z - v.z*w.y, v.z*w.x - v.x*w.z, v.x*w.y - v.y*w.x}
+}
+
 // left is the level way to the left of a level way.
 func (v vec) left() vec { return vec{x: -v.y, y: v.x} }
 
@@ -24,17 +30,17 @@ func (v vec) round(scale float64) vec {
 // light holds the indices of air and water, referred to vacuum.
 type light struct{ airPhase, airGroup, waterPhase, waterGroup float64 }
 
-// The media of the cove, as its job file states them; the air is the river's too.
+// The media of the cove, as its job file states them; the air is that of all surveys.
 const (
 	waterTemperatureC = 17.5
 	salinity          = 34.9
 	airTemperatureC   = 18.0
 	humidityPercent   = 60.0
-	wavelengthNM      = 532.0 // in vacuum; the job's default for a laser
+	laserNM           = 532.0 // in vacuum; the job's default for a laser
 )
 
 // newLight returns the indices at the survey, in a water of its own.
-func newLight(waterC, salinity float64) (l light, err error) {
+func newLight(waterC, salinity, wavelengthNM float64) (l light, err error) {
 	water := medium.Water{TemperatureC: waterC, Salinity: salinity}
 	if l.waterPhase, l.waterGroup, err = medium.QuanFry.Index(water, wavelengthNM); err != nil {
 		return l, err

@@ -70,12 +70,6 @@ func TestEntryIsOfLeastPath(t *testing.T) {
 	})
 }
 
-func dot(a, b vec) float64 { return a.x*b.x + a.y*b.y + a.z*b.z }
-
-func cross(a, b vec) vec {
-	return vec{a.y*b.z - a.z*b.y, a.z*b.x - a.x*b.z, a.x*b.y - a.y*b.x}
-}
-
 func TestApparentPoint(t *testing.T) {
 	rays(t, func(l light, surface plane, origin, bed vec) {
 		entry, apparent := l.entry(surface, origin, bed), l.apparent(surface, origin, bed)

@@ -17,6 +17,7 @@ import (
 const (
 	Title      = "Lantern Cove, a made-up survey"
 	RiverTitle = "Otterlode reach, a made-up river"
+	PoolTitle  = "Tansy Pool, a made-up reach in 60 images"
 )
 
 // The files of a survey's folder.
@@ -33,35 +34,41 @@ const (
 type Survey struct {
 	Title      string
 	Job        string   // the job file
-	Trajectory string   // the positions of the laser
-	Polygons   string   // the extent of the water, or the zones of the river
+	Trajectory string   // the positions of the laser, else empty
+	Polygons   string   // the extent of the water, or the zones of the river, else empty
 	Waterline  string   // of the river, else empty
 	Gauge      string   // of the river, else empty
+	Cameras    string   // of the pool, else empty
+	Remedies   []Remedy // of the pool, else none
 	Raw        string   // the folder of the raw tiles
 	Corrected  string   // the folder that the job writes to
 	Truth      string   // the folder of the truth, row by row as the tiles
 	Tiles      []string // names below Raw and Corrected, with slashes; below Truth all end in .csv
 	Points     int64    // rows of all tiles
 	LimitM     float64  // the most that a right correction leaves of an error, m
+	bandM      float64  // thickness of a band of depths, m
 }
 
-// Write writes both surveys into a folder, which it makes where it is not there:
-// the cove, and in a folder of its own below it the river. It does not run their jobs.
+// Write writes the surveys into a folder, which it makes where it is not there:
+// the cove, and in folders of their own below it the river and the pool. It does not run
+// their jobs.
 //
-// Errors: a *pipeline.CallError where the folder, or the river's, holds anything but
-// these surveys, which are written again, and nothing was touched; else those of the
-// file system.
-func Write(folder string) (cove, river *Survey, err error) {
-	cove, river = newSurvey(folder), newRiver(filepath.Join(folder, riverFolder))
-	for _, s := range []*Survey{cove, river} {
+// Errors: a *pipeline.CallError where the folder, or that of the river or the pool, holds
+// anything but these surveys, which are written again, and nothing was touched; else
+// those of the file system.
+func Write(folder string) (cove, river, pool *Survey, err error) {
+	cove, river, pool = newSurvey(folder), newRiver(filepath.Join(folder, riverFolder)), newPool(filepath.Join(folder, poolFolder))
+	for _, s := range []*Survey{cove, river, pool} {
 		if err := checkFolder(s); err != nil {
-			return nil, nil, &pipeline.CallError{Err: err}
+			return nil, nil, nil, &pipeline.CallError{Err: err}
 		}
 	}
-	if err := cove.writeCove(); err != nil {
-		return nil, nil, err
+	for _, write := range []func() error{cove.writeCove, river.writeRiver, pool.writePool} {
+		if err := write(); err != nil {
+			return nil, nil, nil, err
+		}
 	}
-	return cove, river, river.writeRiver()
+	return cove, river, pool, nil
 }
 
 func (s *Survey) writeCove() error {
@@ -97,6 +104,7 @@ func newSurvey(folder string) *Survey {
 	return &Survey{
 		Title: Title, Job: in(jobFile), Trajectory: in(trajectoryFile), Polygons: in(polygonFile),
 		Raw: in(rawFolder), Corrected: in(outputFolder), Truth: in(truthFolder), LimitM: RoundingM,
+		bandM: 2,
 	}
 }
 

@@ -37,14 +37,16 @@ func contents(t *testing.T, folder string) map[string][]byte {
 func TestWriteGivesTheSameBytes(t *testing.T) {
 	one, two := t.TempDir(), filepath.Join(t.TempDir(), "new", "folder")
 	for _, folder := range []string{one, two} {
-		if _, _, err := Write(folder); err != nil {
+		if _, _, _, err := Write(folder); err != nil {
 			t.Fatal(err)
 		}
 	}
 	want := contents(t, one)
 	names := slices.Sorted(maps.Keys(want))
 	wantNames := []string{
-		"flight.csv", "raw/cross_line/tile_05.csv", "raw/tile_01.csv", "raw/tile_02.parquet", "raw/tile_03.csv", "raw/tile_04.parquet",
+		"flight.csv",
+		"pool/average.toml", "pool/cameras.csv", "pool/intersect.toml", "pool/pool.toml", "pool/raw/head.csv", "pool/raw/tail.csv", "pool/truth/head.csv", "pool/truth/tail.csv", "pool/vertical.toml",
+		"raw/cross_line/tile_05.csv", "raw/tile_01.csv", "raw/tile_02.parquet", "raw/tile_03.csv", "raw/tile_04.parquet",
 		"river/flight.csv", "river/gauge.csv", "river/raw/lower.parquet", "river/raw/upper.csv", "river/river.toml", "river/truth/lower.csv", "river/truth/upper.csv",
 		"river/waterline.csv", "river/zones.geojson", "survey.toml",
 		"truth/cross_line/tile_05.csv", "truth/tile_01.csv", "truth/tile_02.csv", "truth/tile_03.csv", "truth/tile_04.csv", "water.geojson",
@@ -58,7 +60,7 @@ func TestWriteGivesTheSameBytes(t *testing.T) {
 	if err := os.WriteFile(filepath.Join(one, "raw", "tile_01.csv"), []byte("x,y,z\n"), 0o666); err != nil {
 		t.Fatal(err)
 	}
-	if _, _, err := Write(one); err != nil {
+	if _, _, _, err := Write(one); err != nil {
 		t.Fatal(err)
 	}
 	if !maps.EqualFunc(contents(t, one), want, bytes.Equal) {
@@ -91,9 +93,11 @@ func TestTilesHaveTheirTruth(t *testing.T) {
 
 func TestWriteRefusesOtherFolders(t *testing.T) {
 	file := filepath.Join(t.TempDir(), "file")
-	notes, other, river := t.TempDir(), t.TempDir(), t.TempDir()
-	if err := os.Mkdir(filepath.Join(river, "river"), 0o777); err != nil {
-		t.Fatal(err)
+	notes, other, river, pool := t.TempDir(), t.TempDir(), t.TempDir(), t.TempDir()
+	for _, folder := range []string{filepath.Join(river, "river"), filepath.Join(pool, "pool")} {
+		if err := os.Mkdir(folder, 0o777); err != nil {
+			t.Fatal(err)
+		}
 	}
 	for path, text := range map[string]string{
 		file:                                       "text",
@@ -101,22 +105,26 @@ func TestWriteRefusesOtherFolders(t *testing.T) {
 		filepath.Join(other, "survey.toml"):        "title = \"Another survey\"\n",
 		filepath.Join(river, "survey.toml"):        string(jobText()),
 		filepath.Join(river, "river", "notes.txt"): "keep",
+		filepath.Join(pool, "pool", "notes.txt"):   "keep",
+		filepath.Join(pool, "survey.toml"):         string(jobText()),
 	} {
 		if err := os.WriteFile(path, []byte(text), 0o666); err != nil {
 			t.Fatal(err)
 		}
 	}
-	for name, folder := range map[string]string{"file": file, "notes": notes, "another survey": other, "notes where the river goes": river} {
+	for name, folder := range map[string]string{"file": file, "notes": notes, "another survey": other, "notes where the river goes": river, "notes where the pool goes": pool} {
 		t.Run(name, func(t *testing.T) {
-			_, _, err := Write(folder)
+			_, _, _, err := Write(folder)
 			var call *pipeline.CallError
 			if !errors.As(err, &call) {
 				t.Errorf("error is %v, want a CallError", err)
 			}
 		})
 	}
-	if files := contents(t, river); len(files) != 2 {
-		t.Errorf("the folder with another river holds %v, want it untouched", slices.Collect(maps.Keys(files)))
+	for _, folder := range []string{river, pool} {
+		if files := contents(t, folder); len(files) != 2 {
+			t.Errorf("the folder with another river or pool holds %v, want it untouched", slices.Collect(maps.Keys(files)))
+		}
 	}
 	if files := contents(t, notes); len(files) != 1 || string(files["notes.txt"]) != "keep" {
 		t.Errorf("the folder holds %v, want it untouched", slices.Collect(maps.Keys(files)))
