@@ -38,5 +38,5 @@ func Example() {
 	// Output:
 	// 200000 points, doing nothing: true corrected: <nil>
 	// 59809 points, doing nothing: true corrected: <nil>
-	// 32412 points, doing nothing: true corrected: <nil>
+	// 32410 points, doing nothing: true corrected: <nil>
 }

@@ -82,70 +82,55 @@ func fillPool() ([]*tile, []camera, error) {
 
 // poolJobText is the job, with a word on each line for those who see one for the first time.
 func poolJobText() []byte {
-	return fmt.Appendf(nil, `# A drone took images of the bed through the water, and the survey software intersected
+	return imageJobText(`# A drone took images of the bed through the water, and the survey software intersected
 # their rays as if there were none. This job finds where each point is instead.
-title = %q
+`, PoolTitle, outputFolder, "full", multiviewText(job.Invert, "the point that the software would have put where the cloud has it"))
+}
+
+// remedyJobText is the job of a remedy: the pool's with another folder and other rays.
+func remedyJobText(name string) []byte {
+	rays := "model = \"vertical\" # depth times the ratio of indices\n"
+	if name != job.Vertical {
+		rays = multiviewText(name, "a usual remedy")
+	}
+	return imageJobText("# A usual remedy, to compare with "+poolJobFile+".\n", PoolTitle+": "+name, name, "lean", rays)
+}
+
+func multiviewText(solve, remark string) string {
+	return fmt.Sprintf(`model    = "multiview"
+cameras  = %q # where each image was taken from, its angles and its size
+solve    = %q # %s
+residual = "image" # what the software made least: distances in the images
+`, cameraFile, solve, remark)
+}
+
+// imageJobText is a job for the pool: a remark, the title, the output's folder and
+// provenance, and what stands below [rays].
+func imageJobText(remark, title, folder, provenance, rays string) []byte {
+	return fmt.Appendf(nil, `%stitle = %q
 
 [input]
 files = ["%s/*.csv"] # x y z in metres, and views: the images that a point was seen in
 
 [output]
-folder = %q # same file names; columns with the depth, the outcome and more are added
+folder     = %q # same file names
+provenance = %q # how much is added to tell how each point came about: full or lean
 
 [water]
 temperature = %.1f # degrees C, of the water on that day
-salinity    = %.1f  # practical salinity: fresh water
+salinity    = %.1f # practical salinity: fresh water
 
 [air]
 temperature = %.1f # degrees C
-humidity    = %.0f   # percent
+humidity    = %.0f # percent
 
 [surface.plane] # of the water; it falls to the east
-level   = %.2f # m, in the heights of the cloud, and this at the place
+level   = %.2f # m, in the heights of the cloud, at this place:
 at      = [%.1f, %.1f]
 slope_x = %g # metres up on a metre to the east
-slope_y = %g  # and on a metre to the north
+slope_y = %g # and on a metre to the north
 
 [rays]
-model    = "multiview"
-cameras  = %q # where each image was taken from, its angles and its size
-solve    = %q      # the point that the software would have put where the cloud has it
-residual = "image"       # what the software made least: distances in the images
-`, PoolTitle, rawFolder, outputFolder, poolTemperatureC, poolSalinity, airTemperatureC, humidityPercent,
-		poolSurface.at.z, poolSurface.at.x, poolSurface.at.y, poolSurface.slopeX, poolSurface.slopeY, cameraFile, job.Invert)
-}
-
-// remedyJobText is the job of a remedy: the pool's with another folder and other rays.
-func remedyJobText(name string) []byte {
-	rays := "model = \"vertical\"\n"
-	if name != job.Vertical {
-		rays = fmt.Sprintf("model    = \"multiview\"\ncameras  = %q\nsolve    = %q\nresidual = \"image\"\n", cameraFile, name)
-	}
-	return fmt.Appendf(nil, `# A usual remedy, to compare with %s.
-title = %q
-
-[input]
-files = ["%s/*.csv"]
-
-[output]
-folder     = %q
-provenance = "lean"
-
-[water]
-temperature = %.1f
-salinity    = %.1f
-
-[air]
-temperature = %.1f
-humidity    = %.0f
-
-[surface.plane]
-level   = %.2f
-at      = [%.1f, %.1f]
-slope_x = %g
-slope_y = %g
-
-[rays]
-%s`, poolJobFile, PoolTitle+": "+name, rawFolder, name, poolTemperatureC, poolSalinity, airTemperatureC, humidityPercent,
+%s`, remark, title, rawFolder, folder, provenance, poolTemperatureC, poolSalinity, airTemperatureC, humidityPercent,
 		poolSurface.at.z, poolSurface.at.x, poolSurface.at.y, poolSurface.slopeX, poolSurface.slopeY, rays)
 }

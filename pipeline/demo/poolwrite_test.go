@@ -11,8 +11,8 @@ import (
 // The remedies' jobs differ from the pool's in their rays and in what they write alone,
 // so that the comparison is of the rays.
 func TestRemediesAreThePoolsJob(t *testing.T) {
-	_, _, pool, err := Write(t.TempDir())
-	if err != nil {
+	pool := newPool(t.TempDir())
+	if err := pool.writePool(); err != nil {
 		t.Fatal(err)
 	}
 	own, err := job.Load(pool.Job)
@@ -39,7 +39,7 @@ func TestRemediesAreThePoolsJob(t *testing.T) {
 		}
 		for name, same := range map[string][2]any{
 			"input": {j.Input, own.Input}, "water": {j.Water, own.Water}, "air": {j.Air, own.Air}, "light": {j.Light, own.Light},
-			"surface": {j.Surface, own.Surface}, "extent": {j.Extent, own.Extent}, "limits": {j.Limits, own.Limits},
+			"surface": {j.Surface, own.Surface}, "limits": {j.Limits, own.Limits},
 		} {
 			if !reflect.DeepEqual(same[0], same[1]) {
 				t.Errorf("%s: %s is %+v, want %+v", remedy.Name, name, same[0], same[1])
