@@ -35,6 +35,7 @@ type rays struct {
 	lastX, lastY []float64 // where the planes were taken
 	moving, done []int32   // points whose entries still move, and those that have come to rest
 	few          fewRays
+	widest       float64 // squared tangent from the vertical of the chunk's straight rays
 
 	slopeX, slopeY []float64 // of the planes at all points of a part
 }
@@ -91,6 +92,11 @@ func (y *rays) appendViews(sn *sensor, w *workspace, c *cloud.Chunk, r *reading,
 		w.fault = fmt.Errorf("views of the point at %.3f, %.3f: %w (sensor %q)", c.Numbers[0][i], c.Numbers[1][i], err, sn.Name)
 	}
 	w.rayCount[i] = float64(len(y.camera) - before)
+	at := &sn.cameras.centres
+	for _, k := range y.camera[before:] {
+		dx, dy, dz := at.X[k]-w.raw.X[i], at.Y[k]-w.raw.Y[i], at.Z[k]-w.raw.Z[i]
+		y.widest = max(y.widest, (dx*dx+dy*dy)/(dz*dz))
+	}
 }
 
 // batch returns the points from..to with the rays found for them.

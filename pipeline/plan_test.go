@@ -147,11 +147,12 @@ func TestStartingJob(t *testing.T) {
 	}{
 		{"origin columns", tiny, nil},
 		{"trajectory", "x,y,z,gps_time\n5,6,-10,1.5\n", nil},
+		{"views", "x,y,z,views\n5,6,-10,a b\n", nil},
 		{"other names", "east,north,up,gps_time,\"a\nb\"\n5,6,-10,1.5,0\n", []string{`x = ""`, `x = "east"`, `y = ""`, `y = "north"`, `z = ""`, `z = "up"`}},
 	} {
 		t.Run(c.name, func(t *testing.T) {
 			folder := t.TempDir()
-			files{"cloud.csv": c.cloud, "flight.csv": "gps_time,x,y,z\n1,5,6,400\n2,5,6,400\n"}.write(t, folder)
+			files{"cloud.csv": c.cloud, "flight.csv": "gps_time,x,y,z\n1,5,6,400\n2,5,6,400\n", "cameras.csv": "camera,x,y,z\na,0,0,60\nb,20,5,60\n"}.write(t, folder)
 			t.Chdir(folder)
 			var b strings.Builder
 			if err := StartJob(&b, "cloud.csv"); err != nil {

@@ -1,6 +1,7 @@
 package pipeline
 
 import (
+	"math"
 	"slices"
 
 	"bentray/pipeline/job"
@@ -19,12 +20,13 @@ type CameraInfo struct {
 
 // ImageHeads sums up the points made from images among the first rows.
 type ImageHeads struct {
-	Points       int64
-	Views        [2]int // least and greatest number of cameras of a point
-	MeanViews    float64
-	MaxIncidence float64    // degrees, of corrected points; NaN where there is none
-	Lift         [2]float64 // least and greatest change of z, in the job's unit of heights; NaN where none was corrected
-	MaxDrift     float64    // greatest move in plan, in the job's unit
+	Points         int64
+	Views          [2]int // least and greatest number of cameras of a point
+	MeanViews      float64
+	Source         string     // what named the cameras: column, image or angle, or several of them
+	MaxOffVertical float64    // of a straight ray from a camera to a raw point, degrees
+	Lift           [2]float64 // least and greatest change of z, in the job's unit of heights; NaN where none was corrected
+	MaxDrift       float64    // greatest move in plan, in the job's unit
 }
 
 func (s *survey) planCameras(sn *sensor) *CameraInfo {
@@ -42,15 +44,26 @@ func (s *survey) planCameras(sn *sensor) *CameraInfo {
 	return c
 }
 
+// source says what named the cameras of points.
+func (t *viewTally) source(s *survey) string {
+	switch t.assumed {
+	case 0:
+		return "column"
+	case t.points:
+		return s.viewRules()
+	}
+	return "column and " + s.viewRules()
+}
+
 // heads sums up what a tally has of images.
-func (t *viewTally) heads(all *tally, s *survey) *ImageHeads {
+func (t *viewTally) heads(s *survey) *ImageHeads {
 	if t.points == 0 {
 		return nil
 	}
 	return &ImageHeads{
 		Points: t.points, Views: [2]int{int(t.views.low), int(t.views.high)}, MeanViews: float64(t.rays) / float64(t.points),
-		MaxIncidence: all.incidence.high / radiansPerDegree,
-		Lift:         [2]float64{t.lift.low / s.height, t.lift.high / s.height}, MaxDrift: t.drift.high / s.plan,
+		Source: t.source(s), MaxOffVertical: math.Atan(math.Sqrt(t.widest)) / radiansPerDegree,
+		Lift: [2]float64{t.lift.low / s.height, t.lift.high / s.height}, MaxDrift: t.drift.high / s.plan,
 	}
 }
 

@@ -26,7 +26,7 @@ func (p *planner) finish() {
 		p.plan.Sensors[k].Points = t.sensors[k]
 	}
 	p.corners()
-	h.Images = t.images.heads(t, p.survey)
+	h.Images = t.images.heads(p.survey)
 	p.plan.Cautions = slices.Concat(t.cautions(p.survey), p.idleSensors(), p.imageCautions(), p.whyNoPoints(), p.ofFiles)
 }
 

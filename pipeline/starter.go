@@ -38,10 +38,13 @@ func StartJob(w io.Writer, path string) error {
 	b.WriteString(starterInput)
 	writeMissing(&b, roles)
 	b.WriteString(starterRest)
-	if hasOrigins(roles) {
-		b.WriteString("# ray origins come from the cloud's origin columns\n")
-	} else {
-		b.WriteString("# trajectory = \"flight.csv\"   # gps_time,x,y,z of the optical centre\n")
+	switch {
+	case hasViews(roles):
+		b.WriteString(starterImages)
+	case hasOrigins(roles):
+		b.WriteString(starterPulse + "# ray origins come from the cloud's origin columns\n")
+	default:
+		b.WriteString(starterPulse + "# trajectory = \"flight.csv\"   # gps_time,x,y,z of the optical centre\n")
 	}
 	_, err = io.WriteString(w, b.String())
 	return err
@@ -65,13 +68,20 @@ folder = "corrected"
 # A table [extent] with polygons, a GeoJSON file, limits the correction to water.
 
 [rays]
-model = "pulse"                # airborne laser; "vertical" for images without camera data
+`
+
+const starterPulse = `model = "pulse"                # airborne laser; for images "multiview" with cameras, or "vertical" without
+`
+
+const starterImages = `model = "multiview"            # the column views names the cameras that saw each point
+# cameras = "cameras.csv"      # camera,x,y,z and, where known, omega,phi,kappa
+# residual = "angle"           # what the cloud's software minimised: "image", "angle" or "equal"
 `
 
 // writeMissing offers the roles that a job needs and no column plays by its name.
 func writeMissing(b *strings.Builder, roles []string) {
 	needed := cloud.Roles[:3:3]
-	if !hasOrigins(roles) {
+	if !hasOrigins(roles) && !hasViews(roles) {
 		needed = append(needed, "gps_time")
 	}
 	missing := slices.DeleteFunc(slices.Clone(needed), func(role string) bool { return slices.Contains(roles, role) })
@@ -103,6 +113,8 @@ func playedRoles(columns []cloud.Column) ([]string, error) {
 	}
 	return roles, nil
 }
+
+func hasViews(roles []string) bool { return slices.Contains(roles, "views") }
 
 func hasOrigins(roles []string) bool {
 	return slices.Contains(roles, "origin_x") && slices.Contains(roles, "origin_y") && slices.Contains(roles, "origin_z")

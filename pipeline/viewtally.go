@@ -12,10 +12,11 @@ import (
 type viewTally struct {
 	points, rays int64 // points whose cameras were looked for, and these
 	views        span
-	assumed      int64 // of the points, those whose cameras the cloud does not name
-	offside      int64 // of the points, those with a camera on their own side of the surface
-	lift         span  // true less raw z of corrected points, m
-	drift        span  // distance in plan of corrected points, m
+	widest       float64 // squared tangent from the vertical of a straight ray to a point
+	assumed      int64   // of the points, those whose cameras the cloud does not name
+	offside      int64   // of the points, those with a camera on their own side of the surface
+	lift         span    // true less raw z of corrected points, m
+	drift        span    // distance in plan of corrected points, m
 }
 
 func newViewTally() viewTally {
@@ -45,6 +46,7 @@ func (t *viewTally) add(w *workspace, i int, named bool) {
 
 func (t *viewTally) join(o *viewTally) {
 	t.points, t.rays = t.points+o.points, t.rays+o.rays
+	t.widest = max(t.widest, o.widest)
 	t.assumed, t.offside = t.assumed+o.assumed, t.offside+o.offside
 	t.views.join(o.views)
 	t.lift.join(o.lift)

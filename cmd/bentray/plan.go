@@ -151,10 +151,13 @@ func printImages(s *streams, h *pipeline.ImageHeads, j *job.Job) {
 	if h == nil {
 		return
 	}
-	fmt.Fprintf(s.out, "views    %d to %d cameras a point, %.1f on average\n", h.Views[0], h.Views[1], h.MeanViews)
+	views := fmt.Sprintf("%d to %d cameras a point, %.1f on average", h.Views[0], h.Views[1], h.MeanViews)
+	if h.Views[0] == h.Views[1] {
+		views = plural(h.Views[0], "camera") + " a point"
+	}
+	fmt.Fprintf(s.out, "views    by %s: %s, up to %.1f degrees off the vertical\n", h.Source, views, h.MaxOffVertical)
 	if h.Lift[0] <= h.Lift[1] {
-		fmt.Fprintf(s.out, "         incidence up to %.1f degrees; z moves by %.3f to %.3f %s, plan by up to %.3f %s\n",
-			h.MaxIncidence, h.Lift[0], h.Lift[1], j.Input.VerticalUnit, h.MaxDrift, j.Input.Unit)
+		fmt.Fprintf(s.out, "moves    z by %.3f to %.3f %s, plan by up to %.3f %s\n", h.Lift[0], h.Lift[1], j.Input.VerticalUnit, h.MaxDrift, j.Input.Unit)
 	}
 }
 
