@@ -77,6 +77,11 @@ func (f *File) newCursor(i int, text bool) (*cursor, error) {
 	case !text && isText:
 		return nil, fmt.Errorf("%s: column %q is %s, want a number (DOUBLE, FLOAT, INT32, INT64 or TIMESTAMP)", f.path, l.name, l.typ)
 	}
+	return f.cursorOf(l, i)
+}
+
+// cursorOf makes the cursor of a column whose leaf says how it is read.
+func (f *File) cursorOf(l *leaf, i int) (*cursor, error) {
 	c := &cursor{file: f, leaf: l, index: i, scratch: scratch{beside: f.options.Output}}
 	for g := range f.groups {
 		if err := c.begin(g); err != nil {

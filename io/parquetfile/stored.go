@@ -8,6 +8,8 @@ import (
 	"time"
 
 	"bentray/io/cloud"
+
+	"github.com/xitongsys/parquet-go/parquet"
 )
 
 // storedMark stands before each stored value, so that an empty text is not a null.
@@ -16,24 +18,39 @@ const storedMark = 1
 // newStored prepares to read a column's values as they are stored.
 func (f *File) newStored(i int) (*cursor, error) {
 	l := f.leaves[i]
-	c, err := f.newCursor(i, l.kind == texts)
+	if l.kind = l.storedKind(); l.kind == opaque {
+		return nil, fmt.Errorf("%s: column %q is %s, whose values cannot be read", f.path, l.name, l.typ)
+	}
+	c, err := f.cursorOf(&l, i)
 	if err != nil {
 		return nil, err
 	}
-	l.kind = l.kind.stored()
-	c.leaf, c.stored = &l, true
+	c.stored = true
 	return c, nil
 }
 
-// stored returns the kind by which the bits of a value pass through a float64.
-func (k kind) stored() kind {
-	switch k {
-	case floats:
-		return uint32s
-	case int64s, uint64s, millis, micros, nanos:
-		return patterns
+// storedKind returns the kind by which the bits of a value pass through a float64, or
+// texts, whatever the values stand for; opaque where the column is not flat or of a type
+// that is not decoded.
+func (l *leaf) storedKind() kind {
+	if !l.flat {
+		return opaque
 	}
-	return k
+	switch l.physical {
+	case parquet.Type_BOOLEAN:
+		return booleans
+	case parquet.Type_INT32:
+		return int32s
+	case parquet.Type_FLOAT:
+		return uint32s
+	case parquet.Type_INT64:
+		return patterns
+	case parquet.Type_DOUBLE:
+		return doubles
+	case parquet.Type_BYTE_ARRAY:
+		return texts
+	}
+	return opaque
 }
 
 // storedWords are the values of a page, each behind its mark: texts as they are,
@@ -91,11 +108,10 @@ func (s *storedWords) nextTexts(t *cloud.Texts, count int) error {
 	return nil
 }
 
-// CanRead tells whether a column's values can be decoded; others can only be
-// copied, or compared with EqualChunks.
-func (f *File) CanRead(column int) bool {
-	l := &f.leaves[column]
-	if l.kind == opaque {
+// CanStore tells whether a column's values can be had as they are stored; others can
+// only be compared with EqualChunks.
+func (f *File) CanStore(column int) bool {
+	if f.leaves[column].storedKind() == opaque {
 		return false
 	}
 	for _, g := range f.groups {
@@ -112,7 +128,7 @@ func (f *File) Show(column int, stored []byte) string {
 	switch {
 	case len(stored) == 0:
 		return "null"
-	case l.kind == texts:
+	case l.physical == parquet.Type_BYTE_ARRAY:
 		return strconv.Quote(clip(string(stored[1:])))
 	}
 	bits := binary.LittleEndian.Uint64(stored[1:])
@@ -120,8 +136,8 @@ func (f *File) Show(column int, stored []byte) string {
 	switch l.kind {
 	case floats:
 		return strconv.FormatFloat(float64(math.Float32frombits(uint32(v))), 'g', -1, 32)
-	case int64s:
-		return strconv.FormatInt(int64(bits), 10)
+	case uint32s:
+		return strconv.FormatUint(uint64(uint32(int32(v))), 10)
 	case uint64s:
 		return strconv.FormatUint(bits, 10)
 	case millis:
@@ -130,6 +146,10 @@ func (f *File) Show(column int, stored []byte) string {
 		return showTime(time.UnixMicro(int64(bits)))
 	case nanos:
 		return showTime(time.Unix(0, int64(bits)))
+	case opaque, int64s:
+		if l.physical == parquet.Type_INT64 {
+			return strconv.FormatInt(int64(bits), 10)
+		}
 	case doubles:
 		if v != v && bits != math.Float64bits(math.NaN()) {
 			return fmt.Sprintf("NaN (%#x)", bits)

@@ -149,7 +149,7 @@ func TestChooseWidth(t *testing.T) {
 func TestJoinedInParts(t *testing.T) {
 	const seed1, seed2 = 12, 5
 	rng := rand.New(rand.NewPCG(seed1, seed2))
-	for range 40 {
+	for range 15 {
 		whole, whole2 := newFigures(nil, nil), newFigures(nil, nil)
 		for range 4 {
 			part := newFigures(nil, nil)

@@ -71,7 +71,7 @@ func (d *fileDiff) prove() error {
 		case err != nil:
 			return fmt.Errorf("%s and %s: column %q: %w", d.pair.raw, d.pair.corrected, p.name, err)
 		case equal && !d.isCoordinate(p):
-		case !a.CanRead(p.a) || !b.CanRead(p.b):
+		case !a.CanStore(p.a) || !b.CanStore(p.b):
 			d.opaque = append(d.opaque, p.name)
 			d.findings.column(p.name, "", "", "is stored in other bytes, as %s, which cannot be read: its values cannot be compared", d.b.Columns()[p.b].Type)
 		default:
