@@ -106,6 +106,9 @@ func (r *Report) note(all *figures) {
 		say("no point was corrected: there are no figures of a shift")
 		return
 	}
+	if all.noLevel {
+		say("there is no column water_level, the output is lean: the level is taken for depth plus height, and depths are not checked by it")
+	}
 	if all.noDepth > 0 {
 		say("%d corrected points have no depth, since their model has no water surface: they are in no band of depth", all.noDepth)
 	}

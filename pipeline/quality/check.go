@@ -12,7 +12,7 @@ import (
 // readCheck reads the check points of a file: columns x, y, z, projected as the cloud.
 // Points without finite coordinates are counted as ignored.
 func readCheck(path string) (x, y, z []float64, ignored int, err error) {
-	t, err := openTable(path, nil, nil)
+	t, err := openTable(path, textOptions{})
 	if err != nil {
 		return nil, nil, nil, 0, err
 	}

@@ -9,10 +9,10 @@
 // the same values; the raw copies hold the raw coordinates. CSV fields are compared
 // as they stand in the file, byte for byte. Parquet columns are compared as stored,
 // whole column chunks at a time, so that nested and unknown types are compared too;
-// chunks that differ are compared by value, a null and a NaN by their bits, or, nested and
-// of fixed length, named as not comparable. Points that
-// are not corrected repeat their raw coordinates, and depth is water_level minus z.
-// Where a point belongs by its ray is not computed here.
+// chunks that differ are compared by value, a null and a NaN by their bits. Of nested
+// columns and values of fixed length that is not done: the report says that they cannot
+// be compared. Points that are not corrected repeat their raw coordinates, and depth is
+// water_level minus z. Where a point belongs by its ray is not computed here.
 //
 // Rows belong together by their order. Where raw coordinates differ, some 500 rows are
 // looked ahead to tell a row that was dropped, doubled, inserted or swapped from one

@@ -21,6 +21,7 @@ type figures struct {
 	check                 *matcher // nil where there are no check points
 	overlap               *overlap // nil where it is not asked for
 
+	noLevel  bool  // an output has no column of the water level
 	noDepth  int64 // corrected points without a depth
 	unpaired int64 // rows corrected in one of two corrected clouds alone
 }
@@ -204,6 +205,7 @@ func (f *figures) join(o *figures) {
 	if f.overlap != nil {
 		f.overlap.join(o.overlap)
 	}
+	f.noLevel = f.noLevel || o.noLevel
 	f.noDepth += o.noDepth
 	f.unpaired += o.unpaired
 }

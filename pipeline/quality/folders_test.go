@@ -56,6 +56,9 @@ func TestFoldersOfRuns(t *testing.T) {
 		if !r.Holds || r.Rows != 4500 || r.RowsRaw != 4502 || r.RowsDiverted != 2 || !r.UnitKnown || len(r.Settings) != 1 || r.Settings[0].Files != 3 {
 			t.Errorf("holds %v, rows %d of %d, %d diverted, settings %v: %v", r.Holds, r.Rows, r.RowsRaw, r.RowsDiverted, r.Settings, r.Findings)
 		}
+		if lean := strings.Contains(keys, "lean"); strings.Contains(strings.Join(r.Notes, "\n"), "no column water_level") != lean {
+			t.Errorf("notes %q", r.Notes)
+		}
 		if r.Outcomes["corrected"] != 4050 || r.Outcomes["dry"] != 450 {
 			t.Errorf("outcomes %v", r.Outcomes)
 		}
@@ -209,5 +212,28 @@ func TestReceiptOfAnotherUnit(t *testing.T) {
 	}
 	if _, err := Diff(t.Context(), raw, corrected, Options{}); err == nil || !strings.Contains(err.Error(), "compare them apart") {
 		t.Errorf("error is %v", err)
+	}
+}
+
+// Clouds without a header, parted by blanks, compressed, with lines of their own: the
+// names come from the corrected cloud.
+func TestAwkwardText(t *testing.T) {
+	cloud, _ := scene(400)
+	var b strings.Builder
+	for _, row := range cloud[1:] {
+		b.WriteString("  " + strings.Join(row, " \t ") + "\r\n\r\n")
+	}
+	folder := t.TempDir()
+	writeFile(t, filepath.Join(folder, "raw", "d.xyz"), b.String())
+	writeFile(t, filepath.Join(folder, "job.toml"), "[input]\nfiles = [\"raw/*\"]\n[input.csv]\nnames = [\"x\", \"y\", \"z\", \"i\", \"line\", \"tag\"]\n"+verticalJob)
+	j, err := job.Load(filepath.Join(folder, "job.toml"))
+	if err != nil {
+		t.Fatal(err)
+	}
+	if s, err := pipeline.Run(t.Context(), j, pipeline.Options{}); err != nil || s.Failed > 0 {
+		t.Fatal(err, s)
+	}
+	if r := diffFolders(t, filepath.Join(folder, "raw"), filepath.Join(folder, "true"), Options{}); !r.Holds || r.Rows != 400 {
+		t.Errorf("holds %v, %d rows: %v", r.Holds, r.Rows, r.Findings)
 	}
 }

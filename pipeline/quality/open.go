@@ -17,9 +17,16 @@ type table interface {
 	Show(column int, stored []byte) string
 }
 
-// openTable opens a file that is only read; names are its columns where it may have
-// no header, passed the lines of CSV rows that were diverted.
-func openTable(path string, names []string, passed []int64) (table, error) {
+// textOptions say what a file of text does not say itself.
+type textOptions struct {
+	names    []string // of the columns, where the first row may be none
+	headless bool     // it is none
+	passed   []int64  // lines of rows that were diverted
+	divert   bool     // rows that cannot be read are no error
+}
+
+// openTable opens a file that is only read.
+func openTable(path string, o textOptions) (table, error) {
 	info, err := os.Stat(path)
 	switch {
 	case err != nil:
@@ -31,9 +38,14 @@ func openTable(path string, names []string, passed []int64) (table, error) {
 	case !csvfile.IsName(path):
 		return nil, callErrorf("%s: unknown kind of file, want .parquet, or .csv .tsv .txt .xyz or .asc (these also with .gz or .zst)", path)
 	}
-	f, err := csvfile.Open(path, csvfile.Options{Divert: names != nil, Passed: passed})
-	if errors.Is(err, csvfile.ErrNoHeader) && names != nil {
-		f, err = csvfile.Open(path, csvfile.Options{Names: names, Divert: true, Passed: passed})
+	text := csvfile.Options{Divert: o.divert, Passed: o.passed}
+	if o.headless {
+		text.Names = o.names
+	}
+	f, err := csvfile.Open(path, text)
+	if errors.Is(err, csvfile.ErrNoHeader) && o.names != nil {
+		text.Names = o.names
+		f, err = csvfile.Open(path, text)
 	}
 	if err != nil {
 		return nil, err

@@ -100,6 +100,7 @@ func (d *fileDiff) begin() (*gatherer, error) {
 	for k, i := range d.to.xyz {
 		g.coords[k] = d.b.Columns()[i].Name
 	}
+	d.figures.noLevel = read.level < 0
 	if d.figures.overlap != nil {
 		d.figures.overlap.column = read.lineName
 	}

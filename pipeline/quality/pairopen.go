@@ -17,7 +17,7 @@ func (d *fileDiff) open() (err error) {
 	if d.rejects, err = readRejects(d.pair.corrected); err != nil {
 		return err
 	}
-	if d.b, err = openTable(d.pair.corrected, nil, nil); err != nil {
+	if d.b, err = openTable(d.pair.corrected, textOptions{}); err != nil {
 		return err
 	}
 	if err := d.openFirst(); err != nil {
@@ -32,21 +32,22 @@ func (d *fileDiff) openFirst() (err error) {
 	if d.to, isOutput = findOutput(d.b.Columns()); !isOutput {
 		return d.noOutput()
 	}
-	var own []string
+	o := textOptions{divert: true}
 	for _, c := range d.b.Columns()[:d.to.raw] {
-		own = append(own, c.Name)
+		o.names = append(o.names, c.Name)
 	}
-	if d.a, err = openTable(d.pair.raw, own, nil); err != nil {
+	if d.a, err = openTable(d.pair.raw, o); err != nil {
 		return err
 	}
-	d.from, _ = findOutput(d.a.Columns())
-	if d.from != nil {
+	if d.from, isOutput = findOutput(d.a.Columns()); isOutput {
 		d.report.RowsDiverted = int64(len(d.rejects.lines)) // the first cloud does not have them either
 		d.rejects = &rejects{}
 	}
-	if len(d.rejects.lines) > 0 {
+	o.passed = d.rejects.lines
+	o.headless = !isOutput && d.made != nil && len(d.made.job.Input.CSV.Names) > 0
+	if len(o.passed) > 0 || o.headless {
 		d.a.Close()
-		if d.a, err = openTable(d.pair.raw, own, d.rejects.lines); err != nil {
+		if d.a, err = openTable(d.pair.raw, o); err != nil {
 			return err
 		}
 	}
@@ -59,7 +60,7 @@ func (d *fileDiff) openFirst() (err error) {
 
 // noOutput explains why the second file is none of bentray's.
 func (d *fileDiff) noOutput() error {
-	if t, err := openTable(d.pair.raw, nil, nil); err == nil {
+	if t, err := openTable(d.pair.raw, textOptions{}); err == nil {
 		defer t.Close()
 		if _, is := findOutput(t.Columns()); is {
 			return callErrorf("%s is the raw cloud and %s the corrected one: exchange them", d.pair.corrected, d.pair.raw)

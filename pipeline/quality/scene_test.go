@@ -63,7 +63,8 @@ func (s sheet) numbers(t testing.TB, name string) []float64 {
 // textColumns are no numbers in Parquet.
 var textColumns = []string{"label", "outcome", "model", "run", "sensor"}
 
-func (s sheet) parquet(t testing.TB, groupRows int) string {
+// columns are the sheet's, as numbers but for textColumns.
+func (s sheet) columns(t testing.TB) []parquetfile.Column {
 	t.Helper()
 	var columns []parquetfile.Column
 	for i, name := range s[0] {
@@ -79,6 +80,16 @@ func (s sheet) parquet(t testing.TB, groupRows int) string {
 		}
 		columns = append(columns, c)
 	}
+	return columns
+}
+
+func (s sheet) parquet(t testing.TB, groupRows int) string {
+	t.Helper()
+	return parquetOf(t, groupRows, s.columns(t))
+}
+
+func parquetOf(t testing.TB, groupRows int, columns []parquetfile.Column) string {
+	t.Helper()
 	var b bytes.Buffer
 	if err := parquetfile.WriteTable(&b, columns, groupRows); err != nil {
 		t.Fatal(err)
