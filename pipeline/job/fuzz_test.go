@@ -42,6 +42,9 @@ func FuzzParse(f *testing.F) {
 		if err != nil || !json.Valid(settings) {
 			t.Fatalf("settings are %s, %v", settings, err)
 		}
+		if err := sameFromSettings(j, settings); err != nil {
+			t.Fatal(err)
+		}
 	})
 }
 
