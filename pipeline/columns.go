@@ -266,13 +266,18 @@ func (l *layout) label(name string, has outcomes, text func(*sensor, correct.Out
 	})
 }
 
-// checkNames refuses a file that has a column which its output would gain.
-func (l *layout) checkNames(columns []cloud.Column) error {
-	names := append([]string{}, l.RawNames[:]...)
+// names lists the columns that the output gains.
+func (l *layout) names() []string {
+	names := slices.Clone(l.RawNames[:])
 	for _, a := range l.Added {
 		names = append(names, a.Name)
 	}
-	for _, name := range names {
+	return names
+}
+
+// checkNames refuses a file that has a column which its output would gain.
+func (l *layout) checkNames(columns []cloud.Column) error {
+	for _, name := range l.names() {
 		for _, c := range columns {
 			if strings.EqualFold(c.Name, name) {
 				return fmt.Errorf("the file already has a column %q, which bentray would add; rename it there, or take the raw cloud if this file is an output", c.Name)

@@ -18,7 +18,8 @@ type slot struct {
 	chunk cloud.Chunk
 	work  workspace
 	tally *tally
-	done  chan error // the chunk's work has ended
+	found *deviations // of an audit
+	done  chan error  // the chunk's work has ended
 }
 
 // spareSlots are beyond the workers': one being read, one being written, one waiting.

@@ -45,8 +45,11 @@ func (s *survey) openBeside(path string) (cloud.Rewriter, error) {
 // for then its folder need not be there.
 func (s *survey) openCloud(in input, output string) (cloud.Rewriter, error) {
 	i := &s.job.Input
-	file, err := open(in.path,
-		csvfile.Options{Names: i.CSV.Names, Divert: i.BadRows == job.Divert},
+	text := csvfile.Options{Names: i.CSV.Names, Divert: i.BadRows == job.Divert}
+	if s.proves != nil { // an output has a header and no bad rows
+		text = csvfile.Options{}
+	}
+	file, err := open(in.path, text,
 		parquetfile.Options{
 			Coarse: i.Coarse, Unit: s.plan, Output: output, Version: Version,
 			Metadata: map[string]string{"bentray.program": Program, "bentray.run": s.run, "bentray.job": string(s.settings)},

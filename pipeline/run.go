@@ -84,7 +84,7 @@ func (r *runner) run(ctx context.Context, inputs []input, leftOut int, shard Sha
 		return nil, err
 	}
 	r.summary = &receipt.Summary{
-		Run: r.survey.run, Program: Program, Title: r.job.Title, Host: host, Shard: shard.String(), Workers: r.workers, LeftOut: leftOut,
+		Run: r.survey.run, Program: Program, Title: r.job.Title, Job: filepath.ToSlash(relative(folder, r.job.Path)), Host: host, Shard: shard.String(), Workers: r.workers, LeftOut: leftOut,
 		Started: time.Now().UTC().Truncate(time.Millisecond), Files: []receipt.FileSummary{}, Outcomes: map[string]int64{},
 	}
 	r.known = readHistory(folder)

@@ -18,6 +18,9 @@ import (
 	"bentray/pipeline/receipt"
 )
 
+// surfacePoints is what the clouds' own points on the water are used for.
+const surfacePoints = "surface points"
+
 // gridOfClouds makes the grid from the clouds' own surface points: all files of
 // the job are read, whichever of them a run does, so that tiles agree at their
 // seams. The points take part in the fingerprint, the files they came in do not.
@@ -47,9 +50,11 @@ func (s *survey) gridOfClouds(ctx context.Context, clouds []input) error {
 	case len(unread) > 0:
 		s.cautions = append(s.cautions, fmt.Sprintf("%d of %d clouds could not be read for their surface points: %s", len(unread), len(clouds), firstOf(unread)))
 	}
-	s.auxiliary = append(s.auxiliary, receipt.Input{Use: "surface points", File: receipt.File{
+	if err := s.addAuxiliary(surfacePoints, receipt.File{
 		Path: fmt.Sprintf("classification %v of the clouds", classes), Bytes: int64(bytesPerPoint * points.Given()), SHA256: jointSum(sums),
-	}})
+	}); err != nil {
+		return fmt.Errorf("surface points of classification %v: %w", classes, err)
+	}
 	if err := s.makeGrid(&points); err != nil {
 		return fmt.Errorf("%s: [surface.grid] classes: %w", s.job.Path, err)
 	}
@@ -92,7 +97,7 @@ func (s *survey) readSurfacePoints(ctx context.Context, clouds []input) []surfac
 	for _, in := range clouds {
 		bytes += in.bytes
 	}
-	s.watch.Begin("surface points", len(clouds), bytes)
+	s.watch.Begin(surfacePoints, len(clouds), bytes)
 	var g errgroup.Group
 	g.SetLimit(s.workers)
 	for k, in := range clouds {
@@ -128,8 +133,17 @@ func (r *surfaceReader) read(ctx context.Context, in input) error {
 		return err
 	}
 	defer file.Close()
-	if err := r.findColumns(file.Columns()); err != nil {
+	columns := file.Columns()
+	if r.proves != nil {
+		if columns, err = r.ownColumns(columns); err != nil {
+			return err
+		}
+	}
+	if err := r.findColumns(columns); err != nil {
 		return err
+	}
+	if r.proves != nil {
+		r.request.takeRaw(len(columns))
 	}
 	if err := file.Begin(r.request.request, cloud.Layout{}, nil); err != nil {
 		return err

@@ -28,7 +28,8 @@ const Program = "bentray " + Version
 // survey is what all files of a job share. It does not change once it is read.
 type survey struct {
 	job          *job.Job
-	describes    bool // keeps what a description alone needs
+	describes    bool             // keeps what a description alone needs
+	proves       *receipt.Receipt // the clouds are outputs with this receipt, which are audited; nil in a run
 	workers      int
 	watch        Watcher
 	settings     []byte
@@ -172,13 +173,25 @@ func (s *survey) hashAuxiliary(ctx context.Context, use, key, name string, read 
 	if err != nil {
 		return failed(fmt.Errorf("%s: %s: %w", s.job.Path, key, inFile(path, err)))
 	}
-	s.auxiliary = append(s.auxiliary, receipt.Input{Use: use, File: receipt.File{Path: filepath.ToSlash(name), Bytes: bytes, SHA256: sum}})
+	if err := s.addAuxiliary(use, receipt.File{Path: filepath.ToSlash(name), Bytes: bytes, SHA256: sum}); err != nil {
+		return failed(inFile(path, err))
+	}
 	return func() error {
 		if err := read(path); err != nil {
 			return inFile(path, s.atLine(path, err))
 		}
 		return unchanged(path, before)
 	}
+}
+
+// addAuxiliary notes a file that takes part in the result. In an audit it must be
+// the one that the receipt names.
+func (s *survey) addAuxiliary(use string, f receipt.File) error {
+	s.auxiliary = append(s.auxiliary, receipt.Input{Use: use, File: f})
+	if s.proves == nil {
+		return nil
+	}
+	return matchInput(s.proves, use, f)
 }
 
 // inFile puts the file's name before an error that does not begin with it.

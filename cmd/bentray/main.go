@@ -39,6 +39,7 @@ type cli struct {
 	Run     runCommand       `cmd:"" help:"Correct all clouds of a job."`
 	Plan    planCommand      `cmd:"" help:"Show what run would do, or a cloud's columns and a starting job."`
 	Diff    diffCommand      `cmd:"" help:"Compare raw and corrected clouds, and with surveyed points."`
+	Audit   auditCommand     `cmd:"" help:"Prove outputs: hashes, counts and every point against the receipts."`
 	Index   indexCommand     `cmd:"" help:"Refractive index and speed of sound of given water and air."`
 	Ray     rayCommand       `cmd:"" help:"Bend one ray, step by step, for a check by hand."`
 	Surface surfaceCommand   `cmd:"" help:"Describe a job's water surface, and draw it."`

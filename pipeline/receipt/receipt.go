@@ -53,6 +53,9 @@ type Input struct {
 	File
 }
 
+// Auxiliary returns the files that went in beside the cloud.
+func (r *Receipt) Auxiliary() []Input { return r.Inputs[min(1, len(r.Inputs)):] }
+
 // Write puts the receipt beside its output, whole or not at all.
 func (r *Receipt) Write(outputPath string) error {
 	return writeJSON(outputPath+Suffix, r)

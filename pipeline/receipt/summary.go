@@ -16,6 +16,7 @@ type Summary struct {
 	Run      string           `json:"run"`
 	Program  string           `json:"program"`
 	Title    string           `json:"title,omitempty"`
+	Job      string           `json:"job"` // the job file's path, relative to the output folder
 	Host     string           `json:"host"`
 	Shard    string           `json:"shard,omitempty"` // I/N
 	Workers  int              `json:"workers"`
