@@ -41,6 +41,8 @@ func (c *recheck) agree() {
 			c.columns = append(c.columns, c.ofClasses(a))
 		case a.Type == cloud.Label:
 			c.columns = append(c.columns, agreement{labels: bytesOf(a.Names)})
+		case a.Type == cloud.Count:
+			c.columns = append(c.columns, agreement{isText: c.isText})
 		default:
 			c.columns = append(c.columns, c.byRow(a.Decimals))
 		}

@@ -118,9 +118,11 @@ func adviceOn(r *receipt.Receipt, root string, clouds int, tried []string) strin
 // jobFolder is where the job file was: as told, else as the run's summary has it, else
 // above the output folder; the first that has the auxiliary files. They are tried.
 func (a *auditor) jobFolder(root string, r *receipt.Receipt) (folder string, tried []string) {
-	tried = []string{a.base}
-	if a.base == "" {
-		tried = append(summaryFolders(root, r.Run), filepath.Join(root, ".."))
+	if tried = []string{a.base}; a.base == "" {
+		tried = summaryFolders(root, r.Run)
+		if above := filepath.Join(root, ".."); !slices.Contains(tried, above) {
+			tried = append(tried, above)
+		}
 	}
 	for _, folder := range tried {
 		if hasAuxiliary(folder, r) {
