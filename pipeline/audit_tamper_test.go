@@ -253,7 +253,6 @@ func TestEditedReceiptIsFound(t *testing.T) {
 				sign(t, r)
 			}, "auxiliary files, want "},
 		} {
-			c := c
 			if c.what == "cautions" && len(made.Cautions) == 0 {
 				continue
 			}
@@ -417,11 +416,8 @@ func TestNothingToAudit(t *testing.T) {
 		"raw/a.csv.rejects.csv": "no such file",
 	} {
 		_, err := Audit(t.Context(), filepath.Join(folder, path), AuditOptions{})
-		var call *CallError
-		if err == nil || !strings.Contains(err.Error(), want) || !strings.Contains(err.Error(), path) || !asCall(err, &call) {
+		if call := new(*CallError); !errors.As(err, call) || !strings.Contains(err.Error(), want) || !strings.Contains(err.Error(), path) {
 			t.Errorf("%s: error is %v, want a CallError with %q", path, err, want)
 		}
 	}
 }
-
-func asCall(err error, call **CallError) bool { return errors.As(err, call) }
