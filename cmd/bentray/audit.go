@@ -52,16 +52,23 @@ func printAudit(s *streams, r *pipeline.AuditReport) {
 			failed++
 		}
 		rows += f.Rows
-		fmt.Fprintf(s.out, "%s  %s: %s points computed again\n", verdict, f.Name, grouped(f.Rows))
+		fmt.Fprintf(s.out, "%s  %s: %s computed again\n", verdict, f.Name, points(f.Rows))
 		for _, fault := range f.Faults {
-			fmt.Fprintln(s.out, "      ", fault)
+			fmt.Fprintf(s.out, "       %s\n", fault)
 		}
 		for _, note := range f.Notes {
-			fmt.Fprintln(s.out, "      ", note)
+			fmt.Fprintf(s.out, "       %s\n", note)
 		}
 	}
-	fmt.Fprintf(s.out, "%s: %d hold, %d fail; %s points computed again\n", plural(len(r.Files), "output"), len(r.Files)-failed, failed, grouped(rows))
+	fmt.Fprintf(s.out, "%s: %d hold, %d fail; %s computed again\n", plural(len(r.Files), "output"), len(r.Files)-failed, failed, points(rows))
 	if r.LeftOut > 0 {
 		fmt.Fprintf(s.out, "left out: %s without outcome and receipt\n", plural(r.LeftOut, "cloud"))
 	}
+}
+
+func points(n int64) string {
+	if n == 1 {
+		return "1 point"
+	}
+	return grouped(n) + " points"
 }

@@ -30,8 +30,8 @@ Example:
 Exit codes: 0 all holds; 1 it does not, or nothing could be compared; 64 the call is wrong; 130 interrupted.`
 }
 
-// errNotHeld ends a comparison that does not hold, which is reported already.
-var errNotHeld = errors.New("the comparison does not hold")
+// errNotHeld ends a comparison or an audit that does not hold, which is reported already.
+var errNotHeld = errors.New("it does not hold")
 
 // Run compares and reports.
 func (c *diffCommand) Run(s *streams) error {
