@@ -1,6 +1,8 @@
 package pipeline
 
 import (
+	"cmp"
+	"math"
 	"math/rand/v2"
 	"slices"
 	"strconv"
@@ -22,19 +24,15 @@ func benchViews(n int) (all []photo, x, y, z []float64, views []string) {
 	return all, x, y, z, views
 }
 
-// eight picks the cameras nearest to the vertical of all but a few.
+// eight picks the cameras nearest in plan of all but a few.
 func eight(r *rand.Rand, all []photo, p vec) (views []int) {
 	for k := range all {
 		if r.IntN(8) > 0 {
 			views = append(views, k)
 		}
 	}
-	slices.SortFunc(views, func(a, b int) int {
-		if all[a].offNadir(p) < all[b].offNadir(p) {
-			return -1
-		}
-		return 1
-	})
+	away := func(k int) float64 { return math.Hypot(all[k].at[0]-p[0], all[k].at[1]-p[1]) }
+	slices.SortFunc(views, func(a, b int) int { return cmp.Compare(away(a), away(b)) })
 	return views[:8]
 }
 
@@ -66,7 +64,7 @@ func benchImages(b *testing.B, n int, named bool) string {
 		csv.Write(append(line, '\n'))
 	}
 	var parquet strings.Builder
-	if err := parquetfile.WriteTable(&parquet, columns, 1<<20); err != nil {
+	if err := parquetfile.WriteTable(&parquet, columns, 1<<18); err != nil {
 		b.Fatal(err)
 	}
 	swell, r := swell(0), newRand(191)
