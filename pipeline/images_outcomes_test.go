@@ -188,3 +188,38 @@ func TestSensorsWithImages(t *testing.T) {
 		}
 	}
 }
+
+// Incidence is judged where the entries have come to rest: just below and just above the
+// largest of a point's rays, under a saddle, whose first planes slope otherwise.
+func TestImagesGrazingAtRest(t *testing.T) {
+	height := func(x, y float64) float64 { return 4e-3 * (x - 50) * (y - 50) }
+	c, r := scene{sea: seaAt(t, 550)}, newRand(175)
+	c.surface = func(x, y, _ float64) (float64, float64, float64) {
+		return 0.42 + height(x, y), 4e-3 * (y - 50), 4e-3 * (x - 50)
+	}
+	var nodes [][]float64
+	for i := range 25 {
+		x, y := -200+120*float64(i%5), -200+120*float64(i/5)
+		nodes = append(nodes, []float64{x, y, height(x, y)})
+	}
+	all := block(r)
+	f := files{"cameras.csv": cameraFile(all, noRotations, false, false, inMetres), "above.csv": lines("x,y,z", nodes...)}
+	for range 10 {
+		im := c.images(r, "angle", all, 1, 0, false)[0]
+		widest := 0.0
+		for _, k := range im.views {
+			widest = max(widest, c.look("angle", all, []int{k, k}, im.bed, 0, false).incidence)
+		}
+		f["raw/a.csv"] = imageCloud([]image{im}, true, false, inMetres)
+		for limit, want := range map[float64]string{widest - 1e-3: "grazing", widest + 1e-3: "corrected"} {
+			job := imageJob + seaWater + "[surface]\nlevel = 0.42\n[surface.separation]\nfile = \"above.csv\"\n[limits]\nmax_incidence = " + exact(limit) + "\n"
+			got := correctFiles(t, f, job)
+			if is := got.text(t, 0, "outcome"); is != want {
+				t.Errorf("seed %d: a point seen to %g degrees is %s with a limit of %g, want %s", seed, widest, is, limit, want)
+			}
+			if want == "corrected" {
+				near(t, 0, "z", got.number(t, 0, "z"), im.bed[2], 2e-6)
+			}
+		}
+	}
+}

@@ -148,8 +148,8 @@ func (s *survey) solve(b *batch, sn *sensor, w *workspace) {
 		y.solver.Solve(&b.result, b.out, nil, b.raw, &b.bundle)
 		return
 	}
-	y.begin(b)
-	s.takeRayPlanes(b, sn, w)
+	y.list(b.out, correct.Corrected)
+	s.takeFirstPlanes(b, sn, w)
 	if s.surface.curved {
 		s.followEntries(b, sn, w)
 	} else {
@@ -158,25 +158,45 @@ func (s *survey) solve(b *batch, sn *sensor, w *workspace) {
 	b.bundle.MeanSlopes(b.planes.SlopeX, b.planes.SlopeY, b.bundle.Planes)
 }
 
-// begin lists all points that are to be solved and the entries of their straight rays.
-func (y *rays) begin(b *batch) {
-	growAll(len(y.camera), &y.x, &y.y, &y.lastX, &y.lastY)
+// list makes the points with an outcome those that are to be solved.
+func (y *rays) list(out []correct.Outcome, of correct.Outcome) {
 	y.moving, y.done = y.moving[:0], y.done[:0]
-	for i, o := range b.out {
-		if o == correct.Corrected {
+	for i, o := range out {
+		if o == of {
 			y.moving = append(y.moving, int32(i))
+			out[i] = correct.Corrected
 		}
 	}
-	straight := b.bundle
-	straight.Solve = correct.Intersect
-	y.solver.EntryPlan(y.lastX, y.lastY, b.out, y.moving, b.raw, b.raw, &straight)
 }
 
-// followEntries solves the moving points and takes the planes of their rays anew, in
-// turns. Incidence is judged under the planes at rest.
+// takeFirstPlanes takes the planes of the moving points' rays where these are straight.
+func (s *survey) takeFirstPlanes(b *batch, sn *sensor, w *workspace) {
+	y, straight := b.rays, b.bundle
+	growAll(len(y.camera), &y.x, &y.y, &y.lastX, &y.lastY)
+	straight.Solve = correct.Intersect
+	y.solver.EntryPlan(y.lastX, y.lastY, b.out, y.moving, b.raw, b.raw, &straight)
+	s.takeRayPlanes(b, sn, w)
+}
+
+// followEntries solves the moving points under planes that come to rest. Incidence is to be
+// judged at rest: points that graze, perhaps on the way only, are followed once more with
+// any incidence.
 func (s *survey) followEntries(b *batch, sn *sensor, w *workspace) {
 	y, limit := b.rays, b.bundle.MaxIncidenceRad
-	b.bundle.MaxIncidenceRad = math.Pi / 2
+	s.bringToRest(b, sn, w)
+	if y.list(b.out, correct.Grazing); len(y.moving) == 0 {
+		return
+	}
+	b.bundle.MaxIncidenceRad, b.bundle.Warm = math.Pi/2, false
+	s.takeFirstPlanes(b, sn, w)
+	s.bringToRest(b, sn, w)
+	b.bundle.MaxIncidenceRad = limit
+	y.solver.Solve(&b.result, b.out, y.done, b.raw, &b.bundle)
+}
+
+// bringToRest solves the moving points and takes the planes of their rays anew, in turns.
+func (s *survey) bringToRest(b *batch, sn *sensor, w *workspace) {
+	y := b.rays
 	for range meetTries {
 		y.solver.Solve(&b.result, b.out, y.moving, b.raw, &b.bundle)
 		b.bundle.Warm = true
@@ -186,8 +206,6 @@ func (s *survey) followEntries(b *batch, sn *sensor, w *workspace) {
 		}
 		s.takeRayPlanes(b, sn, w)
 	}
-	b.bundle.MaxIncidenceRad = limit
-	y.solver.Solve(&b.result, b.out, y.done, b.raw, &b.bundle)
 	for _, i := range y.moving {
 		b.part.fail(b.from+int(i), correct.Unsolved)
 	}
