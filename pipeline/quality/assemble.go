@@ -55,17 +55,30 @@ func (r *Report) provenance(d *fileDiff) {
 		return
 	}
 	d.report.Run, d.report.OutputSHA256 = d.made.Run, d.made.Output.SHA256
-	if len(d.made.Inputs) > 0 {
-		d.report.InputSHA256 = d.made.Inputs[0].SHA256
+	auxiliary := []receipt.Input{}
+	if inputs := d.made.Inputs; len(inputs) > 0 {
+		d.report.InputSHA256 = inputs[0].SHA256
+		auxiliary = inputs[1:]
 	}
 	i := slices.IndexFunc(r.Settings, func(s Setting) bool { return s.Run == d.made.Run })
 	if i < 0 {
 		i = len(r.Settings)
-		r.Settings = append(r.Settings, Setting{Run: d.made.Run, Program: d.made.Program, Job: d.made.Job})
+		r.Settings = append(r.Settings, Setting{Run: d.made.Run, Program: d.made.Program, Job: d.made.Job, Auxiliary: auxiliary, Ranges: map[string][2]float64{}})
 	}
-	r.Settings[i].Files++
+	r.Settings[i].take(d.made.Ranges)
 	for _, caution := range d.made.Cautions {
 		r.caution(caution)
+	}
+}
+
+// take adds a file's ranges.
+func (s *Setting) take(ranges map[string][2]float64) {
+	s.Files++
+	for name, r := range ranges {
+		if all, found := s.Ranges[name]; found {
+			r = [2]float64{min(all[0], r[0]), max(all[1], r[1])}
+		}
+		s.Ranges[name] = r
 	}
 }
 

@@ -5,6 +5,7 @@ import (
 	"math"
 
 	"bentray/io/atomicfile"
+	"bentray/pipeline/receipt"
 )
 
 // Number is a figure; one that is not known is NaN, and null in JSON.
@@ -81,10 +82,12 @@ type FileReport struct {
 
 // Setting is what made some of the files, as their receipts have it.
 type Setting struct {
-	Run     string          `json:"run"`
-	Program string          `json:"program"`
-	Job     json.RawMessage `json:"job"`
-	Files   int             `json:"files"`
+	Run       string                `json:"run"`
+	Program   string                `json:"program"`
+	Job       json.RawMessage       `json:"job"`
+	Auxiliary []receipt.Input       `json:"auxiliary"` // files besides the cloud
+	Ranges    map[string][2]float64 `json:"ranges"`    // least and greatest over the corrected points of these files
+	Files     int                   `json:"files"`
 }
 
 // Shift sums up how far points moved.

@@ -1,6 +1,10 @@
 package quality
 
-import "math"
+import (
+	"math"
+
+	"bentray/geo"
+)
 
 // order is a survey order of IHO S-44 with its limit of vertical uncertainty.
 type order struct {
@@ -30,3 +34,21 @@ func TVULimit(orderName string, depthM float64) float64 {
 }
 
 func (o order) limit(depthM float64) float64 { return math.Hypot(o.a, o.b*depthM) }
+
+// Orders returns the names that TVULimit knows, the strictest first.
+func Orders() []string {
+	names := make([]string, len(orders))
+	for i, o := range orders {
+		names[i] = o.name
+	}
+	return names
+}
+
+// Limit is TVULimit with the depth, and the limit, in the report's VerticalUnit.
+func (r *Report) Limit(orderName string, depth float64) float64 {
+	metres, err := geo.ParseUnit(r.VerticalUnit)
+	if err != nil {
+		return math.NaN()
+	}
+	return TVULimit(orderName, depth*float64(metres)) / float64(metres)
+}
