@@ -14,13 +14,14 @@ import (
 // mayImport says which rooms each room may import. A room not listed as a key is
 // unknown and fails, so that a new room is placed on purpose.
 var mayImport = map[string][]string{
-	"cmd/bentray":            {"pipeline", "pipeline/demo", "pipeline/job", "pipeline/picture", "pipeline/quality", "pipeline/receipt", "correct", "correct/medium", "correct/optics"},
+	"cmd/bentray":            {"pipeline", "pipeline/demo", "pipeline/job", "pipeline/picture", "pipeline/quality", "pipeline/quality/page", "pipeline/receipt", "correct", "correct/medium", "correct/optics"},
 	"pipeline":               {"pipeline/job", "pipeline/receipt", "correct", "correct/medium", "geo", "io/cloud", "io/csvfile", "io/parquetfile", "io/atomicfile"},
 	"pipeline/demo":          {"pipeline", "pipeline/job", "pipeline/receipt", "correct/medium", "io/cloud", "io/parquetfile", "io/atomicfile"},
 	"pipeline/benchmark":     {"correct/medium"},
 	"pipeline/job":           {"correct/medium", "geo", "io/cloud"},
-	"pipeline/picture":       {"pipeline", "io/atomicfile"},
+	"pipeline/picture":       {"pipeline", "pipeline/quality", "io/atomicfile"},
 	"pipeline/quality":       {"pipeline", "pipeline/job", "pipeline/receipt", "correct", "geo", "io/atomicfile", "io/cloud", "io/csvfile", "io/parquetfile"},
+	"pipeline/quality/page":  {"pipeline/job", "pipeline/picture", "pipeline/quality", "pipeline/receipt", "io/atomicfile"},
 	"pipeline/receipt":       {"io/atomicfile"},
 	"correct":                {"correct/optics"},
 	"correct/medium":         {},

@@ -74,8 +74,10 @@ type mark struct {
 	say   string
 }
 
-// keyHeight is that of the line of marks above a panel.
-const keyHeight = 8 * vg.Millimeter
+const (
+	keyHeight = 8 * vg.Millimeter // of the line of marks above a panel
+	keyRoom   = 1.12              // of a word in it, for readers whose font is wider
+)
 
 // drawKey writes a headline and the marks in one line at the top of a canvas, and
 // returns what is left of it.
@@ -83,12 +85,12 @@ func drawKey(c draw.Canvas, headline string, marks []mark) draw.Canvas {
 	y, x := c.Max.Y-keyHeight/2, c.Min.X
 	style := textStyle()
 	c.FillText(style, vg.Point{X: x, Y: y}, headline)
-	x += style.Width(headline) + 8*vg.Millimeter
+	x += keyRoom*style.Width(headline) + 7*vg.Millimeter
 	for _, m := range marks {
 		c.DrawGlyph(m.glyph, vg.Point{X: x, Y: y})
 		x += 3 * vg.Millimeter
 		c.FillText(style, vg.Point{X: x, Y: y}, m.say)
-		x += style.Width(m.say) + 7*vg.Millimeter
+		x += keyRoom*style.Width(m.say) + 6*vg.Millimeter
 	}
 	return draw.Crop(c, 0, 0, 0, -keyHeight)
 }
