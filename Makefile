@@ -7,7 +7,7 @@ GOFUMPT = mvdan.cc/gofumpt@v0.12.0
 ENGINE = bench-out/engine
 ENGINE_PACKAGE = @duckdb/node-api@1.5.6-r.1
 
-.PHONY: build test interop lint bench bench-kernels fuzz demo clean
+.PHONY: build test interop page-test lint bench bench-kernels fuzz demo clean
 
 build:
 	$(GO) build -o bin/bentray ./cmd/bentray
@@ -24,8 +24,12 @@ interop:
 		BENTRAY_ENGINE="$(CURDIR)/$(ENGINE)" $(GO) test -count 1 -tags interop ./io/parquetfile/interop; \
 	fi
 
+# The page of diff in a headless Chromium: what it loads, says, draws and prints; skipped where there is none.
+page-test:
+	$(GO) test -count 1 -v -run TestBrowser -tags browser ./pipeline/quality/page
+
 lint:
-	$(GO) vet -tags interop ./...
+	$(GO) vet -tags interop,browser ./...
 	$(GO) run $(STATICCHECK) ./...
 	@unformatted=$$($(GO) run $(GOFUMPT) -l cmd pipeline correct io geo); \
 	if [ -n "$$unformatted" ]; then echo "gofumpt would change:"; echo "$$unformatted"; exit 1; fi
