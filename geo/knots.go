@@ -6,8 +6,10 @@ import (
 )
 
 // bendSigmas is how many sigmas the lines of two neighbouring blocks may differ by
-// where they meet and count as one line with a bend.
-const bendSigmas = 3
+// where they meet and count as one line with a bend. More than the 3 of a test of chance:
+// straight reaches are off a curve that they follow where they end, and a step there would be
+// steeper than the river (TestProfileSlope).
+const bendSigmas = 5
 
 // knot is a level at a chainage (m), falling along the line, with its variance, where
 // that of a point is 1.

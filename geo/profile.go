@@ -40,7 +40,7 @@ func (p *Profile) Fit() ProfileFit { return p.fit }
 // others 1955). Its blocks are joined to straight reaches, level or falling, as long as
 // the Bayesian information criterion (Schwarz 1978) falls. Points are reweighted with
 // Tukey's biweight by the spread about the reaches, so a blunder has no weight. Reaches
-// whose lines meet within 3 sigma have a bend there; else, as at a weir, the
+// whose lines meet within 5 sigma have a bend there; else, as at a weir, the
 // level drops from the last point of the one to the first point of the next. The
 // data choose whether the level falls or rises along the line as drawn: that with the
 // lesser sum of absolute residuals, falling where both are equal.
@@ -173,6 +173,15 @@ func (p *Profile) FillSigma(sigma, x, y []float64) {
 		hint = f.segment
 		_, _, sigma[i] = p.level.at(s)
 	}
+}
+
+// Steepest returns the greatest slope along the line, 0 or above.
+func (p *Profile) Steepest() float64 {
+	steepest := 0.0
+	for k := 1; k < len(p.level.level); k++ {
+		steepest = max(steepest, math.Abs(p.level.level[k]-p.level.level[k-1])/(p.level.chainage[k]-p.level.chainage[k-1]))
+	}
+	return steepest
 }
 
 // at returns the nearest point of the line and its chainage; its segment is -1 where

@@ -15,17 +15,18 @@ const (
 )
 
 // findEarlierCrossings sets unmet for rays that meet the surface on their way from the
-// origin to the entry. That takes a surface steeper than the ray, and a wave breaks before
+// origin to the entry. That takes a surface steeper than the ray: a wave breaks before
 // it is as steep as 30 degrees (Stokes 1880), so rays within 45 degrees of the vertical
-// are not looked at. On the others a crest between two places that are looked at shows
+// are not looked at unless a profile has a step that is steeper than they are. On the others a crest between two places that are looked at shows
 // by the slopes there: where the tangents of the clear height meet below 0, the ray may
 // be in the crest. So none is missed that is convex between such places, and a ray
 // that just clears one may be unmet too.
 func (s *survey) findEarlierCrossings(p *part, w *workspace) {
+	m := &w.meet
+	m.steepRun = s.surface.steepRun()
 	if !p.hasFlat(w) {
 		return
 	}
-	m := &w.meet
 	clear(m.clear)
 	clear(m.gain)
 	for k, above := 0, firstCheckM; k < checks; k, above = k+1, above*checkRatio {
@@ -35,10 +36,18 @@ func (s *survey) findEarlierCrossings(p *part, w *workspace) {
 	}
 }
 
-// isFlat tells a ray that met the surface and is more than 45 degrees off the vertical.
+// isFlat tells a ray that met the surface and may have met it before.
 func (p *part) isFlat(w *workspace, i int) bool {
 	runX, runY := p.run(w, i)
-	return p.out[i] == correct.Corrected && !w.meet.unmet[i] && math.Hypot(runX, runY) > 1
+	return p.out[i] == correct.Corrected && !w.meet.unmet[i] && math.Hypot(runX, runY) > w.meet.steepRun
+}
+
+// steepRun is the run for each metre of rise that a ray cannot exceed without being flat.
+func (f *waterSurface) steepRun() float64 {
+	if f.profile == nil {
+		return 1
+	}
+	return min(1, 1/f.profile.Steepest())
 }
 
 // run is how far a ray goes in the plan for each metre that it rises.

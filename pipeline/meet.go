@@ -19,6 +19,7 @@ type meeting struct {
 	unmet              []bool         // rays that came to no rest, or not to rest at their first crossing
 	there              correct.Planes // surface at places that are asked about
 	clear, gain        []float64      // see findEarlierCrossings
+	steepRun           float64        // run for each metre of rise beyond which a ray may cross the surface twice
 
 	depth  []float64         // that casts are averaged to
 	before []correct.Outcome // as they were before any water

@@ -221,12 +221,14 @@ func (s *survey) readGauges(path string) error {
 	scale(r.Level, s.height)
 	scale(r.X, s.plan)
 	scale(r.Y, s.plan)
-	s.surface.curved = s.surface.curved || r.X != nil // the level differs between gauges
 	s.surface.source.gauges, s.surface.source.gaugeTimes = r, emptySpan()
 	s.surface.source.gaugeTimes.addFinite(r.UTC)
 	g := s.job.Surface.Gauge
-	s.surface.gauges, err = geo.NewGauges(r, g.Zero*s.height, g.MaxGap)
-	return err
+	if s.surface.gauges, err = geo.NewGauges(r, g.Zero*s.height, g.MaxGap); err != nil {
+		return err
+	}
+	s.surface.curved = s.surface.curved || s.surface.gauges.Len() > 1 // the level differs between gauges
+	return nil
 }
 
 func (s *survey) readSeparation(path string) error {
