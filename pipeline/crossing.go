@@ -42,7 +42,8 @@ func (p *part) isFlat(w *workspace, i int) bool {
 	return p.out[i] == correct.Corrected && !w.meet.unmet[i] && math.Hypot(runX, runY) > w.meet.steepRun
 }
 
-// steepRun is the run for each metre of rise that a ray cannot exceed without being flat.
+// steepRun is the run for each metre of rise beyond which a ray may be flatter than the
+// surface.
 func (f *waterSurface) steepRun() float64 {
 	if f.profile == nil {
 		return 1

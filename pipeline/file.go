@@ -144,7 +144,7 @@ func (w *rewriting) commit(whole receipt.Input) (*receipt.Receipt, error) {
 		Inputs:   append([]receipt.Input{whole}, w.auxiliary...),
 		Output:   receipt.File{Path: w.in.target, Bytes: w.output.bytes, SHA256: hex.EncodeToString(w.output.hash.Sum(nil))},
 		RowsRead: w.rows.Read, RowsWritten: w.rows.Written, RowsDiverted: w.rows.Diverted,
-		Outcomes: w.tally.counts(), Sensors: w.tally.bySensor(w.survey), Ranges: w.tally.ranges(w.survey), Cautions: append(w.tally.cautions(w.survey), cautionsOf(w.file, w.read)...),
+		Outcomes: w.tally.counts(), Sensors: w.tally.bySensor(w.survey), Ranges: w.tally.ranges(w.survey), Cautions: append(w.tally.cautions(w.survey), w.cautionsOf(w.file, w.read)...),
 	}
 	if w.rows.Written == 0 {
 		r.Cautions = append(r.Cautions, "the file holds no points")

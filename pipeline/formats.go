@@ -90,7 +90,7 @@ func localTimeCaution(c cloud.Column) string {
 
 // cautionsOf returns what the file itself and its columns give cause to say, once it
 // has begun.
-func cautionsOf(file cloud.Rewriter, r *reading) []string {
+func (s *survey) cautionsOf(file cloud.Rewriter, r *reading) []string {
 	var cautions []string
 	if f, ok := file.(*parquetfile.File); ok {
 		cautions = append(cautions, f.Cautions()...)
@@ -99,6 +99,9 @@ func cautionsOf(file cloud.Rewriter, r *reading) []string {
 		if c := file.Columns()[r.request.Numbers[r.time]]; isLocalTime(c) {
 			cautions = append(cautions, localTimeCaution(c))
 		}
+	}
+	if g := s.surface.grid; r.time < 0 && g != nil && g.Stats().Patches > g.Stats().Cells {
+		cautions = append(cautions, "the cloud has no times, so that surface points of all times, which show other waves in each pass, count together")
 	}
 	return cautions
 }

@@ -144,7 +144,7 @@ func (p *planner) head(in input, f *PlannedFile) error {
 	if err := file.Begin(r.request, l.Layout, nil); err != nil {
 		return err
 	}
-	for _, text := range cautionsOf(file, r) {
+	for _, text := range p.cautionsOf(file, r) {
 		if !slices.Contains(p.ofFiles, text) {
 			p.ofFiles = append(p.ofFiles, text)
 		}
