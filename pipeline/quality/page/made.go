@@ -65,6 +65,9 @@ func rays(j *job.Job) string {
 		if s.Rays.Cameras != "" {
 			text += ", cameras of " + s.Rays.Cameras
 		}
+		if s.Rays.Solve != "" {
+			text += ", solve = " + s.Rays.Solve
+		}
 		list = append(list, fmt.Sprintf("%s, light of %s nm", text, plain(j.Wavelength(s))))
 	}
 	return strings.Join(list, "; ")
@@ -121,7 +124,7 @@ func surface(j *job.Job) string {
 	case s.Plane != nil && s.Plane.Waterline != "":
 		list = append(list, "plane fitted to "+s.Plane.Waterline)
 	case s.Plane != nil:
-		list = append(list, "plane with given slopes")
+		list = append(list, plane(s.Plane, unit))
 	case s.Profile != nil:
 		list = append(list, "levels of "+s.Profile.Levels+" along the line of "+s.Profile.Centreline)
 	case s.Grid != nil && s.Grid.Points != "":
@@ -141,10 +144,18 @@ func surface(j *job.Job) string {
 	return strings.Join(list, "; ")
 }
 
+// plane is a given one; the checks of a job see to it that all of it is there.
+func plane(p *job.Plane, unit string) string {
+	if p.Level == nil || p.SlopeX == nil || p.SlopeY == nil {
+		return "plane"
+	}
+	return fmt.Sprintf("plane of the given level %s%s, slopes %s along x and %s along y", plain(*p.Level), unit, plain(*p.SlopeX), plain(*p.SlopeY))
+}
+
 // keys lists the settings below a key in alphabetical order, each with its path.
 func keys(path string, data json.RawMessage) (list []fact) {
 	var table map[string]json.RawMessage
-	if json.Unmarshal(data, &table) == nil {
+	if json.Unmarshal(data, &table) == nil && table != nil {
 		for _, name := range slices.Sorted(maps.Keys(table)) {
 			list = append(list, keys(strings.TrimPrefix(path+"."+name, "."), table[name])...)
 		}
@@ -152,7 +163,7 @@ func keys(path string, data json.RawMessage) (list []fact) {
 	}
 	var tables []map[string]json.RawMessage
 	var items []json.RawMessage
-	if json.Unmarshal(data, &tables) == nil && json.Unmarshal(data, &items) == nil {
+	if json.Unmarshal(data, &tables) == nil && len(tables) > 0 && json.Unmarshal(data, &items) == nil {
 		for i, item := range items {
 			list = append(list, keys(fmt.Sprintf("%s.%d", path, i+1), item)...)
 		}
