@@ -49,6 +49,7 @@ fuzz:
 	$(GO) test $(FUZZ) -fuzz FuzzPages ./io/parquetfile
 	$(GO) test $(FUZZ) -fuzz FuzzFile ./io/parquetfile
 	$(GO) test $(FUZZ) -fuzz FuzzParse ./pipeline/job
+	$(GO) test $(FUZZ) -fuzz FuzzFromSettings ./pipeline/job
 	$(GO) test $(FUZZ) -fuzz FuzzParsePolygons ./geo
 	$(GO) test $(FUZZ) -fuzz FuzzParseZones ./geo
 	$(GO) test $(FUZZ) -fuzz FuzzParseLine ./geo

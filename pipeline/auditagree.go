@@ -3,6 +3,7 @@ package pipeline
 import (
 	"math"
 	"strconv"
+	"strings"
 
 	"bentray/io/cloud"
 )
@@ -40,7 +41,7 @@ func (c *recheck) agree() {
 		case a.ByClass != nil:
 			c.columns = append(c.columns, c.ofClasses(a))
 		case a.Type == cloud.Label:
-			c.columns = append(c.columns, agreement{labels: bytesOf(a.Names)})
+			c.columns = append(c.columns, agreement{labels: c.labels(a.Names)})
 		case a.Type == cloud.Count:
 			c.columns = append(c.columns, agreement{isText: c.isText})
 		default:
@@ -49,8 +50,12 @@ func (c *recheck) agree() {
 	}
 }
 
-func bytesOf(texts []string) (list [][]byte) {
+// labels are texts as they are read again: a text file's without blanks around them.
+func (c *recheck) labels(texts []string) (list [][]byte) {
 	for _, text := range texts {
+		if c.isText {
+			text = strings.Trim(text, " \t")
+		}
 		list = append(list, []byte(text))
 	}
 	return list
@@ -70,6 +75,7 @@ func (c *recheck) byRow(decimals int) agreement {
 // it has them.
 func (c *recheck) ofClasses(a *cloud.Added) agreement {
 	g := agreement{isText: c.isText, decimals: -1, slack: processorSlack}
+	var texts []string
 	for _, v := range a.ByClass {
 		number := v.Number
 		if c.isText && a.Type != cloud.Label && v.Set {
@@ -78,8 +84,9 @@ func (c *recheck) ofClasses(a *cloud.Added) agreement {
 		if !v.Set {
 			number, v.Text = math.NaN(), ""
 		}
-		g.byClass, g.labels = append(g.byClass, number), append(g.labels, []byte(v.Text))
+		g.byClass, texts = append(g.byClass, number), append(texts, v.Text)
 	}
+	g.labels = c.labels(texts)
 	return g
 }
 

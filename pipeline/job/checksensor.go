@@ -17,7 +17,7 @@ func (j *Job) checkSensors(f *faults) {
 	case f.has(sensorTable) && len(j.Sensors) == 0:
 		f.add(sensorTable, "is empty, want at least one table")
 	}
-	for i := range j.Sensors {
+	for i := range j.Sensors[:min(len(j.Sensors), maxSensors+1)] { // the one too many is told of
 		if f.has(sensorTable) {
 			j.checkSensor(f, i)
 		}

@@ -34,7 +34,10 @@ func FromSettings(path, folder string, data []byte) (*Job, error) {
 		return nil, err
 	}
 	j.Input.Files, j.Output.Folder, j.Dir = nil, "", folder
-	return j, j.isOf(data)
+	if err := j.isOf(data); err != nil {
+		return nil, err
+	}
+	return j, nil
 }
 
 // settingValues are settings by key, as readDocument has them.
@@ -97,8 +100,12 @@ func (s settingValues) complete() {
 	}
 }
 
-// noteKeys notes every key and table below a path as one that is there.
+// noteKeys notes every key and table below a path as one that is there. It does not go
+// deeper than any job has keys.
 func noteKeys(lines map[string]int, path string, v any) {
+	if len(path) > longestPath {
+		return
+	}
 	if path != "" {
 		lines[path] = 1
 	}

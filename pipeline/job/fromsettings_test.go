@@ -79,6 +79,7 @@ func TestFromSettingsFaults(t *testing.T) {
 		{`,"decimals":4`, ``, "receipt: settings are "},
 		{`"model":"pulse"`, `"model":"pulses"`, `receipt: [rays] model is "pulses", want "vertical", "pulse" or "multiview"`},
 		{data, data + "{}", "receipt: settings are "},
+		{data, `{"sensor":[` + strings.Repeat("{},", 100_000) + `{}]}`, "receipt: [input] files is missing"}, // and ends
 	} {
 		changed := strings.Replace(data, c.from, c.to, 1)
 		if changed == data {
