@@ -70,6 +70,9 @@ func (c *Cameras) unknown(id string) error {
 	if k, found := c.similar[plainID(id)]; found && k != several {
 		return fmt.Errorf("camera %.60q is none of the %d known; did you mean %q?", id, len(c.ids), c.ids[k])
 	}
+	if strings.Contains(id, ",") {
+		return fmt.Errorf(`camera %.60q is none of the %d known; commas do not separate ids, want blanks or ";" between`, id, len(c.ids))
+	}
 	return fmt.Errorf(`camera %.60q is none of the %d known, want their ids, with blanks or ";" between`, id, len(c.ids))
 }
 

@@ -50,7 +50,7 @@ func TestAppendViewsUnknown(t *testing.T) {
 		{"7", `camera "7" is none of the 9 known; did you mean "east/7.tif"?`},
 		{"cam7", `camera "cam7" is none of the 9 known; did you mean "Cam007"?`},
 		{"p1", `camera "p1" is none of the 9 known` + end}, // two are like it
-		{"p.1,p-1", `camera "p.1,p-1" is none of the 9 known` + end},
+		{"p.1,p-1", `camera "p.1,p-1" is none of the 9 known; commas do not separate ids, want blanks or ";" between`},
 		{"0", `camera "0" is none of the 9 known` + end},
 		{"strip2.1043", `camera "strip2.1043" is none of the 9 known` + end},
 		{"q", `camera "q" is none of the 9 known` + end},

@@ -83,7 +83,7 @@ func (c *Cameras) visibility(r cameraRule) *Visibility {
 // It allocates where dst is too short, and where the point is the first in a box
 // of the tree.
 func (v *Visibility) AppendSeeing(dst []int32, x, y, z float64) []int32 {
-	if !(math.Abs(x) <= farthestPlace && math.Abs(y) <= farthestPlace && math.Abs(z) <= farthestPlace) {
+	if !isPlace(x, y, z) {
 		return dst
 	}
 	t := v.tree.Load()
@@ -92,4 +92,17 @@ func (v *Visibility) AppendSeeing(dst []int32, x, y, z float64) []int32 {
 		t = v.tree.Load()
 	}
 	return v.rule.appendSeeing(dst, t.cameras(v.rule, x, y, z), x, y, z)
+}
+
+// AppendSeeingOf is AppendSeeing for the cameras listed alone, in their order, each of
+// which it asks.
+func (v *Visibility) AppendSeeingOf(dst, cameras []int32, x, y, z float64) []int32 {
+	if !isPlace(x, y, z) {
+		return dst
+	}
+	return v.rule.appendSeeing(dst, cameras, x, y, z)
+}
+
+func isPlace(x, y, z float64) bool {
+	return math.Abs(x) <= farthestPlace && math.Abs(y) <= farthestPlace && math.Abs(z) <= farthestPlace
 }

@@ -51,12 +51,35 @@ func (t *tally) cautions(s *survey) []string {
 // adviceOn says what to look at for an outcome, or nothing.
 func (t *tally) adviceOn(o correct.Outcome, s *survey) string {
 	text := advice[o]
+	if times := s.cameraTimes(); !times.isEmpty() {
+		switch o {
+		case correct.Unsolved:
+			text += ", or were dry at the time of one of their cameras"
+		case correct.NoSurface:
+			text += fmt.Sprintf("; the cameras' times are from %s", spanText(times))
+			if s.surface.gauges != nil {
+				text += fmt.Sprintf(", the gauge's records from %s", spanText(s.surface.source.gaugeTimes))
+			}
+		}
+	}
 	if o == correct.NoWater && s.water.stations != nil && s.water.stations.HasTimes() {
 		records := rangeOf(s.water.records.UTC)
 		text += fmt.Sprintf("; the stations' records are from %s and hold max_gap (%g s) beyond, %s",
 			spanText(span{records.Low, records.High}), s.job.Water.MaxGap, t.timesText(s))
 	}
 	return text
+}
+
+// cameraTimes returns the span of the times (UTC seconds) of cameras whose rays take their
+// own surface by them.
+func (s *survey) cameraTimes() span {
+	times := emptySpan()
+	for _, sn := range s.sensors {
+		if sn.isMultiview() && s.hasOwnTimes(sn) {
+			times.addFinite(sn.cameras.UTC())
+		}
+	}
+	return times
 }
 
 // whyNoPosition says what leaves a point without ray origin.

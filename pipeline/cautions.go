@@ -6,6 +6,8 @@ import (
 	"slices"
 
 	"github.com/paulmach/orb"
+
+	"bentray/pipeline/job"
 )
 
 // Limits of what a plan takes for granted, in metres. Common practice, no source.
@@ -46,12 +48,29 @@ func (t *tally) geometryCautions(s *survey) []string {
 			say("the %s %s; are both in one projected system and unit?", places.what, text)
 		}
 	}
+	for _, sn := range s.sensors {
+		if sn.isMultiview() {
+			if text := s.farFrom(x, y, sn.cameras.centres.X, sn.cameras.centres.Y); text != "" {
+				say("the cameras %s; are both in one projected system and unit?", text)
+			}
+		}
+	}
+	if t.looksLikeWeek(s) {
+		say("gps_time is %.0f to %.0f: these look like seconds of a GPS week; set time = \"gps-week\" and week in [input]", t.times.low, t.times.high)
+	}
 	if s.surface.isConstant() {
 		cautions = append(cautions, s.levelCautions(*s.job.Surface.Level, math.Max(x.high-x.low, y.high-y.low)*s.plan, z)...)
 	} else if t.depth.low > levelRise && !t.depth.isEmpty() {
 		say("no corrected point lies within %g m of the water's surface: far for a shallow cloud; are surface and cloud in one vertical reference?", float64(levelRise))
 	}
 	return cautions
+}
+
+// looksLikeWeek tells whether times that should count from an epoch are all within a week
+// of it.
+func (t *tally) looksLikeWeek(s *survey) bool {
+	const week = 7 * 86400
+	return s.job.Input.Time != job.GPSWeek && !t.times.isEmpty() && t.times.low >= 0 && t.times.high <= week
 }
 
 // profileCautions looks at how the level points agree with their profile.

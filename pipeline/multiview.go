@@ -36,6 +36,8 @@ type rays struct {
 	moving, done []int32   // points whose entries still move, and those that have come to rest
 	few          fewRays
 	widest       float64 // squared tangent from the vertical of the chunk's straight rays
+	images       imageCheck
+	seeing       []int32
 
 	slopeX, slopeY []float64 // of the planes at all points of a part
 }
@@ -90,6 +92,9 @@ func (y *rays) appendViews(sn *sensor, w *workspace, c *cloud.Chunk, r *reading,
 	var err error
 	if y.camera, err = sn.appendViews(y.camera, w, c, r, i); err != nil && w.fault == nil {
 		w.fault = fmt.Errorf("views of the point at %.3f, %.3f: %w (sensor %q)", c.Numbers[0][i], c.Numbers[1][i], err, sn.Name)
+	}
+	if isFirst := w.rayCount[i] != w.rayCount[i]; isFirst && r.views >= 0 && i%imageCheckStep == 0 {
+		y.checkImages(sn, w, y.camera[before:], i)
 	}
 	w.rayCount[i] = float64(len(y.camera) - before)
 	at := &sn.cameras.centres

@@ -3,6 +3,7 @@ package pipeline
 import (
 	"math"
 	"slices"
+	"time"
 
 	"bentray/pipeline/job"
 )
@@ -14,8 +15,8 @@ type CameraInfo struct {
 	Rule      string     // who sees a point that names no cameras: image or angle
 	Solve     string
 	Residual  string
-	Medium    string // that the cameras are in: air or water
-	Timed     bool   // each has a time
+	Medium    string       // that the cameras are in: air or water
+	Times     [2]time.Time // first and last, UTC; zero where they have none
 }
 
 // ImageHeads sums up the points made from images among the first rows.
@@ -35,7 +36,9 @@ func (s *survey) planCameras(sn *sensor) *CameraInfo {
 	}
 	c := &CameraInfo{
 		Count: sn.cameras.Len(), Rule: sn.cameras.rule, Solve: sn.Rays.Solve, Residual: sn.residualName(), Medium: sn.Rays.CameraMedium,
-		Timed: sn.cameras.UTC() != nil,
+	}
+	if utc := sn.cameras.UTC(); utc != nil {
+		c.Times = [2]time.Time{utcTime(slices.Min(utc)), utcTime(slices.Max(utc))}
 	}
 	c.Low, c.High = sn.cameras.Bounds()
 	for _, b := range []*[3]float64{&c.Low, &c.High} {

@@ -57,6 +57,7 @@ const starterInput = `# Set unit here where lengths are not in "m" but in "ft" o
 const starterRest = `
 [output]
 folder = "corrected"
+# decimals = 4                 # of lengths in CSV
 
 [water]
 # temperature = 17.5           # degrees C, of the day
@@ -75,7 +76,7 @@ const starterPulse = `model = "pulse"                # airborne laser; for image
 
 const starterImages = `model = "multiview"            # the column views names the cameras that saw each point
 # cameras = "cameras.csv"      # camera,x,y,z and, where known, omega,phi,kappa
-# residual = "angle"           # what the cloud's software minimised: "image", "angle" or "equal"
+# residual = "image"           # what the cloud's software minimised, where that is known: "image", "angle" or "equal"
 `
 
 // writeMissing offers the roles that a job needs and no column plays by its name.

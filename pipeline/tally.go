@@ -94,6 +94,7 @@ func (t *tally) add(w *workspace, c *cloud.Chunk, r *reading, s *survey) {
 	}
 	if s.hasMultiview() {
 		t.images.widest = max(t.images.widest, w.rays.widest)
+		t.images.images.join(w.rays.images)
 		for i, k := range w.sensor {
 			if s.sensors[k].isMultiview() {
 				t.images.add(w, i, r.views >= 0)

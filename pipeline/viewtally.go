@@ -15,8 +15,9 @@ type viewTally struct {
 	widest       float64 // squared tangent from the vertical of a straight ray to a point
 	assumed      int64   // of the points, those whose cameras the cloud does not name
 	offside      int64   // of the points, those with a camera on their own side of the surface
-	lift         span    // true less raw z of corrected points, m
-	drift        span    // distance in plan of corrected points, m
+	images       imageCheck
+	lift         span // true less raw z of corrected points, m
+	drift        span // distance in plan of corrected points, m
 }
 
 func newViewTally() viewTally {
@@ -47,10 +48,30 @@ func (t *viewTally) add(w *workspace, i int, named bool) {
 func (t *viewTally) join(o *viewTally) {
 	t.points, t.rays = t.points+o.points, t.rays+o.rays
 	t.widest = max(t.widest, o.widest)
+	t.images.join(o.images)
 	t.assumed, t.offside = t.assumed+o.assumed, t.offside+o.offside
 	t.views.join(o.views)
 	t.lift.join(o.lift)
 	t.drift.join(o.drift)
+}
+
+// imageCheck counts views that the cloud names, and those of them by cameras whose image
+// does not show the raw point.
+type imageCheck struct{ rays, outside int64 }
+
+// imageCheckStep is how many points lie between two whose views are looked at.
+const imageCheckStep = 16
+
+func (c *imageCheck) join(o imageCheck) { c.rays, c.outside = c.rays+o.rays, c.outside+o.outside }
+
+// checkImages looks whether the images of a point's cameras show it, where images are
+// known.
+func (y *rays) checkImages(sn *sensor, w *workspace, cameras []int32, i int) {
+	if !sn.cameras.HasImages() {
+		return
+	}
+	y.seeing = sn.cameras.visibility.AppendSeeingOf(y.seeing[:0], cameras, w.raw.X[i], w.raw.Y[i], w.raw.Z[i])
+	y.images.join(imageCheck{int64(len(cameras)), int64(len(cameras) - len(y.seeing))})
 }
 
 // cautions says what caps the accuracy of points made from images.
@@ -63,6 +84,9 @@ func (t *viewTally) cautions(s *survey) (cautions []string) {
 	}
 	if n := t.offside; n > 0 {
 		say("%d of %d points were seen by a camera that is on their own side of the surface: are cameras, cloud and level in one system and unit?", n, t.points)
+	}
+	if c := t.images; c.outside*20 > c.rays {
+		say("of %d views that were looked at, %d are of cameras whose images do not show the point: are angles in degrees, and rotations those of object = centre + R camera, R = Rx(omega) Ry(phi) Rz(kappa)?", c.rays, c.outside)
 	}
 	if n := t.assumed; n > 0 {
 		say("%d of %d points name no cameras; those that may have seen them were taken, by %s. Cameras that did not see a point cap the accuracy (60 m up, 5 m deep, 6 of 12 cameras wrong: 11 to 158 mm); a column views settles it", n, t.points, s.viewRules())

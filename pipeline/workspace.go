@@ -58,7 +58,7 @@ func (w *workspace) prepare(c *cloud.Chunk, l *layout, s *survey) {
 	n := c.Rows
 	w.out = cloud.Grow(w.out, n)
 	clear(w.out)
-	w.fault, w.rays.widest = nil, 0
+	w.fault, w.rays.widest, w.rays.images = nil, 0, imageCheck{}
 	w.sensor, w.zone = cloud.Grow(w.sensor, n), cloud.Grow(w.zone, n)
 	growAll(n, &w.own, &w.utc, &w.raw.X, &w.raw.Y, &w.raw.Z, &w.planes.Level, &w.column)
 	if !s.isConstantWater() {

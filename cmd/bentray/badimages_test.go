@@ -53,7 +53,7 @@ var wrongImageCalls = []badInput{
 var badImages = []struct{ name, cloud, want string }{
 	{"unknown camera", goodImages + "5,6,-9,a B b\n5,6,-9,a c\n", `raw/b.csv: line 3: views has an unknown id: camera "B" is none of the 2 known; did you mean "b"?`},
 	{"file names for ids", goodImages + "5,6,-9,a;img/B.JPG\n", `raw/b.csv: line 3: views has an unknown id: camera "img/B.JPG" is none of the 2 known; did you mean "b"?`},
-	{"commas between", "x,y,z,views\n5,6,-9,\"a,b\"\n", `raw/b.csv: line 2: views has an unknown id: camera "a,b" is none of the 2 known, want their ids, with blanks or ";" between`},
+	{"commas between", "x,y,z,views\n5,6,-9,\"a,b\"\n", `raw/b.csv: line 2: views has an unknown id: camera "a,b" is none of the 2 known; commas do not separate ids, want blanks or ";" between`},
 	{"two columns of views", "x,y,z,Views,VIEWS\n5,6,-9,a b,\n", `raw/b.csv: columns "Views" and "VIEWS" both answer to "views", want one; name it in [input.columns]`},
 	{"ray_count there", "x,y,z,views,ray_count\n5,6,-9,a b,2\n", `raw/b.csv: the file already has a column "ray_count", which bentray would add; rename it there, or take the raw cloud if this file is an output`},
 }

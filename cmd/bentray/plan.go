@@ -139,8 +139,8 @@ func printCameras(s *streams, c *pipeline.CameraInfo, j *job.Job) {
 		return
 	}
 	times := "without times"
-	if c.Timed {
-		times = "each at its time"
+	if !c.Times[0].IsZero() {
+		times = fmt.Sprintf("from %s to %s", c.Times[0].Format(time.RFC3339), c.Times[1].Format(time.RFC3339))
 	}
 	fmt.Fprintf(s.out, "cameras  %s in %s, %s; solve %s, residual %s\n", plural(c.Count, "camera"), c.Medium, times, c.Solve, c.Residual)
 	printBounds(s, c.Low, c.High, j)
