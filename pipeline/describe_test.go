@@ -285,6 +285,28 @@ file = "geoid.csv"
 	}
 }
 
+// A gauge alone, and two zones of which one has a level: the map shows both with a tenth
+// of their extent around, and the range of levels is that of gauge and zone together.
+func TestDescribeZonesOverAGauge(t *testing.T) {
+	r := described(t, strings.Replace(metres, "[water]", "[water]\nzones = \"zones.geojson\"", 1)+"[surface.gauge]\nfile = \"gauge.csv\"\n", files{
+		"zones.geojson": `{"type":"FeatureCollection","features":[
+			{"type":"Feature","properties":{"name":"basin","level":1.5},"geometry":{"type":"Polygon","coordinates":[[[0,0],[40,0],[40,40],[0,40],[0,0]]]}},
+			{"type":"Feature","properties":{"name":"bay","temperature":8,"salinity":0},"geometry":{"type":"Polygon","coordinates":[[[360,0],[400,0],[400,80],[360,80],[360,0]]]}}]}`,
+		"gauge.csv": "time,level,x,y\n1000,0.25,90000,0\n1600,0.25,90000,0\n", // one gauge holds everywhere
+	})
+	m := r.Map
+	if m == nil {
+		t.Fatal("there is no map, want one around the zones")
+	}
+	closeTo(t, "western edge", m.X[0], -40, 480.0/200)
+	closeTo(t, "eastern edge", m.X[len(m.X)-1], 440, 480.0/200)
+	closeTo(t, "southern edge", m.Y[0], -40, 480.0/200)
+	closeTo(t, "northern edge", m.Y[len(m.Y)-1], 120, 480.0/200)
+	if m.Level != (Range{0.25, 1.75}) {
+		t.Errorf("levels are %v, want 0.25 of the gauge to 1.75 with the zone", m.Level)
+	}
+}
+
 // A grid over points of a plane with an offset: counts and the level by hand.
 func TestDescribeGrid(t *testing.T) {
 	text := "x,y,z\n"

@@ -5,6 +5,7 @@ import (
 	"slices"
 
 	"bentray/correct"
+	"bentray/geo"
 )
 
 // mapCells is the number of cells along the longer side of a map.
@@ -50,9 +51,13 @@ func (s *survey) mapLevels(clouds span) *LevelMap {
 	return m
 }
 
+// zonesMargin is how much wider than the zones a map is that they alone place, as a
+// share of their longer side: to show what holds around them.
+const zonesMargin = 0.1
+
 // mapArea is where the points of the base lie; where it has none, where there is a
-// separation, else the extent, else several gauges. Zones with levels of their own
-// belong to it in any case.
+// separation, else the extent, else around the zones and several gauges. Zones with
+// levels of their own belong to it in any case.
 func (s *survey) mapArea() area {
 	source := &s.surface.source
 	a := source.area
@@ -63,10 +68,30 @@ func (s *survey) mapArea() area {
 		a = s.areaOf(s.extentBound.Min, s.extentBound.Max)
 	}
 	if !a.used {
-		a.add(source.gauges.X, source.gauges.Y)
+		return s.placesArea()
 	}
+	a.join(s.zonesArea(func(z *geo.Zone) bool { return !math.IsNaN(z.Level) }))
+	return a
+}
+
+// placesArea is around all zones, and holds the gauges where there are several.
+func (s *survey) placesArea() area {
+	a := s.zonesArea(func(*geo.Zone) bool { return true })
+	if a.used {
+		a.widen(zonesMargin * max(a.x.high-a.x.low, a.y.high-a.y.low))
+	}
+	if g := s.surface.gauges; g != nil && g.Len() > 1 {
+		var places area
+		places.add(s.surface.source.gauges.X, s.surface.source.gauges.Y)
+		a.join(places)
+	}
+	return a
+}
+
+// zonesArea holds the zones of a kind.
+func (s *survey) zonesArea(isOfKind func(*geo.Zone) bool) (a area) {
 	for i := range s.zones.list {
-		if z := &s.zones.list[i]; !math.IsNaN(z.Level) {
+		if z := &s.zones.list[i]; isOfKind(z) {
 			for _, polygon := range z.Polygons {
 				a.join(s.areaOf(polygon.Bound().Min, polygon.Bound().Max))
 			}

@@ -1,7 +1,9 @@
 package picture
 
 import (
+	"cmp"
 	"math"
+	"slices"
 
 	"gonum.org/v1/plot"
 	"gonum.org/v1/plot/plotter"
@@ -36,7 +38,7 @@ func mapPanel(r *pipeline.SurfaceReport) panel {
 	heat := plotter.NewHeatMap(raster{r.Map}, scale.Palette(numberColours))
 	heat.Min, heat.Max, heat.Rasterized = scale.Min(), scale.Max(), true
 	p.Add(heat)
-	addOutlines(p, r.Map.Outlines)
+	p.Add(outlines(r.Map.Outlines))
 	marks := addFitted(p, r)
 	p.X.Min, p.X.Max, p.Y.Min, p.Y.Max = heat.DataRange()
 
@@ -80,25 +82,44 @@ func widen(a *plot.Axis, factor float64) {
 	a.Min, a.Max = middle-half, middle+half
 }
 
-// addOutlines adds the zones' rings, and their names where there are few.
-func addOutlines(p *plot.Plot, outlines []pipeline.Outline) {
+// outlines are the zones' rings, with their names where there are few in the frame.
+type outlines []pipeline.Outline
+
+// Plot draws the rings, and above each zone that reaches into the frame its name.
+func (o outlines) Plot(c draw.Canvas, p *plot.Plot) {
+	var tags []tag
 	named := map[string]bool{}
-	for _, o := range outlines {
-		var ring plotter.XYs
-		top := plotter.XY{Y: math.Inf(-1)}
-		for _, at := range o.XY {
-			ring = append(ring, plotter.XY{X: at[0], Y: at[1]})
-			if at[1] > top.Y {
-				top = ring[len(ring)-1]
-			}
+	for i := range o {
+		ring := ringOf(&o[i])
+		for _, style := range []draw.LineStyle{{Color: white, Width: 2.4}, {Color: black, Width: 1}} {
+			(&plotter.Line{XYs: ring, LineStyle: style}).Plot(c, p)
 		}
-		line(p, ring, draw.LineStyle{Color: white, Width: 2.4})
-		line(p, ring, draw.LineStyle{Color: black, Width: 1})
-		if !named[o.Name] && len(named) < mostTags {
-			named[o.Name] = true
-			p.Add(tag{top, o.Name})
+		if name := o[i].Name; !named[name] && len(named) < mostTags && isInFrame(p, ring) {
+			named[name] = true
+			tags = append(tags, tag{topOf(ring), name})
 		}
 	}
+	for _, t := range tags {
+		t.Plot(c, p)
+	}
+}
+
+func ringOf(o *pipeline.Outline) (ring plotter.XYs) {
+	for _, at := range o.XY {
+		ring = append(ring, plotter.XY{X: at[0], Y: at[1]})
+	}
+	return ring
+}
+
+// topOf returns the northernmost vertex of a ring.
+func topOf(ring plotter.XYs) plotter.XY {
+	return slices.MaxFunc(ring, func(a, b plotter.XY) int { return cmp.Compare(a.Y, b.Y) })
+}
+
+// isInFrame tells whether the rectangle around a ring meets the frame.
+func isInFrame(p *plot.Plot, ring plotter.XYs) bool {
+	lowX, highX, lowY, highY := plotter.XYRange(ring)
+	return lowX < p.X.Max && highX > p.X.Min && lowY < p.Y.Max && highY > p.Y.Min
 }
 
 // addFitted adds the points that the surface was fitted to, and returns their marks.

@@ -10,7 +10,7 @@ import (
 )
 
 var (
-	usedGlyph  = draw.GlyphStyle{Color: used, Radius: 1.3, Shape: haloed{draw.CircleGlyph{}}}
+	usedGlyph  = draw.GlyphStyle{Color: used, Radius: 1.7, Shape: haloed{draw.CircleGlyph{}}}
 	asideGlyph = draw.GlyphStyle{Color: aside, Radius: 2.4, Shape: haloed{thickCross{}}}
 	aboveGlyph = draw.GlyphStyle{Color: aside, Radius: 3, Shape: wedge(1)}
 	belowGlyph = draw.GlyphStyle{Color: aside, Radius: 3, Shape: wedge(-1)}
@@ -21,10 +21,8 @@ var (
 type haloed struct{ draw.GlyphDrawer }
 
 func (h haloed) DrawGlyph(c *draw.Canvas, style draw.GlyphStyle, at vg.Point) {
-	behind := style
-	behind.Color, behind.Radius = white, style.Radius+0.8
-	h.GlyphDrawer.DrawGlyph(c, behind, at)
-	h.GlyphDrawer.DrawGlyph(c, style, at)
+	c.DrawGlyph(draw.GlyphStyle{Color: white, Radius: style.Radius + 0.8, Shape: h.GlyphDrawer}, at)
+	c.DrawGlyph(draw.GlyphStyle{Color: style.Color, Radius: style.Radius, Shape: h.GlyphDrawer}, at)
 }
 
 // thickCross is an x whose strokes are as thick as half its radius.

@@ -117,6 +117,43 @@ func inked(m image.Image) float64 {
 	return float64(dark) / float64(b.Dx()*b.Dy())
 }
 
+// A used point on the darkest colour of a map has a white rim around its own colour.
+func TestPointsStandOutFromDarkWater(t *testing.T) {
+	canvas := vgimg.NewWith(vgimg.UseWH(20, 20), vgimg.UseDPI(300))
+	c := draw.New(canvas)
+	c.FillPolygon(levelColours[0], []vg.Point{{}, {X: 20}, {X: 20, Y: 20}, {Y: 20}})
+	c.DrawGlyph(usedGlyph, vg.Point{X: 10, Y: 10})
+	picture, across := canvas.Image(), map[color.RGBA]int{}
+	middle := picture.Bounds().Dy() / 2
+	for x := range picture.Bounds().Dx() {
+		across[color.RGBAModel.Convert(picture.At(x, middle)).(color.RGBA)]++
+	}
+	if rim, own := across[color.RGBA{R: 255, G: 255, B: 255, A: 255}], across[used]; rim < 4 || own < 10 {
+		t.Errorf("across the point %d pixels are white and %d of its colour, want 4 and 10 at least", rim, own)
+	}
+}
+
+// A zone outside the frame leaves no trace; one that reaches into it does.
+func TestOnlyZonesInTheFrameHaveNames(t *testing.T) {
+	draw := func(zones ...pipeline.Outline) []byte {
+		m := slopeMap(40, 30)
+		m.Outlines = zones
+		var b bytes.Buffer
+		if err := Surface(&b, &pipeline.SurfaceReport{Map: m}); err != nil {
+			t.Fatal(err)
+		}
+		return b.Bytes()
+	}
+	far := pipeline.Outline{Name: "far", XY: [][2]float64{{412_900, 6_213_010}, {412_930, 6_213_010}, {412_930, 6_213_040}, {412_900, 6_213_010}}}
+	part := pipeline.Outline{Name: "part", XY: [][2]float64{{412_060, 6_213_010}, {412_930, 6_213_010}, {412_930, 6_213_040}, {412_060, 6_213_010}}}
+	if !bytes.Equal(draw(), draw(far)) {
+		t.Error("a zone outside the frame changes the picture, want no outline and no name of it")
+	}
+	if bytes.Equal(draw(), draw(part)) {
+		t.Error("a zone that reaches into the frame does not change the picture, want its outline and name")
+	}
+}
+
 func TestNothingToDraw(t *testing.T) {
 	level := 0.42
 	path := filepath.Join(t.TempDir(), "surface.png")
