@@ -27,6 +27,8 @@ func annotation(e *parquet.SchemaElement) string {
 	switch {
 	case l == nil && e.ConvertedType == nil:
 		return ""
+	case l == nil && e.GetConvertedType() == parquet.ConvertedType_DECIMAL:
+		return decimalName(e.GetPrecision(), e.GetScale())
 	case l == nil:
 		return e.ConvertedType.String()
 	case l.STRING != nil:
@@ -50,7 +52,7 @@ func otherAnnotation(l *parquet.LogicalType) string {
 	case l.ENUM != nil:
 		return "ENUM"
 	case l.DECIMAL != nil:
-		return "DECIMAL"
+		return decimalName(l.DECIMAL.Precision, l.DECIMAL.Scale)
 	case l.DATE != nil:
 		return "DATE"
 	case l.UNKNOWN != nil:
@@ -73,6 +75,10 @@ func timestampName(t *parquet.TimestampType) string {
 	}
 	return name
 }
+
+// decimalName tells the digits in all and those behind the point, which are part of what
+// the stored integers are worth.
+func decimalName(precision, scale int32) string { return fmt.Sprintf("DECIMAL(%d,%d)", precision, scale) }
 
 func integerName(t *parquet.IntType) string {
 	if t.IsSigned {

@@ -85,7 +85,12 @@ func TestNotReadable(t *testing.T) {
 		text   bool
 		want   string
 	}{
-		{"decimal", built{typ: parquet.Type_INT32, mark: decimal, values: []any{int32(1)}}, false, `column "v" is INT32 DECIMAL, want a flat column of DOUBLE`},
+		{"decimal", built{typ: parquet.Type_INT32, mark: decimal, values: []any{int32(1)}}, false, `column "v" is INT32 DECIMAL(9,2), want a flat column of DOUBLE`},
+		{"decimal, converted", built{typ: parquet.Type_INT32, mark: func(e *parquet.SchemaElement) {
+			converted(parquet.ConvertedType_DECIMAL)(e)
+			precision, scale := int32(9), int32(3)
+			e.Precision, e.Scale = &precision, &scale
+		}, values: []any{int32(1)}}, false, `column "v" is INT32 DECIMAL(9,3), want a flat column of DOUBLE`},
 		{"date", built{typ: parquet.Type_INT32, mark: converted(parquet.ConvertedType_DATE), values: []any{int32(1)}}, false, `column "v" is INT32 DATE, want a flat`},
 		{"96 bits", built{typ: parquet.Type_INT96, values: []any{nil}}, false, `column "v" is INT96, want a flat`},
 		{"text as number", built{typ: parquet.Type_BYTE_ARRAY, values: []any{"1"}}, false, `column "v" is BYTE_ARRAY, want a number (DOUBLE`},
