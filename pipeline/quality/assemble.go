@@ -116,14 +116,14 @@ func (r *Report) note(all *figures) {
 		say("there is no receipt beside the corrected cloud: its lengths are taken for metres")
 	}
 	if all.all.count == 0 {
-		say("no point was corrected: there are no figures of a shift")
+		say("no point was corrected, or none has coordinates: there are no figures of a shift")
 		return
 	}
 	if all.noLevel {
 		say("there is no column water_level, the output is lean: the level is taken for depth plus height, and depths are not checked by it")
 	}
 	if all.noDepth > 0 {
-		say("%d corrected points have no depth, since their model has no water surface: they are in no band of depth", all.noDepth)
+		say("%d corrected points have no depth: they are in no band of depth", all.noDepth)
 	}
 	if len(r.ByIncidence) == 0 {
 		say("no incidence is known: the output is lean, or its model has none")

@@ -120,6 +120,30 @@ var damages = []damage{
 		"water_level minus depth", nil,
 	},
 	{
+		"a corrected height blank", func(s sheet) sheet { s.set(55, "z", ""); return s },
+		map[string]int64{KindMoved: 1},
+		Finding{Kind: KindMoved, Row: 55, Column: "z", Got: "NaN"},
+		"want a number, since the point is corrected", nil,
+	},
+	{
+		"a corrected easting blank", func(s sheet) sheet { s.set(55, "x", ""); return s },
+		map[string]int64{KindMoved: 1},
+		Finding{Kind: KindMoved, Row: 55, Column: "x", Got: "NaN"},
+		"want a number, since the point is corrected", nil,
+	},
+	{
+		"a depth blank", func(s sheet) sheet { s.set(55, "depth", ""); s.set(55, "z", "-3"); return s },
+		map[string]int64{KindMoved: 1},
+		Finding{Kind: KindMoved, Row: 55, Column: "depth", Got: "NaN"},
+		"want a number, since the point is corrected", nil,
+	},
+	{
+		"a level blank", func(s sheet) sheet { s.set(55, "water_level", ""); return s },
+		map[string]int64{KindMoved: 1},
+		Finding{Kind: KindMoved, Row: 55, Column: "water_level", Got: "NaN"},
+		"want a number, since the point is corrected", nil,
+	},
+	{
 		"a dry point moved", func(s sheet) sheet { s.set(60, "x", "500000.125"); return s },
 		map[string]int64{KindMoved: 1},
 		Finding{Kind: KindMoved, Row: 60, Column: "x", Got: "500000.125"},

@@ -41,7 +41,7 @@ type gatherer struct {
 	*figures
 	read      *reading
 	from      *reading // of the other file where that is a corrected cloud too, else nil
-	coords    [3]string
+	columns   []cloud.Column
 	f         *findings
 	file      uint64 // number of the file
 	row       int64  // rows before the next, of the corrected file
@@ -89,8 +89,8 @@ func (g *gatherer) count(b *cloud.Chunk, i int) (corrected bool) {
 	g.counts = counted(g.counts, g.known.of(outcome))
 	corrected = string(outcome) == string(correctedName)
 	g.row++
-	if axis, want := g.read.checkAgreement(b, i, corrected, g.tolerance); axis >= 0 {
-		g.f.moved(g.row, g.coords[axis], b.Numbers[g.read.xyz[axis]][i], want, corrected)
+	if k, want := g.read.checkAgreement(b, i, corrected, g.tolerance); k >= 0 {
+		g.f.moved(g.row, g.columns[g.read.request.Numbers[k]].Name, b.Numbers[k][i], want, corrected)
 	}
 	g.offer(b, i, corrected)
 	return corrected

@@ -96,10 +96,7 @@ func (d *fileDiff) begin() (*gatherer, error) {
 	if err != nil {
 		return nil, inFile(d.pair.corrected, err)
 	}
-	g := &gatherer{figures: d.figures, read: read, f: d.findings, file: d.number, known: newNames(), knownRaw: newNames(), tolerance: d.tolerance()}
-	for k, i := range d.to.xyz {
-		g.coords[k] = d.b.Columns()[i].Name
-	}
+	g := &gatherer{figures: d.figures, read: read, columns: d.b.Columns(), f: d.findings, file: d.number, known: newNames(), knownRaw: newNames(), tolerance: d.tolerance()}
 	d.figures.noLevel = read.level < 0
 	if d.figures.overlap != nil {
 		d.figures.overlap.column = read.lineName

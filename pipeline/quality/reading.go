@@ -130,38 +130,50 @@ func (r *reading) levelOf(c *cloud.Chunk, i int) float64 {
 }
 
 // checkAgreement looks at a row's coordinates beside its own columns: a point that was
-// not corrected repeats its raw coordinates, and depth is level minus height.
-func (r *reading) checkAgreement(c *cloud.Chunk, i int, corrected bool, tolerance float64) (axis int, want float64) {
+// not corrected repeats its raw coordinates; one that was has a depth, which is level
+// minus height. It returns the number that does not agree, -1 where all do.
+func (r *reading) checkAgreement(c *cloud.Chunk, i int, corrected bool, tolerance float64) (number int, want float64) {
+	n := c.Numbers
 	if !corrected {
 		for k := range r.xyz {
-			got, raw := c.Numbers[r.xyz[k]][i], c.Numbers[r.raw[k]][i]
+			got, raw := n[r.xyz[k]][i], n[r.raw[k]][i]
 			if got != raw && (got == got || raw == raw) {
-				return k, raw
+				return r.xyz[k], raw
 			}
 		}
 		return -1, 0
 	}
+	for _, k := range [...]int{r.xyz[0], r.xyz[1], r.xyz[2], r.depth, r.level} {
+		if k >= 0 && n[k][i]-n[k][i] != 0 {
+			return k, math.NaN()
+		}
+	}
 	if r.level < 0 {
 		return -1, 0
 	}
-	want = c.Numbers[r.level][i] - c.Numbers[r.depth][i]
-	if math.Abs(c.Numbers[r.xyz[2]][i]-want) > tolerance {
-		return 2, want
+	want = n[r.level][i] - n[r.depth][i]
+	if !(math.Abs(n[r.xyz[2]][i]-want) <= tolerance) {
+		return r.xyz[2], want
 	}
 	return -1, 0
 }
 
-// moved notes a row whose coordinates do not agree with its own columns.
+// moved notes a row whose coordinates do not agree with its own columns; want is NaN
+// where a corrected point lacks a number.
 func (f *findings) moved(row int64, name string, got, want float64, corrected bool) {
 	d := Finding{Kind: KindMoved}
 	if !f.isFull() {
-		why := "the raw value, since the point is not corrected"
-		if corrected {
-			why = "water_level minus depth"
-		}
 		d.Row, d.Column = row, name
 		d.Got, d.Want = strconv.FormatFloat(got, 'f', -1, 64), strconv.FormatFloat(want, 'f', -1, 64)
-		d.Text = fmt.Sprintf("row %d: %s is %s, want %.4f, %s", row, name, d.Got, want, why)
+		wanted := fmt.Sprintf("%.4f, the raw value, since the point is not corrected", want)
+		switch {
+		case corrected && want != want:
+			d.Want = "a number"
+			wanted = "a number, since the point is corrected"
+		case corrected:
+			wanted = fmt.Sprintf("%.4f, water_level minus depth", want)
+		}
+		d.Text = fmt.Sprintf("row %d: %s is %s, want %s", row, name, d.Got, wanted)
 	}
 	f.add(d)
 }
