@@ -48,5 +48,14 @@ func (a *block) variance(chainage float64) float64 {
 	return v
 }
 
+// parameters returns how many numbers its points determine: level and slope, or the
+// level alone where all are at one chainage.
+func (a *block) parameters() int {
+	if a.ss > 0 {
+		return 2
+	}
+	return 1
+}
+
 // misfit returns the weighted sum of squared residuals, m^2.
 func (a *block) misfit() float64 { return max(a.zz-a.slope()*a.sz, 0) }

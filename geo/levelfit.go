@@ -89,3 +89,13 @@ func (f *levelFit) misfit() float64 {
 	}
 	return sum
 }
+
+// redundancy returns how many points with weight there are beyond those that determine
+// the lines of the blocks.
+func (f *levelFit) redundancy() int {
+	n := 0
+	for i := range f.blocks {
+		n += f.blocks[i].count - f.blocks[i].parameters()
+	}
+	return n
+}

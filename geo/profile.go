@@ -115,11 +115,15 @@ func (p *Profile) regress(points []levelPoint) {
 		best = up
 	}
 	knots := knotsOf(best.blocks, best.sigma)
-	p.level = newLevelLine(knots, best.sign, best.sigma)
+	p.fit.Sigma, p.fit.Redundancy = best.sigma, best.redundancy()
+	if p.fit.Redundancy == 0 {
+		p.fit.Sigma = math.NaN()
+	}
+	p.level = newLevelLine(knots, best.sign, p.fit.Sigma)
 	p.fit.First, p.fit.Last = knots[0].chainage, knots[len(knots)-1].chainage
 	p.fit.Falling, p.fit.Knots = best == down, len(knots)
-	p.fit.Sigma = best.sigma
 	p.judge(best)
+	p.findDrops(best)
 }
 
 // Fill fills a chunk with the surface: level (m) and slopes at the positions x, y (m),
@@ -157,8 +161,9 @@ func (p *Profile) Fill(level, slopeX, slopeY, x, y []float64) {
 }
 
 // FillSigma fills a chunk with the 1-sigma (m) of the level that Fill gives: that of
-// the straight reaches' lines at the knots, linear between them, 0 where each point
-// has a knot of its own. Lengths, aliasing and NaN are those of Fill.
+// the straight reaches' lines at the knots, linear between them. It tells nothing of
+// what the level does between two points. Lengths, aliasing and NaN are those of Fill;
+// NaN, too, where the points leave no redundancy.
 func (p *Profile) FillSigma(sigma, x, y []float64) {
 	if len(x) != len(sigma) || len(y) != len(sigma) {
 		panic(errLengths)

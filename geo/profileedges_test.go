@@ -146,7 +146,7 @@ func TestProfileAnyPoints(t *testing.T) {
 				first, last = min(first, f.Chainage[i]), max(last, f.Chainage[i])
 			}
 		}
-		if f.First != first || f.Last != last || !isFinite(f.Sigma, f.Spread) || f.SetAside > len(s)-1 {
+		if f.First != first || f.Last != last || !isFinite(f.Spread) || isFinite(f.Sigma) != (f.Redundancy > 0) || f.SetAside > len(s)-1 {
 			t.Fatalf("levels %v at %v: fit %+v", z, s, f)
 		}
 		begin, _, _ := p.ask(0, 0)

@@ -6,7 +6,8 @@ import "math"
 type ProfileFit struct {
 	Chainage    []float64 // of each point as given, from the line's first vertex, m; NaN beyond reach
 	Residuals   []float64 // z minus the profile, m; NaN beyond reach
-	Sigma       float64   // 1-sigma of one point about its straight reach, m
+	Sigma       float64   // 1-sigma of one point about its straight reach, m; NaN without redundancy
+	Redundancy  int       // points with weight beyond those that levels and slopes of the reaches take
 	Spread      float64   // rms of the residuals of points with weight, m
 	Scatter     float64   // 1-sigma of one point against the next, m; NaN with one point that has weight
 	Beyond      int       // points beyond reach, not used
@@ -14,6 +15,9 @@ type ProfileFit struct {
 	IsAside     []bool    // which these are; false beyond reach
 	Knots       int       // levels between which the profile interpolates
 	First, Last float64   // chainage of the first and last point with weight, m
+	Gap         Drop      // the longest way between two points with weight
+	Steps       []Drop    // where the level falls at once, as at a weir: by 0.1 m and 5 Sigma more than beside
+	Unplaced    []Drop    // gaps of more than 10 m where it falls by so much: where in them is not known
 	Falling     bool      // the level falls along the line as given, or is constant
 }
 
