@@ -114,3 +114,26 @@ func TestProfileDropsOfSmoothRivers(t *testing.T) {
 		}
 	}
 }
+
+// TestProfileFewLevels: of 2 or 3 levels a blunder of 0.5 m is never set aside, of 4 to 7
+// not reliably, of 8 mostly.
+func TestProfileFewLevels(t *testing.T) {
+	rng := newRand(t, 124)
+	const surveys = 300
+	for n, limits := range map[int][2]float64{2: {0, 0}, 3: {0, 0}, 4: {0.05, 0.6}, 7: {0.5, 0.85}, 8: {0.8, 1}} {
+		aside := 0
+		for range surveys {
+			var s, z []float64
+			for i := range n {
+				s = append(s, 50*float64(i))
+				z = append(z, 10-0.05*float64(i)+0.005*rng.NormFloat64())
+			}
+			bad := rng.IntN(n)
+			z[bad] += float64(1-2*rng.IntN(2)) * 0.5
+			aside += count(profileAlong(t, 1000, s, z, false).Fit().IsAside[bad])
+		}
+		if share := float64(aside) / surveys; share < limits[0] || share > limits[1] {
+			t.Errorf("%d levels: the blunder is set aside in %.0f %% of surveys, want %.0f to %.0f", n, 100*share, 100*limits[0], 100*limits[1])
+		}
+	}
+}

@@ -1,13 +1,23 @@
 package pipeline
 
 import (
+	"cmp"
 	"fmt"
 	"math"
 	"slices"
 
 	"github.com/paulmach/orb"
 
+	"bentray/geo"
+
 	"bentray/pipeline/job"
+)
+
+// How many level points a profile has at least for a blunder among them to be set aside:
+// at times, and mostly (geo's TestProfileFewLevels).
+const (
+	blindLevels = 4
+	fewLevels   = 8
 )
 
 // Limits of what a plan takes for granted, in metres. Common practice, no source.
@@ -73,13 +83,36 @@ func (t *tally) looksLikeWeek(s *survey) bool {
 	return s.job.Input.Time != job.GPSWeek && !t.times.isEmpty() && t.times.low >= 0 && t.times.high <= week
 }
 
-// profileCautions looks at how the level points agree with their profile.
+// profileCautions looks at how the level points agree with their profile, and at
+// what they leave unsaid.
 func (s *survey) profileCautions() {
 	f := s.surface.profile.Fit()
-	if f.IsUneven() {
-		s.cautions = append(s.cautions, fmt.Sprintf("the level points are %.3f %s (rms) off the profile, but scatter by %.3f from one to the next: their levels do not keep falling along the centreline; look at them with bentray surface",
-			f.Spread/s.height, s.job.Input.VerticalUnit, f.Scatter/s.height))
+	say := func(format string, args ...any) { s.cautions = append(s.cautions, fmt.Sprintf(format, args...)) }
+	switch n := len(f.Chainage) - f.Beyond; {
+	case n < blindLevels:
+		say("%d level points only: a blunder among them would not show", n)
+	case n < fewLevels:
+		say("%d level points only: a blunder among them may not show", n)
 	}
+	if f.IsUneven() {
+		say("the level points are %.3f %s (rms) off the profile, but scatter by %.3f from one to the next: their levels do not keep falling along the centreline; look at them with bentray surface",
+			f.Spread/s.height, s.job.Input.VerticalUnit, f.Scatter/s.height)
+	}
+	if len(f.Unplaced) > 0 {
+		s.unplacedCaution(f.Unplaced)
+	}
+}
+
+// unplacedCaution tells of the gap with the greatest fall, and how many more there are.
+func (s *survey) unplacedCaution(gaps []geo.Drop) {
+	d := s.drop(slices.MaxFunc(gaps, func(a, b geo.Drop) int { return cmp.Compare(a.Fall, b.Fall) }))
+	more := ""
+	if n := len(gaps) - 1; n > 0 {
+		more = fmt.Sprintf(" (and %d more like it)", n)
+	}
+	unit := s.job.Input.VerticalUnit
+	s.cautions = append(s.cautions, fmt.Sprintf("the level changes by %.3f %s between level points at %.1f and %.1f %s along the centreline%s, more than the slope beside explains: a weir there has no place, and the level may be wrong by as much; measure levels close to it",
+		d.Fall, unit, d.From, d.To, s.job.Input.Unit, more))
 }
 
 // likeDegrees tells whether coordinates may be longitudes and latitudes.

@@ -60,11 +60,17 @@ type ProfileReport struct {
 	Knots       int  // levels between which the profile interpolates
 	Reach       float64
 	Length      float64 // of the centreline
+	Gap         Drop    // the longest way between two points that count
+	Steps       []Drop  // where the level falls at once, as at a weir
 	First, Last CurvePoint
 	Curve       []CurvePoint // from the first to the last level point that counts
 }
 
-// CurvePoint is a level along a centreline.
+// Drop is the way along a centreline between two level points, or a row of them, and by how
+// much the level differs between them, 0 or above.
+type Drop struct{ From, To, Fall float64 }
+
+// CurvePoint is a level along a centreline; Sigma is NaN where it is not known.
 type CurvePoint struct{ Chainage, Level, Sigma float64 }
 
 // GridReport is a surface by points on it. Level is over the map's raster, before

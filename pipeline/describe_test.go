@@ -214,6 +214,11 @@ func TestDescribeWeir(t *testing.T) {
 	if p.Fit.SetAside != 2 || len(r.Cautions) != 0 {
 		t.Errorf("%d set aside, cautions %q, want 2 and none", p.Fit.SetAside, r.Cautions)
 	}
+	if len(p.Steps) != 1 || p.Steps[0].From != 500 || p.Steps[0].To != 505 {
+		t.Fatalf("steps are %v, want one from 500 to 505 ft", p.Steps)
+	}
+	closeTo(t, "height of the weir", p.Steps[0].Fall, 8, 2e-3)
+	closeTo(t, "longest gap", p.Gap.To-p.Gap.From, 5, 1e-9)
 	closeTo(t, "first", p.First.Chainage, 5, 1e-9)
 	closeTo(t, "last", p.Last.Chainage, 995, 1e-9)
 	for _, at := range p.Curve {
@@ -227,6 +232,40 @@ func TestDescribeWeir(t *testing.T) {
 	r = described(t, feet+tables, files{"line.geojson": line, "levels.csv": levelsIn(func(x float64) float64 { return 20 + math.Sin(x/60) })})
 	if len(r.Cautions) != 1 || !strings.Contains(r.Cautions[0], "ft (rms) off the profile") {
 		t.Errorf("cautions are %q, want one of levels that rise and fall", r.Cautions)
+	}
+}
+
+// Two levels of a river in feet tell nothing of their errors, which a caution says. A weir
+// of 4 ft in a gap of 100 ft has no place, which another one says.
+func TestDescribeTooFewLevels(t *testing.T) {
+	const tables = "[surface.profile]\ncentreline = \"line.geojson\"\nlevels = \"levels.csv\"\nreach = 50\n"
+	feet := strings.Replace(metres, "[input]", "[input]\nunit = \"ft\"", 1)
+	const line = `{"type":"LineString","coordinates":[[0,0],[1000,0]]}`
+	r := described(t, feet+tables, files{"line.geojson": line, "levels.csv": "x,y,z\n0,0,10\n800,0,9\n"})
+	if f := r.Profile.Fit; !math.IsNaN(f.Sigma) || !math.IsNaN(r.Profile.First.Sigma) || f.Used != 2 {
+		t.Errorf("sigma is %v, at the start %v, want none from 2 points", f.Sigma, r.Profile.First.Sigma)
+	}
+	closeTo(t, "start of the gap", r.Profile.Gap.From, 0, 1e-9)
+	closeTo(t, "end of the gap", r.Profile.Gap.To, 800, 1e-9)
+	closeTo(t, "fall in the gap", r.Profile.Gap.Fall, 1, 1e-9)
+	if want := "2 level points only: a blunder among them would not show"; len(r.Cautions) != 1 || r.Cautions[0] != want {
+		t.Errorf("cautions are %q, want %q", r.Cautions, want)
+	}
+	text := "x,y,z\n"
+	for x := 0.0; x <= 1000; x += 20 {
+		switch {
+		case x <= 400:
+			text += fmt.Sprintf("%g,0,20\n", x)
+		case x >= 500:
+			text += fmt.Sprintf("%g,0,16\n", x)
+		}
+	}
+	r = described(t, feet+tables, files{"line.geojson": line, "levels.csv": text})
+	if want := "the level changes by 4.000 ft between level points at 400.0 and 500.0 ft along"; len(r.Cautions) != 1 || !strings.HasPrefix(r.Cautions[0], want) {
+		t.Errorf("cautions are %q, want %q", r.Cautions, want)
+	}
+	if len(r.Profile.Steps) != 0 {
+		t.Errorf("steps are %v, want none", r.Profile.Steps)
 	}
 }
 

@@ -15,7 +15,7 @@ type FitReport struct {
 	RMS      float64
 	Largest  float64 // magnitude
 	Farthest float64 // magnitude, of the points set aside; 0 without
-	Sigma    float64 // of one point, from the median
+	Sigma    float64 // of one point, from the median; NaN where the points leave no redundancy
 }
 
 // FittedPoint is a point that a surface was fitted to. Chainage is along a profile's
@@ -76,12 +76,20 @@ func (s *survey) describeProfile() *ProfileReport {
 	f := p.Fit()
 	r := &ProfileReport{
 		Fit: s.describeFit(f.Chainage, f.Residuals, f.IsAside, f.Sigma), Beyond: f.Beyond, Falling: f.Falling, Knots: f.Knots,
-		Reach: s.job.Surface.Profile.Reach, Curve: s.curve(p, f.First, f.Last),
+		Reach: s.job.Surface.Profile.Reach, Gap: s.drop(f.Gap), Curve: s.curve(p, f.First, f.Last),
+	}
+	for _, step := range f.Steps {
+		r.Steps = append(r.Steps, s.drop(step))
 	}
 	r.First, r.Last = r.Curve[0], r.Curve[len(r.Curve)-1]
 	along := chainages(s.surface.source.lineX, s.surface.source.lineY)
 	r.Length = along[len(along)-1] / s.plan
 	return r
+}
+
+// drop returns what the level does between two points in the job's units.
+func (s *survey) drop(d geo.Drop) Drop {
+	return Drop{d.From / s.plan, d.To / s.plan, d.Fall / s.height}
 }
 
 // curve samples a profile from the first to the last chainage (m).

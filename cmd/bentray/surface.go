@@ -3,6 +3,7 @@ package main
 import (
 	"errors"
 	"fmt"
+	"math"
 	"time"
 
 	"bentray/pipeline"
@@ -136,7 +137,12 @@ func sigma(v float64, decimals int) string {
 func (p *surfacePrinter) fit(f *pipeline.FitReport) {
 	p.row("points", "%s: %s used, %s set aside", grouped(int64(len(f.Points))), grouped(int64(f.Used)), grouped(int64(f.SetAside)))
 	unit := p.r.VerticalUnit
-	p.row("residuals", "rms %.4f %s, largest %.4f %s; 1-sigma of a point %.4f %s", f.RMS, unit, f.Largest, unit, f.Sigma, unit)
+	spread := fmt.Sprintf("rms %.4f %s, largest %.4f %s", f.RMS, unit, f.Largest, unit)
+	if math.IsNaN(f.Sigma) {
+		p.row("residuals", "%s; 1-sigma unknown: no point is more than the fit needs", spread)
+	} else {
+		p.row("residuals", "%s; 1-sigma of a point %.4f %s", spread, f.Sigma, unit)
+	}
 	if f.SetAside > 0 {
 		p.row("", "up to %.3f %s of those set aside", f.Farthest, unit)
 	}
@@ -156,6 +162,17 @@ func (p *surfacePrinter) profile(r *pipeline.ProfileReport) {
 	for i, end := range []pipeline.CurvePoint{r.First, r.Last} {
 		p.row([]string{"level", ""}[i], "%.4f%s %s at %.1f %s along the line", end.Level, sigma(end.Sigma, 4), p.r.VerticalUnit, end.Chainage, p.r.Unit)
 	}
+	p.row("gap", "at most %.1f %s without a level point, %s", r.Gap.To-r.Gap.From, p.r.Unit, p.drop(r.Gap, course))
+	steps := make([]string, len(r.Steps))
+	for i, d := range r.Steps {
+		steps[i] = p.drop(d, course)
+	}
+	p.rows("steps", steps)
+}
+
+// drop says where the level differs and by how much.
+func (p *surfacePrinter) drop(d pipeline.Drop, course string) string {
+	return fmt.Sprintf("from %.1f to %.1f %s along the line, %s by %.4f %s", d.From, d.To, p.r.Unit, course, d.Fall, p.r.VerticalUnit)
 }
 
 func (p *surfacePrinter) grid(r *pipeline.GridReport) {

@@ -50,12 +50,16 @@ func profilePanel(r *pipeline.SurfaceReport) panel {
 		}
 	}
 	f = f.padded(0.15, 0.01)
-	p.Add(&plotter.Polygon{XYs: []plotter.XYs{append(band, back...)}, Color: grey})
+	headline := "Profile (line); its error is not known"
+	if !math.IsNaN(r.Profile.Fit.Sigma) {
+		p.Add(&plotter.Polygon{XYs: []plotter.XYs{append(band, back...)}, Color: grey})
+		headline = "Profile (line) with its 95 % band near points"
+	}
 	marks := scatterWithin(p, f.low, f.high, points)
 	line(p, curve, draw.LineStyle{Color: black, Width: 1.5})
 	p.Y.Min, p.Y.Max = f.low, f.high
 	return panel{curveHeight, func(c draw.Canvas) {
-		p.Draw(drawKey(c, "Profile (line) with its 95 % band", marks))
+		p.Draw(drawKey(c, headline, marks))
 	}}
 }
 

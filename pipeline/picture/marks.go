@@ -10,7 +10,7 @@ import (
 )
 
 var (
-	usedGlyph  = draw.GlyphStyle{Color: used, Radius: 1.7, Shape: haloed{draw.CircleGlyph{}}}
+	usedGlyph  = draw.GlyphStyle{Color: used, Radius: 2, Shape: haloed{draw.CircleGlyph{}}}
 	asideGlyph = draw.GlyphStyle{Color: aside, Radius: 2.4, Shape: haloed{thickCross{}}}
 	aboveGlyph = draw.GlyphStyle{Color: aside, Radius: 3, Shape: wedge(1)}
 	belowGlyph = draw.GlyphStyle{Color: aside, Radius: 3, Shape: wedge(-1)}

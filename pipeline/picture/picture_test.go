@@ -65,6 +65,8 @@ func reports() map[string]*pipeline.SurfaceReport {
 	zones := slopeMap(40, 30)
 	zones.At = &pipeline.Moment{Time: at}
 	zones.Outlines = []pipeline.Outline{{Name: "lock", XY: [][2]float64{{412_010, 6_213_010}, {412_030, 6_213_010}, {412_020, 6_213_030}, {412_010, 6_213_010}}}}
+	few := &pipeline.ProfileReport{Fit: fitted(3), Curve: []pipeline.CurvePoint{{Chainage: 0, Level: 1, Sigma: math.NaN()}, {Chainage: 2, Level: 0.9, Sigma: math.NaN()}}}
+	few.Fit.Sigma = math.NaN()
 	flat := slopeMap(30, 3)
 	flat.Level = pipeline.Range{Low: 5, High: 5}
 	for i := range flat.Levels {
@@ -73,6 +75,7 @@ func reports() map[string]*pipeline.SurfaceReport {
 	return map[string]*pipeline.SurfaceReport{
 		"plane":    {Plane: plane, Map: slopeMap(200, 40)},
 		"profile":  {Profile: &pipeline.ProfileReport{Fit: fitted(60), Curve: curve}, Map: slopeMap(40, 200), Gauge: gauge},
+		"few":      {Profile: few, Map: slopeMap(40, 20)},
 		"gauge":    {Gauge: gauge},
 		"zones":    {Map: zones},
 		"flat map": {Map: flat},
