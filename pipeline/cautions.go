@@ -111,7 +111,7 @@ func (s *survey) unplacedCaution(gaps []geo.Drop) {
 		more = fmt.Sprintf(" (and %d more like it)", n)
 	}
 	unit := s.job.Input.VerticalUnit
-	s.cautions = append(s.cautions, fmt.Sprintf("the level changes by %.3f %s between level points at %.1f and %.1f %s along the centreline%s, more than the slope beside explains: a weir there has no place, and the level may be wrong by as much; measure levels close to it",
+	s.cautions = append(s.cautions, fmt.Sprintf("the level changes by %.3f %s between level points at %.1f and %.1f %s along the centreline%s, more than the slope beside explains: a weir or rapid there has no place, and the level may be wrong by nearly as much; measure levels close to it",
 		d.Fall, unit, d.From, d.To, s.job.Input.Unit, more))
 }
 
