@@ -126,12 +126,16 @@ func newBins(exponent int) *bins {
 	return &bins{step: step{exponent}, low: math.Inf(1), high: math.Inf(-1)}
 }
 
-// maxValue is the greatest magnitude that is binned.
-const maxValue = 1e15
+// maxValue is the greatest magnitude that is binned: the finest step is 1e-4, and the
+// numbers of its bins stay far within an int.
+const maxValue = 1e12
+
+// isBinned tells whether a value is finite and in the range of bins and bands.
+func isBinned(v float64) bool { return math.Abs(v) <= maxValue }
 
 // at returns the sums of a value's bin, nil where the value is not finite.
 func (b *bins) at(v float64) *sums {
-	if !(math.Abs(v) <= maxValue) {
+	if !isBinned(v) {
 		return nil
 	}
 	b.low, b.high = min(b.low, v), max(b.high, v)

@@ -6,11 +6,14 @@ import (
 	"math"
 	"slices"
 
+	"gonum.org/v1/gonum/stat/distuv"
+
 	"bentray/io/cloud"
 )
 
 // readCheck reads the check points of a file: columns x, y, z, projected as the cloud.
-// Points without finite coordinates are counted as ignored.
+// Points with a coordinate that is not finite, or beyond maxValue as values are that
+// stand for none, are counted as ignored.
 func readCheck(path string) (x, y, z []float64, ignored int, err error) {
 	t, err := openTable(path, textOptions{})
 	if err != nil {
@@ -26,7 +29,7 @@ func readCheck(path string) (x, y, z []float64, ignored int, err error) {
 		return nil, nil, nil, 0, err
 	}
 	for i := range numbers[0] {
-		if sum := numbers[0][i] + numbers[1][i] + numbers[2][i]; sum-sum != 0 {
+		if !isBinned(numbers[0][i]) || !isBinned(numbers[1][i]) || !isBinned(numbers[2][i]) {
 			ignored++
 			continue
 		}
@@ -43,27 +46,35 @@ func readCheck(path string) (x, y, z []float64, ignored int, err error) {
 func reportCheck(r *CheckReport, m *matcher, depth *bins, plan, height float64) {
 	r.Points = m.points(r.Match, plan, height)
 	r.Given = len(r.Points)
-	var matched, deep []CheckPoint // deep: with a depth
-	for i, p := range r.Points {
-		isMatched := !math.IsNaN(p.Residual)
-		if isMatched {
-			matched = append(matched, p)
-		}
-		if isMatched && !math.IsNaN(p.Depth) {
-			deep = append(deep, p)
-		}
-		if p.Depth <= 0 || !isMatched && m.isDry[i] {
-			r.OnLand++
-		}
-	}
-	r.Count, r.Unmatched = len(matched), r.Given-len(matched)
+	matched, deep := r.matched(m)
+	r.Count, r.Unmatched = len(matched), r.Given-r.OnLand-len(matched)
 	r.Residuals = residualsOf(matched)
 	slope, sigma := regression(deep)
 	r.Slope, r.SlopeSigma = Number(slope), Number(sigma)
-	r.Meaning = meaning(slope, sigma)
+	r.Meaning = meaning(slope, isTold(slope, sigma, deep))
 	r.ByDepth = checkBands(deep)
 	r.S44 = shares(deep, height)
 	r.Warnings = r.warnings(deep, depth)
+}
+
+// matched returns the points whose residuals count, and those of them with a depth. It
+// takes the residuals of points on land away.
+func (r *CheckReport) matched(m *matcher) (matched, deep []CheckPoint) {
+	for i := range r.Points {
+		p := &r.Points[i]
+		if p.Depth <= 0 || math.IsNaN(p.Residual) && m.isDry[i] {
+			r.OnLand++
+			p.Residual = math.NaN()
+		}
+		if math.IsNaN(p.Residual) {
+			continue
+		}
+		matched = append(matched, *p)
+		if isBinned(p.Depth) {
+			deep = append(deep, *p)
+		}
+	}
+	return matched, deep
 }
 
 // residualsOf sums up the residuals of matched points.
@@ -125,13 +136,35 @@ func regression(points []CheckPoint) (slope, sigma float64) {
 	return slope, math.Sqrt(rest / (n - 2) / dd)
 }
 
-// meaning says what a slope of the residual against depth stands for.
-func meaning(slope, sigma float64) string {
+// leastRise is what a slope makes, in the unit of heights, over the depths of the
+// points, below which it is that of rounding alone.
+const leastRise = 1e-6
+
+// isTold tells whether a slope differs from none: at 95 % by Student's t, since the
+// standard error comes from the points themselves, and by more than rounding.
+func isTold(slope, sigma float64, points []CheckPoint) bool {
+	if math.IsNaN(slope) {
+		return false
+	}
+	low, high := depths(points)
+	t := distuv.StudentsT{Sigma: 1, Nu: float64(len(points) - 2)}.Quantile(0.975)
+	return math.Abs(slope) > t*sigma && math.Abs(slope)*(high-low) > leastRise
+}
+
+// depths returns the least and the greatest of them; there is a point.
+func depths(points []CheckPoint) (low, high float64) {
+	byDepth := func(a, b CheckPoint) int { return cmp.Compare(a.Depth, b.Depth) }
+	return slices.MinFunc(points, byDepth).Depth, slices.MaxFunc(points, byDepth).Depth
+}
+
+// meaning says what a slope of the residual against depth stands for, where it is told
+// from none.
+func meaning(slope float64, isTold bool) string {
 	switch {
 	case math.IsNaN(slope):
 		return "the check points do not give a slope of the error against depth"
-	case math.Abs(slope) <= 2*sigma:
-		return "no slope of the error against depth beyond 2 standard errors: nothing speaks against the index and the angles; a bias that is the same at all depths points to the water level, or to different vertical references"
+	case !isTold:
+		return "no slope of the error against depth beyond its uncertainty at 95 %: nothing speaks against the index and the angles; a bias that is the same at all depths points to the water level, or to different vertical references"
 	}
 	where := "too shallow"
 	if slope < 0 {
@@ -146,8 +179,7 @@ func checkBands(points []CheckPoint) []CheckBand {
 	if len(points) == 0 {
 		return list
 	}
-	byDepth := func(a, b CheckPoint) int { return cmp.Compare(a.Depth, b.Depth) }
-	low, high := slices.MinFunc(points, byDepth).Depth, slices.MaxFunc(points, byDepth).Depth
+	low, high := depths(points)
 	w := chooseWidth(low, high, maxBands, step{-2})
 	groups := make([][]CheckPoint, w.count(low, high))
 	first := w.band(low)

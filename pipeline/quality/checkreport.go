@@ -6,11 +6,11 @@ type CheckReport struct {
 	File      string `json:"file"`
 	Match     string `json:"match"`   // MatchPlane or MatchNearest
 	Reach     Number `json:"reach"`   // in plan
-	Given     int    `json:"given"`   // points of the file that have coordinates
-	Ignored   int    `json:"ignored"` // those that have none
-	Count     int    `json:"count"`   // matched
+	Given     int    `json:"given"`   // points of the file that have coordinates: Count + Unmatched + OnLand
+	Ignored   int    `json:"ignored"` // those that have none, or one beyond 1e12
+	Count     int    `json:"count"`   // matched, and not on land
 	Unmatched int    `json:"unmatched"`
-	OnLand    int    `json:"on_land"` // at or above the water, or with dry points alone about them
+	OnLand    int    `json:"on_land"` // at or above the water, or with dry points alone about them; in no figure
 	Residuals
 
 	Slope      Number            `json:"slope"` // of the residual against depth, least squares
@@ -39,7 +39,7 @@ type CheckBand struct {
 }
 
 // CheckPoint is one check point, and what the corrected cloud says there; NaN where
-// it is unmatched or there is no water level.
+// it is unmatched, on land (the residual) or without a water level.
 type CheckPoint struct {
 	X, Y, Z   float64
 	Corrected float64

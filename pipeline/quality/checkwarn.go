@@ -21,13 +21,13 @@ func (r *CheckReport) warnings(matched []CheckPoint, depth *bins) []string {
 		say("%d of %d check points are unmatched: too few corrected points within reach, or all to one side", r.Unmatched, r.Given)
 	}
 	if r.Ignored > 0 {
-		say("%d check points lack a finite coordinate and are left out", r.Ignored)
+		say("%d check points lack a finite coordinate or have one beyond 1e12, and are left out", r.Ignored)
 	}
 	if r.OnLand > 0 {
-		say("%d check points lie on land: at or above the water, or with dry points alone within reach; they say nothing of the correction", r.OnLand)
+		say("%d check points lie on land: at or above the water, or with dry points alone within reach; they say nothing of the correction and are in no figure", r.OnLand)
 	}
 	if r.Count > len(matched) {
-		say("%d matched check points have no water level and so no depth: they are left out of slope, bands and orders", r.Count-len(matched))
+		say("%d matched check points have no water level and so no usable depth: they are left out of slope, bands and orders", r.Count-len(matched))
 	}
 	return append(list, spanWarning(matched, depth)...)
 }
@@ -37,10 +37,7 @@ func spanWarning(matched []CheckPoint, depth *bins) []string {
 	if len(matched) == 0 || len(depth.list) == 0 {
 		return nil
 	}
-	low, high := matched[0].Depth, matched[0].Depth
-	for _, p := range matched {
-		low, high = min(low, p.Depth), max(high, p.Depth)
-	}
+	low, high := depths(matched)
 	from, to := depth.quantile(bulk), depth.quantile(1-bulk)
 	open := openDepths * (to - from)
 	if low <= from+open && high >= to-open {

@@ -44,19 +44,31 @@ func TestCheckWarnings(t *testing.T) {
 	}
 }
 
-// A slope is told by its sign where it is beyond two standard errors.
+// A slope is told by its sign where it is beyond its uncertainty at 95 %: Student's t is
+// 12.71 for one degree of freedom, 2.78 for four, 2.00 for 58 (Student 1908, as in any
+// table of the distribution; from memory).
 func TestMeaning(t *testing.T) {
 	for _, c := range []struct {
 		slope, sigma float64
+		points       int
 		says         string
 	}{
-		{0.005, 0.002, "the more the corrected bed is too shallow, by 0.50 % of the depth: an index"},
-		{-0.005, 0.002, "too deep, by 0.50 %"},
-		{0.005, 0.003, "no slope of the error against depth beyond 2 standard errors"},
-		{math.NaN(), math.NaN(), "do not give a slope"},
+		{0.005, 0.002, 60, "the more the corrected bed is too shallow, by 0.50 % of the depth: an index"},
+		{-0.005, 0.002, 60, "too deep, by 0.50 %"},
+		{0.005, 0.003, 60, "no slope of the error against depth beyond its uncertainty"},
+		{0.005, 0.002, 6, "no slope of the error"},
+		{0.006, 0.002, 6, "too shallow, by 0.60 %"},
+		{0.012, 0.001, 3, "no slope of the error"},
+		{0.013, 0.001, 3, "too shallow, by 1.30 %"},
+		{-5e-17, 1e-17, 60, "no slope of the error"}, // that of rounding
+		{math.NaN(), math.NaN(), 2, "do not give a slope"},
 	} {
-		if got := meaning(c.slope, c.sigma); !strings.Contains(got, c.says) {
-			t.Errorf("%g ± %g: %q, want %q", c.slope, c.sigma, got, c.says)
+		points := make([]CheckPoint, c.points)
+		for i := range points {
+			points[i].Depth = float64(i)
+		}
+		if got := meaning(c.slope, isTold(c.slope, c.sigma, points)); !strings.Contains(got, c.says) {
+			t.Errorf("%g ± %g of %d points: %q, want %q", c.slope, c.sigma, c.points, got, c.says)
 		}
 	}
 }

@@ -10,7 +10,9 @@ func (f *figures) report(r *Report) {
 	if r.TwoCorrected {
 		r.OutcomesRaw = maps.Clone(f.outcomesRaw)
 	}
-	r.ByDepth = f.byDepth()
+	if list := f.byDepth(); list != nil {
+		r.ByDepth = list
+	}
 	for i := range f.incidence {
 		if s := &f.incidence[i]; s.count > 0 {
 			from := float64(i * incidenceWidth)

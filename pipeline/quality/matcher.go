@@ -13,7 +13,7 @@ import (
 type checkIndex struct {
 	x, y, z   []float64
 	reach     float64
-	cells     map[[2]int32][]int32
+	cells     map[[2]int64][]int32
 	left, low float64 // corner that cells count from
 	right, up float64
 	most      int // neighbours kept of a check point
@@ -28,7 +28,7 @@ const (
 
 func newCheckIndex(x, y, z []float64, reach float64, match string) *checkIndex {
 	k := &checkIndex{
-		x: x, y: y, z: z, reach: reach, cells: map[[2]int32][]int32{}, most: 1,
+		x: x, y: y, z: z, reach: reach, cells: map[[2]int64][]int32{}, most: 1,
 		left: slices.Min(x) - reach, low: slices.Min(y) - reach, right: slices.Max(x) + reach, up: slices.Max(y) + reach,
 	}
 	if match == MatchPlane {
@@ -38,7 +38,7 @@ func newCheckIndex(x, y, z []float64, reach float64, match string) *checkIndex {
 		from, to := k.cell(x[i]-reach, y[i]-reach), k.cell(x[i]+reach, y[i]+reach)
 		for col := from[0]; col <= to[0]; col++ {
 			for row := from[1]; row <= to[1]; row++ {
-				at := [2]int32{col, row}
+				at := [2]int64{col, row}
 				k.cells[at] = append(k.cells[at], int32(i))
 			}
 		}
@@ -46,8 +46,8 @@ func newCheckIndex(x, y, z []float64, reach float64, match string) *checkIndex {
 	return k
 }
 
-func (k *checkIndex) cell(x, y float64) [2]int32 {
-	return [2]int32{int32((x - k.left) / k.reach), int32((y - k.low) / k.reach)}
+func (k *checkIndex) cell(x, y float64) [2]int64 {
+	return [2]int64{int64((x - k.left) / k.reach), int64((y - k.low) / k.reach)}
 }
 
 // about lists the check points that may be within reach of a place.

@@ -50,7 +50,7 @@ func (o *overlap) takes(col, row int64) bool {
 
 // add takes a corrected point of a line.
 func (o *overlap) add(line []byte, x, y, z, depth, incidence float64) {
-	if !(math.Abs(x) <= maxValue && math.Abs(y) <= maxValue) {
+	if !isBinned(x) || !isBinned(y) {
 		return
 	}
 	col, row := int64(math.Floor(x/o.side)), int64(math.Floor(y/o.side))

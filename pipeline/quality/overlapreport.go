@@ -2,7 +2,6 @@ package quality
 
 import (
 	"cmp"
-	"math"
 	"slices"
 )
 
@@ -115,7 +114,7 @@ func sumUp(list []difference) Residuals {
 }
 
 func overlapBands(list []difference, value func(difference) float64) []OverlapBand {
-	known := slices.DeleteFunc(slices.Clone(list), func(d difference) bool { return math.IsNaN(value(d)) })
+	known := slices.DeleteFunc(slices.Clone(list), func(d difference) bool { return !isBinned(value(d)) })
 	bands := []OverlapBand{}
 	if len(known) == 0 {
 		return bands

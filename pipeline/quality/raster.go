@@ -31,7 +31,7 @@ func (r *raster) at(col, row int) *cell {
 
 // add counts a point; one that is not finite is left out.
 func (r *raster) add(x, y, dz, dh float64) {
-	if !(math.Abs(x) <= maxValue && math.Abs(y) <= maxValue) {
+	if !isBinned(x) || !isBinned(y) {
 		return
 	}
 	col, row := int(math.Floor(math.Ldexp(x, -r.exponent))), int(math.Floor(math.Ldexp(y, -r.exponent)))
