@@ -11,11 +11,15 @@ import (
 const gradientSeed = 20260712
 
 // randomSights fills a solver with the rays of a point at the origin under tilted
-// planes, each camera turned at random but facing it.
-func randomSights(t *testing.T, r *rand.Rand, s *MultiviewSolver, rule Residual) {
+// planes or, if it is not nil, behind a port, each camera turned at random but facing it.
+func randomSights(t *testing.T, r *rand.Rand, s *MultiviewSolver, rule Residual, port *Port) {
 	t.Helper()
 	s.sights = s.sights[:0]
-	s.boundary = optics.NewBoundary(1+r.Float64(), 1+r.Float64())
+	near, far := 1+r.Float64(), 1+r.Float64()
+	s.stack = optics.NewStack(near, far)
+	if port != nil {
+		s.stack = optics.NewStack(near, far, port.Panes...)
+	}
 	for range 5 {
 		camera := optics.Vec{X: 9 * r.NormFloat64(), Y: 9 * r.NormFloat64(), Z: 20 + 9*r.Float64()}
 		z := camera.Add(optics.Vec{X: r.NormFloat64(), Y: r.NormFloat64()}).Unit()
@@ -24,7 +28,11 @@ func randomSights(t *testing.T, r *rand.Rand, s *MultiviewSolver, rule Residual)
 		cameras := Cameras{Rotation: [][9]float64{{x.X, y.X, z.X, x.Y, y.Y, z.Y, x.Z, y.Z, z.Z}}}
 		surface := plane{level: 2, rise: 2, slopeX: 0.1 * r.NormFloat64(), slopeY: 0.1 * r.NormFloat64()}
 		var k sight
-		k.look(camera, camera, surface, false)
+		if port != nil {
+			k.lookThrough(port, &cameras, 0, camera, near, far)
+		} else {
+			k.look(camera, camera, surface, false)
+		}
 		if !k.aimFor(rule, &cameras, 0) {
 			t.Fatalf("seed %d: a camera looks away", gradientSeed)
 		}
@@ -36,12 +44,26 @@ func randomSights(t *testing.T, r *rand.Rand, s *MultiviewSolver, rule Residual)
 // the solution, where the angles between rays and point are large.
 func TestGradientDerivative(t *testing.T) {
 	r := rand.New(rand.NewPCG(gradientSeed, 0))
+	panes := []optics.Layer{{ThicknessM: 0.7, Index: 1.5}, {ThicknessM: 0.2, Index: 1.2}}
+	for _, port := range []*Port{
+		nil,
+		{DistanceM: 2, Panes: panes, Normal: PortNormal(0.1, -0.2)},
+		{DistanceM: 2, Panes: panes, Normal: PortNormal(0.1, -0.2), CalibrationM: 7},
+		{DistanceM: 2, Normal: PortNormal(0, 0)},
+		{Panes: panes, Normal: PortNormal(0, 0), CalibrationM: 40},
+	} {
+		checkGradient(t, r, port)
+	}
+}
+
+func checkGradient(t *testing.T, r *rand.Rand, port *Port) {
+	t.Helper()
 	const h = 1e-5
 	for _, rule := range []Residual{Image, Angle, Equal} {
 		for _, spread := range []float64{0.01, 0.5, 5} {
 			for i := range 50 {
 				var s MultiviewSolver
-				randomSights(t, r, &s, rule)
+				randomSights(t, r, &s, rule, port)
 				p := optics.Vec{X: spread * r.NormFloat64(), Y: spread * r.NormFloat64(), Z: -1 - 5*r.Float64()}
 				_, by := s.gradient(p, rule)
 				for c, d := range []optics.Vec{{X: h}, {Y: h}, {Z: h}} {
@@ -77,7 +99,7 @@ func TestAngleOverSine(t *testing.T) {
 // water of index 4/3, prolonged to 2.25 m. From starts far off Newton's method ends at the
 // point; without a check of its steps, some would leave the water for good.
 func TestInvertFromAfar(t *testing.T) {
-	s := MultiviewSolver{boundary: optics.NewBoundary(1, 4./3)}
+	s := MultiviewSolver{stack: optics.NewStack(1, 4./3)}
 	for _, x := range []float64{-43, 43} {
 		var k sight
 		camera := optics.Vec{X: x, Z: 30}

@@ -10,14 +10,14 @@ func (s *MultiviewSolver) intersect() (optics.Vec, bool) {
 	var sum optics.Vec
 	for k := range s.sights {
 		r := &s.sights[k]
-		if !r.bend(&s.boundary) {
+		if !r.bend(&s.stack) {
 			return optics.Vec{}, false
 		}
 		d := r.far().Unit()
 		across := diagonal(1)
 		across.addOuter(d, d.Scale(-1))
 		all.add(&across)
-		sum = sum.Add(across.times(r.entry()))
+		sum = sum.Add(across.times(r.entry(&s.stack)))
 	}
 	return all.solve(sum)
 }
@@ -27,16 +27,24 @@ func (s *MultiviewSolver) intersect() (optics.Vec, bool) {
 // tan(refraction), where the refracted ray crosses the plane's normal through
 // the raw point. Depths are vertical, angles from the plane's normal (Dietrich 2017 for a
 // level surface).
-func (s *MultiviewSolver) average() (optics.Vec, bool) {
-	sum := 0.0
+//
+// With a Port it is the mean of the points where each refracted ray crosses the normal of its
+// port through the raw point.
+func (s *MultiviewSolver) average(b *Bundle) (optics.Vec, bool) {
+	var sum optics.Vec
 	for k := range s.sights {
 		r := &s.sights[k]
-		if !r.bend(&s.boundary) {
+		if !r.bend(&s.stack) {
 			return optics.Vec{}, false
 		}
-		sum += r.rise / r.up.Z * (1 - r.slopes.Near/r.slopes.Far)
+		if b.Port != nil {
+			sum = sum.Add(r.up.Scale(r.rise - r.crossNormal(&s.stack)))
+		} else {
+			sum.Z += r.rise / r.up.Z * (1 - r.slopes.Near/r.slopes.Far)
+		}
 	}
-	return optics.Vec{Z: sum / float64(len(s.sights))}, true
+	n := float64(len(s.sights))
+	return optics.Vec{X: sum.X / n, Y: sum.Y / n, Z: sum.Z / n}, true
 }
 
 // areBeyond reports whether p is on the far side of all planes.
@@ -50,8 +58,12 @@ func (s *MultiviewSolver) areBeyond(p optics.Vec) bool {
 }
 
 // straightDown returns a point beyond the surface for rays that have no
-// intersection: n times the depth, along the normal of the first.
+// intersection: n times the depth, along the normal of the first; the raw point itself where
+// pinholes absorbed the port.
 func (s *MultiviewSolver) straightDown() optics.Vec {
 	r := &s.sights[0]
-	return r.up.Scale(r.rise * (1 - s.boundary.Ratio()))
+	if r.meetM != 0 {
+		return optics.Vec{}
+	}
+	return r.up.Scale(r.rise * (1 - s.stack.Ratio()))
 }

@@ -59,10 +59,10 @@ func (s *MultiviewSolver) invert(from optics.Vec, rule Residual) (optics.Vec, bo
 func (s *MultiviewSolver) gradient(p optics.Vec, rule Residual) (g optics.Vec, by matrix) {
 	for k := range s.sights {
 		r := &s.sights[k]
-		depth := r.trace(&s.boundary, p)
+		depth := r.trace(&s.stack, p)
 		var e optics.Vec
 		var byV matrix
-		switch v := r.near(); rule {
+		switch v := r.straight(); rule {
 		case Image:
 			e, byV = r.image(v)
 		case Angle:
@@ -71,7 +71,7 @@ func (s *MultiviewSolver) gradient(p optics.Vec, rule Residual) (g optics.Vec, b
 			e, byV = r.equal(v)
 		}
 		g = g.Add(e)
-		spread, gradient := r.change(&s.boundary, depth)
+		spread, gradient := r.change(&s.stack, depth)
 		by.x = by.x.Sub(byV.x.Scale(spread))
 		by.y = by.y.Sub(byV.y.Scale(spread))
 		by.z = by.z.Sub(byV.z.Scale(spread))
@@ -100,7 +100,7 @@ func (s *MultiviewSolver) share(p, step optics.Vec) float64 {
 func (s *MultiviewSolver) areAhead(rule Residual) bool {
 	for k := range s.sights {
 		r := &s.sights[k]
-		v := r.near()
+		v := r.straight()
 		if !(v.Dot(r.back) > 0) || rule == Image && !(r.aim.axes[2].Dot(v) > 0) {
 			return false
 		}

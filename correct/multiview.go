@@ -26,8 +26,8 @@ const (
 // value is ready; it holds room for the rays of one point, so each goroutine
 // needs its own.
 type MultiviewSolver struct {
-	sights   []sight
-	boundary optics.Boundary
+	sights []sight
+	stack  optics.Stack
 }
 
 // Solve corrects the points whose indices are listed, or all where points is nil, and
@@ -95,10 +95,10 @@ func (s *MultiviewSolver) gather(i int, point optics.Vec, b *Bundle) Outcome {
 	s.sights = slices.Grow(s.sights[:0], to-from)[:to-from]
 	facing := true
 	for k := range s.sights {
-		if !b.sight(&s.sights[k], from+k, point) {
+		if !b.sight(&s.sights[k], i, from+k, point) {
 			return NoSurface
 		}
-		facing = facing && s.sights[k].isFacing()
+		facing = facing && b.isFacing(&s.sights[k])
 	}
 	switch {
 	case to-from < 2:
@@ -113,10 +113,10 @@ func (s *MultiviewSolver) gather(i int, point optics.Vec, b *Bundle) Outcome {
 // Where there is no solution the outcome is Unsolved, or Grazing where a raw ray
 // is totally reflected.
 func (s *MultiviewSolver) solve(i int, from optics.Vec, b *Bundle) (optics.Vec, Outcome) {
-	if !b.Light.hasPhase(i) {
+	if !b.hasPhase(i) {
 		return optics.Vec{}, Unsolved
 	}
-	s.boundary = b.boundary(i)
+	b.setStack(&s.stack, i)
 	var p optics.Vec
 	ok := true
 	switch b.Solve {
@@ -125,22 +125,22 @@ func (s *MultiviewSolver) solve(i int, from optics.Vec, b *Bundle) (optics.Vec, 
 	case Intersect:
 		p, ok = s.intersect()
 	default:
-		p, ok = s.average()
+		p, ok = s.average(b)
 	}
 	if ok && s.areBeyond(p) {
 		return p, Corrected
 	}
-	if s.isReflected() {
+	if s.isReflected(b) {
 		return p, Grazing
 	}
 	return p, Unsolved
 }
 
 // isReflected reports whether a raw ray is totally reflected, or does not come down to its
-// plane at all.
-func (s *MultiviewSolver) isReflected() bool {
+// plane at all; with a Port also whether the raw point is not beyond it.
+func (s *MultiviewSolver) isReflected(b *Bundle) bool {
 	for k := range s.sights {
-		if r := &s.sights[k]; !r.bend(&s.boundary) {
+		if r := &s.sights[k]; !r.bend(&s.stack) || b.Port != nil && !(r.rise > 0) {
 			return true
 		}
 	}
@@ -156,7 +156,7 @@ func (s *MultiviewSolver) incidence(o Outcome) (near, far, widest float64) {
 		if o == Corrected {
 			i, t = r.angles()
 		} else {
-			i, t = r.back.AngleRad(r.up), math.NaN()
+			i, t = r.rawIncidence(&s.stack), math.NaN()
 		}
 		near, far, widest = near+i, far+t, max(widest, i)
 	}
@@ -166,12 +166,16 @@ func (s *MultiviewSolver) incidence(o Outcome) (near, far, widest float64) {
 
 // put writes where point i is and how deep, and returns its final outcome.
 func (s *MultiviewSolver) put(dst *Result, i int, point, p optics.Vec, b *Bundle) Outcome {
+	end := point.Add(p)
+	if b.Port != nil {
+		return dst.putPoint(i, point, end)
+	}
 	from, _ := b.of(i)
-	end, first := point.Add(p), b.Planes.around(from, point.Z)
+	first := b.Planes.around(from, point.Z)
 	level, entry := first.levelAt(p), 0.0
 	for k := range s.sights {
 		surface := b.Planes.around(from+k, point.Z)
-		entry += surface.level - first.level + surface.climb(s.sights[k].entry())
+		entry += surface.level - first.level + surface.climb(s.sights[k].entry(&s.stack))
 	}
 	depth := level - end.Z
 	if !isFiniteVec(end) || !isFinite(depth) {

@@ -7,16 +7,20 @@ import (
 )
 
 // sight is one ray of a point, on its way from the point to a camera. Positions are
-// relative to the raw point; the plane's normal points to the camera's side, and
+// relative to the raw point; the plane is the one that bounds the point's medium: the water
+// surface, or the outer face of a port. Its normal points to the camera's side, and
 // heights are along it.
 type sight struct {
-	back   optics.Vec // raw point to camera
+	back   optics.Vec // raw point to camera, the perspective centre of the raw rays
 	up     optics.Vec // unit normal
-	above  float64    // camera above the plane, positive
+	above  float64    // way of the light in the medium at the camera, along the normal
+	over   float64    // camera above the plane
 	rise   float64    // plane above the raw point
+	meetM  float64    // see Port.CalibrationM
 	run    optics.Vec // along the plane, from the foot of the point to that of the camera
 	run2   float64    // its squared length
 	slopes optics.Slopes
+	raw    float64 // slope of the straight raw ray, as those are
 	aim    aim
 }
 
@@ -38,12 +42,8 @@ func (r *sight) look(camera, back optics.Vec, surface plane, fromWater bool) {
 	if fromWater {
 		r.up, r.rise, r.above = r.up.Scale(-1), -r.rise, -r.above
 	}
-	r.slopes = optics.Slopes{}
+	r.over, r.meetM, r.slopes = r.above, 0, optics.Slopes{}
 }
-
-// isFacing reports whether the camera is finite and on its side of the plane. A height
-// that overflows does not count against it.
-func (r *sight) isFacing() bool { return isFiniteVec(r.back) && !(r.above <= 0) }
 
 // aimFor prepares a residual. It is false where a camera does not face the point.
 func (r *sight) aimFor(rule Residual, c *Cameras, camera int32) bool {
@@ -65,19 +65,27 @@ func (r *sight) aimFor(rule Residual, c *Cameras, camera int32) bool {
 }
 
 // trace takes the light's path from p to the camera.
-func (r *sight) trace(b *optics.Boundary, p optics.Vec) (depth float64) {
+func (r *sight) trace(b *optics.Stack, p optics.Vec) (depth float64) {
 	r.layRun(r.back.Sub(p))
 	depth = r.depth(p)
 	r.slopes = b.Fermat(r.above, depth, r.run2, r.slopes)
+	r.raw = r.slopes.Near
+	if r.meetM != 0 {
+		r.raw = r.pinhole(depth)
+	}
 	return depth
 }
 
-// bend takes the raw ray as it is on the camera's side and bends it at the plane. It
-// is false on total reflection and for a ray that does not come down to the plane.
-func (r *sight) bend(b *optics.Boundary) bool {
+// bend takes the straight raw ray and finds how its light runs. It is false on
+// total reflection and for a ray that does not come down to the plane.
+func (r *sight) bend(b *optics.Stack) bool {
 	r.layRun(r.back)
-	near := 1 / (r.above + r.rise)
-	r.slopes = optics.Slopes{Near: near, Far: b.Bend(near, r.run2)}
+	r.raw = 1 / (r.over + r.rise)
+	if r.meetM != 0 {
+		r.slopes = r.absorb(b)
+	} else {
+		r.slopes = b.Bend(r.raw, r.run2)
+	}
 	return r.slopes.Far > 0
 }
 
@@ -89,16 +97,17 @@ func (r *sight) layRun(back optics.Vec) {
 // depth returns how far p is beyond the plane.
 func (r *sight) depth(p optics.Vec) float64 { return r.rise - r.up.Dot(p) }
 
-// entry returns where the ray crosses the plane.
-func (r *sight) entry() optics.Vec {
-	return r.back.Sub(r.up.Scale(r.above)).Sub(r.run.Scale(r.above * r.slopes.Near))
+// entry returns where the light crosses the plane.
+func (r *sight) entry(b *optics.Stack) optics.Vec {
+	share := r.above*r.slopes.Near + b.InnerRun(r.slopes, r.run2)
+	return r.back.Sub(r.up.Scale(r.over)).Sub(r.run.Scale(share))
 }
 
-// near returns the direction of the ray on the camera's side, towards the
-// camera: 1 along the normal.
-func (r *sight) near() optics.Vec { return r.up.Add(r.run.Scale(r.slopes.Near)) }
+// straight returns the direction of the straight raw ray, towards the camera: 1 along the
+// normal.
+func (r *sight) straight() optics.Vec { return r.up.Add(r.run.Scale(r.raw)) }
 
-// far returns the direction of the ray on the point's side in the same manner.
+// far returns the direction of the light on the point's side in the same manner.
 func (r *sight) far() optics.Vec { return r.up.Add(r.run.Scale(r.slopes.Far)) }
 
 // angles returns the ray's angles from the normal on both sides.
@@ -107,10 +116,13 @@ func (r *sight) angles() (near, far float64) {
 	return math.Atan(r.slopes.Near * run), math.Atan(r.slopes.Far * run)
 }
 
-// change returns the derivative of near() by the position of the point, depth beyond the
+// change returns the derivative of straight() by the position of the point, depth beyond the
 // plane: dv = spread (u uT - 1) dP + run (gradient . dP) with u = up.
-func (r *sight) change(b *optics.Boundary, depth float64) (spread float64, gradient optics.Vec) {
-	byFar, byRun2 := b.Change(r.slopes, r.above, depth)
+func (r *sight) change(b *optics.Stack, depth float64) (spread float64, gradient optics.Vec) {
+	byFar, byRun2 := b.Change(r.slopes, r.above, depth, r.run2)
+	if r.meetM != 0 {
+		byFar, byRun2 = r.pinholeChange(b, depth, byFar, byRun2)
+	}
 	// The depth changes by -u . dP, the squared run by -2 run . dP.
-	return r.slopes.Near, r.up.Scale(-byFar).Sub(r.run.Scale(2 * byRun2))
+	return r.raw, r.up.Scale(-byFar).Sub(r.run.Scale(2 * byRun2))
 }

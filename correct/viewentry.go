@@ -33,22 +33,22 @@ func (s *MultiviewSolver) entries(x, y []float64, out []Outcome, i int, raw, at 
 	for k := from; k < to; k++ {
 		x[k], y[k] = point.X, point.Y
 	}
-	if out[i] != Corrected || !b.Light.hasPhase(i) {
+	if out[i] != Corrected || !b.hasPhase(i) {
 		return
 	}
-	s.boundary = b.boundary(i)
+	b.setStack(&s.stack, i)
 	p := at.at(i).Sub(point)
 	var r sight
 	for k := from; k < to; k++ {
-		if b.sight(&r, k, point) && r.isFacing() && r.cross(&s.boundary, p, b.Solve) {
-			entry := r.entry()
+		if b.sight(&r, i, k, point) && b.isFacing(&r) && r.cross(&s.stack, p, b.Solve) {
+			entry := r.entry(&s.stack)
 			x[k], y[k] = point.X+entry.X, point.Y+entry.Y
 		}
 	}
 }
 
 // cross takes the ray from p, or the straight raw ray, and reports whether it has an entry.
-func (r *sight) cross(b *optics.Boundary, p optics.Vec, by Solve) bool {
+func (r *sight) cross(b *optics.Stack, p optics.Vec, by Solve) bool {
 	if by != Invert {
 		r.bend(b)
 		return r.slopes.Near > 0

@@ -4,7 +4,8 @@ package correct
 // where the point has two rays or more and the centre of one is not finite or not
 // on its side of the ray's plane: above it, or below it with b.FromWater. A
 // MultiviewSolver does the same; call this before the outcomes that come between
-// NoOrigin and Grazing are set.
+// NoOrigin and Grazing are set. With b.Port there is no surface, and NoOrigin is for a centre or a
+// rotation that is not finite.
 func MarkNoCameras(out []Outcome, raw XYZ, b *Bundle) {
 	raw.mustHave(len(out))
 	b.mustHave(len(out))
@@ -22,10 +23,10 @@ func (b *Bundle) look(i int, raw XYZ) Outcome {
 	point, facing := raw.at(i), true
 	var r sight
 	for k := from; k < to; k++ {
-		if !b.sight(&r, k, point) {
+		if !b.sight(&r, i, k, point) {
 			return NoSurface
 		}
-		facing = facing && r.isFacing()
+		facing = facing && b.isFacing(&r)
 	}
 	if to-from >= 2 && !facing {
 		return NoOrigin

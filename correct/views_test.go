@@ -39,7 +39,7 @@ func TestViewsUnequalLengthsPanic(t *testing.T) {
 		"planes":        {func(p *photos, b *correct.Bundle) { b.Planes.SlopeY = nil; solve(p) }, lengths},
 		"cameras":       {func(p *photos, b *correct.Bundle) { b.Cameras.Y = nil; solve(p) }, lengths},
 		"water":         {func(p *photos, b *correct.Bundle) { b.Light.Water = nil; solve(p) }, lengths},
-		"no rotations":  {func(p *photos, b *correct.Bundle) { b.Cameras.Rotation = nil; solve(p) }, "correct: the image residual needs the rotation of each camera"},
+		"no rotations":  {func(p *photos, b *correct.Bundle) { b.Cameras.Rotation = nil; solve(p) }, "correct: the image residual and a port need the rotation of each camera"},
 		"marks":         {func(p *photos, b *correct.Bundle) { correct.MarkNoCameras(p.out, correct.XYZ{}, b) }, lengths},
 		"MarkWet":       {func(p *photos, b *correct.Bundle) { correct.MarkWet(p.out, &p.dst, p.raw, b.Planes) }, lengths},
 		"MeanSlopes":    {func(p *photos, b *correct.Bundle) { b.MeanSlopes(x[:3], x[:2], b.Planes) }, lengths},

@@ -14,7 +14,7 @@ import (
 // crossing is one task for Fermat: distances from the plane, run along it, indices.
 type crossing struct{ near, far, run, nNear, nFar float64 }
 
-func (c crossing) boundary() optics.Boundary { return optics.NewBoundary(c.nNear, c.nFar) }
+func (c crossing) boundary() optics.Stack { return optics.NewStack(c.nNear, c.nFar) }
 
 func (c crossing) slopes() optics.Slopes {
 	b := c.boundary()
@@ -141,7 +141,7 @@ func TestFermatGuess(t *testing.T) {
 	for i, c := range crossings(1000) {
 		want, b := c.slopes(), c.boundary()
 		for _, factor := range []float64{-1, 0.5, 1 - 1e-9, 1, 1 + 1e-4, 2, 1e9, math.Inf(1), math.NaN()} {
-			s := b.Fermat(c.near, c.far, c.run*c.run, optics.Slopes{Near: want.Near * factor, Far: want.Far * factor})
+			s := b.Fermat(c.near, c.far, c.run*c.run, optics.Slopes{Thin: want.Thin * factor})
 			near(t, "near slope over the one without guess", s.Near/want.Near, 1, 2e-15)
 			near(t, "far slope over the one without guess", s.Far/want.Far, 1, 2e-15)
 			if t.Failed() {
@@ -158,7 +158,7 @@ func TestFermatChange(t *testing.T) {
 	for i := range 2000 {
 		c := crossing{1 + 9*r.Float64(), 1 + 9*r.Float64(), 0.1 + 10*r.Float64(), 1 + r.Float64(), 1 + r.Float64()}
 		b, run2 := c.boundary(), c.run*c.run
-		byFar, byRun2 := b.Change(c.slopes(), c.near, c.far)
+		byFar, byRun2 := b.Change(c.slopes(), c.near, c.far, run2)
 		const h = 1e-4
 		at := func(far, run2 float64) float64 { return b.Fermat(c.near, far, run2, optics.Slopes{}).Near }
 		near(t, "by the far distance", byFar, (at(c.far+h, run2)-at(c.far-h, run2))/(2*h), 1e-8)
@@ -174,8 +174,8 @@ func TestBendIsRefract(t *testing.T) {
 	r := rand.New(rand.NewPCG(seed, 4))
 	for i := range 2000 {
 		n1, n2, rad, run := 1+r.Float64(), 1+r.Float64(), 1.5*r.Float64(), 10*r.Float64()
-		b := optics.NewBoundary(n1, n2)
-		far := b.Bend(math.Tan(rad)/run, run*run) * run
+		b := optics.NewStack(n1, n2)
+		far := b.Bend(math.Tan(rad)/run, run*run).Far * run
 		out, ok := optics.Refract(tilted(rad), up, n1, n2)
 		if ok != (far == far) {
 			t.Fatalf("seed %d: case %d: slope %g, refracted %v", seed, i, far, ok)
