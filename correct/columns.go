@@ -30,7 +30,7 @@ type Result struct {
 	Depth         []float64 // WaterLevel - Z, m, positive down
 	WaterLevel    []float64 // elevation of the surface at the true point's plan position, m
 	EntryLevel    []float64 // elevation of the surface where the ray crosses it, m
-	IncidenceRad  []float64 // angle between ray and surface normal on the origin's side, 0 to pi/2
+	IncidenceRad  []float64 // angle between ray and surface normal (of the glass, behind a Port) on the origin's side, 0 to pi/2
 	RefractionRad []float64 // the same angle on the point's side
 }
 

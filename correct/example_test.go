@@ -5,6 +5,7 @@ import (
 	"math"
 
 	"bentray/correct"
+	"bentray/correct/optics"
 )
 
 func ExampleMarkDry() {
@@ -84,6 +85,29 @@ func ExampleMultiviewSolver_Solve() {
 	solver.EntryPlan(x, y, out, nil, raw, dst.XYZ, &bundle)
 	fmt.Printf("%s at %.4f, entries at x %.4f and %.4f\n", out[0], dst.Z[0], x[0], x[1])
 	// Output: corrected at -4.0000, entries at x -3.0000 and 3.0000
+}
+
+// Two cameras look down through 30 mm of gas and 12 mm of an invented glass at a point
+// 4 m below it. The light has tangents of 4/3 in the gas, 5/12 in the pane, 3/4 in the water of index
+// 4/3, and so comes from 0.04 + 0.005 + 3 m aside. Prolonged straight, the rays meet above the point.
+func ExamplePort() {
+	raw := correct.XYZ{X: []float64{0}, Y: []float64{0}, Z: []float64{4.042 - 3.045*3/4}}
+	upright := [9]float64{1, 0, 0, 0, 1, 0, 0, 0, 1}
+	bundle := correct.Bundle{
+		Views: correct.Views{Start: []int32{0, 2}, Camera: []int32{0, 1}},
+		Cameras: &correct.Cameras{
+			XYZ:      correct.XYZ{X: []float64{-3.045, 3.045}, Y: []float64{0, 0}, Z: []float64{4.042, 4.042}},
+			Rotation: [][9]float64{upright, upright},
+		},
+		Port:            &correct.Port{DistanceM: 0.03, Panes: []optics.Layer{{ThicknessM: 0.012, Index: 2.08}}, Normal: correct.PortNormal(0, 0)},
+		Light:           correct.Light{Air: 1, Water: []float64{4. / 3}},
+		MaxIncidenceRad: math.Pi / 3,
+	}
+	dst, out := correct.NewResult(1), make([]correct.Outcome, 1)
+	var solver correct.MultiviewSolver
+	solver.Solve(&dst, out, nil, raw, &bundle)
+	fmt.Printf("%s from %.3f to %.3f, %.2f degrees in the housing\n", out[0], raw.Z[0], math.Abs(dst.Z[0]), dst.IncidenceRad[0]*180/math.Pi)
+	// Output: corrected from 1.758 to 0.000, 53.13 degrees in the housing
 }
 
 func ExampleMarkWet() {

@@ -58,12 +58,8 @@ func (s *MultiviewSolver) areBeyond(p optics.Vec) bool {
 }
 
 // straightDown returns a point beyond the surface for rays that have no
-// intersection: n times the depth, along the normal of the first; the raw point itself where
-// pinholes absorbed the port.
+// intersection: n times the depth, along the normal of the first.
 func (s *MultiviewSolver) straightDown() optics.Vec {
 	r := &s.sights[0]
-	if r.meetM != 0 {
-		return optics.Vec{}
-	}
 	return r.up.Scale(r.rise * (1 - s.stack.Ratio()))
 }

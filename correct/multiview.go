@@ -22,9 +22,9 @@ const (
 	Average
 )
 
-// MultiviewSolver corrects points that a triangulation intersected from images. The zero
-// value is ready; it holds room for the rays of one point, so each goroutine
-// needs its own.
+// MultiviewSolver corrects points that a triangulation intersected from images, taken through
+// the water surface or through a Port. The zero value is ready; it holds room for the rays of
+// one point, so each goroutine needs its own.
 type MultiviewSolver struct {
 	sights []sight
 	stack  optics.Stack
@@ -34,14 +34,16 @@ type MultiviewSolver struct {
 // leaves all others in dst and out as they are. Of the listed ones it takes those that are
 // Corrected. It writes all columns of dst: WaterLevel is that of the plane of the
 // point's first ray at the true plan position, EntryLevel, IncidenceRad and RefractionRad are
-// means over the rays. A point that is not Corrected keeps its raw position. New
-// outcomes:
+// means over the rays. With a Port there is no water surface: Depth, WaterLevel and EntryLevel are
+// NaN, and the angles are from the port's normal, in the housing and in the water. A point that
+// is not Corrected keeps its raw position. New outcomes:
 //   - NoSurface: a ray has no surface.
 //   - NoOrigin: see MarkNoCameras.
 //   - FewRays: fewer than two rays.
 //   - Grazing: a ray's incidence is not within b.MaxIncidenceRad, or a raw ray is totally
 //     reflected. IncidenceRad is written all the same. Invert looks at the rays of
-//     the solution, and at the raw rays where there is none.
+//     the solution, and at the raw rays where there is none. So does a raw point behind a
+//     Port or its camera; a ray from behind has more than pi/2.
 //   - Unsolved: the rays are parallel or too nearly so, a camera of the image residual
 //     looks away from the point, the method did not converge to a point beyond the surface, an
 //     index is not positive and finite, or the result is not finite.

@@ -66,9 +66,22 @@ type scene struct {
 	dirs      []vec
 }
 
+// widest returns the largest angle by which a raw ray misses a point, radians.
+func (s *scene) widest(p vec) float64 {
+	widest := 0.0
+	for k, c := range s.cameras {
+		way := p.plus(-1, c)
+		widest = max(widest, math.Atan2(s.dirs[k].cross(way).length(), s.dirs[k].dot(way)))
+	}
+	return widest
+}
+
 // triangulate returns where the straight rays intersect best: Gauss-Newton from start.
 func (s *scene) triangulate(rule correct.Residual, start vec) vec {
-	const h = 1e-3
+	h := math.Inf(1)
+	for _, c := range s.cameras {
+		h = min(h, 1e-4*start.plus(-1, c).length())
+	}
 	p := start
 	for range 200 {
 		var n [3][4]float64

@@ -21,7 +21,7 @@ const (
 	NoWater                    // no temperature and salinity for it
 	OutOfRange                 // water outside the range of the index formula
 	FewRays                    // seen by fewer than two rays
-	Grazing                    // incidence beyond the limit, or total reflection
+	Grazing                    // incidence beyond the limit, total reflection, or a point behind a port
 	Unsolved                   // no result: not finite, or the rays do not fix one
 )
 

@@ -25,7 +25,8 @@ type Port struct {
 	//
 	// Otherwise they were calibrated in water as pinholes that absorb the port, at targets this
 	// far in front of its outer face, metres along its normal, positive: Cameras has the
-	// perspective centres of these pinholes, and the raw rays start there. See doc.go.
+	// perspective centres of these pinholes, and the raw rays start there. The package comment
+	// defines them.
 	CalibrationM float64
 }
 

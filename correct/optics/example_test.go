@@ -53,3 +53,12 @@ func ExampleThroughPlane() {
 	fmt.Printf("%.4f %v\n", entry.X, ok)
 	// Output: 4.0000 true
 }
+
+func ExampleStack_Fermat() {
+	// From 30 mm of gas through 12 mm of an invented glass to 4 m of water, 3.045 m aside.
+	s := optics.NewStack(1, 4./3, optics.Layer{ThicknessM: 0.012, Index: 2.08})
+	const run = 0.040 + 0.005 + 3
+	ray := s.Fermat(0.03, 4, run*run, optics.Slopes{})
+	fmt.Printf("%.4f in the gas, %.4f in the water\n", ray.Near*run, ray.Far*run)
+	// Output: 1.3333 in the gas, 0.7500 in the water
+}
