@@ -24,6 +24,10 @@ type Bundle struct {
 	// Warm says that dst holds points near the solutions to start from, such as those of the
 	// same points under planes that differ a little. Invert alone reads it.
 	Warm bool
+	// EntryX and EntryY (m), one value per ray, are filled with the plan positions where the
+	// rays of Corrected points cross their planes, as by EntryPlan, but for the last step of
+	// Newton's method. Nil where they are not wanted.
+	EntryX, EntryY []float64
 	// MaxIncidenceRad is the largest angle between ray and surface normal on
 	// the camera's side, 0 to pi/2; with a Port that between the light and its normal in the
 	// housing.
@@ -36,6 +40,9 @@ func (b *Bundle) mustHave(n int) {
 	mustHave(n, b.Light.Water)
 	if b.Port == nil {
 		b.Planes.mustHave(len(b.Camera))
+	}
+	if b.EntryX != nil {
+		mustHave(len(b.Camera), b.EntryX, b.EntryY)
 	}
 	if (b.Residual == Image && b.Solve == Invert || b.Port != nil) && len(b.Cameras.Rotation) != len(b.Cameras.X) {
 		panic(errRotations)

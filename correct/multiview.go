@@ -103,10 +103,10 @@ func (s *MultiviewSolver) gather(i int, point optics.Vec, b *Bundle) Outcome {
 		facing = facing && b.isFacing(&s.sights[k])
 	}
 	switch {
-	case to-from < 2:
-		return FewRays
 	case !facing:
 		return NoOrigin
+	case to-from < 2:
+		return FewRays
 	}
 	return Corrected
 }
@@ -177,7 +177,11 @@ func (s *MultiviewSolver) put(dst *Result, i int, point, p optics.Vec, b *Bundle
 	level, entry := first.levelAt(p), 0.0
 	for k := range s.sights {
 		surface := b.Planes.around(from+k, point.Z)
-		entry += surface.level - first.level + surface.climb(s.sights[k].entry(&s.stack))
+		at := s.sights[k].entry(&s.stack)
+		entry += surface.level - first.level + surface.climb(at)
+		if b.EntryX != nil {
+			b.EntryX[from+k], b.EntryY[from+k] = point.X+at.X, point.Y+at.Y
+		}
 	}
 	depth := level - end.Z
 	if !isFiniteVec(end) || !isFinite(depth) {

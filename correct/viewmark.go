@@ -1,9 +1,8 @@
 package correct
 
 // MarkNoCameras sets NoSurface where a ray of the point has no surface, and NoOrigin
-// where the point has two rays or more and the centre of one is not finite or not
-// on its side of the ray's plane: above it, or below it with b.FromWater. A
-// MultiviewSolver does the same; call this before the outcomes that come between
+// where the centre of a camera is not finite or not on its side of the ray's plane: above
+// it, or below it with b.FromWater. A MultiviewSolver does the same; call this before the outcomes that come between
 // NoOrigin and Grazing are set. With b.Port there is no surface, and NoOrigin is for a centre or a
 // rotation that is not finite.
 func MarkNoCameras(out []Outcome, raw XYZ, b *Bundle) {
@@ -28,7 +27,7 @@ func (b *Bundle) look(i int, raw XYZ) Outcome {
 		}
 		facing = facing && b.isFacing(&r)
 	}
-	if to-from >= 2 && !facing {
+	if !facing {
 		return NoOrigin
 	}
 	return Corrected

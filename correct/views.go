@@ -9,8 +9,8 @@ import (
 // Views says which cameras saw each point. Point i has the rays Start[i] up to, not
 // including, Start[i+1]; Start has one value more than there are points, from 0
 // to the number of rays, never falling. Camera is one value per ray, an index into
-// Cameras. A camera that a point lists twice counts twice, as it does in a
-// triangulation.
+// Cameras. A camera that a point lists twice counts twice: doubles are not
+// looked for.
 type Views struct{ Start, Camera []int32 }
 
 // Cameras are perspective centres in metres, with the rotation of each: object =

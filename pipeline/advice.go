@@ -15,7 +15,7 @@ var advice = map[correct.Outcome]string{
 	correct.NoWater:    "have no temperature and salinity: no zone or station gives them, in place or time",
 	correct.OutOfRange: "are in water outside the range of the index formula",
 	correct.FewRays:    "were seen by fewer than two cameras",
-	correct.Grazing:    "were seen at more than max_incidence from the surface normal",
+	correct.Grazing:    "were seen at more than max_incidence from the surface normal, or by a ray that the surface reflects",
 	correct.Unsolved:   "have no solution: their rays fix no point, or meet a curved surface at no one place or more than once",
 }
 

@@ -61,7 +61,7 @@ func newCameras(list *geo.Cameras, r *job.Rays) (c *cameras, err error) {
 	c.centres.Rotation = list.Rotations()
 	c.bundle = correct.Bundle{FromWater: r.CameraMedium == job.InWater}
 	switch residual := r.Residual; {
-	case residual == job.Image && !list.HasRotations():
+	case residual == job.Image && r.Solve == job.Invert && !list.HasRotations():
 		return nil, errors.New("the cameras have no rotations, which residual = \"image\" needs; give omega, phi, kappa or r11 to r33, or use residual = \"angle\"")
 	case residual == job.Image || residual == "" && list.HasRotations():
 		c.bundle.Residual = correct.Image

@@ -251,7 +251,7 @@ func TestCautionsOfAFile(t *testing.T) {
 		}},
 		{"invalid and grazing", north + "500005,,-1,5,6,400\n500005,6000006,-1,505000,6000006,400\n", rest, []string{
 			"1 of 3 points have no finite coordinates",
-			"1 of 3 points were seen at more than max_incidence from the surface normal",
+			"1 of 3 points were seen at more than max_incidence from the surface normal, or by a ray that the surface reflects",
 		}},
 		{"diverted", north + "1\n", strings.Replace(rest, "[output]", "bad_rows = \"divert\"\n[output]", 1), []string{
 			"1 of 2 rows could not be read and were diverted to a.csv.rejects.csv",

@@ -146,7 +146,7 @@ func checkLocalReceipt(t *testing.T, output string) {
 		"2 of 17 points have no water surface: it does not reach them in place or time, or its column is empty there",
 		"2 of 17 points have no temperature and salinity: no zone or station gives them, in place or time",
 		"2 of 17 points are in water outside the range of the index formula",
-		"2 of 17 points were seen at more than max_incidence from the surface normal",
+		"2 of 17 points were seen at more than max_incidence from the surface normal, or by a ray that the surface reflects",
 		"1 of 17 points have no solution: their rays fix no point, or meet a curved surface at no one place or more than once",
 		"1 of 17 points have no ray origin: an origin column is empty there",
 	}

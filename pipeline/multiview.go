@@ -91,7 +91,7 @@ func (y *rays) appendViews(sn *sensor, w *workspace, c *cloud.Chunk, r *reading,
 	before := len(y.camera)
 	var err error
 	if y.camera, err = sn.appendViews(y.camera, w, c, r, i); err != nil && w.fault == nil {
-		w.fault = fmt.Errorf("views of the point at %.3f, %.3f: %w (sensor %q)", c.Numbers[0][i], c.Numbers[1][i], err, sn.Name)
+		w.fault = fmt.Errorf("views of the point at %.3f, %.3f, which is of sensor %q: %w; another sensor's cameras have the id", c.Numbers[0][i], c.Numbers[1][i], sn.Name, err)
 	}
 	if isFirst := w.rayCount[i] != w.rayCount[i]; isFirst && r.views >= 0 && i%imageCheckStep == 0 {
 		y.checkImages(sn, w, y.camera[before:], i)
@@ -153,6 +153,7 @@ func (s *survey) solve(b *batch, sn *sensor, w *workspace) {
 		y.solver.Solve(&b.result, b.out, nil, b.raw, &b.bundle)
 		return
 	}
+	correct.Keep(&b.result, b.out, b.raw) // the solver is told of the others alone
 	y.list(b.out, correct.Corrected)
 	s.takeFirstPlanes(b, sn, w)
 	if s.surface.curved {
@@ -178,6 +179,7 @@ func (y *rays) list(out []correct.Outcome, of correct.Outcome) {
 func (s *survey) takeFirstPlanes(b *batch, sn *sensor, w *workspace) {
 	y, straight := b.rays, b.bundle
 	growAll(len(y.camera), &y.x, &y.y, &y.lastX, &y.lastY)
+	b.bundle.EntryX, b.bundle.EntryY = y.x, y.y
 	straight.Solve = correct.Intersect
 	y.solver.EntryPlan(y.lastX, y.lastY, b.out, y.moving, b.raw, b.raw, &straight)
 	s.takeRayPlanes(b, sn, w)
@@ -205,7 +207,6 @@ func (s *survey) bringToRest(b *batch, sn *sensor, w *workspace) {
 	for range meetTries {
 		y.solver.Solve(&b.result, b.out, y.moving, b.raw, &b.bundle)
 		b.bundle.Warm = true
-		y.solver.EntryPlan(y.x, y.y, b.out, y.moving, b.raw, b.result.XYZ, &b.bundle)
 		if y.settle(b); len(y.moving) == 0 {
 			break
 		}
