@@ -76,11 +76,11 @@ func (t *tally) geometryCautions(s *survey) []string {
 	return cautions
 }
 
-// looksLikeWeek tells whether times that should count from an epoch are all within a week
-// of it.
+// looksLikeWeek tells whether times that should be adjusted standard GPS times are all
+// within a week of its zero, in 2011.
 func (t *tally) looksLikeWeek(s *survey) bool {
 	const week = 7 * 86400
-	return s.job.Input.Time != job.GPSWeek && !t.times.isEmpty() && t.times.low >= 0 && t.times.high <= week
+	return s.job.Input.Time == job.GPSAdjusted && !t.times.isEmpty() && t.times.low >= 0 && t.times.high <= week
 }
 
 // profileCautions looks at how the level points agree with their profile, and at

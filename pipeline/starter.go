@@ -76,7 +76,7 @@ const starterPulse = `model = "pulse"                # airborne laser; for image
 
 const starterImages = `model = "multiview"            # the column views names the cameras that saw each point
 # cameras = "cameras.csv"      # camera,x,y,z and, where known, omega,phi,kappa
-# residual = "image"           # what the cloud's software minimised, where that is known: "image", "angle" or "equal"
+# The key residual says what the cloud's software minimised, where that is known: "image", "angle" or "equal".
 `
 
 // writeMissing offers the roles that a job needs and no column plays by its name.
