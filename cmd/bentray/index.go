@@ -82,8 +82,11 @@ func (c *mediaFlags) report() (*mediaReport, error) {
 		return nil, err
 	}
 	r.Ratio = r.WaterPhase / r.AirPhase
-	if medium.ChenMilleroPublished(water) {
-		speed := medium.SoundSpeedChenMillero(water)
+	if medium.ChenMillero.Published(water, 0) {
+		speed, err := medium.ChenMillero.Speed(water, 0)
+		if err != nil {
+			return nil, err
+		}
 		r.SoundSpeed = &speed
 	}
 	return r, nil

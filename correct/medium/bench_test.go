@@ -11,9 +11,14 @@ func TestNoAllocation(t *testing.T) {
 		"millard-seaver": func() { n, g, _ := MillardSeaver.Index(water, 532); sum += n + g },
 		"iapws":          func() { n, g, _ := IAPWS.Index(fresh, 532); sum += n + g },
 		"ciddor":         func() { n, g, _ := air.Index(532); sum += n + g },
-		"chen-millero":   func() { sum += SoundSpeedChenMillero(water) },
+		"sound": func() {
+			for _, f := range soundFormulas {
+				c, _ := f.Speed(water, 0.7)
+				sum += c
+			}
+		},
 		"predicates": func() {
-			if QuanFry.Computed(outside, 532) || QuanFry.Published(outside, 532) || ChenMilleroPublished(outside) || !air.Published(532) {
+			if QuanFry.Computed(outside, 532) || QuanFry.Published(outside, 532) || DelGrosso.Published(outside, 0) || !air.Published(532) {
 				sum++
 			}
 		},
@@ -49,10 +54,15 @@ func BenchmarkAirIndex(b *testing.B) {
 	}
 }
 
-func BenchmarkSoundSpeedChenMillero(b *testing.B) {
-	b.ReportAllocs()
-	w, sum := Water{TemperatureC: 17.5, Salinity: 34.9, PressureDbar: 12}, 0.0
-	for b.Loop() {
-		sum += SoundSpeedChenMillero(w)
+func BenchmarkSoundSpeed(b *testing.B) {
+	for _, f := range soundFormulas {
+		b.Run(f.String(), func(b *testing.B) {
+			b.ReportAllocs()
+			w, sum := Water{TemperatureC: 17.5, Salinity: 34.9, PressureDbar: 12}, 0.0
+			for b.Loop() {
+				c, _ := f.Speed(w, 0.7)
+				sum += c
+			}
+		})
 	}
 }

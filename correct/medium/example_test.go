@@ -2,6 +2,7 @@ package medium_test
 
 import (
 	"fmt"
+	"math"
 
 	"bentray/correct/medium"
 )
@@ -40,10 +41,30 @@ func ExampleParseWaterFormula() {
 	// Output: millard-seaver true <nil>
 }
 
-func ExampleSoundSpeedChenMillero() {
+func ExampleSoundFormula_Speed() {
 	// The check value of UNESCO Technical Papers in Marine Science 44 (1983),
 	// 1731.995 m/s, is for 40 degrees C of IPTS-68.
 	w := medium.Water{TemperatureC: 40 / 1.00024, Salinity: 40, PressureDbar: 10000}
-	fmt.Printf("%.3f m/s\n", medium.SoundSpeedChenMillero(w))
-	// Output: 1731.995 m/s
+	speed, err := medium.ChenMillero.Speed(w, 0)
+	fmt.Printf("%.3f m/s, %v\n", speed, err)
+
+	_, err = medium.DelGrosso.Speed(medium.Water{TemperatureC: 12}, 0)
+	fmt.Println(err)
+	// Output:
+	// 1731.995 m/s, <nil>
+	// salinity is 0, want 20 to 45 for del-grosso
+}
+
+func ExamplePressureDbar() {
+	latitude := 54 * math.Pi / 180
+	p := medium.PressureDbar(25, latitude)
+	speed, _ := medium.Mackenzie.Speed(medium.Water{TemperatureC: 11, Salinity: 33, PressureDbar: p}, latitude)
+	fmt.Printf("%.3f dbar, %.2f m/s\n", p, speed)
+	// Output: 25.238 dbar, 1491.32 m/s
+}
+
+func ExampleParseSoundFormula() {
+	formula, err := medium.ParseSoundFormula("del-grosso")
+	fmt.Println(formula, err)
+	// Output: del-grosso <nil>
 }

@@ -90,11 +90,34 @@ func TestPublishedIndex(t *testing.T) {
 }
 
 func TestPublishedSoundSpeed(t *testing.T) {
-	kinds := map[string]int{"own_formula": 30}
-	verify(t, readCheckValues(t, "sound_speed_chen_millero.json"), kinds, func(c checkValue) (float64, bool) {
-		w := Water{TemperatureC: c.Inputs["t68_C"] / 1.00024, Salinity: c.Inputs["S"], PressureDbar: c.Inputs["p_dbar_gauge"]}
-		return SoundSpeedChenMillero(w), c.Formula == "Chen & Millero 1977 (UNESCO EOS-80)"
-	})
+	kinds := map[string]int{"own_formula": 41, "other_formula": 12, "rounded_inputs": 2}
+	verify(t, readCheckValues(t, "sound_speed.json"), kinds, computeSound)
+}
+
+// computeSound takes the entry's temperature to ITS-90 and its pressure to dbar. Formulas
+// are called without their ranges: some printed values lie outside.
+func computeSound(c checkValue) (float64, bool) {
+	in, latitude := c.Inputs, c.Inputs["lat_deg"]*math.Pi/180
+	w := Water{TemperatureC: in["t68_C"]/1.00024 + in["t90_C"], Salinity: in["S"], PressureDbar: in["p_dbar_gauge"]}
+	switch c.Formula {
+	case "Chen & Millero 1977 (UNESCO EOS-80)", "Wong & Zhu 1995, refit of Chen & Millero":
+		return chenMillero(w), true
+	case "TEOS-10":
+		// Practical salinity of the reference composition; the anomaly is worth 0.02 m/s.
+		w.Salinity = in["SA_g_kg"] * 35 / 35.16504
+		return chenMillero(w), true
+	case "Del Grosso 1974, refit of Wong & Zhu 1995":
+		w.PressureDbar = in["p_kgf_cm2"] * 9.80665
+		return delGrosso(w), true
+	case "Mackenzie 1981":
+		return mackenzie(w.TemperatureC, w.Salinity, in["depth_m"]), true
+	case "Saunders 1981":
+		if c.Quantity == "pressure, dbar" {
+			return PressureDbar(in["depth_m"], latitude), true
+		}
+		return DepthM(w.PressureDbar, latitude), true
+	}
+	return 0, false
 }
 
 func computeIndex(c checkValue) (float64, bool) {

@@ -1,64 +1,107 @@
 package medium
 
-import "math"
+import (
+	"fmt"
+	"math"
+	"strings"
+)
 
-// Coefficients of Chen & Millero 1977 as adopted in EOS-80 (Fofonoff & Millard
-// 1983, UNESCO Technical Papers in Marine Science 44, section 9): the row is
-// the power of the pressure in bar, the column that of the temperature in
-// degrees C of IPTS-68. The names are those of the publication.
+// SoundFormula names a formula for the speed of sound in sea water. The zero value
+// is ChenMillero, the default.
+type SoundFormula uint8
+
+const (
+	// ChenMillero is the formula of Chen & Millero 1977, that of EOS-80. It alone
+	// reaches to fresh water.
+	ChenMillero SoundFormula = iota
+	// DelGrosso is the formula of Del Grosso 1974 as refitted to ITS-90 by Wong & Zhu
+	// 1995.
+	DelGrosso
+	// Mackenzie is the nine-term formula of Mackenzie 1981, by depth.
+	Mackenzie
+)
+
+var soundFormulaNames = [...]string{
+	ChenMillero: "chen-millero",
+	DelGrosso:   "del-grosso",
+	Mackenzie:   "mackenzie",
+}
+
+// ParseSoundFormula returns the formula called s: "chen-millero", "del-grosso" or
+// "mackenzie". For any other text it returns an error that names the three.
+func ParseSoundFormula(s string) (SoundFormula, error) {
+	for i, name := range soundFormulaNames {
+		if s == name {
+			return SoundFormula(i), nil
+		}
+	}
+	return 0, fmt.Errorf("sound speed formula is %q, want one of %s", s, strings.Join(soundFormulaNames[:], ", "))
+}
+
+// String returns the name that ParseSoundFormula takes.
+func (f SoundFormula) String() string {
+	if int(f) < len(soundFormulaNames) {
+		return soundFormulaNames[f]
+	}
+	return fmt.Sprintf("SoundFormula(%d)", uint8(f))
+}
+
+// Speed returns the speed of sound in water in m/s. For a depth, let the pressure be
+// PressureDbar(depth, latitude).
+//
+// The latitude, radians, is read by Mackenzie alone, which takes the depth back from
+// the pressure; the others need none. A state outside the computed range (see the
+// package comment) or NaN gives NaN and a *RangeError. Speed panics for a value
+// of f that is none of the constants.
+func (f SoundFormula) Speed(w Water, latitudeRad float64) (float64, error) {
+	values := soundValues(w, latitudeRad)
+	if i := breach(soundComputed[f][:], values[:]); i >= 0 {
+		return math.NaN(), newRangeError(f.String(), soundQuantities[i], soundComputed[f][i], values[i])
+	}
+	switch f {
+	case DelGrosso:
+		return delGrosso(w), nil
+	case Mackenzie:
+		return mackenzie(w.TemperatureC, w.Salinity, values[3]), nil
+	}
+	return chenMillero(w), nil
+}
+
+// Published reports whether the state is inside the range that the formula was
+// published for; if not, Speed extends it. The latitude, radians, is read by
+// Mackenzie alone. NaN is not inside.
+func (f SoundFormula) Published(w Water, latitudeRad float64) bool {
+	values := soundValues(w, latitudeRad)
+	return breach(soundPublished[f][:], values[:]) < 0
+}
+
+// Ranges of sound are in this order: temperature, salinity, pressure, depth. The limit
+// of Del Grosso's pressure is 1000 kgf/cm2.
 var (
-	chenMilleroC = [][]float64{
-		{1402.388, 5.03711, -5.80852e-2, 3.3420e-4, -1.47800e-6, 3.1464e-9},
-		{0.153563, 6.8982e-4, -8.1788e-6, 1.3621e-7, -6.1185e-10},
-		{3.1260e-5, -1.7107e-6, 2.5974e-8, -2.5335e-10, 1.0405e-12},
-		{-9.7729e-9, 3.8504e-10, -2.3643e-12},
+	soundQuantities = [4]quantity{
+		{"water temperature", "degrees C"},
+		{"salinity", ""},
+		{"water pressure", "dbar"},
+		{"depth", "m"},
 	}
-	chenMilleroA = [][]float64{
-		{1.389, -1.262e-2, 7.164e-5, 2.006e-6, -3.21e-8},
-		{9.4742e-5, -1.2580e-5, -6.4885e-8, 1.0507e-8, -2.0122e-10},
-		{-3.9064e-7, 9.1041e-9, -1.6002e-10, 7.988e-12},
-		{1.100e-10, 6.649e-12, -3.389e-13},
+	soundComputed = [...][4]interval{
+		ChenMillero: {{-2, 40}, {0, 45}, {0, 10000}, anyNumber},
+		DelGrosso:   {{-2, 35}, {20, 45}, {0, 1000 * dbarPerKgf}, anyNumber},
+		Mackenzie:   {{-2, 35}, {20, 45}, anyNumber, {0, 8000}},
 	}
-	chenMilleroB = [][]float64{
-		{-1.922e-2, -4.42e-5},
-		{7.3637e-5, 1.7945e-7},
-	}
-	chenMilleroD = [][]float64{
-		{1.727e-3},
-		{-7.9836e-6},
+	soundPublished = [...][4]interval{
+		ChenMillero: {{0, 40}, {0, 40}, {0, 10000}, anyNumber},
+		DelGrosso:   {{0, 30}, {30, 40}, {0, 1000 * dbarPerKgf}, anyNumber},
+		Mackenzie:   {{2, 30}, {25, 40}, anyNumber, {0, 8000}},
 	}
 )
 
-// SoundSpeedChenMillero returns the speed of sound in sea water in m/s by Chen
-// & Millero 1977, the formula of EOS-80.
-//
-// The temperature is taken from ITS-90 to the formula's IPTS-68 by T68 = 1.00024
-// T90 (Saunders 1990). It is evaluated for any state; ask ChenMilleroPublished
-// whether the state is inside its range. NaN in any input and a negative
-// salinity give NaN.
-func SoundSpeedChenMillero(w Water) float64 {
-	t68, bar, s := 1.00024*w.TemperatureC, w.PressureDbar/10, w.Salinity
-	return polynomial(bar, t68, chenMilleroC) +
-		s*(polynomial(bar, t68, chenMilleroA)+math.Sqrt(s)*polynomial(bar, t68, chenMilleroB)+s*polynomial(bar, t68, chenMilleroD))
-}
-
-// ChenMilleroPublished reports whether the state is inside the range that Chen &
-// Millero 1977 was published for: 0 to 40 degrees C, salinity 0 to 40, 0 to
-// 10000 dbar. NaN is not inside.
-func ChenMilleroPublished(w Water) bool {
-	ranges := [3]interval{{0, 40}, {0, 40}, {0, 10000}}
-	return breach(ranges[:], []float64{w.TemperatureC, w.Salinity, w.PressureDbar}) < 0
-}
-
-// polynomial returns the sum over i and j of rows[i][j] x^i y^j.
-func polynomial(x, y float64, rows [][]float64) float64 {
-	sum := 0.0
-	for i := len(rows) - 1; i >= 0; i-- {
-		row := 0.0
-		for j := len(rows[i]) - 1; j >= 0; j-- {
-			row = row*y + rows[i][j]
-		}
-		sum = sum*x + row
+// soundValues returns what the ranges are asked for. The depth is 0 where the pressure
+// is, whatever the latitude; without a latitude (NaN) it is NaN elsewhere.
+func soundValues(w Water, latitudeRad float64) [4]float64 {
+	depth := 0.0
+	if w.PressureDbar != 0 {
+		depth = DepthM(w.PressureDbar, latitudeRad)
 	}
-	return sum
+	return [4]float64{w.TemperatureC, w.Salinity, w.PressureDbar, depth}
 }
