@@ -1,9 +1,11 @@
 package correct_test
 
 import (
+	"fmt"
 	"testing"
 
 	"bentray/correct"
+	"bentray/correct/acoustics"
 )
 
 func TestUnequalLengthsPanic(t *testing.T) {
@@ -49,10 +51,13 @@ func TestResultOverRaw(t *testing.T) {
 
 func TestNoAllocation(t *testing.T) {
 	s := simulate(1000, 24, 0.05, noOffset)
+	sonar := straight(t, 1000, 40)
 	for name, kernel := range map[string]func(){
 		"marks and Vertical": s.vertical,
 		"marks and Pulse":    func() { s.pulse(limit) },
 		"MarkNoOrigin":       func() { correct.MarkNoOrigin(s.out, s.raw, s.origin, s.planes) },
+		"marks and Sounding": sonar.run,
+		"MarkNoHead":         func() { correct.MarkNoHead(sonar.out, sonar.raw, sonar.origin, sonar.planes) },
 	} {
 		if got := testing.AllocsPerRun(20, kernel); got != 0 {
 			t.Errorf("%s: %g allocations a call, want 0", name, got)
@@ -97,4 +102,31 @@ func BenchmarkMarks(b *testing.B) {
 		s.mark()
 		correct.MarkNoOrigin(s.out, s.raw, s.origin, s.planes)
 	})
+}
+
+// All layers down to 50 m of 60 are crossed.
+func BenchmarkSounding(b *testing.B) {
+	for _, layers := range []int{40, 500} {
+		for _, isAssumed := range []bool{false, true} {
+			name := fmt.Sprintf("speed/%d", layers)
+			if isAssumed {
+				name = fmt.Sprintf("profile/%d", layers)
+			}
+			b.Run(name, func(b *testing.B) {
+				s := straight(b, chunk/16, layers*6/5)
+				for i := range s.raw.Z {
+					s.raw.Z[i] = s.origin.Z[i] - 50
+				}
+				if isAssumed {
+					s.sound.Assumed = springSea.profile(b, layers*6/5, acoustics.Linear)
+				}
+				b.ReportAllocs()
+				for b.Loop() {
+					clear(s.out)
+					correct.Sounding(&s.dst, s.out, s.raw, s.origin, s.planes, &s.sound)
+				}
+				b.ReportMetric(float64(b.Elapsed().Nanoseconds())/float64(b.N)/float64(len(s.out)), "ns/point")
+			})
+		}
+	}
 }

@@ -38,7 +38,7 @@ func isUnordered(depths []float64) bool {
 			turns++
 		}
 	}
-	return 2*turns > len(depths)-2
+	return turns > 0 && 2*turns > len(depths)-2
 }
 
 // deepest returns the positions of the two rows, the second not before the first, between which the
