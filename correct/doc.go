@@ -15,6 +15,8 @@
 //     local normal, then scaled in range by the group index.
 //   - MultiviewSolver: a point that was intersected from images taken through the surface,
 //     by cameras in the air or, looking up, in the water; or by cameras in the water behind a Port.
+//   - Sounding: sound from a head in the water, traced for its travel time through the layers of
+//     a sound-speed profile. Its depths count from the level of the plane over the head.
 //
 // # Flat port
 //
@@ -50,6 +52,7 @@
 //	MarkInvalid, MarkNoSurface, MarkDry, MarkNoOrigin, then Vertical or Pulse
 //	MarkInvalid, MarkNoSurface, MarkDry or MarkWet, MarkNoCameras, then MultiviewSolver.Solve
 //	MarkInvalid, MarkNoCameras, then MultiviewSolver.Solve with a Port
+//	MarkInvalid, MarkNoSurface, MarkDry, MarkNoHead, then Sounding
 //
 // The kernels rely on the marks before MarkNoOrigin and MarkNoCameras. A point they should have taken is never
 // corrected: it comes out Unsolved.
@@ -78,7 +81,11 @@
 // (TestInvertReturnsTruth), and so behind ports of any kind, tilted too, 0.6 to 4 m away
 // (TestPortReturnsTruth). Where raw rays miss the raw point by many degrees, as those of cameras calibrated
 // in air may that look from all sides, several points may have the same raw point, and
-// points may be Unsolved that have a solution. The last bits may differ between
+// points may be Unsolved that have a solution.
+// Sounding returns it within 1e-5 m, to 45 m deep and 70 degrees
+// off nadir, which is the error of the sampled water in the test (TestSoundingReturnsTruth);
+// where what was assumed is true it moves nothing, within 2e-9 m (TestSoundingMovesNothing).
+// The last bits may differ between
 // processor architectures that fuse multiplication and addition and those that do not.
 //
 // # Sources

@@ -5,6 +5,7 @@ import (
 	"math"
 
 	"bentray/correct"
+	"bentray/correct/acoustics"
 	"bentray/correct/optics"
 )
 
@@ -117,4 +118,37 @@ func ExampleMarkWet() {
 	correct.MarkWet(out, &dst, raw, surface)
 	fmt.Println(out[0], dst.Depth[1])
 	// Output: corrected 2.5
+}
+
+func ExampleSounding() {
+	water, err := acoustics.NewProfile([]float64{0, 5, 20}, []float64{1492, 1491, 1470}, acoustics.Linear)
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	raw := correct.XYZ{X: []float64{12}, Y: []float64{0}, Z: []float64{-16}}
+	head := correct.XYZ{X: []float64{0}, Y: []float64{0}, Z: []float64{-0.4}}
+	surface := correct.Planes{Level: []float64{0.1}, SlopeX: []float64{0}, SlopeY: []float64{0}}
+	sound := correct.Sound{Profiles: []*acoustics.Profile{water}, AssumedSpeed: []float64{1500}}
+	dst, out := correct.NewSoundResult(1), make([]correct.Outcome, 1)
+	correct.Sounding(&dst, out, raw, head, surface, &sound)
+	fmt.Printf("%s, depth %.2f, %.1f m/s at the head, %.1f at the bed\n", out[0], dst.Depth[0], dst.HeadSpeed[0], dst.BedSpeed[0])
+	// Output: corrected, depth 15.99, 1491.9 m/s at the head, 1475.6 at the bed
+}
+
+func ExampleMarkNoHead() {
+	raw := correct.XYZ{X: []float64{0, 0}, Y: []float64{0, 0}, Z: []float64{-2, -2}}
+	head := correct.XYZ{X: []float64{1, 1}, Y: []float64{0, 0}, Z: []float64{-0.5, 0.5}}
+	surface := correct.Planes{Level: []float64{0, 0}, SlopeX: []float64{0, 0}, SlopeY: []float64{0, 0}}
+	out := make([]correct.Outcome, 2)
+	correct.MarkNoHead(out, raw, head, surface)
+	fmt.Println(out)
+	// Output: [corrected no_origin]
+}
+
+// Mounted with its starboard edge 30 degrees down, on a vessel that goes north.
+func ExampleFaceNormal() {
+	n := correct.FaceNormal(math.Pi/6, 0, 0)
+	fmt.Printf("%.3f %.3f %.3f\n", n.X, n.Y, n.Z)
+	// Output: -0.500 0.000 -0.866
 }

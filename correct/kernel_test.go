@@ -16,6 +16,10 @@ func TestUnequalLengthsPanic(t *testing.T) {
 		"MarkNoOrigin":  func(s *survey) { s.origin.X = nil; correct.MarkNoOrigin(s.out, s.raw, s.origin, s.planes) },
 		"Vertical":      func(s *survey) { s.light.Water = nil; s.vertical() },
 		"Pulse":         func(s *survey) { s.light.WaterGroup = nil; s.pulse(limit) },
+		"MarkNoHead":    func(s *survey) { s.origin.X = nil; correct.MarkNoHead(s.out, s.raw, s.origin, s.planes) },
+		"Sounding":      func(*survey) { s := straight(t, 3, 5); s.sound.AssumedSpeed = nil; s.run() },
+		"Sounding, of":  func(*survey) { s := straight(t, 3, 5); s.sound.Profile = []int32{0}; s.run() },
+		"Sounding, dst": func(*survey) { s := straight(t, 3, 5); s.dst.Passage = nil; s.run() },
 	} {
 		t.Run(name, func(t *testing.T) {
 			defer func() {

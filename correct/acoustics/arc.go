@@ -15,18 +15,17 @@ func crossing(z, c0, c1, k0, k1, p2 float64) span {
 	return span{sum * d * inverse, sum * (1 + k0*k1) * inverse}
 }
 
-// atanhRatio returns atanh(x) / x, for |x| below 1. The first term left out, x^6/7, is below
-// 2e-16.
+// atanhRatio returns atanh(x) / x, for |x| below 1: by its series where what is left out is below
+// 1e-16.
 func atanhRatio(x float64) float64 {
-	y := x * x
-	if y < 1e-5 {
-		return 1 + y*(1./3+y*(1./5))
+	if y := x * x; y < 1e-8 {
+		return 1 + y*(1./3)
 	}
-	return wideAtanhRatio(x, y)
+	return wideAtanhRatio(x)
 }
 
-func wideAtanhRatio(x, y float64) float64 {
-	if y < 1e-3 { // as above, x^10/11
+func wideAtanhRatio(x float64) float64 {
+	if y := x * x; y < 1e-3 {
 		return 1 + y*(1./3+y*(1./5+y*(1./7+y*(1./9))))
 	}
 	return math.Atanh(x) / x

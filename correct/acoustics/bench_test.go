@@ -53,3 +53,21 @@ func BenchmarkBetween(b *testing.B) {
 		})
 	}
 }
+
+func TestNoAllocation(t *testing.T) {
+	p := summer(t, 40, acoustics.Linear)
+	sum := 0.0
+	for name, call := range map[string]func(){
+		"Trace":            func() { sum += p.Trace(0.5, 0.6, 0.8, 0.043).DepthM },
+		"Trace, turning":   func() { sum += p.Trace(22, 1, 0, 0.1).DepthM },
+		"Between":          func() { path, _ := p.Between(0.5, 51, 40); sum += path.TimeS },
+		"Between, turning": func() { path, _ := p.Between(22, 22, 30); sum += path.TimeS },
+	} {
+		if got := testing.AllocsPerRun(100, call); got != 0 {
+			t.Errorf("%s: %g allocations, want 0", name, got)
+		}
+	}
+	if !(sum > 0) {
+		t.Errorf("sum is %g", sum)
+	}
+}

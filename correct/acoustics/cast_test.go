@@ -68,8 +68,7 @@ func TestCastFormulas(t *testing.T) {
 	}
 	near(t, "Mackenzie1981/1000 m", p.Speed(1000), 1550.744, 0.0005)
 	cast = acoustics.Cast{DepthM: []float64{0}, TemperatureC: []float64{0}, Salinity: []float64{0}}
-	p, _, err = cast.Profile(medium.ChenMillero, nan, acoustics.Steps)
-	if err == nil {
+	if _, _, err = cast.Profile(medium.ChenMillero, nan, acoustics.Steps); err == nil {
 		t.Error("a latitude that is not a number gave a profile")
 	}
 	if p, _, err = cast.Profile(medium.ChenMillero, 0, acoustics.Steps); err != nil {

@@ -14,7 +14,7 @@ func TestBetween(t *testing.T) {
 	r := rand.New(rand.NewPCG(seed, 3))
 	turned, direct := 0, 0
 	for i := range 6000 {
-		p, _, _ := random(t, r, 2+r.IntN(40))
+		p, _, _ := random(t, r, 2+r.IntN(40), acoustics.Interpolation(i%2))
 		from, time, angle := 0.5+50*r.Float64(), 1e-4+0.06*r.Float64(), math.Pi*r.Float64()
 		if i%3 == 0 {
 			angle = 80*degree + 20*degree*r.Float64()
@@ -63,7 +63,7 @@ func TestBetweenIsQuickest(t *testing.T) {
 		return math.Hypot(z1-z0, run) * sum / slices
 	}
 	for range 40 {
-		p, _, _ := random(t, r, 2+r.IntN(10))
+		p, _, _ := random(t, r, 2+r.IntN(10), acoustics.Linear)
 		from, to, run := 1+10*r.Float64(), 25+20*r.Float64(), 30*r.Float64()
 		path, ok := p.Between(from, to, run)
 		if !ok || path.Turned {

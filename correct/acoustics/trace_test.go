@@ -103,14 +103,14 @@ func TestTraceSmallGradients(t *testing.T) {
 }
 
 // random returns a profile of n samples to about 60 m.
-func random(t *testing.T, r *rand.Rand, n int) (p *acoustics.Profile, depths, speeds []float64) {
+func random(t *testing.T, r *rand.Rand, n int, kind acoustics.Interpolation) (p *acoustics.Profile, depths, speeds []float64) {
 	t.Helper()
 	z := 2 * r.Float64()
 	for range n {
 		depths, speeds = append(depths, z), append(speeds, 1480+40*r.Float64())
 		z += 0.5 + 120/float64(n)*r.Float64()
 	}
-	return profile(t, depths, speeds, acoustics.Linear), depths, speeds
+	return profile(t, depths, speeds, kind), depths, speeds
 }
 
 // integrate solves the ray equations x' = c sin th, z' = c cos th, th' = (dc/dz) sin th by
@@ -158,7 +158,7 @@ func TestTraceAgainstIntegration(t *testing.T) {
 	r := rand.New(rand.NewPCG(seed, 1))
 	turned := 0
 	for i := range 80 {
-		p, depths, speeds := random(t, r, 2+r.IntN(10))
+		p, depths, speeds := random(t, r, 2+r.IntN(10), acoustics.Linear)
 		from, deg, time := 5+40*r.Float64(), 80*r.Float64(), 0.01+0.05*r.Float64()
 		if i%2 == 0 {
 			deg = 84 + 12*r.Float64()
@@ -189,8 +189,8 @@ func TestTraceAgainstIntegration(t *testing.T) {
 func TestTraceReversed(t *testing.T) {
 	r := rand.New(rand.NewPCG(seed, 2))
 	turned := 0
-	for range 5000 {
-		p, _, _ := random(t, r, 2+r.IntN(40))
+	for i := range 6000 {
+		p, _, _ := random(t, r, 2+r.IntN(40), acoustics.Interpolation(i%2))
 		from, time := 0.5+50*r.Float64(), 0.06*r.Float64()
 		sin, cos := math.Sincos(math.Pi * r.Float64())
 		a := p.Trace(from, sin, cos, time)

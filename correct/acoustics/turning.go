@@ -7,10 +7,19 @@ import "math"
 func (p *Profile) turning(from, to, run float64) (Path, bool) {
 	down, isDown := p.turn(from, to, run, false)
 	up, isUp := p.turn(from, to, run, true)
+	isDown = isDown && p.leads(down, from, to, run)
+	isUp = isUp && p.leads(up, from, to, run)
 	if isUp && !(isDown && down.TimeS <= up.TimeS) {
 		return up, true
 	}
 	return down, isDown
+}
+
+// leads reports whether a path leads where it should, within a micrometre. One that grazes a maximum
+// of the speed, and would run elsewhere for a change in its last digits, does not.
+func (p *Profile) leads(path Path, from, to, run float64) bool {
+	a := p.Trace(from, path.Sin, path.Cos, path.TimeS)
+	return a.Fate == Arrived && math.Hypot(a.RunM-run, a.DepthM-to) < 1e-6
 }
 
 // turn returns the path with the nearest vertex above or below. A ray whose 1/p is a speed that no
@@ -25,9 +34,9 @@ func (p *Profile) turn(from, to, run float64, isUp bool) (Path, bool) {
 		i, step = p.layerAbove(outer), -1
 	}
 	v := vertex{between: p.way(from, to), run: run}
-	record := v.between.fastest
-	if from == to {
-		record = p.layers[i].speed(outer)
+	record := p.layers[i].speed(outer)
+	if from != to {
+		record = max(record, v.between.fastest)
 	}
 	for ; i >= 0 && i < len(p.layers)-1; i += step {
 		l := &p.layers[i]
