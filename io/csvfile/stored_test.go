@@ -65,3 +65,35 @@ func TestPassed(t *testing.T) {
 		t.Errorf("rejects %+v", rejects)
 	}
 }
+
+// Fault says of a row alone what reading it says.
+func TestFault(t *testing.T) {
+	path := filepath.Join(t.TempDir(), "a.csv")
+	text := "x,y,name\n1,2,a\n1,?,b\n1\n\"1\",2,\"q\"\"r\"\n1,2,a\"b\n"
+	if err := os.WriteFile(path, []byte(text), 0o666); err != nil {
+		t.Fatal(err)
+	}
+	f, err := Open(path, Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	defer f.Close()
+	for _, c := range []struct {
+		row     string
+		numbers []int
+		want    string
+	}{
+		{"1,2,a", []int{0, 1}, ""},
+		{"1,?,b", []int{0}, ""},
+		{"1,?,b", []int{0, 1}, `y is "?", want a number`},
+		{"1,2,a", []int{2}, `name is "a", want a number`},
+		{"1", nil, "has 1 field, want 3"},
+		{`"1",2,"q""r"`, []int{0, 1}, ""},
+		{`1,2,a"b`, nil, "name has a quote within a field, want quotes around the whole field"},
+		{"1,2\r3,a", nil, "has a carriage return within, want LF or CR LF at its end; convert the line ends first"},
+	} {
+		if got := f.Fault(cloud.Reject{Line: 2, Text: []byte(c.row)}, c.numbers...); got != c.want {
+			t.Errorf("%q read for %v: %q, want %q", c.row, c.numbers, got, c.want)
+		}
+	}
+}

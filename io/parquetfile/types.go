@@ -78,7 +78,9 @@ func timestampName(t *parquet.TimestampType) string {
 
 // decimalName tells the digits in all and those behind the point, which are part of what
 // the stored integers are worth.
-func decimalName(precision, scale int32) string { return fmt.Sprintf("DECIMAL(%d,%d)", precision, scale) }
+func decimalName(precision, scale int32) string {
+	return fmt.Sprintf("DECIMAL(%d,%d)", precision, scale)
+}
 
 func integerName(t *parquet.IntType) string {
 	if t.IsSigned {

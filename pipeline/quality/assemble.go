@@ -31,6 +31,9 @@ func (r *Report) take(d *fileDiff, all *figures, err error) {
 	r.Rows += d.report.Rows
 	r.RowsRaw += d.report.RowsRaw
 	r.RowsDiverted += d.report.RowsDiverted
+	if n := d.unproven(); n > 0 {
+		r.Notes = append(r.Notes, fmt.Sprintf("%s: %d rows were diverted for the cameras that they name, which are not looked at here", d.report.Name, n))
+	}
 	r.TwoCorrected = r.TwoCorrected || d.from != nil
 	for _, name := range d.oneSided {
 		if !slices.Contains(r.OneSided, name) {

@@ -100,6 +100,13 @@ func TestDamagedFolders(t *testing.T) {
 		{"a corrected file gone", func(_ *testing.T, folder string) { os.Remove(filepath.Join(folder, "a.csv")) }, "a.csv", KindFile, "alone, want a corrected cloud"},
 		{"rejects gone", func(_ *testing.T, folder string) { os.Remove(filepath.Join(folder, "part/c.csv.rejects.csv")) }, "part/c.csv", KindDropped, "has 2 fields, want 6; it is neither here nor in the rejects"},
 		{"a reject's text", edit("part/c.csv.rejects.csv", `"5,7"`, `"5,8"`), "part/c.csv", KindRejects, "is not what the rejects have of it"},
+		{"a reject's reason", edit("part/c.csv.rejects.csv", `"has 2 fields, want 6"`, `"has 3 fields, want 6"`), "part/c.csv", KindRejects, "yet it is not so that it has 3 fields"},
+		{"rejects under a job that stops", edit("part/c.csv.receipt.json", `"bad_rows": "divert"`, `"bad_rows": "stop"`), "part/c.csv", KindRejects, "the job of the receipt stops"},
+		{"a good row diverted", divertGood(`z is "?", want a number`), "part/c.csv", KindRejects, "line 10 of the raw cloud is among the rejects"},
+		{"a good row diverted for a text", divertGood(`label is "p8", want a number`), "part/c.csv", KindRejects, "line 10 of the raw cloud is among the rejects"},
+		{"rejects of Parquet", func(t *testing.T, folder string) {
+			writeFile(t, filepath.Join(folder, "b.parquet.rejects.csv"), "line,reason,text\n3,is bad,x\n")
+		}, "b.parquet", KindRejects, "the rejects have line 3"},
 		{"a reject's line", edit("part/c.csv.rejects.csv", "403,", "9403,"), "part/c.csv", KindRejects, "the rejects have line 9403"},
 		{"rows of a receipt", edit("a.csv.receipt.json", `"rows_written": 1500`, `"rows_written": 1501`), "a.csv", KindReceipt, "1501 rows written, found 1500"},
 		{"outcomes of a receipt", edit("b.parquet.receipt.json", `"dry": 150`, `"wet": 150`), "b.parquet", KindReceipt, "the receipt has 0 points dry, found 150"},
@@ -115,6 +122,35 @@ func TestDamagedFolders(t *testing.T) {
 				t.Errorf("holds %v: %v, want %s of %s: %s", r.Holds, r.Findings, c.kind, c.file, c.says)
 			}
 		})
+	}
+}
+
+// divertGood moves a row of part/c.csv, whose line is 10 there, to the rejects with a
+// reason, and lets the receipt tell so.
+func divertGood(reason string) func(t *testing.T, folder string) {
+	return func(t *testing.T, folder string) {
+		path := filepath.Join(folder, "part", "c.csv")
+		lines := func(path string) []string {
+			data, err := os.ReadFile(path)
+			if err != nil {
+				t.Fatal(err)
+			}
+			return strings.SplitAfter(string(data), "\n")
+		}
+		text := strings.TrimSpace(lines(filepath.Join(folder, "..", "raw", "part", "c.csv"))[9])
+		writeFile(t, path, strings.Join(slices.Delete(lines(path), 9, 10), ""))
+		row := sheet{{"10", reason, text}}.csv()
+		writeFile(t, path+rejectsSuffix, strings.Join(slices.Insert(lines(path+rejectsSuffix), 1, row), ""))
+		r, err := receipt.Read(path)
+		if err != nil {
+			t.Fatal(err)
+		}
+		r.RowsWritten--
+		r.RowsDiverted++
+		r.Outcomes["corrected"]--
+		if err := r.Write(path); err != nil {
+			t.Fatal(err)
+		}
 	}
 }
 

@@ -142,6 +142,7 @@ func (d *fileDiff) run(ctx context.Context, g *gatherer) error {
 	}()
 	if d.proven && d.from == nil {
 		d.report.RowsRaw, _ = rowsOf(d.a)
+		d.rejects.end(d.findings)
 		return d.alone(ctx, b, g)
 	}
 	rejected := int64(0)
@@ -178,6 +179,14 @@ func (d *fileDiff) alone(ctx context.Context, b *side, g *gatherer) error {
 		g.together(nil, 0, b.queue[0], b.at, b.left())
 		b.pass(b.left())
 	}
+}
+
+// unproven counts the rows whose reason to be diverted was not looked at.
+func (d *fileDiff) unproven() int64 {
+	if d.rejects == nil {
+		return 0
+	}
+	return d.rejects.unproven
 }
 
 func rowsOf(t table) (rows int64, known bool) {

@@ -5,6 +5,7 @@ import (
 	"fmt"
 
 	"bentray/io/cloud"
+	"bentray/io/csvfile"
 	"bentray/io/parquetfile"
 	"bentray/pipeline"
 )
@@ -54,6 +55,9 @@ func (d *fileDiff) openFirst() (err error) {
 	if parquetfile.IsName(d.pair.raw) != parquetfile.IsName(d.pair.corrected) {
 		err = callErrorf("%s and %s are of two formats, want one: an output has the format of its input", d.pair.raw, d.pair.corrected)
 		return errors.Join(err, d.a.Close())
+	}
+	if raw, isText := d.a.(*csvfile.File); isText {
+		d.rejects.prove(raw, d.made, d.findings)
 	}
 	return nil
 }

@@ -9,17 +9,27 @@ import (
 	"io"
 	"io/fs"
 	"os"
+	"slices"
 	"strconv"
+	"strings"
 
 	"bentray/io/cloud"
+	"bentray/io/csvfile"
+	"bentray/pipeline/job"
 )
 
 // rejects are the rows that a corrected file does not have because they could not be
 // read, as the file beside it lists them.
 type rejects struct {
-	lines []int64  // rising
-	texts []uint64 // hashes
-	seen  int      // found in the raw cloud
+	lines   []int64  // rising
+	texts   []uint64 // hashes
+	reasons []string
+	seen    int // found in the raw cloud
+
+	raw      *csvfile.File // the raw cloud, set where there are rejects of it
+	numbers  []int         // its columns that may be read as numbers
+	views    string        // its column of cameras, whose ids are not looked at; or empty
+	unproven int64         // rows diverted for that
 }
 
 // readRejects reads NAME.rejects.csv; without that file there are none.
@@ -51,7 +61,7 @@ func readRejects(corrected string) (*rejects, error) {
 		if err != nil || len(r.lines) > 0 && line <= r.lines[len(r.lines)-1] {
 			return nil, fmt.Errorf("%s: line is %q, want a number above the one before", path, row[0])
 		}
-		r.lines, r.texts = append(r.lines, line), append(r.texts, textHash([]byte(row[2])))
+		r.lines, r.texts, r.reasons = append(r.lines, line), append(r.texts, textHash([]byte(row[2]))), append(r.reasons, strings.Clone(row[1]))
 	}
 }
 
@@ -70,11 +80,69 @@ func (r *rejects) take(rows []cloud.Reject, f *findings) {
 		for r.seen < len(r.lines) && r.lines[r.seen] < row.Line {
 			r.strange(f)
 		}
-		if r.texts[r.seen] != textHash(row.Text) {
+		switch reason := r.reasons[r.seen]; {
+		case r.texts[r.seen] != textHash(row.Text):
 			f.addf(KindRejects, "line %d of the raw cloud is not what the rejects have of it", row.Line)
+		case r.isFault(row, reason):
+		case r.views != "" && strings.HasPrefix(reason, r.views+" "):
+			r.unproven++
+		default:
+			f.addf(KindRejects, "line %d of the raw cloud is among the rejects, yet it is not so that it %s", row.Line, reason)
 		}
 		r.seen++
 	}
+}
+
+// isFault tells whether a row cannot be read for the reason given.
+func (r *rejects) isFault(row cloud.Reject, reason string) bool {
+	if r.raw.Fault(row) == reason {
+		return true
+	}
+	return slices.ContainsFunc(r.numbers, func(column int) bool { return r.raw.Fault(row, column) == reason })
+}
+
+// prove makes ready to look at why rows were diverted from the raw cloud: the columns
+// that the job of the receipt may read as numbers; all where there is none.
+func (r *rejects) prove(raw *csvfile.File, made *provenance, f *findings) {
+	r.raw = raw
+	columns := raw.Columns()
+	if made == nil {
+		for i := range columns {
+			r.numbers = append(r.numbers, i)
+		}
+		return
+	}
+	in := made.job.Input
+	if len(r.lines) > 0 && in.BadRows != job.Divert {
+		f.addf(KindRejects, "there are rejects, but the job of the receipt stops where a row cannot be read")
+	}
+	for _, name := range made.numbers() {
+		if i, err := cloud.FindRole(columns, name, in.Columns); err == nil && i >= 0 {
+			r.numbers = append(r.numbers, i)
+		}
+	}
+	isMultiview := func(s job.Sensor) bool { return s.Rays.Model == job.Multiview }
+	if i, err := cloud.FindRole(columns, "views", in.Columns); err == nil && i >= 0 && slices.ContainsFunc(made.job.Sensors, isMultiview) {
+		r.views = columns[i].Name
+	}
+}
+
+// numbers names the columns that the job may read as numbers.
+func (p *provenance) numbers() []string {
+	list := []string{"x", "y", "z", "gps_time", "origin_x", "origin_y", "origin_z", p.job.Surface.Column}
+	where := []map[string][]any{p.job.Select.Where}
+	for _, s := range p.job.Sensors {
+		where = append(where, s.Where)
+	}
+	isText := func(v any) bool { _, is := v.(string); return is }
+	for _, columns := range where {
+		for name, values := range columns {
+			if !slices.ContainsFunc(values, isText) {
+				list = append(list, name)
+			}
+		}
+	}
+	return list
 }
 
 // strange notes a reject that is no row of the raw cloud.
