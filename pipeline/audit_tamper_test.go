@@ -236,6 +236,7 @@ func TestEditedReceiptIsFound(t *testing.T) {
 			{"bytes", func(r *receipt.Receipt) { r.Output.Bytes++ }, "bytes with sha256 "},
 			{"path", func(r *receipt.Receipt) { r.Output.Path = "b." + format }, `the receipt is that of "b.` + format + `"`},
 			{"path up", func(r *receipt.Receipt) { r.Output.Path = "../true/a." + format }, `the receipt is that of "../true/a.`},
+			{"the cloud's path", func(r *receipt.Receipt) { r.Inputs[0].Path = "raw/b." + format }, `the receipt has the raw cloud as "raw/b.` + format + `", want the output's name "a.` + format + `"`},
 			{"ranges", func(r *receipt.Receipt) { r.Ranges["depth"] = [2]float64{0.5, 1} }, "the receipt has depth from 0.5 to 1, found "},
 			{"cautions", func(r *receipt.Receipt) { r.Cautions = nil }, "the receipt lacks the caution "},
 			{"program", func(r *receipt.Receipt) { r.Program = "other 1" }, `the receipt's program is "other 1", want bentray`},

@@ -69,6 +69,9 @@ func (f *FileAudit) checkReceipt(r *receipt.Receipt, path string) {
 	if !isNamed(path, r) {
 		f.fault("the receipt is that of %q, want %q or the end of its path", r.Output.Path, filepath.Base(path))
 	}
+	if len(r.Inputs) > 0 && r.OtherName() != "" {
+		f.fault("%s", r.OtherName())
+	}
 	if r.RowsRead != r.RowsWritten+r.RowsDiverted {
 		f.fault("the receipt has %d rows read, want the %d written and %d diverted", r.RowsRead, r.RowsWritten, r.RowsDiverted)
 	}

@@ -2,6 +2,7 @@ package quality
 
 import (
 	"encoding/json"
+	"fmt"
 	"math"
 	"math/rand/v2"
 	"os"
@@ -12,6 +13,8 @@ import (
 	"testing"
 
 	"gonum.org/v1/gonum/stat"
+
+	"bentray/pipeline/receipt"
 )
 
 func exact(v float64) string { return strconv.FormatFloat(v, 'f', -1, 64) }
@@ -247,11 +250,17 @@ func TestCheckInFeet(t *testing.T) {
 	compare := func(name string, raw, corrected, check sheet, o Options) *CheckReport {
 		o.Check = check.write(t, filepath.Join(folder, name+"-check.csv"))
 		path := corrected.write(t, filepath.Join(folder, name, "true.parquet"))
-		job := `{"run": "a1", "job": {"input": {"unit": "` + name + `", "vertical_unit": "` + name + `"}}, "rows_written": 20000, "outcomes": {"corrected": 20000}}`
+		rawPath := raw.write(t, filepath.Join(folder, name, "raw.parquet"))
+		bytes, sum, err := receipt.Hash(t.Context(), rawPath)
+		if err != nil {
+			t.Fatal(err)
+		}
+		input := fmt.Sprintf(`[{"use": "cloud", "path": "true.parquet", "bytes": %d, "sha256": %q}]`, bytes, sum)
+		job := `{"run": "a1", "job": {"input": {"unit": "` + name + `", "vertical_unit": "` + name + `"}}, "inputs": ` + input + `, "output": {"path": "true.parquet"}, "rows_written": 20000, "outcomes": {"corrected": 20000}}`
 		writeFile(t, path+".receipt.json", job)
-		r, err := Diff(t.Context(), raw.write(t, filepath.Join(folder, name, "raw.parquet")), path, o)
+		r, err := Diff(t.Context(), rawPath, path, o)
 		if err != nil || !r.Holds || r.Unit != name {
-			t.Fatal(err, r)
+			t.Fatal(err, r.Findings)
 		}
 		return r.Check
 	}

@@ -110,6 +110,14 @@ func TestDamagedFolders(t *testing.T) {
 		{"a reject's line", edit("part/c.csv.rejects.csv", "403,", "9403,"), "part/c.csv", KindRejects, "the rejects have line 9403"},
 		{"rows of a receipt", edit("a.csv.receipt.json", `"rows_written": 1500`, `"rows_written": 1501`), "a.csv", KindReceipt, "1501 rows written, found 1500"},
 		{"outcomes of a receipt", edit("b.parquet.receipt.json", `"dry": 150`, `"wet": 150`), "b.parquet", KindReceipt, "the receipt has 0 points dry, found 150"},
+		{"the raw cloud's hash", editReceipt(func(r *receipt.Receipt) { r.Inputs[0].SHA256 = strings.Repeat("0", 64) }), "a.csv", KindReceipt, "and sha256 000000000000, found"},
+		{"the raw cloud's bytes", editReceipt(func(r *receipt.Receipt) { r.Inputs[0].Bytes++ }), "a.csv", KindReceipt, "it is another or was changed"},
+		{"the raw cloud's path", editReceipt(func(r *receipt.Receipt) { r.Inputs[0].Path = "raw/z.csv" }), "a.csv", KindReceipt, `has the raw cloud as "raw/z.csv", want the output's name "a.csv"`},
+		{"no raw cloud in the receipt", editReceipt(func(r *receipt.Receipt) { r.Inputs = nil }), "a.csv", KindReceipt, "does not name the raw cloud"},
+		{"raw and output edited alike", func(t *testing.T, folder string) {
+			edit("a.csv", ",p7,", ",P7,")(t, folder)
+			edit("../raw/a.csv", ",p7\n", ",P7\n")(t, folder)
+		}, "a.csv", KindReceipt, "it is another or was changed"},
 		{"a number broken", edit("part/c.csv", ",0.42,", ",O.42,"), "part/c.csv", KindFile, `cannot be compared: `},
 	} {
 		t.Run(c.name, func(t *testing.T) {
@@ -122,6 +130,21 @@ func TestDamagedFolders(t *testing.T) {
 				t.Errorf("holds %v: %v, want %s of %s: %s", r.Holds, r.Findings, c.kind, c.file, c.says)
 			}
 		})
+	}
+}
+
+// editReceipt edits that of a.csv.
+func editReceipt(do func(*receipt.Receipt)) func(t *testing.T, folder string) {
+	return func(t *testing.T, folder string) {
+		path := filepath.Join(folder, "a.csv")
+		r, err := receipt.Read(path)
+		if err != nil {
+			t.Fatal(err)
+		}
+		do(r)
+		if err := r.Write(path); err != nil {
+			t.Fatal(err)
+		}
 	}
 }
 

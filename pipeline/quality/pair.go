@@ -5,8 +5,11 @@ import (
 	"fmt"
 	"math"
 
+	"golang.org/x/sync/errgroup"
+
 	"bentray/io/cloud"
 	"bentray/io/parquetfile"
+	"bentray/pipeline/receipt"
 )
 
 // fileDiff is the comparison of two files, on the way to its result.
@@ -27,6 +30,8 @@ type fileDiff struct {
 	oneSided []string
 	opaque   []string
 	read     int64 // bytes
+
+	otherInput string // why the raw cloud is not the one that the receipt names
 }
 
 // diff compares the two files.
@@ -46,11 +51,30 @@ func (d *fileDiff) diff(ctx context.Context) error {
 	if err != nil {
 		return err
 	}
-	if err := d.run(ctx, g); err != nil {
+	both, within := errgroup.WithContext(ctx)
+	both.Go(func() error { return d.checkInput(within) })
+	both.Go(func() error { return d.run(within, g) })
+	if err := both.Wait(); err != nil {
 		return err
+	}
+	if d.otherInput != "" {
+		d.findings.addf(KindReceipt, "%s", d.otherInput)
 	}
 	g.finish()
 	d.made.check(&d.report, d.figures.outcomes, d.findings)
+	return nil
+}
+
+// checkInput compares a raw cloud with what the receipt has of it.
+func (d *fileDiff) checkInput(ctx context.Context) error {
+	if d.made == nil || d.from != nil {
+		return nil
+	}
+	bytes, sum, err := receipt.Hash(ctx, d.pair.raw)
+	if err != nil {
+		return err
+	}
+	d.otherInput = d.made.otherInput(bytes, sum)
 	return nil
 }
 

@@ -58,6 +58,18 @@ func (p *provenance) check(file *FileReport, outcomes map[string]int64, f *findi
 	}
 }
 
+// otherInput tells why a raw cloud is not the one that the receipt names; empty where it
+// is.
+func (p *provenance) otherInput(bytes int64, sum string) string {
+	if len(p.Inputs) == 0 || p.Inputs[0].Use != "cloud" {
+		return "the receipt does not name the raw cloud as its first input"
+	}
+	if in := p.Inputs[0]; in.Bytes != bytes || in.SHA256 != sum {
+		return fmt.Sprintf("the receipt has the raw cloud with %d bytes and sha256 %.12s, found %d bytes with %.12s: it is another or was changed", in.Bytes, in.SHA256, bytes, sum)
+	}
+	return p.OtherName()
+}
+
 // units are those of the lengths of all files.
 type units struct {
 	plan, height   string

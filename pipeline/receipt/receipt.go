@@ -13,6 +13,7 @@ import (
 	"fmt"
 	"io"
 	"os"
+	"path"
 
 	"bentray/io/atomicfile"
 )
@@ -55,6 +56,16 @@ type Input struct {
 
 // Auxiliary returns the files that went in beside the cloud.
 func (r *Receipt) Auxiliary() []Input { return r.Inputs[min(1, len(r.Inputs)):] }
+
+// OtherName tells where the receipt's cloud has another name than its output, which
+// keeps that of its cloud; it is empty where the names are the same.
+func (r *Receipt) OtherName() string {
+	cloud, output := path.Base(r.Inputs[0].Path), path.Base(r.Output.Path)
+	if cloud == output {
+		return ""
+	}
+	return fmt.Sprintf("the receipt has the raw cloud as %q, want the output's name %q", r.Inputs[0].Path, output)
+}
 
 // Write puts the receipt beside its output, whole or not at all.
 func (r *Receipt) Write(outputPath string) error {
