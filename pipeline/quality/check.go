@@ -38,6 +38,9 @@ func readCheck(path string) (x, y, z []float64, ignored int, err error) {
 	if len(x) == 0 {
 		return nil, nil, nil, 0, fmt.Errorf("%s: has no check point with finite coordinates, want columns x, y, z", path)
 	}
+	if len(x) > maxChecks {
+		return nil, nil, nil, 0, fmt.Errorf("%s: has %d check points, want %d at most: thin them", path, len(x), maxChecks)
+	}
 	return x, y, z, ignored, nil
 }
 

@@ -41,9 +41,9 @@ func (o *Options) Validate() error {
 // shared is what the comparisons of all files share.
 type shared struct {
 	units
-	index *checkIndex // nil without check points
-	lines bool        // flight lines are compared
-	side  float64     // of their cells
+	check *matcher // nil without check points
+	lines bool     // flight lines are compared
+	side  float64  // of their cells
 	watch pipeline.Watcher
 }
 
@@ -88,17 +88,14 @@ func (s *shared) readCheck(r *Report, o Options, reach float64) error {
 		return &pipeline.CallError{Err: err}
 	}
 	match := cmp.Or(o.Match, MatchPlane)
-	s.index = newCheckIndex(x, y, z, reach, match)
+	s.check = newMatcher(newCheckIndex(x, y, z, reach), match)
 	r.Check = &CheckReport{File: o.Check, Match: match, Reach: Number(reach), Ignored: ignored}
 	return nil
 }
 
 // newFigures makes empty ones.
 func (s *shared) newFigures() *figures {
-	f := newFigures(nil, nil)
-	if s.index != nil {
-		f.check = newMatcher(s.index)
-	}
+	f := newFigures(s.check, nil)
 	if s.lines {
 		f.overlap = newOverlap(s.side)
 	}

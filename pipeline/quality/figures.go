@@ -17,7 +17,7 @@ type figures struct {
 	incidence             []sums
 	raster                *raster
 	sample                *sample
-	check                 *matcher // nil where there are no check points
+	check                 *matcher // that all files share; nil where there are no check points
 	overlap               *overlap // nil where it is not asked for
 
 	noLevel  bool  // an output has no column of the water level
@@ -198,9 +198,6 @@ func (f *figures) join(o *figures) {
 	}
 	f.raster.join(o.raster)
 	f.sample.join(o.sample)
-	if f.check != nil {
-		f.check.join(o.check)
-	}
 	if f.overlap != nil {
 		f.overlap.join(o.overlap)
 	}

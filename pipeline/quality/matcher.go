@@ -4,6 +4,7 @@ import (
 	"cmp"
 	"math"
 	"slices"
+	"sync"
 
 	"bentray/geo"
 )
@@ -13,108 +14,127 @@ import (
 type checkIndex struct {
 	x, y, z   []float64
 	reach     float64
-	cells     map[[2]int64][]int32
-	left, low float64 // corner that cells count from
+	cells     map[[2]int64]int32 // first entry of a cell's list
+	entries   []checkEntry       // the first is none
+	left, low float64            // corner that cells count from
 	right, up float64
-	most      int // neighbours kept of a check point
 }
 
-// Neighbours of all check points together, and of one.
-const (
-	allNeighbours = 1_000_000
-	maxNeighbours = 500
-	minNeighbours = 16
-)
+// checkEntry is a check point in the list of a cell; next is 0 at its end.
+type checkEntry struct{ point, next int32 }
 
-func newCheckIndex(x, y, z []float64, reach float64, match string) *checkIndex {
+func newCheckIndex(x, y, z []float64, reach float64) *checkIndex {
 	k := &checkIndex{
-		x: x, y: y, z: z, reach: reach, cells: map[[2]int64][]int32{}, most: 1,
+		x: x, y: y, z: z, reach: reach, cells: map[[2]int64]int32{}, entries: make([]checkEntry, 1, 1+4*len(x)),
 		left: slices.Min(x) - reach, low: slices.Min(y) - reach, right: slices.Max(x) + reach, up: slices.Max(y) + reach,
-	}
-	if match == MatchPlane {
-		k.most = min(max(allNeighbours/len(x), minNeighbours), maxNeighbours)
 	}
 	for i := range x {
 		from, to := k.cell(x[i]-reach, y[i]-reach), k.cell(x[i]+reach, y[i]+reach)
 		for col := from[0]; col <= to[0]; col++ {
 			for row := from[1]; row <= to[1]; row++ {
 				at := [2]int64{col, row}
-				k.cells[at] = append(k.cells[at], int32(i))
+				k.entries = append(k.entries, checkEntry{int32(i), k.cells[at]})
+				k.cells[at] = int32(len(k.entries) - 1)
 			}
 		}
 	}
 	return k
 }
 
+// cell returns the number of a place's cell; cells are twice as wide as the reach, so
+// that a check point is listed in four.
 func (k *checkIndex) cell(x, y float64) [2]int64 {
-	return [2]int64{int64((x - k.left) / k.reach), int64((y - k.low) / k.reach)}
+	return [2]int64{int64((x - k.left) / (2 * k.reach)), int64((y - k.low) / (2 * k.reach))}
 }
 
-// about lists the check points that may be within reach of a place.
-func (k *checkIndex) about(x, y float64) []int32 {
+// about returns the first entry of those that may be within reach of a place; 0 where
+// there are none.
+func (k *checkIndex) about(x, y float64) int32 {
 	if !(x >= k.left && x <= k.right && y >= k.low && y <= k.up) {
-		return nil
+		return 0
 	}
 	return k.cells[k.cell(x, y)]
 }
 
 // neighbour is a corrected point near a check point: its offset, height and level.
-type neighbour struct{ distance2, u, v, z, level float64 }
+type neighbour struct{ u, v, z, level float64 }
 
+func (n neighbour) distance2() float64 { return n.u*n.u + n.v*n.v }
+
+// compare orders neighbours by distance. Those that are equal in it are equal in all, so
+// that the nearest do not depend on the order of arrival.
 func (n neighbour) compare(o neighbour) int {
-	return cmp.Or(cmp.Compare(n.distance2, o.distance2), cmp.Compare(n.u, o.u), cmp.Compare(n.v, o.v), cmp.Compare(n.z, o.z))
+	return cmp.Or(cmp.Compare(n.distance2(), o.distance2()), cmp.Compare(n.u, o.u), cmp.Compare(n.v, o.v), cmp.Compare(n.z, o.z), cmp.Compare(n.level, o.level))
 }
 
-// matcher keeps, for every check point, the nearest corrected points of some files.
+// Bounds of the memory: check points, neighbours of all of them together, and of one.
+const (
+	maxChecks     = 250_000
+	allNeighbours = 1_000_000
+	maxNeighbours = 500
+	minNeighbours = 8
+)
+
+// matcher keeps, for every check point, the nearest corrected points. Files that are
+// compared side by side share it.
 type matcher struct {
 	*checkIndex
-	near  [][]neighbour // by check point; as many as are kept twice over, at most
-	isDry []bool        // a dry point is within reach
+	most  int            // neighbours kept of a check point
+	locks [64]sync.Mutex // of check points by their number
+	near  [][]neighbour  // by check point; in order once there are as many as are kept
+	isDry []bool         // a dry point is within reach
 }
 
-func newMatcher(k *checkIndex) *matcher {
-	return &matcher{checkIndex: k, near: make([][]neighbour, len(k.x)), isDry: make([]bool, len(k.x))}
+func newMatcher(k *checkIndex, match string) *matcher {
+	m := &matcher{checkIndex: k, most: 1, near: make([][]neighbour, len(k.x)), isDry: make([]bool, len(k.x))}
+	if match == MatchPlane {
+		m.most = min(max(allNeighbours/len(k.x), minNeighbours), maxNeighbours)
+	}
+	return m
 }
 
 // offer takes a corrected point.
 func (m *matcher) offer(x, y, z, level float64) {
-	for _, i := range m.about(x, y) {
-		u, v := x-m.x[i], y-m.y[i]
-		if d2 := u*u + v*v; d2 <= m.reach*m.reach {
-			m.keep(i, neighbour{d2, u, v, z, level})
+	for e := m.about(x, y); e > 0; e = m.entries[e].next {
+		i := m.entries[e].point
+		n := neighbour{x - m.x[i], y - m.y[i], z, level}
+		if n.distance2() <= m.reach*m.reach {
+			m.keep(i, n)
 		}
 	}
 }
 
 // dry takes a dry point.
 func (m *matcher) dry(x, y float64) {
-	for _, i := range m.about(x, y) {
+	for e := m.about(x, y); e > 0; e = m.entries[e].next {
+		i := m.entries[e].point
 		if u, v := x-m.x[i], y-m.y[i]; u*u+v*v <= m.reach*m.reach {
+			lock := &m.locks[int(i)%len(m.locks)]
+			lock.Lock()
 			m.isDry[i] = true
+			lock.Unlock()
 		}
 	}
 }
 
-// keep adds a neighbour if it is among the nearest. The list is halved where it
-// has twice as many as are kept.
+// keep adds a neighbour if it is among the nearest.
 func (m *matcher) keep(i int32, n neighbour) {
-	if m.near[i] = append(m.near[i], n); len(m.near[i]) >= 2*m.most {
-		m.near[i] = m.nearest(i)
-	}
-}
-
-// nearest returns the neighbours that are kept, the nearest first.
-func (m *matcher) nearest(i int32) []neighbour {
-	slices.SortFunc(m.near[i], neighbour.compare)
-	return m.near[i][:min(len(m.near[i]), m.most)]
-}
-
-func (m *matcher) join(o *matcher) {
-	for i := range m.near {
-		for _, n := range o.near[i] {
-			m.keep(int32(i), n)
+	lock := &m.locks[int(i)%len(m.locks)]
+	lock.Lock()
+	defer lock.Unlock()
+	list := m.near[i]
+	if len(list) < m.most {
+		if len(list) == cap(list) {
+			list = slices.Grow(list, min(max(len(list), minNeighbours), m.most-len(list)))
 		}
-		m.isDry[i] = m.isDry[i] || o.isDry[i]
+		if m.near[i] = append(list, n); len(list)+1 == m.most {
+			slices.SortFunc(m.near[i], neighbour.compare)
+		}
+		return
+	}
+	if at, _ := slices.BinarySearchFunc(list, n, neighbour.compare); at < len(list) {
+		copy(list[at+1:], list[at:])
+		list[at] = n
 	}
 }
 
@@ -124,7 +144,8 @@ func (m *matcher) points(match string, plan, height float64) []CheckPoint {
 	list := make([]CheckPoint, len(m.x))
 	var fit planeMatch
 	for i := range list {
-		near := m.nearest(int32(i))
+		near := m.near[i]
+		slices.SortFunc(near, neighbour.compare)
 		p := &list[i]
 		*p = CheckPoint{X: m.x[i], Y: m.y[i], Z: m.z[i], Corrected: math.NaN(), Depth: math.NaN(), Near: len(near)}
 		if len(near) > 0 {
