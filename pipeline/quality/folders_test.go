@@ -177,8 +177,8 @@ func divertGood(reason string) func(t *testing.T, folder string) {
 	}
 }
 
-// A corrected point moved in height is found in a CSV file by the decimals that its
-// receipt tells.
+// A corrected point moved in height is found in a CSV file, beyond the decimals that are
+// written.
 func TestMovedInHeight(t *testing.T) {
 	raw, corrected := survey(t, verticalJob)
 	path := filepath.Join(corrected, "a.csv")

@@ -3,7 +3,6 @@ package quality
 import (
 	"context"
 	"fmt"
-	"math"
 
 	"golang.org/x/sync/errgroup"
 
@@ -120,7 +119,10 @@ func (d *fileDiff) begin() (*gatherer, error) {
 	if err != nil {
 		return nil, inFile(d.pair.corrected, err)
 	}
-	g := &gatherer{figures: d.figures, read: read, columns: d.b.Columns(), f: d.findings, file: d.number, known: newNames(), knownRaw: newNames(), tolerance: d.tolerance()}
+	g := &gatherer{figures: d.figures, read: read, columns: d.b.Columns(), f: d.findings, file: d.number, known: newNames(), knownRaw: newNames()}
+	if g.tolerance, err = d.tolerance(); err != nil {
+		return nil, err
+	}
 	d.figures.noLevel = read.level < 0
 	if d.figures.overlap != nil {
 		d.figures.overlap.column = read.lineName
@@ -139,18 +141,6 @@ func (d *fileDiff) begin() (*gatherer, error) {
 		return nil, err
 	}
 	return g, d.b.Begin(read.request, cloud.Layout{}, nil)
-}
-
-// tolerance is how far the height of a corrected point may be from level minus depth:
-// of CSV, each of the three is rounded. Without a receipt its decimals are not known.
-func (d *fileDiff) tolerance() float64 {
-	switch {
-	case parquetfile.IsName(d.pair.corrected):
-		return 1e-6
-	case d.made == nil:
-		return math.Inf(1)
-	}
-	return 1.5*math.Pow10(-d.made.job.Output.Decimals) + 1e-9
 }
 
 // run goes through the rows.
