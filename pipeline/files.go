@@ -54,6 +54,9 @@ func findInputs(j *job.Job) (inputs []input, leftOut int, err error) {
 				leftOut++
 				continue
 			}
+			if strings.HasSuffix(path, rejectsSuffix) {
+				return nil, 0, callErrorf("%s: [input] files: %s is named as rows that could not be read are (NAME%s); give it another name, or leave it out of files", j.Path, path, rejectsSuffix)
+			}
 			inputs = append(inputs, newInput(j, path, filepath.Join(folder, target), target))
 		}
 	}

@@ -171,14 +171,15 @@ func TestOutputOverInput(t *testing.T) {
 		{"two clouds to one name", tinyJob(`"raw/*.csv", "a.csv"`, "."), "a.csv would both be written to a.csv"},
 		{"another cloud", tinyJob(`"flights/*.csv", "sub/flight.csv"`, "sub"), "both be written to sub/flight.csv"},
 		{"another cloud that goes elsewhere", tinyJob(`"flights/*.csv", "{sub,none}/flight.csv"`, "."), "the output sub/flight.csv would overwrite an input"},
-		{"the rejects of another", tinyJob(`"pair/*"`, "true"), "a.csv and pair/a.csv.rejects.csv would both be written to true/a.csv.rejects.csv"},
+		{"the rejects of another", tinyJob(`"pair/*"`, "true"), "pair/a.csv.rejects.csv is named as rows that could not be read are"},
+		{"a cloud named as rejects", tinyJob(`"odd/*"`, "true"), "odd/t.rejects.csv is named as rows that could not be read are (NAME.rejects.csv); give it another name"},
 		{"what is not bentray's", tinyJob(`"raw/*.csv"`, "notes"), "notes/a.csv is there already and no output of bentray"},
 		{"the trajectory", tinyJob(`"flights/*.csv"`, ".") + "trajectory = \"flight.csv\"\n", "the output flight.csv would overwrite flight.csv"},
 		{"the polygons", tinyJob(`"flights/*.csv"`, "sub") + "[extent]\npolygons = \"sub/flight.csv\"\n", "the output sub/flight.csv would overwrite sub/flight.csv"},
 	} {
 		t.Run(c.name, func(t *testing.T) {
 			folder := t.TempDir()
-			files{"raw/a.csv": tiny, "a.csv": tiny, "flight.csv": "gps_time,x,y,z\n", "flights/flight.csv": tiny, "sub/flight.csv": polygon, "notes/a.csv": "day,remark\n1,calm\n", "pair/a.csv": tiny, "pair/a.csv.rejects.csv": tiny}.write(t, folder)
+			files{"raw/a.csv": tiny, "a.csv": tiny, "flight.csv": "gps_time,x,y,z\n", "flights/flight.csv": tiny, "sub/flight.csv": polygon, "notes/a.csv": "day,remark\n1,calm\n", "pair/a.csv": tiny, "pair/a.csv.rejects.csv": tiny, "odd/t.rejects.csv": tiny}.write(t, folder)
 			if err := os.Symlink("raw", filepath.Join(folder, "linked")); err != nil {
 				t.Fatal(err)
 			}
