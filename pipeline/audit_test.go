@@ -52,6 +52,22 @@ func TestOneOutputHolds(t *testing.T) {
 	}
 }
 
+// A folder of outputs may be a symbolic link, also where the surface comes from all of
+// them.
+func TestLinkedFolderHolds(t *testing.T) {
+	k := &auditKinds[slices.IndexFunc(auditKinds, func(k auditKind) bool { return k.name == "pulse, classes" })]
+	folder := k.run(t, "csv")
+	link := filepath.Join(folder, "link")
+	if err := os.Symlink("true", link); err != nil {
+		t.Fatal(err)
+	}
+	for path, outputs := range map[string]int{link: 2, filepath.Join(link, "b.csv"): 1} {
+		if r := audit(t, path); !r.Holds() || len(r.Files) != outputs {
+			t.Errorf("%s: the report is %+v", path, r)
+		}
+	}
+}
+
 // A moved survey is audited with its job file's folder named, or found above the
 // outputs; else the message says where it was looked for.
 func TestAuxiliaryFolder(t *testing.T) {

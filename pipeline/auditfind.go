@@ -50,10 +50,15 @@ func findOutputs(path string) (*auditFind, error) {
 	return f, nil
 }
 
-// inFolder finds the outputs, with those whose receipt or that alone is left.
+// inFolder finds the outputs, with those whose receipt or that alone is left. The folder
+// may be a symbolic link.
 func (f *auditFind) inFolder(folder string) error {
+	folder, err := filepath.EvalSymlinks(folder)
+	if err != nil {
+		return err
+	}
 	var paths []string
-	err := filepath.WalkDir(folder, func(path string, d fs.DirEntry, err error) error {
+	err = filepath.WalkDir(folder, func(path string, d fs.DirEntry, err error) error {
 		output, isReceipt := strings.CutSuffix(path, receipt.Suffix)
 		switch {
 		case err != nil:
@@ -131,6 +136,9 @@ func runKey(r *receipt.Receipt, root string) [sha256.Size]byte {
 // outputsOf lists the outputs below a folder that have a run's receipt, as the clouds of
 // that run.
 func outputsOf(root, run string) (clouds []input) {
+	if real, err := filepath.EvalSymlinks(root); err == nil {
+		root = real
+	}
 	_ = filepath.WalkDir(root, func(path string, _ fs.DirEntry, err error) error {
 		output, isReceipt := strings.CutSuffix(path, receipt.Suffix)
 		if err != nil || !isReceipt {

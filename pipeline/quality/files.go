@@ -100,10 +100,15 @@ func pairFolders(raw, corrected string) (pairs []filePair, without []Finding, er
 	return pairs, without, nil
 }
 
-// cloudsBelow lists the clouds below a folder, but for those below the other one.
+// cloudsBelow lists the clouds below a folder, but for those below the other one. The
+// folder may be a symbolic link.
 func cloudsBelow(folder, other string) (map[string]bool, error) {
+	folder, err := filepath.EvalSymlinks(folder)
+	if err != nil {
+		return nil, err
+	}
 	clouds := map[string]bool{}
-	err := filepath.WalkDir(folder, func(path string, d fs.DirEntry, err error) error {
+	err = filepath.WalkDir(folder, func(path string, d fs.DirEntry, err error) error {
 		switch {
 		case err != nil:
 			return err

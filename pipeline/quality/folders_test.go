@@ -65,6 +65,20 @@ func TestFoldersOfRuns(t *testing.T) {
 	}
 }
 
+// Folders may be symbolic links.
+func TestLinkedFolders(t *testing.T) {
+	raw, corrected := survey(t, verticalJob)
+	links := t.TempDir()
+	for name, folder := range map[string]string{"raw": raw, "true": corrected} {
+		if err := os.Symlink(folder, filepath.Join(links, name)); err != nil {
+			t.Fatal(err)
+		}
+	}
+	if r := diffFolders(t, filepath.Join(links, "raw"), filepath.Join(links, "true"), Options{}); !r.Holds || len(r.Files) != 3 {
+		t.Errorf("holds %v, %d files: %v", r.Holds, len(r.Files), r.Findings)
+	}
+}
+
 // The figures are the same, to the bit, whatever the number of workers.
 func TestSameForWorkers(t *testing.T) {
 	raw, corrected := survey(t, verticalJob)
