@@ -239,6 +239,7 @@ func TestEditedReceiptIsFound(t *testing.T) {
 			{"the cloud's path", func(r *receipt.Receipt) { r.Inputs[0].Path = "raw/b." + format }, `the receipt has the raw cloud as "raw/b.` + format + `", want the output's name "a.` + format + `"`},
 			{"ranges", func(r *receipt.Receipt) { r.Ranges["depth"] = [2]float64{0.5, 1} }, "the receipt has depth from 0.5 to 1, found "},
 			{"cautions", func(r *receipt.Receipt) { r.Cautions = nil }, "the receipt lacks the caution "},
+			{"a caution more", func(r *receipt.Receipt) { r.Cautions = append(r.Cautions, "fit for navigation") }, `the receipt has the caution "fit for navigation", for which there is no cause`},
 			{"program", func(r *receipt.Receipt) { r.Program = "other 1" }, `the receipt's program is "other 1", want bentray`},
 			{"run", func(r *receipt.Receipt) { r.Run = strings.Repeat("cd", 32) }, "the receipt's run is cdcdcdcdcdcd, want " + made.Run[:12]},
 			{"version", func(r *receipt.Receipt) {
@@ -267,6 +268,25 @@ func TestEditedReceiptIsFound(t *testing.T) {
 		}
 		if r := audit(t, output); !r.Holds() {
 			t.Errorf("as it was: %s", r.faultsOf("a."+format))
+		}
+	})
+}
+
+// Another program may word cautions otherwise: a note says that they are not proven. What
+// FLOAT coordinates of the raw cloud gave cause to say is no fault, of Parquet.
+func TestCautionsThatCannotBeProven(t *testing.T) {
+	const coarse = `coordinates in column "x" are FLOAT, of some 7 digits; take the cloud with DOUBLE ones if there is one`
+	eachModel(t, func(t *testing.T, k *auditKind, format string) {
+		output := filepath.Join(k.run(t, format), "true", "a."+format)
+		made := readReceipt(t, output)
+		editReceipt(t, output, func(r *receipt.Receipt) { r.Cautions = append(r.Cautions, coarse) })
+		if got := audit(t, output).faultsOf("a." + format); strings.Contains(got, coarse[:10]) != (format == "csv") {
+			t.Errorf("FLOAT coordinates: faults are %q", got)
+		}
+		editReceipt(t, output, func(r *receipt.Receipt) { *r = *made; r.Program, r.Cautions = "bentray 9.9", nil })
+		r := audit(t, output)
+		if got := strings.Join(r.Files[0].Notes, "\n"); !r.Holds() || !strings.Contains(got, `cautions are not proven: the receipt's program is "bentray 9.9"`) {
+			t.Errorf("another program: holds %v, notes are %q", r.Holds(), got)
 		}
 	})
 }

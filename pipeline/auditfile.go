@@ -223,14 +223,7 @@ func (c *recheck) checkCounts(f *FileAudit, r *receipt.Receipt) {
 			f.fault("the receipt has %s from %s to %s, found %s to %s", name, showNumber(got[0]), showNumber(got[1]), showNumber(w[0]), showNumber(w[1]))
 		}
 	}
-	if r.Program != Program {
-		return // another version may say it in other words
-	}
-	for _, caution := range c.tally.cautions(c.survey) {
-		if !slices.Contains(r.Cautions, caution) {
-			f.fault("the receipt lacks the caution %q", caution)
-		}
-	}
+	c.checkCautions(f, r)
 }
 
 func (c *recheck) isNear(got, want float64) bool {

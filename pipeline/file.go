@@ -146,11 +146,17 @@ func (w *rewriting) commit(whole receipt.Input) (*receipt.Receipt, error) {
 		RowsRead: w.rows.Read, RowsWritten: w.rows.Written, RowsDiverted: w.rows.Diverted,
 		Outcomes: w.tally.counts(), Sensors: w.tally.bySensor(w.survey), Ranges: w.tally.ranges(w.survey), Cautions: append(w.tally.cautions(w.survey), w.cautionsOf(w.file, w.read)...),
 	}
-	if w.rows.Written == 0 {
-		r.Cautions = append(r.Cautions, "the file holds no points")
-	}
-	if w.rows.Diverted > 0 {
-		r.Cautions = append(r.Cautions, fmt.Sprintf("%d of %d rows could not be read and were diverted to %s%s", w.rows.Diverted, w.rows.Read, w.in.target, rejectsSuffix))
-	}
+	r.Cautions = append(r.Cautions, rowCautions(r)...)
 	return r, r.Write(w.in.output)
+}
+
+// rowCautions are those that a receipt's own counts give.
+func rowCautions(r *receipt.Receipt) (cautions []string) {
+	if r.RowsWritten == 0 {
+		cautions = append(cautions, "the file holds no points")
+	}
+	if r.RowsDiverted > 0 {
+		cautions = append(cautions, fmt.Sprintf("%d of %d rows could not be read and were diverted to %s%s", r.RowsDiverted, r.RowsRead, r.Output.Path, rejectsSuffix))
+	}
+	return cautions
 }

@@ -130,7 +130,7 @@ func (f *File) Begin(read cloud.Request, write cloud.Layout, out io.Writer) erro
 	}
 	for _, c := range f.raw {
 		if c.leaf.kind == floats {
-			f.cautions = append(f.cautions, fmt.Sprintf("coordinates in column %q are FLOAT, of some 7 digits; take the cloud with DOUBLE ones if there is one", c.leaf.name))
+			f.cautions = append(f.cautions, coarseCaution(c.leaf.name))
 		}
 	}
 	if out == nil {

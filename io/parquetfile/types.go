@@ -110,7 +110,7 @@ func dropUnknown(elements []*parquet.SchemaElement) []string {
 	for _, e := range elements {
 		if l := e.LogicalType; l != nil && unwritable(l) {
 			e.LogicalType = nil
-			cautions = append(cautions, fmt.Sprintf("column %q is %s; it is copied without that type's name", e.Name, unknownType))
+			cautions = append(cautions, unknownCaution(e.Name))
 		}
 	}
 	return cautions

@@ -6,6 +6,7 @@
 package receipt
 
 import (
+	"bytes"
 	"context"
 	"crypto/sha256"
 	"encoding/hex"
@@ -72,15 +73,21 @@ func (r *Receipt) Write(outputPath string) error {
 	return writeJSON(outputPath+Suffix, r)
 }
 
-// Read returns the receipt of an output file.
+// Read returns the receipt of an output file. A key that is none is an error, since
+// nothing would hold what it says.
 func Read(outputPath string) (*Receipt, error) {
 	data, err := os.ReadFile(outputPath + Suffix)
 	if err != nil {
 		return nil, err
 	}
 	var r Receipt
-	if err := json.Unmarshal(data, &r); err != nil {
+	d := json.NewDecoder(bytes.NewReader(data))
+	d.DisallowUnknownFields()
+	if err := d.Decode(&r); err != nil {
 		return nil, fmt.Errorf("%s%s: not a receipt: %w", outputPath, Suffix, err)
+	}
+	if rest := bytes.TrimSpace(data[d.InputOffset():]); len(rest) > 0 {
+		return nil, fmt.Errorf("%s%s: not a receipt: %d bytes behind its end", outputPath, Suffix, len(rest))
 	}
 	return &r, nil
 }

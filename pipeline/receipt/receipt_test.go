@@ -119,11 +119,17 @@ func TestReadFaults(t *testing.T) {
 	if _, err := Read(output); !errors.Is(err, os.ErrNotExist) {
 		t.Errorf("without a receipt it gives %v", err)
 	}
-	if err := os.WriteFile(output+Suffix, []byte("{"), 0o666); err != nil {
-		t.Fatal(err)
-	}
-	if _, err := Read(output); err == nil || !strings.HasPrefix(err.Error(), output+".receipt.json: not a receipt: ") {
-		t.Errorf("a broken receipt gives %v", err)
+	for text, want := range map[string]string{
+		"{":                              "",
+		`{"run": "ab", "approved": "x"}`: `json: unknown field "approved"`,
+		"{}\n{}\n":                       "2 bytes behind its end",
+	} {
+		if err := os.WriteFile(output+Suffix, []byte(text), 0o666); err != nil {
+			t.Fatal(err)
+		}
+		if _, err := Read(output); err == nil || !strings.HasPrefix(err.Error(), output+".receipt.json: not a receipt: "+want) {
+			t.Errorf("%s gives %v, want %s", text, err, want)
+		}
 	}
 }
 
