@@ -4,8 +4,6 @@ import (
 	"math"
 	"strings"
 	"testing"
-
-	"bentray/pipeline/job"
 )
 
 // Points that are not solved hold nothing of the points that were in memory before
@@ -68,38 +66,4 @@ func TestImagesInBatches(t *testing.T) {
 	if rays < 1.1*batchRays {
 		t.Errorf("the points have %v rays, want more than a batch of %d", rays, batchRays)
 	}
-}
-
-// A point that names a camera of another sensor fails its file.
-func TestViewsOfAnotherSensor(t *testing.T) {
-	const sensor = "[[sensor]]\nname = \"%\"\nwhere = { point_source_id = [#] }\n[sensor.rays]\nmodel = \"multiview\"\ncameras = \"%.csv\"\n"
-	folder := t.TempDir()
-	cameras := "camera,x,y,z\n@1,0,0,50\n@2,20,0,50\n"
-	files{
-		"raw/a.csv":   "x,y,z,views,point_source_id\n5,2,-1,m1 m2,1\n6,2,-1,e1 e2,2\n7,2,-1,m1 m2,2\n",
-		"raw/b.csv":   "x,y,z,views,point_source_id\n5,2,-1,m1 m2,1\n6,2,-1,e1 e2,2\n",
-		"morning.csv": strings.ReplaceAll(cameras, "@", "m"), "evening.csv": strings.ReplaceAll(cameras, "@", "e"),
-	}.write(t, folder)
-	j := loadJob(t, folder, "[input]\nfiles = [\"raw/*.csv\"]\n[output]\nfolder = \"true\"\n[surface]\nlevel = 0\n"+seaWater+
-		strings.NewReplacer("%", "morning", "#", "1").Replace(sensor)+strings.NewReplacer("%", "evening", "#", "2").Replace(sensor))
-	failed := failures(t, j)
-	const want = `views of the point at 7.000, 2.000, which is of sensor "evening": camera "m1" is none of the 2 known`
-	if len(failed) != 1 || !strings.Contains(failed[0], want) {
-		t.Errorf("failed: %q, want one with %q", failed, want)
-	}
-}
-
-// failures does a job with one worker and returns why files failed.
-func failures(t *testing.T, j *job.Job) (list []string) {
-	t.Helper()
-	s, err := Run(t.Context(), j, Options{Workers: 1})
-	if err != nil {
-		t.Fatal(err)
-	}
-	for _, f := range s.Files {
-		if f.Error != "" {
-			list = append(list, f.Error)
-		}
-	}
-	return list
 }

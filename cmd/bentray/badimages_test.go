@@ -124,5 +124,5 @@ func TestViewsOfAnotherSensor(t *testing.T) {
 		old: pulseRays, new: rays,
 	}.lay(t)
 	code, _, errs := call(t, "run", "job.toml")
-	want(t, "run", code, exitPartly, errs, "failed: raw/b.csv: views of the point at 5.500, 6.000: camera \"a\" is none of the 2 known, want their ids, with blanks or \";\" between (sensor \"dusk\")\n")
+	want(t, "run", code, exitPartly, errs, "failed: raw/b.csv: views of the point at 5.500, 6.000, which is of sensor \"dusk\": camera \"a\" is none of the 2 known, want their ids, with blanks or \";\" between; another sensor's cameras have the id\n")
 }
