@@ -5,6 +5,11 @@ import "fmt"
 const (
 	// window is how many rows are looked ahead to tell what happened to a row.
 	window = 512
+	// farWindow is how many are looked ahead where the rows do not meet within the window,
+	// as where a row group was lost; it bounds memory.
+	farWindow = 1 << 18
+	// maxFar is how many such looks at one file may be in vain.
+	maxFar = 5
 	// agreeing rows behind a place where two files meet again confirm it.
 	agreeing = 3
 	// maxSearches bounds the time spent in looking ahead in one file: later rows that
@@ -36,8 +41,26 @@ func (c *comparison) search() error {
 			return err
 		}
 	}
+	if !inPlace && c.far < maxFar {
+		told, err := c.searchFar()
+		if told || err != nil {
+			return err
+		}
+	}
 	c.changed()
 	return nil
+}
+
+// searchFar looks beyond the window for rows that one file lacks. It holds no more
+// chunks than the window has rows.
+func (c *comparison) searchFar() (told bool, err error) {
+	for k := window + 1; k <= farWindow && max(len(c.a.queue), len(c.b.queue)) <= window; k++ {
+		if told, err := c.shifted(k); told || err != nil {
+			return told, err
+		}
+	}
+	c.far++
+	return false, nil
 }
 
 // shifted tells of k rows that one file lacks.

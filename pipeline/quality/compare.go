@@ -21,6 +21,7 @@ type comparison struct {
 	stride   int    // rows compared at once; few where rows differ often
 	last     uint64 // key of the row of b before the next
 	searches int
+	far      int            // searches beyond the window that were in vain
 	partners map[int64]bool // rows of b, from 0, whose swap is told already
 }
 

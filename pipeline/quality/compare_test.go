@@ -51,6 +51,18 @@ var damages = []damage{
 		"row 1207 of the raw cloud", nil,
 	},
 	{
+		"more rows dropped than the window has", func(s sheet) sheet { return without(s, 1207, 1500) },
+		map[string]int64{KindDropped: 1500},
+		Finding{Kind: KindDropped, RawRow: 1207},
+		"row 1207 of the raw cloud", nil,
+	},
+	{
+		"more rows of elsewhere than the window has", func(s sheet) sheet { return slices.Insert(s, 1207, slices.Clone(s[100:1100])...) },
+		map[string]int64{KindInserted: 1000},
+		Finding{Kind: KindInserted, Row: 1207},
+		"row 1207 is not in the raw cloud", nil,
+	},
+	{
 		"the last rows dropped", func(s sheet) sheet { return s[:len(s)-2] },
 		map[string]int64{KindDropped: 2},
 		Finding{Kind: KindDropped, RawRow: 2999},
