@@ -54,7 +54,8 @@ func reportCheck(r *CheckReport, m *matcher, depth *bins, plan, height float64) 
 	r.Residuals = residualsOf(matched)
 	slope, sigma := regression(deep)
 	r.Slope, r.SlopeSigma = Number(slope), Number(sigma)
-	r.Meaning = meaning(slope, isTold(slope, sigma, deep))
+	r.Scatter = Number(scatterOf(matched))
+	r.Meaning = meaning(slope, isTold(slope, sigma, deep), isNoisy(float64(r.Scatter), deep))
 	r.ByDepth = checkBands(deep)
 	r.S44 = shares(deep, height)
 	r.Warnings = r.warnings(deep, depth)
@@ -161,8 +162,8 @@ func depths(points []CheckPoint) (low, high float64) {
 }
 
 // meaning says what a slope of the residual against depth stands for, where it is told
-// from none.
-func meaning(slope float64, isTold bool) string {
+// from none. Noise comes before index and rays where it is large.
+func meaning(slope float64, isTold, isNoisy bool) string {
 	switch {
 	case math.IsNaN(slope):
 		return "the check points do not give a slope of the error against depth"
@@ -172,6 +173,9 @@ func meaning(slope float64, isTold bool) string {
 	where := "too shallow"
 	if slope < 0 {
 		where = "too deep"
+	}
+	if isNoisy {
+		return fmt.Sprintf("the deeper, the more the corrected bed is %s, by %.2f %% of the depth: the corrected points scatter much about the local planes (noise, plants, fish, steep rock, a wide --reach), which does this by itself; clean the cloud before index or rays are blamed", where, 100*math.Abs(slope))
 	}
 	return fmt.Sprintf("the deeper, the more the corrected bed is %s, by %.2f %% of the depth: an index that is off in proportion does this (temperature, salinity, phase or group index), so does the geometry of the rays (angles, calibration, origins, waves); a wrong water level moves all depths alike and shows in the bias", where, 100*math.Abs(slope))
 }

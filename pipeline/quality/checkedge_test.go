@@ -2,8 +2,10 @@ package quality
 
 import (
 	"math"
+	"math/rand/v2"
 	"path/filepath"
 	"slices"
+	"strconv"
 	"strings"
 	"testing"
 )
@@ -133,4 +135,37 @@ func TestCheckOfLeanOutput(t *testing.T) {
 	}
 	checkSlope(t, c, residual, depth)
 	checkByDepth(t, c, residual, depth)
+}
+
+// In a cloud of noise, and check points out of it, residual and depth share the check
+// point's height: the slope is large, and no fault of index or rays. Of normal noise the
+// scatter is its standard deviation.
+func TestScatteredCloud(t *testing.T) {
+	for _, c := range []struct {
+		sigma float64
+		noisy bool
+	}{{0.02, false}, {1.2, true}} {
+		rng := rand.New(rand.NewPCG(77, 1))
+		raw, corrected, _ := checkedCloud(20_000, 0)
+		check := sheet{{"x", "y", "z"}}
+		for row := 1; row <= 20_000; row++ {
+			x, _ := strconv.ParseFloat(corrected[row][0], 64)
+			y, _ := strconv.ParseFloat(corrected[row][1], 64)
+			z := bed(x, y) + c.sigma*rng.NormFloat64() - 4
+			corrected.set(row, "z", exact(z))
+			corrected.set(row, "depth", exact(sceneLevel-z))
+			if row%100 == 0 {
+				check = append(check, []string{exact(x), exact(y), exact(z)})
+			}
+		}
+		path := check.write(t, filepath.Join(t.TempDir(), "check.csv"))
+		r := diffSheets(t, "csv", raw, corrected, Options{Check: path, Reach: 2}).Check
+		if !isNear(r.Scatter, c.sigma, 0.1*c.sigma) {
+			t.Errorf("scatter %v, want %v", r.Scatter, c.sigma)
+		}
+		says := strings.Join(r.Warnings, "\n")
+		if strings.Contains(says, "scatter by") != c.noisy || c.noisy && !strings.Contains(r.Meaning, "clean the cloud before index or rays") || strings.Contains(r.Meaning, "an index that is off") {
+			t.Errorf("noise of %g: slope %v, meaning %q, warnings %q", c.sigma, r.Slope, r.Meaning, says)
+		}
+	}
 }

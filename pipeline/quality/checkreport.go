@@ -12,6 +12,7 @@ type CheckReport struct {
 	Unmatched int    `json:"unmatched"`
 	OnLand    int    `json:"on_land"` // at or above the water, or with dry points alone about them; in no figure
 	Residuals
+	Scatter Number `json:"scatter"` // of the corrected points about the local planes, the median; NaN of nearest ones
 
 	Slope      Number            `json:"slope"` // of the residual against depth, least squares
 	SlopeSigma Number            `json:"slope_sigma"`
@@ -45,7 +46,8 @@ type CheckPoint struct {
 	Corrected float64
 	Depth     float64
 	Residual  float64
-	Near      int // corrected points within reach, as far as they were kept
+	Scatter   float64 // of the corrected points about their plane, as a standard deviation
+	Near      int     // corrected points within reach, as far as they were kept
 }
 
 // Ways to match a check point among the corrected points.

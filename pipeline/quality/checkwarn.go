@@ -29,6 +29,9 @@ func (r *CheckReport) warnings(matched []CheckPoint, depth *bins) []string {
 	if r.Count > len(matched) {
 		say("%d matched check points have no water level and so no usable depth: they are left out of slope, bands and orders", r.Count-len(matched))
 	}
+	if isNoisy(float64(r.Scatter), matched) {
+		say("the corrected points scatter by %.3f about the local planes, much beside the spread of the depths: the error at check points is that of noise in good part, and its slope against depth says little", float64(r.Scatter))
+	}
 	return append(list, spanWarning(matched, depth)...)
 }
 

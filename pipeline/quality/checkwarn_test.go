@@ -67,7 +67,7 @@ func TestMeaning(t *testing.T) {
 		for i := range points {
 			points[i].Depth = float64(i)
 		}
-		if got := meaning(c.slope, isTold(c.slope, c.sigma, points)); !strings.Contains(got, c.says) {
+		if got := meaning(c.slope, isTold(c.slope, c.sigma, points), false); !strings.Contains(got, c.says) {
 			t.Errorf("%g ± %g of %d points: %q, want %q", c.slope, c.sigma, c.points, got, c.says)
 		}
 	}

@@ -140,7 +140,7 @@ var damages = []damage{
 		"a point moved in height", func(s sheet) sheet { s.set(55, "z", "-3"); return s },
 		map[string]int64{KindMoved: 1},
 		Finding{Kind: KindMoved, Row: 55, Column: "z", Got: "-3"},
-		"water_level minus depth", nil,
+		"water_level minus depth: one of the three was changed", nil,
 	},
 	{
 		"a corrected height blank", func(s sheet) sheet { s.set(55, "z", ""); return s },

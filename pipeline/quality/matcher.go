@@ -147,11 +147,11 @@ func (m *matcher) points(match string, plan, height float64) []CheckPoint {
 		near := m.near[i]
 		slices.SortFunc(near, neighbour.compare)
 		p := &list[i]
-		*p = CheckPoint{X: m.x[i], Y: m.y[i], Z: m.z[i], Corrected: math.NaN(), Depth: math.NaN(), Near: len(near)}
+		*p = CheckPoint{X: m.x[i], Y: m.y[i], Z: m.z[i], Corrected: math.NaN(), Depth: math.NaN(), Scatter: math.NaN(), Near: len(near)}
 		if len(near) > 0 {
 			p.Depth = near[0].level - p.Z
 			if match == MatchPlane {
-				p.Corrected = fit.level(near, m.reach, plan, height)
+				p.Corrected, p.Scatter = fit.level(near, m.reach, plan, height)
 			} else {
 				p.Corrected = near[0].z
 			}
@@ -161,22 +161,29 @@ func (m *matcher) points(match string, plan, height float64) []CheckPoint {
 	return list
 }
 
+// normalMAD turns the median of magnitudes into the standard deviation of normal values
+// (Rousseeuw and Croux 1993, Alternatives to the median absolute deviation).
+const normalMAD = 1.4826
+
 // planeMatch fits local planes, one after the other.
 type planeMatch struct {
 	plane   geo.LocalPlane
 	u, v, z []float64
 }
 
-// level returns the height of the plane at the check point, NaN where its neighbours
-// do not give one.
-func (f *planeMatch) level(near []neighbour, reach, plan, height float64) float64 {
+// level returns the height of the plane at the check point and how far the neighbours
+// scatter about the plane, NaN where they do not give one.
+func (f *planeMatch) level(near []neighbour, reach, plan, height float64) (level, scatter float64) {
 	f.u, f.v, f.z = f.u[:0], f.v[:0], f.z[:0]
 	for _, n := range near {
 		f.u, f.v, f.z = append(f.u, n.u*plan), append(f.v, n.v*plan), append(f.z, n.z*height)
 	}
-	level, _, _, ok := f.plane.Fit(f.u, f.v, f.z, reach*plan)
+	level, slopeX, slopeY, ok := f.plane.Fit(f.u, f.v, f.z, reach*plan)
 	if !ok {
-		return math.NaN()
+		return math.NaN(), math.NaN()
 	}
-	return level / height
+	for i := range f.z {
+		f.z[i] = math.Abs(f.z[i] - level - slopeX*f.u[i] - slopeY*f.v[i])
+	}
+	return level / height, normalMAD * percentile(f.z, 0.5) / height
 }

@@ -171,7 +171,7 @@ func (f *findings) moved(row int64, name string, got, want float64, corrected bo
 			d.Want = "a number"
 			wanted = "a number, since the point is corrected"
 		case corrected:
-			wanted = fmt.Sprintf("%.4f, water_level minus depth", want)
+			wanted = fmt.Sprintf("%.4f, water_level minus depth: one of the three was changed", want)
 		}
 		d.Text = fmt.Sprintf("row %d: %s is %s, want %s", row, name, d.Got, wanted)
 	}
