@@ -9,7 +9,9 @@ import (
 	"slices"
 	"strconv"
 	"strings"
+	"sync/atomic"
 	"testing"
+	"time"
 
 	"bentray/correct"
 	"bentray/pipeline/receipt"
@@ -441,4 +443,31 @@ func TestNothingToAudit(t *testing.T) {
 			t.Errorf("%s: error is %v, want a CallError with %q", path, err, want)
 		}
 	}
+}
+
+// toucher sets the time of change of a file, another one each time that something is read.
+type toucher struct {
+	silent
+	path  string
+	times *atomic.Int64
+}
+
+func (w toucher) Read(int64) {
+	if err := os.Chtimes(w.path, time.Time{}, time.Unix(1_500_000_000+w.times.Add(1), 0)); err != nil {
+		panic(err)
+	}
+}
+
+// An output that changes while it is audited is not proven.
+func TestOutputThatChangesMeanwhileIsFound(t *testing.T) {
+	eachModel(t, func(t *testing.T, k *auditKind, format string) {
+		output := filepath.Join(k.run(t, format), "true", "a."+format)
+		r, err := Audit(t.Context(), output, AuditOptions{Watch: toucher{path: output, times: new(atomic.Int64)}})
+		if err != nil {
+			t.Fatal(err)
+		}
+		if got := r.faultsOf("a." + format); !strings.Contains(got, "changed while it was read; run again when it is complete") {
+			t.Errorf("faults are %q", got)
+		}
+	})
 }
